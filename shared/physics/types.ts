@@ -1,0 +1,194 @@
+/**
+ * Words and units that every part of the core shares. SI and radians inside; the unit ends each name.
+ * Instants are `UtcMs`: milliseconds since 1970-01-01T00:00:00Z on UTC without leap seconds, fractions allowed.
+ */
+
+export type UtcMs = number
+export type Hz = number
+
+declare const frame: unique symbol
+/** Cartesian triple in a named frame: TEME, or Earth-fixed (TEME turned about z by GMST; no polar motion). */
+export type Vec3<Frame extends 'TEME' | 'ECEF'> = readonly [number, number, number] & { readonly [frame]?: Frame }
+
+/** Closed span of time. */
+export interface Span { readonly fromMs: UtcMs, readonly toMs: UtcMs }
+
+/** Mean elements of SGP4 (WGS-72) in TEME, in the units of the published notations, exact numbers. */
+export interface MeanElements {
+  readonly name: string | null
+  /** Text, never a number: up to nine digits; Alpha-5 already spelled out (A0000 is "100000"). */
+  readonly catalogueNumber: string | null
+  readonly designator: string | null
+  /** Whole microseconds since 1970-01-01T00:00:00Z, UTC. */
+  readonly epochUtcUs: number
+  readonly meanMotionRevPerDay: number
+  readonly eccentricity: number
+  readonly inclinationDeg: number
+  readonly raanDeg: number
+  readonly argPericenterDeg: number
+  readonly meanAnomalyDeg: number
+  /** 1/Earth radii. */
+  readonly bstar: number
+  /** First derivative of mean motion divided by two, rev/day², as printed. */
+  readonly meanMotionDot: number
+  /** Second derivative of mean motion divided by six, rev/day³, as printed. */
+  readonly meanMotionDdot: number
+  readonly classification: string
+  readonly elementSetNumber: number | null
+  readonly revolutionAtEpoch: number | null
+}
+
+export type PropagationError =
+  | 'eccentricity-out-of-range' // SGP4 error 1
+  | 'mean-motion-not-positive' // 2
+  | 'perturbed-eccentricity-out-of-range' // 3
+  | 'semi-latus-rectum-negative' // 4
+  | 'sub-orbital-epoch' // 5
+  | 'decayed' // 6
+
+export interface StateTeme { readonly positionM: Vec3<'TEME'>, readonly velocityMps: Vec3<'TEME'> }
+export type Propagation = ({ readonly ok: true } & StateTeme) | { readonly ok: false, readonly error: PropagationError }
+
+/** The one door to the propagator. */
+export interface Propagator {
+  readonly elements: MeanElements
+  at(utcMs: UtcMs): Propagation
+  /** For comparison with published runs, which count minutes from the epoch. */
+  atMinutes(minutesSinceEpoch: number): Propagation
+}
+export type PropagatorResult = { readonly ok: true, readonly propagator: Propagator } | { readonly ok: false, readonly error: PropagationError }
+
+/** State by interpolation on a grid; null outside [fromMs, toMs]. Validity ends at the first propagation error. */
+export interface Ephemeris {
+  readonly fromMs: UtcMs
+  readonly toMs: UtcMs
+  readonly endedBy: PropagationError | null
+  /** True propagation, for refinement. */
+  readonly propagator: Propagator
+  stateAt(utcMs: UtcMs): StateTeme | null
+}
+
+export interface MaskPoint { readonly azimuthRad: number, readonly elevationRad: number }
+
+/** WGS-84 geodetic; height above the ellipsoid of the antenna's phase centre. */
+export interface Site {
+  readonly latitudeRad: number
+  readonly longitudeRad: number
+  readonly heightM: number
+  readonly minElevationRad: number
+  /** Horizon by azimuth, linear between points, across north; empty for none. */
+  readonly mask: readonly MaskPoint[]
+}
+
+/** Azimuth from true north clockwise, geometric elevation, range rate positive when receding. */
+export interface Look {
+  readonly azimuthRad: number
+  readonly elevationRad: number
+  readonly rangeM: number
+  readonly rangeRateMps: number
+}
+
+export interface PredictedPass {
+  readonly aosMs: UtcMs
+  readonly culminationMs: UtcMs
+  readonly losMs: UtcMs
+  readonly maxElevationRad: number
+  /** The window's edge cuts the pass there. */
+  readonly aosClipped: boolean
+  readonly losClipped: boolean
+  /** Spans above the station's horizon (minimum elevation and mask); links may narrow them by their own minimum. */
+  readonly workable: readonly Span[]
+}
+
+export type Direction = 'uplink' | 'downlink'
+export type Detector = 'quadrature' | 'coherent' | 'stated'
+
+/** What the link's physics needs; null means not stated. */
+export interface LinkModel {
+  readonly direction: Direction
+  readonly carrierHz: Hz
+  readonly symbolRateHz: number
+  readonly detector: Detector
+  readonly permittedLossDb: number
+  readonly captureRangeHz: Hz | null
+  readonly filterBandwidthHz: Hz | null
+  readonly rolloff: number | null
+  readonly driftLimitHzPerS: number | null
+  readonly jumpLimitHz: Hz | null
+  /** Allowance of detector `stated`. */
+  readonly limitHz: Hz | null
+  readonly errorRate: number
+  /** Licensed band; uplink rows stay inside it. */
+  readonly bandLowHz: Hz | null
+  readonly bandHighHz: Hz | null
+}
+
+export type LimitedBy = 'loss' | 'captureRange' | 'filter' | 'stated'
+export interface Allowance { readonly symbolTimeS: number, readonly epsilon: number, readonly allowanceHz: Hz, readonly limitedBy: LimitedBy }
+
+/** A stepped radio: grid {offset + k·step}, in sky frequency. */
+export interface RadioModel {
+  readonly stepHz: Hz
+  readonly offsetHz: Hz
+  readonly minDwellS: number
+  readonly latencyMs: number
+  readonly latencyUncertaintyMs: number
+}
+
+/** Uncertainties; limits add, one-sigma spreads add as root of squares times k. */
+export interface BudgetModel {
+  readonly clockErrorMs: number
+  readonly ut1MinusUtcS: number
+  readonly ut1BoundS: number
+  /** One sigma of the spacecraft's along-track timing at an instant. */
+  readonly alongTrackSigmaS: (utcMs: UtcMs) => number
+  readonly spacecraftPpm: number
+  readonly stationPpm: number
+  readonly k: number
+}
+
+/** Everything but `stepsHz` at one instant of the workable part. `oscillatorHz`, `orbitHz` are one sigma; timing and ut1 are limits. */
+export interface BudgetParts {
+  readonly stepsHz: Hz
+  readonly timingHz: Hz
+  readonly ut1Hz: Hz
+  readonly orbitHz: Hz
+  readonly oscillatorHz: Hz
+  readonly trimHz: Hz
+}
+
+/** A row as published: `atMs` is when to command, whole milliseconds; effective `latencyMs` later. */
+export interface RetuneRow { readonly atMs: UtcMs, readonly frequencyHz: Hz, readonly slopeHzPerS: number }
+
+export type Verdict = 'holds' | 'tight' | 'breaks'
+
+export interface CheckedRetune extends RetuneRow {
+  /** Signed residual (needed minus set) over the row's part of the workable spans, without the budget's uncertainties. */
+  readonly residualMinHz: Hz
+  readonly residualMaxHz: Hz
+  /** Loss at the row's worst residual, dB; null for `stated`. */
+  readonly lossDb: number | null
+  /** At the instant of effect. */
+  readonly dopplerHz: Hz
+  readonly rangeRateMps: number
+  readonly azimuthRad: number
+  readonly elevationRad: number
+}
+
+export interface TableCheck {
+  readonly verdict: Verdict
+  readonly allowance: Allowance
+  /** Largest budgeted residual over the workable part, and where. */
+  readonly worstResidualHz: Hz
+  readonly worstAtMs: UtcMs
+  readonly budget: BudgetParts
+  /** allowance / worst; Infinity never: capped at 1e6 when the worst is zero. */
+  readonly margin: number
+  readonly retunes: readonly CheckedRetune[]
+  /** Spans of the workable part where the budgeted residual is beyond the allowance. */
+  readonly excess: readonly Span[]
+  /** Reasons that break whatever the residual: a row outside the band, drift or jump beyond its limit, dwell not kept, off the grid. */
+  readonly faults: readonly { readonly code: string, readonly atMs: UtcMs, readonly message: string }[]
+  /** Symbol clock scale over the pass, parts per million, smallest and largest. */
+  readonly symbolClockPpm: readonly [number, number]
+}
