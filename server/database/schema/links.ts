@@ -1,0 +1,38 @@
+import { sql } from 'drizzle-orm'
+import { boolean, check, index, pgTable, text, uniqueIndex, uuid } from 'drizzle-orm/pg-core'
+import { createdAt, id, instant, real } from './columns'
+import { spacecraft } from './spacecraft'
+
+export const links = pgTable('links', {
+  id: id(),
+  spacecraftId: uuid('spacecraft_id').notNull().references(() => spacecraft.id, { onDelete: 'cascade' }),
+  name: text('name').notNull(),
+  direction: text('direction', { enum: ['uplink', 'downlink'] }).notNull(),
+  carrierHz: real('carrier_hz').notNull(),
+  bandLowHz: real('band_low_hz').notNull(),
+  bandHighHz: real('band_high_hz').notNull(),
+  symbolRateHz: real('symbol_rate_hz').notNull(),
+  modulation: text('modulation').notNull(),
+  detector: text('detector', { enum: ['quadrature', 'coherent', 'stated'] }).notNull(),
+  permittedLossDb: real('permitted_loss_db').notNull().default(0.5),
+  captureRangeHz: real('capture_range_hz'),
+  filterBandwidthHz: real('filter_bandwidth_hz'),
+  rolloff: real('rolloff'),
+  limitHz: real('limit_hz'),
+  driftLimitHzPerS: real('drift_limit_hz_per_s'),
+  jumpLimitHz: real('jump_limit_hz'),
+  errorRate: real('error_rate').notNull().default(1e-5),
+  minElevationDeg: real('min_elevation_deg').notNull().default(0),
+  /** A drafted table that holds is approved by itself. */
+  approveWhatHolds: boolean('approve_what_holds').notNull(),
+  retiredAt: instant('retired_at'),
+  createdAt: createdAt(),
+}, t => [
+  uniqueIndex('links_name_unique').on(t.spacecraftId, sql`lower(${t.name})`).where(sql`${t.retiredAt} IS NULL`),
+  index('links_spacecraft').on(t.spacecraftId),
+  check('links_carrier_in_band', sql`${t.carrierHz} > 0 AND ${t.bandLowHz} > 0 AND ${t.bandLowHz} <= ${t.carrierHz} AND ${t.carrierHz} <= ${t.bandHighHz}`),
+  check('links_symbol_rate_positive', sql`${t.symbolRateHz} > 0`),
+  check('links_permitted_loss_range', sql`${t.permittedLossDb} > 0 AND ${t.permittedLossDb} <= 20`),
+  check('links_stated_has_limit', sql`${t.detector} <> 'stated' OR ${t.limitHz} > 0`),
+  check('links_min_elevation_range', sql`${t.minElevationDeg} >= 0 AND ${t.minElevationDeg} < 90`),
+])

@@ -1,0 +1,65 @@
+import { sql } from 'drizzle-orm'
+import { boolean, check, index, integer, jsonb, pgTable, text, uniqueIndex, uuid } from 'drizzle-orm/pg-core'
+import { createdAt, id, instant, real } from './columns'
+
+export const stations = pgTable('stations', {
+  id: id(),
+  name: text('name').notNull(),
+  latitudeDeg: real('latitude_deg').notNull(),
+  longitudeDeg: real('longitude_deg').notNull(),
+  /** WGS-84 ellipsoidal height of the antenna's phase centre. */
+  heightM: real('height_m').notNull(),
+  minElevationDeg: real('min_elevation_deg').notNull().default(5),
+  mask: jsonb('mask').$type<{ azimuthDeg: number, elevationDeg: number }[]>().notNull().default([]),
+  zone: text('zone').notNull(),
+  /** Local time of the evening's publication, HH:MM. */
+  publishAt: text('publish_at').notNull().default('18:00'),
+  publishLeadMinutes: integer('publish_lead_minutes').notNull().default(60),
+  freezeMinutes: integer('freeze_minutes').notNull().default(10),
+  clockErrorMs: real('clock_error_ms').notNull().default(0),
+  retiredAt: instant('retired_at'),
+  createdAt: createdAt(),
+}, t => [
+  uniqueIndex('stations_name_unique').on(sql`lower(${t.name})`).where(sql`${t.retiredAt} IS NULL`),
+  check('stations_position_range', sql`${t.latitudeDeg} BETWEEN -90 AND 90 AND ${t.longitudeDeg} BETWEEN -180 AND 180 AND ${t.heightM} BETWEEN -500 AND 9000`),
+  check('stations_min_elevation_range', sql`${t.minElevationDeg} >= 0 AND ${t.minElevationDeg} < 90`),
+  check('stations_publish_at_form', sql`${t.publishAt} ~ '^([01][0-9]|2[0-3]):[0-5][0-9]$'`),
+  check('stations_lead_range', sql`${t.publishLeadMinutes} BETWEEN 1 AND 1440 AND ${t.freezeMinutes} BETWEEN 0 AND 1440`),
+])
+
+export const antennas = pgTable('antennas', {
+  id: id(),
+  stationId: uuid('station_id').notNull().references(() => stations.id, { onDelete: 'cascade' }),
+  name: text('name').notNull(),
+  setupS: real('setup_s').notNull().default(120),
+  retiredAt: instant('retired_at'),
+  createdAt: createdAt(),
+}, t => [
+  uniqueIndex('antennas_name_unique').on(t.stationId, sql`lower(${t.name})`).where(sql`${t.retiredAt} IS NULL`),
+  index('antennas_station').on(t.stationId),
+  check('antennas_setup_range', sql`${t.setupS} BETWEEN 0 AND 86400`),
+])
+
+export const radios = pgTable('radios', {
+  id: id(),
+  antennaId: uuid('antenna_id').notNull().references(() => antennas.id, { onDelete: 'cascade' }),
+  name: text('name').notNull(),
+  transmits: boolean('transmits').notNull(),
+  receives: boolean('receives').notNull(),
+  tuneLowHz: real('tune_low_hz').notNull(),
+  tuneHighHz: real('tune_high_hz').notNull(),
+  stepHz: real('step_hz').notNull(),
+  offsetHz: real('offset_hz').notNull().default(0),
+  minDwellS: real('min_dwell_s').notNull().default(1),
+  latencyMs: real('latency_ms').notNull().default(50),
+  latencyUncertaintyMs: real('latency_uncertainty_ms').notNull().default(0),
+  referencePpm: real('reference_ppm').notNull().default(0),
+  retiredAt: instant('retired_at'),
+  createdAt: createdAt(),
+}, t => [
+  uniqueIndex('radios_name_unique').on(t.antennaId, sql`lower(${t.name})`).where(sql`${t.retiredAt} IS NULL`),
+  index('radios_antenna').on(t.antennaId),
+  check('radios_range', sql`${t.tuneLowHz} > 0 AND ${t.tuneLowHz} < ${t.tuneHighHz}`),
+  check('radios_step_positive', sql`${t.stepHz} > 0 AND ${t.minDwellS} >= 0 AND ${t.latencyMs} >= 0 AND ${t.latencyUncertaintyMs} >= 0 AND ${t.referencePpm} >= 0`),
+  check('radios_does_something', sql`${t.transmits} OR ${t.receives}`),
+])
