@@ -1,0 +1,69 @@
+import { z } from 'zod'
+import { idSchema, instantOut, pageQuery, reasonSchema } from './common'
+
+export const noteOut = z.object({ line: z.number().int(), name: z.string().optional(), code: z.string(), message: z.string() })
+export const uploadOut = z.object({
+  id: idSchema,
+  state: z.enum(['receiving', 'reading', 'finished', 'cancelled', 'failed']),
+  format: z.string().nullable(),
+  fileName: z.string().nullable(),
+  by: z.string(),
+  at: instantOut,
+  readBytes: z.number().int(),
+  totalBytes: z.number().int(),
+  accepted: z.number().int(),
+  alreadyHeld: z.number().int(),
+  refused: z.number().int(),
+  refusals: z.array(noteOut),
+  warnings: z.array(noteOut),
+  /** Sets this upload brought, and those it brought again. */
+  sets: z.array(z.object({ id: idSchema, line: z.number().int(), name: z.string().nullable(), catalogueNumber: z.string().nullable(), epoch: instantOut, spacecraftId: idSchema.nullable(), spacecraftName: z.string().nullable(), state: z.string() })),
+})
+export type UploadOut = z.infer<typeof uploadOut>
+
+export const elementSetState = z.enum(['waiting', 'in-use', 'past', 'refused'])
+export const elementSetsQuery = pageQuery.extend({ spacecraftId: idSchema.optional(), state: elementSetState.optional(), unassigned: z.enum(['true', 'false']).optional() })
+export const elementSetOut = z.object({
+  id: idSchema,
+  uploadId: idSchema,
+  spacecraftId: idSchema.nullable(),
+  spacecraftName: z.string().nullable(),
+  state: elementSetState,
+  name: z.string().nullable(),
+  catalogueNumber: z.string().nullable(),
+  designator: z.string().nullable(),
+  epoch: instantOut,
+  epochUtcUs: z.number(),
+  ageHours: z.number(),
+  perigeeKm: z.number(),
+  apogeeKm: z.number(),
+  inclinationDeg: z.number(),
+  eccentricity: z.number(),
+  meanMotionRevPerDay: z.number(),
+  bstar: z.number(),
+  sha256: z.string(),
+  originalText: z.string(),
+  warnings: z.array(noteOut),
+  uploadedAt: instantOut,
+  uploadedBy: z.string(),
+  decidedAt: instantOut.nullable(),
+  decidedBy: z.string().nullable(),
+  reason: z.string().nullable(),
+})
+export type ElementSetOut = z.infer<typeof elementSetOut>
+
+export const refuseSetBody = z.strictObject({ reason: reasonSchema })
+
+/** Shift of prediction of the coming passes against the set in use. */
+export const comparisonOut = z.object({
+  setId: idSchema,
+  inUseSetId: idSchema.nullable(),
+  warnings: z.array(z.object({ code: z.string(), message: z.string() })),
+  passes: z.array(z.object({
+    stationId: idSchema, stationName: z.string(),
+    aos: instantOut, aosShiftS: z.number().nullable(), culminationShiftS: z.number().nullable(), losShiftS: z.number().nullable(), maxElevationShiftDeg: z.number().nullable(),
+    presence: z.enum(['both', 'new', 'gone']),
+    links: z.array(z.object({ linkId: idSchema, linkName: z.string(), worstShiftHz: z.number(), allowanceHz: z.number() })),
+  })),
+})
+export type ComparisonOut = z.infer<typeof comparisonOut>

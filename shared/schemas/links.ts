@@ -1,0 +1,66 @@
+import { z } from 'zod'
+import { atLeastZero, idSchema, instantOut, nameSchema, positive, reasonSchema, shortTextSchema } from './common'
+
+export const directionSchema = z.enum(['uplink', 'downlink'])
+export const detectorSchema = z.enum(['quadrature', 'coherent', 'stated'])
+
+const hz = positive().max(1e12)
+const fields = {
+  name: nameSchema,
+  direction: directionSchema,
+  carrierHz: hz,
+  bandLowHz: hz,
+  bandHighHz: hz,
+  symbolRateHz: positive().max(1e10),
+  modulation: shortTextSchema.min(1, 'Name the modulation, such as BPSK.'),
+  detector: detectorSchema,
+  permittedLossDb: positive().max(20),
+  captureRangeHz: hz.nullable(),
+  filterBandwidthHz: hz.nullable(),
+  rolloff: z.number().min(0).max(1).nullable(),
+  /** Allowance of a link whose detector is stated, from the modem's data sheet. */
+  limitHz: hz.nullable(),
+  driftLimitHzPerS: positive().max(1e9).nullable(),
+  jumpLimitHz: hz.nullable(),
+  errorRate: z.number().gt(0).lt(0.5),
+  minElevationDeg: atLeastZero().lt(90),
+  approveWhatHolds: z.boolean(),
+}
+
+interface LinkNumbers { carrierHz: number, bandLowHz: number, bandHighHz: number, symbolRateHz: number, detector: string, limitHz: number | null, filterBandwidthHz: number | null, rolloff: number | null }
+
+/** Rules between fields; the server runs them again on the link as it would stand after a change. */
+export function linkProblems(link: LinkNumbers): { path: string, message: string }[] {
+  const problems: { path: string, message: string }[] = []
+  if (link.bandLowHz > link.carrierHz || link.carrierHz > link.bandHighHz) problems.push({ path: 'carrierHz', message: 'The carrier lies outside the licensed band: mend the carrier or the band’s edges.' })
+  if (link.detector === 'stated' && link.limitHz === null) problems.push({ path: 'limitHz', message: 'A stated detector needs its limit in hertz from the modem’s data sheet.' })
+  if (link.filterBandwidthHz !== null && (1 + (link.rolloff ?? 0)) * link.symbolRateHz >= link.filterBandwidthHz) problems.push({ path: 'filterBandwidthHz', message: 'The receiver’s filter is narrower than the signal: at least (1 + roll-off) × symbol rate is needed.' })
+  return problems
+}
+const checked = <T extends z.ZodType<LinkNumbers>>(schema: T) => schema.superRefine((link, ctx) => {
+  for (const problem of linkProblems(link)) ctx.addIssue({ code: 'custom', path: [problem.path], message: problem.message })
+})
+
+export const createLinkBody = checked(z.strictObject({
+  spacecraftId: idSchema,
+  ...fields,
+  permittedLossDb: fields.permittedLossDb.default(0.5),
+  captureRangeHz: fields.captureRangeHz.default(null),
+  filterBandwidthHz: fields.filterBandwidthHz.default(null),
+  rolloff: fields.rolloff.default(null),
+  limitHz: fields.limitHz.default(null),
+  driftLimitHzPerS: fields.driftLimitHzPerS.default(null),
+  jumpLimitHz: fields.jumpLimitHz.default(null),
+  errorRate: fields.errorRate.default(1e-5),
+  minElevationDeg: fields.minElevationDeg.default(0),
+  /** Left out: on for a downlink, off for an uplink. */
+  approveWhatHolds: fields.approveWhatHolds.optional(),
+}))
+/** Loosening a limit needs a reason. */
+export const changeLinkBody = z.strictObject(fields).partial().extend({ reason: reasonSchema.optional() })
+export const linkOut = z.object({
+  id: idSchema, spacecraftId: idSchema, spacecraftName: z.string(), ...fields,
+  allowanceHz: z.number(), limitedBy: z.string(), symbolTimeS: z.number(),
+  retiredAt: instantOut.nullable(),
+})
+export type LinkOut = z.infer<typeof linkOut>

@@ -1,0 +1,41 @@
+import { z } from 'zod'
+import { atLeastZero, idSchema, instantOut, nameSchema, positive } from './common'
+
+export const catalogueNumberSchema = z.string().trim().regex(/^\d{1,9}$/, 'One to nine digits.')
+export const designatorSchema = z.string().trim().max(20).regex(/^\d{4}-\d{3}[A-Z]{1,3}$/, 'Write the international designator as 2026-801A.')
+
+const fields = {
+  name: nameSchema,
+  catalogueNumber: catalogueNumberSchema.nullable(),
+  designator: designatorSchema.nullable(),
+  oscillatorPpm: atLeastZero().max(1000),
+  priority: z.number().int().min(1).max(9),
+  elementAgeLimitHours: positive().max(2400),
+  alongTrackFloorKm: positive().max(1000).nullable(),
+  alongTrackGrowthKmPerDay: atLeastZero().max(1000).nullable(),
+}
+export const createSpacecraftBody = z.strictObject({
+  ...fields,
+  catalogueNumber: fields.catalogueNumber.default(null),
+  designator: fields.designator.default(null),
+  oscillatorPpm: fields.oscillatorPpm.default(0),
+  priority: fields.priority.default(5),
+  elementAgeLimitHours: fields.elementAgeLimitHours.default(72),
+  alongTrackFloorKm: fields.alongTrackFloorKm.default(null),
+  alongTrackGrowthKmPerDay: fields.alongTrackGrowthKmPerDay.default(null),
+  /** Made from this held set in one step; the set then waits for it. */
+  fromElementSetId: idSchema.optional(),
+})
+export const changeSpacecraftBody = z.strictObject(fields).partial()
+export const spacecraftOut = z.object({
+  ...fields,
+  id: idSchema,
+  inUseSetId: idSchema.nullable(),
+  inUseEpoch: instantOut.nullable(),
+  /** Age of the elements in use, hours. */
+  elementAgeHours: z.number().nullable(),
+  waitingSets: z.number().int(),
+  linkCount: z.number().int(),
+  retiredAt: instantOut.nullable(),
+})
+export type SpacecraftOut = z.infer<typeof spacecraftOut>

@@ -1,0 +1,73 @@
+import { z } from 'zod'
+import { atLeastZero, idSchema, instantOut, nameSchema, positive, zoneSchema } from './common'
+
+export const maskSchema = z.array(z.strictObject({ azimuthDeg: z.number().min(0).max(360), elevationDeg: z.number().min(0).max(90) })).max(720)
+  .refine(points => new Set(points.map(p => p.azimuthDeg % 360)).size === points.length, 'Each azimuth once.')
+  .transform(points => [...points].sort((a, b) => a.azimuthDeg - b.azimuthDeg))
+
+const stationFields = {
+  name: nameSchema,
+  latitudeDeg: z.number().min(-90).max(90),
+  longitudeDeg: z.number().min(-180).max(180),
+  heightM: z.number().min(-500).max(9000),
+  minElevationDeg: atLeastZero().lt(90),
+  mask: maskSchema,
+  zone: zoneSchema,
+  publishAt: z.string().regex(/^([01]\d|2[0-3]):[0-5]\d$/, 'Write the time as 18:00.'),
+  publishLeadMinutes: z.number().int().min(1).max(1440),
+  freezeMinutes: z.number().int().min(0).max(1440),
+  clockErrorMs: atLeastZero().max(60_000),
+}
+export const createStationBody = z.strictObject({
+  ...stationFields,
+  minElevationDeg: stationFields.minElevationDeg.default(5),
+  mask: maskSchema.default([]),
+  publishAt: stationFields.publishAt.default('18:00'),
+  publishLeadMinutes: stationFields.publishLeadMinutes.default(60),
+  freezeMinutes: stationFields.freezeMinutes.default(10),
+  clockErrorMs: stationFields.clockErrorMs.default(0),
+})
+export const changeStationBody = z.strictObject(stationFields).partial()
+
+const antennaFields = { name: nameSchema, setupS: atLeastZero().max(86_400) }
+export const createAntennaBody = z.strictObject({ stationId: idSchema, ...antennaFields, setupS: antennaFields.setupS.default(120) })
+export const changeAntennaBody = z.strictObject(antennaFields).partial()
+
+const radioFields = {
+  name: nameSchema,
+  transmits: z.boolean(),
+  receives: z.boolean(),
+  tuneLowHz: positive().max(1e12),
+  tuneHighHz: positive().max(1e12),
+  stepHz: positive().max(1e9),
+  offsetHz: z.number().min(-1e12).max(1e12),
+  minDwellS: atLeastZero().max(3600),
+  latencyMs: atLeastZero().max(60_000),
+  latencyUncertaintyMs: atLeastZero().max(60_000),
+  referencePpm: atLeastZero().max(1000),
+}
+export function radioProblems(radio: { transmits: boolean, receives: boolean, tuneLowHz: number, tuneHighHz: number }): { path: string, message: string }[] {
+  const problems: { path: string, message: string }[] = []
+  if (!radio.transmits && !radio.receives) problems.push({ path: 'receives', message: 'A radio transmits, receives or both.' })
+  if (radio.tuneLowHz >= radio.tuneHighHz) problems.push({ path: 'tuneHighHz', message: 'The upper edge of the tuning range lies above the lower.' })
+  return problems
+}
+export const createRadioBody = z.strictObject({
+  antennaId: idSchema,
+  ...radioFields,
+  offsetHz: radioFields.offsetHz.default(0),
+  minDwellS: radioFields.minDwellS.default(1),
+  latencyMs: radioFields.latencyMs.default(50),
+  latencyUncertaintyMs: radioFields.latencyUncertaintyMs.default(0),
+  referencePpm: radioFields.referencePpm.default(0),
+}).superRefine((radio, ctx) => {
+  for (const problem of radioProblems(radio)) ctx.addIssue({ code: 'custom', path: [problem.path], message: problem.message })
+})
+export const changeRadioBody = z.strictObject(radioFields).partial()
+
+export const radioOut = z.object({ id: idSchema, antennaId: idSchema, antennaName: z.string(), stationId: idSchema, stationName: z.string(), ...radioFields, retiredAt: instantOut.nullable() })
+export const antennaOut = z.object({ id: idSchema, stationId: idSchema, ...antennaFields, retiredAt: instantOut.nullable(), radios: z.array(radioOut) })
+export const stationOut = z.object({ id: idSchema, ...stationFields, mask: z.array(z.object({ azimuthDeg: z.number(), elevationDeg: z.number() })), retiredAt: instantOut.nullable(), antennas: z.array(antennaOut) })
+export type StationOut = z.infer<typeof stationOut>
+export type AntennaOut = z.infer<typeof antennaOut>
+export type RadioOut = z.infer<typeof radioOut>
