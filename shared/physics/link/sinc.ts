@@ -1,0 +1,9 @@
+/**
+ * Normalised sinc, sin(πx)/(πx), 1 at zero. Dimensionless. Below 1e-4 by its Taylor series (next term 2e-15), because the
+ * quotient loses digits there.
+ */
+export function sinc(x: number): number {
+  const y = Math.PI * x
+  if (Math.abs(x) < 1e-4) return 1 - y * y / 6
+  return Math.sin(y) / y
+}
