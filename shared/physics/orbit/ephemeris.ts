@@ -1,0 +1,125 @@
+import type { Ephemeris, MeanElements, PropagationError, Propagator, StateTeme, UtcMs } from '../types'
+
+/** Nodes an interpolation uses, and their barycentric weights on an even grid, (−1)^j·C(9, j) (Berrut, Trefethen 2004). */
+const NODES = 10
+const WEIGHTS = [1, -9, 36, -84, 126, -126, 84, -36, 9, -1] as const
+const BEFORE = NODES / 2 - 1
+
+/** What the ephemeris covers beyond the span asked for, so that light time and differences reach over its edges. */
+export const EPHEMERIS_PAD_MS = 5_000
+
+const END_TOLERANCE_MS = 0.1
+const MOST_SAMPLES_BEFORE_WINDOW = 2_000
+
+/**
+ * Step between propagated nodes, ms. Short against the orbit's own motion (0.07 rad of mean anomaly) and against the
+ * time in which an eccentric orbit sweeps through perigee: the distance of the nearest complex singularity of Kepler's
+ * equation from the real axis, (acosh(1/e) − √(1−e²))/n (Hagihara 1970, from memory), in twentieths.
+ */
+export function gridStepMs(elements: MeanElements): number {
+  const radPerS = elements.meanMotionRevPerDay * 2 * Math.PI / 86_400
+  const e = Math.max(elements.eccentricity, 1e-6)
+  const perigeeS = (Math.acosh(1 / e) - Math.sqrt(1 - e * e)) / radPerS
+  return Math.max(1, Math.floor(Math.min(0.07 / radPerS, perigeeS / 20))) * 1000
+}
+
+/** Whether the set has failed between its epoch and the window: errors come and go near decay, so sampled sparsely. */
+function errorBefore(propagator: Propagator, fromMs: UtcMs): PropagationError | null {
+  const epochMs = propagator.elements.epochUtcUs / 1000
+  const stepMs = Math.max(0.618 * 86_400_000 / propagator.elements.meanMotionRevPerDay, (fromMs - epochMs) / MOST_SAMPLES_BEFORE_WINDOW)
+  for (let t = epochMs + stepMs; t < fromMs; t += stepMs) {
+    const result = propagator.at(t)
+    if (!result.ok) return result.error
+  }
+  return null
+}
+
+/** Last valid instant between a valid and a failing one. */
+function validUntil(propagator: Propagator, validMs: UtcMs, failingMs: UtcMs): UtcMs {
+  let [valid, failing] = [validMs, failingMs]
+  while (failing - valid > END_TOLERANCE_MS) {
+    const middle = (valid + failing) / 2
+    if (propagator.at(middle).ok) valid = middle
+    else failing = middle
+  }
+  return valid
+}
+
+/**
+ * States of a spacecraft over a span by interpolation between propagated nodes: position and velocity each by
+ * themselves (SGP4's velocity is not exactly the derivative of its position), degree 9 on an even grid tied to the
+ * calendar, so that another span gives the same state at the same instant.
+ *
+ * Against SGP4 itself within 1 mm and 0.01 mm/s in low orbit, 0.1 m and 0.1 mm/s up to eccentricity 0.75.
+ * `fromMs` and `toMs` of the answer reach 5 s beyond what was asked, where SGP4 does. The first propagation error ends
+ * it, named in `endedBy`; nothing later is used, since near decay errors come and go. Where too few nodes are left
+ * beside an end, the answer is SGP4's own.
+ */
+export function createEphemeris(propagator: Propagator, fromMs: UtcMs, toMs: UtcMs, options: { readonly stepMs?: number } = {}): Ephemeris {
+  if (!(toMs >= fromMs)) throw new RangeError('The span ends before it begins: give fromMs ≤ toMs')
+  const stepMs = options.stepMs ?? gridStepMs(propagator.elements)
+  if (!(stepMs > 0)) throw new RangeError(`stepMs is ${stepMs}: give a positive number of milliseconds`)
+
+  const failedBefore = errorBefore(propagator, fromMs)
+  const atStart = propagator.at(fromMs)
+  if (failedBefore || !atStart.ok) {
+    const endedBy = failedBefore ?? (atStart.ok ? null : atStart.error)
+    return { fromMs, toMs: fromMs, endedBy, propagator, stateAt: () => null }
+  }
+
+  const startMs = propagator.at(fromMs - EPHEMERIS_PAD_MS).ok ? fromMs - EPHEMERIS_PAD_MS : fromMs
+  const firstNode = Math.floor(startMs / stepMs) - BEFORE
+  const lastNode = Math.ceil((toMs + EPHEMERIS_PAD_MS) / stepMs) + BEFORE + 1
+  const data = new Float64Array(6 * (lastNode - firstNode + 1))
+  let usableFrom = firstNode
+  let usableTo = firstNode - 1
+  let failing: { readonly ms: UtcMs, readonly error: PropagationError } | null = null
+  for (let node = firstNode; node <= lastNode && !failing; node++) {
+    const result = propagator.at(node * stepMs)
+    if (result.ok) {
+      data.set(result.positionM, 6 * (node - firstNode))
+      data.set(result.velocityMps, 6 * (node - firstNode) + 3)
+      usableTo = node
+    }
+    else if (node * stepMs < startMs) usableFrom = node + 1
+    else failing = { ms: node * stepMs, error: result.error }
+  }
+  const wantedEndMs = toMs + EPHEMERIS_PAD_MS
+  let endMs = wantedEndMs
+  if (failing) endMs = Math.min(wantedEndMs, validUntil(propagator, Math.max(fromMs, (usableTo) * stepMs), failing.ms))
+  const endedBy = failing && endMs < toMs ? failing.error : null
+
+  const stateAt = (utcMs: UtcMs): StateTeme | null => {
+    if (!(utcMs >= startMs && utcMs <= endMs)) return null
+    const at = utcMs / stepMs
+    const left = Math.floor(at)
+    const first = left - BEFORE
+    if (first < usableFrom || first + NODES - 1 > usableTo) {
+      const direct = propagator.at(utcMs)
+      return direct.ok ? direct : null
+    }
+    return interpolate(data, first - firstNode, (utcMs - left * stepMs) / stepMs)
+  }
+  return { fromMs: startMs, toMs: endMs, endedBy, propagator, stateAt }
+}
+
+/** `share`: place between the fifth and the sixth of the ten nodes that start at `first`. */
+function interpolate(data: Float64Array, first: number, share: number): StateTeme {
+  const sums = [0, 0, 0, 0, 0, 0]
+  let total = 0
+  for (let j = 0; j < NODES; j++) {
+    const distance = BEFORE + share - j
+    const exact = distance === 0
+    const weight = exact ? 1 : WEIGHTS[j]! / distance
+    if (exact) {
+      sums.fill(0)
+      total = 0
+    }
+    total += weight
+    const offset = 6 * (first + j)
+    for (let i = 0; i < 6; i++) sums[i]! += weight * data[offset + i]!
+    if (exact) break
+  }
+  const [x, y, z, vx, vy, vz] = sums as [number, number, number, number, number, number]
+  return { positionM: [x / total, y / total, z / total], velocityMps: [vx / total, vy / total, vz / total] }
+}

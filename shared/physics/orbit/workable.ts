@@ -1,0 +1,86 @@
+import type { Ephemeris, Look, PredictedPass, Site, Span, UtcMs } from '../types'
+import { gridStepMs } from './ephemeris'
+import { lookAt } from './look'
+import { horizonRad, sortedMask } from './mask'
+import { evenTimes, positiveSpans } from './positive-spans'
+import { findRoot } from './refine'
+
+const FEWEST_SAMPLES = 128
+const WIDEST_TURN_RAD = 0.1
+const SHORTEST_STEP_MS = 20
+const MASK_POINT_TOLERANCE_MS = 0.1
+
+const signedTurn = (angleRad: number): number => Math.atan2(Math.sin(angleRad), Math.cos(angleRad))
+
+/** Look angles by interpolation, and by true propagation for refinement. */
+export interface Sights { readonly near: (utcMs: UtcMs) => Look, readonly exact: (utcMs: UtcMs) => Look }
+
+export function sightsFrom(ephemeris: Ephemeris, site: Site, ut1MinusUtcS: number): Sights {
+  const near = (utcMs: UtcMs): Look => {
+    const state = ephemeris.stateAt(utcMs)
+    if (!state) throw new RangeError(`No state at ${utcMs}: the ephemeris runs from ${ephemeris.fromMs} to ${ephemeris.toMs}`)
+    return lookAt(state, site, utcMs, ut1MinusUtcS)
+  }
+  const exact = (utcMs: UtcMs): Look => {
+    const state = ephemeris.propagator.at(utcMs)
+    return state.ok ? lookAt(state, site, utcMs, ut1MinusUtcS) : near(utcMs)
+  }
+  return { near, exact }
+}
+
+/** Samples of an arc, closer where the azimuth runs, with the instants at which it passes a mask point. */
+function timesAlongMask(sights: Sights, site: Site, arc: Span, longestStepMs: number): number[] {
+  const count = Math.max(FEWEST_SAMPLES, Math.ceil((arc.toMs - arc.fromMs) / longestStepMs))
+  const coarse = evenTimes(arc.fromMs, arc.toMs, count)
+  const points = sortedMask(site.mask)
+  if (points.length < 2) return coarse
+  const azimuth = (utcMs: UtcMs): number => sights.near(utcMs).azimuthRad
+
+  const times: number[] = [coarse[0]!]
+  const walk = (fromMs: number, fromRad: number, toMs: number, toRad: number): void => {
+    if (Math.abs(signedTurn(toRad - fromRad)) > WIDEST_TURN_RAD && toMs - fromMs > SHORTEST_STEP_MS) {
+      const middleMs = (fromMs + toMs) / 2
+      const middleRad = azimuth(middleMs)
+      walk(fromMs, fromRad, middleMs, middleRad)
+      walk(middleMs, middleRad, toMs, toRad)
+      return
+    }
+    const turned = signedTurn(toRad - fromRad)
+    for (const point of points) {
+      const ahead = signedTurn(point.azimuthRad - fromRad)
+      if (ahead * turned > 0 && Math.abs(ahead) < Math.abs(turned)) {
+        times.push(findRoot(t => signedTurn(azimuth(t) - point.azimuthRad), fromMs, toMs, MASK_POINT_TOLERANCE_MS))
+      }
+    }
+    times.push(toMs)
+  }
+  let fromRad = azimuth(coarse[0]!)
+  for (let i = 1; i < coarse.length; i++) {
+    const toRad = azimuth(coarse[i]!)
+    walk(coarse[i - 1]!, fromRad, coarse[i]!, toRad)
+    fromRad = toRad
+  }
+  return [...new Set(times)].sort((a, b) => a - b)
+}
+
+/** The parts of an arc in which the spacecraft is above the horizon of site (mask and minimum) and link. */
+export function partsAboveHorizon(sights: Sights, site: Site, arc: Span, minElevationRad: number, longestStepMs: number): Span[] {
+  const clearance = (look: Look): number => look.elevationRad - horizonRad(site, look.azimuthRad, minElevationRad)
+  const times = timesAlongMask(sights, site, arc, longestStepMs)
+  return positiveSpans(t => clearance(sights.near(t)), t => clearance(sights.exact(t)), times)
+}
+
+/**
+ * The workable parts of a pass for a link with its own minimum elevation (rad): within the station's, those above it.
+ * Crossings by true propagation, below 1 ms.
+ */
+export function workablePartsForLink(
+  pass: PredictedPass, ephemeris: Ephemeris, site: Site, linkMinElevationRad: number, ut1MinusUtcS: number,
+): Span[] {
+  if (linkMinElevationRad <= site.minElevationRad) return [...pass.workable]
+  const sights = sightsFrom(ephemeris, site, ut1MinusUtcS)
+  // The mask is cleared throughout the pass's parts: only the plain minimum is left to ask.
+  const bare: Site = { ...site, mask: [] }
+  const stepMs = gridStepMs(ephemeris.propagator.elements) / 2
+  return pass.workable.flatMap(part => partsAboveHorizon(sights, bare, part, linkMinElevationRad, stepMs))
+}
