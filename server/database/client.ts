@@ -1,0 +1,50 @@
+import { sql } from 'drizzle-orm'
+import type { NodePgDatabase } from 'drizzle-orm/node-postgres'
+import { drizzle } from 'drizzle-orm/node-postgres'
+import pg from 'pg'
+import * as schema from './schema'
+
+/** A connection or a transaction: domain functions take either. */
+export type Db = Pick<NodePgDatabase<typeof schema>, 'select' | 'selectDistinct' | 'insert' | 'update' | 'delete' | 'execute' | 'transaction' | 'query' | '$count'>
+
+export interface Database { db: Db, pool: pg.Pool, close(): Promise<void> }
+
+/** Requests give up within 5 s when the database is frozen; the pool never grows past its size. */
+export function openDatabase(url: string, options: { max?: number } = {}): Database {
+  const pool = new pg.Pool({
+    connectionString: url,
+    max: options.max ?? 12,
+    connectionTimeoutMillis: 3000,
+    query_timeout: 5000,
+    statement_timeout: 5000,
+    idle_in_transaction_session_timeout: 30_000,
+    application_name: 'nullbeat',
+  })
+  // A dropped idle connection is replaced at the next request; without a listener it would end the process.
+  pool.on('error', () => {})
+  return { db: drizzle(pool, { schema }), pool, close: () => pool.end() }
+}
+
+let shared: Database | null = null
+
+/** The server's own connection pool, from DATABASE_URL. */
+export function useDatabase(): Database {
+  if (!shared) {
+    const url = process.env.DATABASE_URL
+    if (!url) throw new Error('DATABASE_URL is not set: start the product with `npm start`, which sets it.')
+    shared = openDatabase(url)
+  }
+  return shared
+}
+
+/**
+ * The one clock that decides what is due: the database's. Tests may shift it, by a row that only a server
+ * started with NULLBEAT_TEST=1 looks at.
+ */
+export async function databaseNow(db: Db): Promise<Date> {
+  const shift = process.env.NULLBEAT_TEST === '1'
+    ? sql`coalesce((SELECT (value #>> '{}')::double precision FROM settings WHERE key = 'testClockShiftMs'), 0)`
+    : sql`0::double precision`
+  const result = await db.execute<{ ms: string }>(sql`SELECT floor(extract(epoch FROM clock_timestamp()) * 1000 + ${shift}) AS ms`)
+  return new Date(Number(result.rows[0]!.ms))
+}

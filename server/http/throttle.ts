@@ -1,0 +1,40 @@
+import type { H3Event } from 'h3'
+import { getRequestIP } from 'h3'
+import { RateLimiterPostgres } from 'rate-limiter-flexible'
+import { useDatabase } from '~~/server/database/client'
+import { DomainError } from '~~/server/domain/errors'
+
+/**
+ * Failed sign-ins are counted per account from one address, and per address over all accounts. An attacker elsewhere
+ * uses up only his own count, so the owner is never locked out.
+ */
+let limiters: { pair: RateLimiterPostgres, address: RateLimiterPostgres } | null = null
+function useLimiters() {
+  const shared = { storeClient: useDatabase().pool, tableName: 'rate_limits', tableCreated: true, duration: 15 * 60 }
+  limiters ??= {
+    pair: new RateLimiterPostgres({ ...shared, keyPrefix: 'sign-in', points: 8 }),
+    address: new RateLimiterPostgres({ ...shared, keyPrefix: 'address', points: 60 }),
+  }
+  return limiters
+}
+
+export async function throttleSignIn<T>(event: H3Event, email: string, attempt: () => Promise<T>): Promise<T> {
+  const { pair, address } = useLimiters()
+  const ip = getRequestIP(event, { xForwardedFor: process.env.TRUST_PROXY === '1' }) ?? 'unknown'
+  const keys = [{ limiter: pair, key: `${email.trim().toLowerCase().slice(0, 254)}|${ip}` }, { limiter: address, key: ip }]
+  for (const { limiter, key } of keys) {
+    const state = await limiter.get(key)
+    if (state && state.consumedPoints >= limiter.points) {
+      throw new DomainError('too-many', 'Too many failed sign-ins: wait and try again.', [], Math.max(1, state.msBeforeNext / 1000))
+    }
+  }
+  try {
+    const result = await attempt()
+    await pair.delete(keys[0]!.key)
+    return result
+  }
+  catch (error) {
+    if (error instanceof DomainError && error.code === 'not-signed-in') await Promise.all(keys.map(({ limiter, key }) => limiter.penalty(key)))
+    throw error
+  }
+}
