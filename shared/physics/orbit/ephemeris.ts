@@ -8,6 +8,13 @@ const BEFORE = NODES / 2 - 1
 /** What the ephemeris covers beyond the span asked for, so that light time and differences reach over its edges. */
 export const EPHEMERIS_PAD_MS = 5_000
 
+/** What an interpolated midpoint may differ from SGP4's own before its neighbourhood is propagated instead. */
+const MIDPOINT_TOLERANCE_M = 1e-3
+const MIDPOINT_TOLERANCE_MPS = 1e-5
+const UNTRIED = 0
+const SMOOTH = 1
+const ROUGH = 2
+
 const END_TOLERANCE_MS = 0.1
 const MOST_SAMPLES_BEFORE_WINDOW = 2_000
 
@@ -50,10 +57,12 @@ function validUntil(propagator: Propagator, validMs: UtcMs, failingMs: UtcMs): U
  * themselves (SGP4's velocity is not exactly the derivative of its position), degree 9 on an even grid tied to the
  * calendar, so that another span gives the same state at the same instant.
  *
- * Against SGP4 itself within 1 mm and 0.01 mm/s in low orbit, 0.1 m and 0.1 mm/s up to eccentricity 0.75.
+ * Within 10 mm and 0.1 mm/s of SGP4 itself: each interval is tried at its midpoint when first used, and where that or a
+ * neighbour's is more than 1 mm or 0.01 mm/s off (SGP4 has kinks and steps: its eccentricity is held above 1e-6, its
+ * resonances are integrated in half days), or too few nodes are left beside an end, the answer is SGP4's own.
+ *
  * `fromMs` and `toMs` of the answer reach 5 s beyond what was asked, where SGP4 does. The first propagation error ends
- * it, named in `endedBy`; nothing later is used, since near decay errors come and go. Where too few nodes are left
- * beside an end, the answer is SGP4's own.
+ * it, named in `endedBy`; nothing later is used, since near decay errors come and go.
  */
 export function createEphemeris(propagator: Propagator, fromMs: UtcMs, toMs: UtcMs, options: { readonly stepMs?: number } = {}): Ephemeris {
   if (!(toMs >= fromMs)) throw new RangeError('The span ends before it begins: give fromMs ≤ toMs')
@@ -89,37 +98,55 @@ export function createEphemeris(propagator: Propagator, fromMs: UtcMs, toMs: Utc
   if (failing) endMs = Math.min(wantedEndMs, validUntil(propagator, Math.max(fromMs, (usableTo) * stepMs), failing.ms))
   const endedBy = failing && endMs < toMs ? failing.error : null
 
+  const hasStencil = (left: number): boolean => left - BEFORE >= usableFrom && left - BEFORE + NODES - 1 <= usableTo
+  const tried = new Uint8Array(lastNode - firstNode + 1)
+  const isSmooth = (left: number): boolean => {
+    if (!hasStencil(left)) return true
+    const index = left - firstNode
+    if (tried[index] === UNTRIED) {
+      const direct = propagator.at((left + 0.5) * stepMs)
+      tried[index] = direct.ok && areClose(direct, interpolate(data, index - BEFORE, 0.5)) ? SMOOTH : ROUGH
+    }
+    return tried[index] === SMOOTH
+  }
   const stateAt = (utcMs: UtcMs): StateTeme | null => {
     if (!(utcMs >= startMs && utcMs <= endMs)) return null
-    const at = utcMs / stepMs
-    const left = Math.floor(at)
-    const first = left - BEFORE
-    if (first < usableFrom || first + NODES - 1 > usableTo) {
-      const direct = propagator.at(utcMs)
-      return direct.ok ? direct : null
+    const left = Math.floor(utcMs / stepMs)
+    const share = (utcMs - left * stepMs) / stepMs
+    const isNode = share === 0 && left >= usableFrom && left <= usableTo
+    if (isNode) return nodeState(data, left - firstNode)
+    if (hasStencil(left) && isSmooth(left) && isSmooth(left - 1) && isSmooth(left + 1)) {
+      return interpolate(data, left - BEFORE - firstNode, share)
     }
-    return interpolate(data, first - firstNode, (utcMs - left * stepMs) / stepMs)
+    const direct = propagator.at(utcMs)
+    return direct.ok ? direct : null
   }
   return { fromMs: startMs, toMs: endMs, endedBy, propagator, stateAt }
 }
 
-/** `share`: place between the fifth and the sixth of the ten nodes that start at `first`. */
+function areClose(a: StateTeme, b: StateTeme): boolean {
+  const apart = (p: readonly number[], q: readonly number[]): number => Math.hypot(p[0]! - q[0]!, p[1]! - q[1]!, p[2]! - q[2]!)
+  return apart(a.positionM, b.positionM) <= MIDPOINT_TOLERANCE_M && apart(a.velocityMps, b.velocityMps) <= MIDPOINT_TOLERANCE_MPS
+}
+
+function nodeState(data: Float64Array, index: number): StateTeme {
+  const at = 6 * index
+  return { positionM: [data[at]!, data[at + 1]!, data[at + 2]!], velocityMps: [data[at + 3]!, data[at + 4]!, data[at + 5]!] }
+}
+
+/** `share` of the step, above 0, between the fifth and the sixth of the ten nodes that start at `first`. */
 function interpolate(data: Float64Array, first: number, share: number): StateTeme {
-  const sums = [0, 0, 0, 0, 0, 0]
-  let total = 0
+  let [x, y, z, vx, vy, vz, total] = [0, 0, 0, 0, 0, 0, 0]
   for (let j = 0; j < NODES; j++) {
-    const distance = BEFORE + share - j
-    const exact = distance === 0
-    const weight = exact ? 1 : WEIGHTS[j]! / distance
-    if (exact) {
-      sums.fill(0)
-      total = 0
-    }
-    total += weight
+    const weight = WEIGHTS[j]! / (BEFORE + share - j)
     const offset = 6 * (first + j)
-    for (let i = 0; i < 6; i++) sums[i]! += weight * data[offset + i]!
-    if (exact) break
+    total += weight
+    x += weight * data[offset]!
+    y += weight * data[offset + 1]!
+    z += weight * data[offset + 2]!
+    vx += weight * data[offset + 3]!
+    vy += weight * data[offset + 4]!
+    vz += weight * data[offset + 5]!
   }
-  const [x, y, z, vx, vy, vz] = sums as [number, number, number, number, number, number]
   return { positionM: [x / total, y / total, z / total], velocityMps: [vx / total, vy / total, vz / total] }
 }

@@ -16,8 +16,9 @@ const ERROR_NAMES: Readonly<Record<number, PropagationError>> = {
 
 const RAD_PER_DEG = Math.PI / 180
 const US_PER_DAY = 86_400e6
-/** Days from 1950 January 0.0 (JD 2433281.5), from which SGP4 counts its epoch, to 1970-01-01. */
-const DAYS_1950_TO_1970 = 7306
+const JULIAN_DATE_1970 = 2_440_587.5
+/** 1950 January 0.0, from which SGP4 counts the epoch that it places Sun, Moon and Greenwich with. */
+const JULIAN_DATE_1950 = 2_433_281.5
 const REV_PER_DAY_IN_RAD_PER_MIN = 2 * Math.PI / 1440
 
 const NUMBERS = ['epochUtcUs', 'meanMotionRevPerDay', 'eccentricity', 'inclinationDeg', 'raanDeg', 'argPericenterDeg',
@@ -25,13 +26,15 @@ const NUMBERS = ['epochUtcUs', 'meanMotionRevPerDay', 'eccentricity', 'inclinati
 
 function createRecord(elements: MeanElements): SatRec {
   const meanMotion = elements.meanMotionRevPerDay * REV_PER_DAY_IN_RAD_PER_MIN
-  const epochDays1950 = elements.epochUtcUs / US_PER_DAY + DAYS_1950_TO_1970
+  // The published program holds this epoch as a Julian date in one double (40 µs). Only lunar and solar terms and
+  // resonances use it; kept alike, the published run repeats to its last digit. Time since the epoch stays exact.
+  const julianDate = elements.epochUtcUs / US_PER_DAY + JULIAN_DATE_1970
   const record: SatRecInit = {
     error: 0,
     satnum: elements.catalogueNumber ?? '',
     epochyr: 0,
     epochdays: 0,
-    jdsatepoch: epochDays1950 + 2433281.5,
+    jdsatepoch: julianDate,
     ndot: elements.meanMotionDot * REV_PER_DAY_IN_RAD_PER_MIN / 1440,
     nddot: elements.meanMotionDdot * REV_PER_DAY_IN_RAD_PER_MIN / 1440 ** 2,
     bstar: elements.bstar,
@@ -46,7 +49,7 @@ function createRecord(elements: MeanElements): SatRec {
   initialise(record, {
     opsmode: 'i',
     satn: record.satnum,
-    epoch: epochDays1950,
+    epoch: julianDate - JULIAN_DATE_1950,
     xbstar: record.bstar,
     xecco: record.ecco,
     xargpo: record.argpo,
