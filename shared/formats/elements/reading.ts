@@ -1,0 +1,54 @@
+import type { MeanElements } from '../../physics/types'
+
+/** A remark on one line of an upload; `message` says field, value, rule and how to mend it. */
+export interface LineNote {
+  /** 1-based; CR, LF and CRLF each end a line. */
+  readonly line: number
+  /** The set's name, where known. */
+  readonly name?: string
+  readonly code: string
+  readonly message: string
+}
+
+export interface ReadSet {
+  /** Where the set begins: line 1 of a TLE, the opening brace of an OMM object. */
+  readonly line: number
+  readonly elements: MeanElements
+  /** The set as it stood in the upload, decoded, its name line included. */
+  readonly text: string
+  /** Equal for two sets that predict the same motion of the same object, whatever the notation. */
+  readonly contentKey: string
+  /** Warnings that concern this set; they stand in the reading's list as well. */
+  readonly warnings: readonly LineNote[]
+}
+
+export type ElementFormat = 'tle' | 'omm-json'
+
+export type ElementReading =
+  | {
+    readonly kind: 'read'
+    readonly format: ElementFormat
+    readonly sets: readonly ReadSet[]
+    /** One for each set that was not taken. */
+    readonly refusals: readonly LineNote[]
+    readonly warnings: readonly LineNote[]
+    /** Sets that stood in the upload before; each is in `warnings` too. */
+    readonly repeated: number
+  }
+  | { readonly kind: 'refused', readonly detail: string, readonly errors: readonly LineNote[] }
+
+/** Thrown while one set is read; ends that set only. */
+export class SetRefusal extends Error {
+  constructor(readonly line: number, readonly code: string, message: string) {
+    super(message)
+    this.name = 'SetRefusal'
+  }
+}
+
+/** Collects the warnings of the set being read. */
+export type Warn = (line: number, code: string, message: string) => void
+
+/** A whole upload refused for one reason. */
+export function refusedWhole(line: number, code: string, message: string): ElementReading {
+  return { kind: 'refused', detail: message, errors: [{ line, code, message }] }
+}
