@@ -5,7 +5,7 @@ export default defineNuxtConfig({
   modules: ['@nuxtjs/tailwindcss', '@pinia/nuxt', '@vueuse/nuxt', '@nuxt/icon', 'nuxt-auth-utils', 'nuxt-security', '@nuxt/eslint'],
   telemetry: false,
   devtools: { enabled: false },
-  css: ['@fontsource/inter/latin-400.css', '@fontsource/inter/latin-500.css', '@fontsource/inter/latin-600.css', '~/assets/css/tokens.css', '~/assets/css/base.css'],
+  css: ['@fontsource/inter/latin-400.css', '@fontsource/inter/latin-500.css', '@fontsource/inter/latin-600.css', '~/assets/css/tokens.css'],
   app: {
     head: {
       htmlAttrs: { lang: 'en' },
@@ -22,6 +22,7 @@ export default defineNuxtConfig({
   auth: { loadStrategy: 'none' },
   security: {
     corsHandler: false,
+    removeLoggers: false,
     rateLimiter: false,
     requestSizeLimiter: false,
     xssValidator: false,
