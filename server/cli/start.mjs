@@ -63,7 +63,8 @@ function keepDatabase(/** @type {import('./lib/secrets.mjs').Secrets} */ secrets
     try {
       database = await startOwnDatabase(dataFolder, secrets)
       watch()
-    } catch (error) {
+    }
+    catch (error) {
       explain(error)
       await end(1)
     }

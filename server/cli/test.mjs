@@ -37,7 +37,8 @@ async function build() {
   try {
     if (startIsRunning(dataFolder)) step('A server runs from this folder: if the sources have changed, start it again afterwards')
     if (!await inTurn(join(dataFolder, 'build.lock'), 'server/cli/', waiting, ensureBuild)) step('The build is current')
-  } catch (error) {
+  }
+  catch (error) {
     failed += 1
     explain(error)
   }
@@ -53,7 +54,8 @@ async function tests(chromium) {
   let report
   try {
     report = JSON.parse(readFileSync(results, 'utf8'))
-  } catch { /* the runner died before it could write: counted as a failure */ }
+  }
+  catch { /* the runner died before it could write: counted as a failure */ }
   const counts = countResults(report, code)
   passed += counts.passed
   failed += counts.failed
@@ -63,13 +65,12 @@ async function main() {
   ensureDataFolder()
   const installed = inTurn(join(dataFolder, 'install.lock'), 'server/cli/', waiting, ensureDependencies)
   const [chromium] = await Promise.all([ensureChromium(), ensurePostgres(), installed])
-  await build()
-  // The build has written the types that both checks read; where it failed or was current they are written here.
+  // Once the types are there, the build works in a folder of its own and leaves them to the two checks.
   await nuxt('Preparing the types', ['prepare'])
-  await Promise.all([
-    check('Lint', ['eslint/bin/eslint.js', '.']),
-    check('Types', ['nuxt/bin/nuxt.mjs', 'typecheck']),
-  ])
+  await Promise.all([build(), (async () => {
+    await check('Lint', ['eslint/bin/eslint.js', '.'])
+    await check('Types', ['nuxt/bin/nuxt.mjs', 'typecheck'])
+  })()])
   await tests(chromium)
 }
 
@@ -86,7 +87,8 @@ requireNode()
 for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) process.on(signal, () => void end(1))
 try {
   await main()
-} catch (error) {
+}
+catch (error) {
   if (!ending) explain(error)
   failed += 1
 }

@@ -51,6 +51,7 @@ export interface ReferenceDoppler {
     readonly windowStart: string
     readonly startS: number
     readonly stepS: number
+    readonly rangeRateMps: readonly number[]
     readonly lightTimeDownS: readonly number[]
     readonly receivedMinusCarrierHz: Readonly<Record<string, readonly number[]>>
     readonly transmitMinusCarrierHz: Readonly<Record<string, readonly number[]>>

@@ -33,9 +33,9 @@ export async function startServer({ databaseUrl, env = {}, demo = false }: Optio
   if (!existsSync(entry)) throw new Error('There is no built server: run `npm run build` first (`npm test` does it by itself).')
   const port = await freeLoopbackPort()
   const url = `http://127.0.0.1:${port}`
-  const inherited = { ...process.env }
   // The test runner's own marks would change how the server's packages behave.
-  for (const name of Object.keys(inherited)) if (/^(VITEST|NODE_OPTIONS|DEV$|PROD$|SSR$|MODE$|BASE_URL$|TEST$)/.test(name)) delete inherited[name]
+  const ofRunner = /^(VITEST|NODE_OPTIONS|DEV$|PROD$|SSR$|MODE$|BASE_URL$|TEST$)/
+  const inherited = Object.fromEntries(Object.entries(process.env).filter(([name]) => !ofRunner.test(name)))
 
   const [program, args] = boundToParent('KILL', process.execPath, [entry])
   const child = spawn(program, args, {

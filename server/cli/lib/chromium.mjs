@@ -15,7 +15,8 @@ export function findChromium(env = process.env) {
     try {
       accessSync(path, constants.X_OK)
       return true
-    } catch {
+    }
+    catch {
       return false
     }
   })

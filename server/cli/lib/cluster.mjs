@@ -42,7 +42,8 @@ export async function initialiseCluster({ programs, folder, user }, password, { 
       '-D', draft, '-U', 'postgres', `--pwfile=${passwordFile}`, '--auth=scram-sha-256', '--encoding=UTF8', '--locale=C.UTF-8',
       ...(fast ? ['--no-sync'] : ['--data-checksums']),
     ], { ...user, cwd: '/', env: { ...process.env, ...programs.env, TZ: 'UTC' } })
-  } finally {
+  }
+  finally {
     rmSync(passwords, { recursive: true, force: true })
   }
   renameSync(draft, folder)
@@ -121,7 +122,8 @@ async function untilAnswering(child, url, log) {
       await client.connect()
       await client.end()
       return
-    } catch (error) {
+    }
+    catch (error) {
       const code = /** @type {{ code?: string }} */ (error).code
       if (code === '28P01') {
         await stopChild(child, 'SIGINT', 15_000)
@@ -154,7 +156,8 @@ export async function ensureRole(adminUrl, { name, password, createDatabase = tr
     if (!await exists('select 1 from pg_roles where rolname = $1')) await client.query(`create role ${role} login`)
     await client.query(`alter role ${role} ${mayCreate ? 'createdb' : 'nocreatedb'} password ${pg.escapeLiteral(password)}`)
     if (createDatabase && !await exists('select 1 from pg_database where datname = $1')) await client.query(`create database ${role} owner ${role}`)
-  } finally {
+  }
+  finally {
     await client.end()
   }
 }

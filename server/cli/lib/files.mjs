@@ -23,7 +23,8 @@ export function writeWhole(file, content, mode = 0o644) {
 export function readIfThere(file) {
   try {
     return readFileSync(file, 'utf8')
-  } catch {
+  }
+  catch {
     return undefined
   }
 }

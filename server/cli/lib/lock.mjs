@@ -27,7 +27,8 @@ export function takeLock(file, me) {
         // A hard link appears whole or not at all, and fails if the lock is there.
         linkSync(draft, file)
         return previous ? { held: true, previous } : { held: true }
-      } catch (error) {
+      }
+      catch (error) {
         if (/** @type {NodeJS.ErrnoException} */ (error).code !== 'EEXIST') throw error
       }
       const by = holderOf(file)
@@ -36,7 +37,8 @@ export function takeLock(file, me) {
       rmSync(file, { force: true })
     }
     throw new Error(`${file} cannot be taken`)
-  } finally {
+  }
+  finally {
     rmSync(draft, { force: true })
   }
 }
@@ -48,7 +50,8 @@ export function takeLock(file, me) {
 export function holderOf(file) {
   try {
     return JSON.parse(readIfThere(file) ?? '')
-  } catch {
+  }
+  catch {
     return undefined
   }
 }
@@ -78,7 +81,8 @@ export async function inTurn(file, command, onWait, work) {
   }
   try {
     return await work()
-  } finally {
+  }
+  finally {
     releaseLock(file)
   }
 }

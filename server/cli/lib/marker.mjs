@@ -20,7 +20,8 @@ export function fingerprint(root, names, extra = []) {
     const stat = statSync(path, { throwIfNoEntry: false })
     if (stat?.isDirectory()) {
       for (const entry of readdirSync(path).filter(entry => !entry.startsWith('.')).sort()) add(`${name}/${entry}`)
-    } else if (stat?.isFile()) {
+    }
+    else if (stat?.isFile()) {
       const content = readFileSync(path)
       hash.update(`${name}\0${content.length}\0`).update(content)
     }

@@ -32,7 +32,8 @@ async function endOrphan(pid) {
     if (!alive()) return
     try {
       process.kill(pid, signal)
-    } catch { /* it has ended just now */ }
+    }
+    catch { /* it has ended just now */ }
     for (let waited = 0; waited < 12_000 && alive(); waited += 50) await wait(50)
   }
 }

@@ -20,11 +20,13 @@ export function ensureDataFolder(folder = dataFolder) {
   try {
     mkdirSync(folder, { recursive: true, mode: 0o711 })
     accessSync(folder, constants.W_OK | constants.X_OK)
-  } catch {
+  }
+  catch {
     let owner = ''
     try {
       owner = ` It belongs to user id ${statSync(folder).uid}, this is user id ${process.getuid?.()}.`
-    } catch { /* it does not exist: its parent is closed, which the message covers */ }
+    }
+    catch { /* it does not exist: its parent is closed, which the message covers */ }
     throw new Refusal(`${folder} cannot be written.${owner} Start as the user who made it, or give this user the folder (chown -R).`)
   }
   if (process.getuid?.() === 0) chmodSync(folder, 0o711)

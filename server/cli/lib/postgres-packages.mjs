@@ -68,4 +68,3 @@ async function isInstalled(name) {
   const { code, output } = await run('dpkg-query', ['-W', '-f=${Status}', name])
   return code === 0 && output.includes('install ok installed')
 }
-

@@ -30,7 +30,8 @@ function programsIn(bin, env = {}) {
   try {
     accessSync(join(bin, 'postgres'), constants.X_OK)
     accessSync(join(bin, 'initdb'), constants.X_OK)
-  } catch {
+  }
+  catch {
     return undefined
   }
   const options = /** @type {const} */ ({ encoding: 'utf8', env: { ...process.env, ...env } })
@@ -44,7 +45,8 @@ function programsIn(bin, env = {}) {
 function versionsBelow(base) {
   try {
     return readdirSync(base).filter(name => /^\d+$/.test(name)).sort((a, b) => Number(b) - Number(a)).map(name => join(base, name, 'bin'))
-  } catch {
+  }
+  catch {
     return []
   }
 }
@@ -84,10 +86,12 @@ export async function ensurePostgres(major) {
     if (canInstall() && process.env.NULLBEAT_POSTGRES !== 'unpacked') {
       refuseMainCluster()
       await install([name])
-    } else {
+    }
+    else {
       await fetchPostgres(join(dataFolder, 'packages'), name)
     }
-  } catch (error) {
+  }
+  catch (error) {
     if (!(error instanceof Refusal)) throw error
     reason = `\n\n${error.message}`
   }

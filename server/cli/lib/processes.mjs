@@ -13,13 +13,15 @@ export function commandLineOf(pid) {
   if (existsSync('/proc/self/cmdline')) {
     try {
       return readFileSync(`/proc/${pid}/cmdline`, 'utf8').replaceAll('\0', ' ').trim() || undefined
-    } catch {
+    }
+    catch {
       return undefined
     }
   }
   try {
     return execFileSync('ps', ['-p', String(pid), '-o', 'command='], { encoding: 'utf8', stdio: ['ignore', 'pipe', 'ignore'] }).trim() || undefined
-  } catch {
+  }
+  catch {
     return undefined
   }
 }
@@ -81,7 +83,8 @@ export function signalGroup(child, signal) {
   if (!child.pid) return
   try {
     process.kill(-child.pid, signal)
-  } catch { /* the group has ended */ }
+  }
+  catch { /* the group has ended */ }
 }
 
 /**
@@ -93,14 +96,16 @@ export function signalGroup(child, signal) {
  * @returns {Promise<boolean>} whether it ended by itself in time
  */
 export async function stopChild(child, signal, patienceMs) {
-  const ended = hasEnded(child) ? true : await new Promise((resolve) => {
-    const timer = setTimeout(() => resolve(false), patienceMs)
-    child.once('exit', () => {
-      clearTimeout(timer)
-      resolve(true)
-    })
-    child.kill(signal)
-  })
+  const ended = hasEnded(child)
+    ? true
+    : await new Promise((resolve) => {
+        const timer = setTimeout(() => resolve(false), patienceMs)
+        child.once('exit', () => {
+          clearTimeout(timer)
+          resolve(true)
+        })
+        child.kill(signal)
+      })
   signalGroup(child, 'SIGKILL')
   groups.delete(child)
   return ended

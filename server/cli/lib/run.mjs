@@ -1,3 +1,6 @@
+import { join } from 'node:path'
+import { writeWhole } from './files.mjs'
+import { dataFolder } from './paths.mjs'
 import { signalGroup, spawnGroup } from './processes.mjs'
 import { Refusal } from './say.mjs'
 
@@ -29,7 +32,7 @@ export function run(command, args, { show = false, input, ...options } = {}) {
 }
 
 /**
- * Runs a command quietly; if it fails, its last lines are the message.
+ * Runs a command quietly; if it fails, what it said about errors and its last lines are the message.
  *
  * @param {string} purpose what failed, for the message
  * @param {string} command
@@ -39,7 +42,12 @@ export function run(command, args, { show = false, input, ...options } = {}) {
  */
 export async function runOrRefuse(purpose, command, args, options) {
   const { code, output } = await run(command, args, options)
-  if (code !== 0) throw new Refusal(`${purpose} failed (${command} ended with ${code}):\n${lastLines(output, 60)}`)
+  if (code !== 0) {
+    const file = join(dataFolder, 'failed.log')
+    writeWhole(file, output)
+    const errors = output.split('\n').filter(line => /\berror\b/i.test(line)).slice(0, 10).join('\n')
+    throw new Refusal(`${purpose} failed (${command} ended with ${code}). All it printed is in ${file}.\n${errors}\n…\n${lastLines(output, 25)}`)
+  }
   return output
 }
 

@@ -31,7 +31,8 @@ export function keepSecrets(folder) {
   let kept = {}
   try {
     kept = JSON.parse(readFileSync(file, 'utf8'))
-  } catch (error) {
+  }
+  catch (error) {
     const code = /** @type {NodeJS.ErrnoException} */ (error).code
     if (code !== 'ENOENT') throw new Refusal(`${file} cannot be read (${code ?? 'it is not JSON'}). Restore it from a copy; without it the database in this checkout stays locked.`)
   }

@@ -65,7 +65,8 @@ export class ServerLog {
 export function needsAttention(line) {
   try {
     return JSON.parse(line).level >= 40
-  } catch {
+  }
+  catch {
     return /\b(warn|error|fatal)/i.test(line)
   }
 }

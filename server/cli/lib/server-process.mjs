@@ -103,7 +103,8 @@ async function whatFails(address) {
     const response = await fetch(address, { signal: AbortSignal.timeout(5000), redirect: 'manual' })
     const text = await response.text()
     return response.status === 200 ? undefined : `it answers ${response.status}: ${text.slice(0, 300)}`
-  } catch {
+  }
+  catch {
     return 'it does not answer yet'
   }
 }

@@ -13,7 +13,8 @@ export function welcome(settings, secrets, firstAdministrator) {
     lines.push('  Demo: Tern Bay Space Cooperative. Sign in as', '')
     for (const [name, role] of roles) lines.push(`    ${`${name}@tern-bay.example`.padEnd(28)}${role}`)
     lines.push('', `  each with the password ${settings.demoPassword ?? secrets.demoPassword}`, '')
-  } else if (firstAdministrator) {
+  }
+  else if (firstAdministrator) {
     lines.push('  There is nobody yet. Make the first administrator at this address, which works once:', '', `    ${firstAdministrator}`, '')
   }
   if (!settings.smtpUrl) lines.push(`  Mail stays inside: read it at ${settings.publicUrl}/mail`)

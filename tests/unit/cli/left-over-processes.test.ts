@@ -8,12 +8,17 @@ import { releaseLock, takeLock } from '../../../server/cli/lib/lock.mjs'
 import { commandLineOf, isRunning, stopChild } from '../../../server/cli/lib/processes.mjs'
 
 let folder: string
+const strangers: ReturnType<typeof spawn>[] = []
 beforeEach(() => { folder = mkdtempSync(join(tmpdir(), 'nullbeat-unit-')) })
-afterEach(() => rmSync(folder, { recursive: true }))
+afterEach(() => {
+  for (const child of strangers.splice(0)) child.kill('SIGKILL')
+  rmSync(folder, { recursive: true })
+})
 
 /** A process that ends when it is asked to, with words of our choice in its command line. */
 async function stranger(...words: string[]): Promise<ReturnType<typeof spawn>> {
   const child = spawn(process.execPath, ['-e', 'setInterval(() => {}, 1000); console.log(1)', ...words], { stdio: ['ignore', 'pipe', 'ignore'] })
+  strangers.push(child)
   await new Promise(resolve => child.stdout?.once('data', resolve))
   return child
 }
@@ -38,7 +43,6 @@ describe('a pid file', () => {
     await clearLeftOver(folder)
     expect(existsSync(join(folder, 'postmaster.pid'))).toBe(false)
     expect(isRunning(other.pid as number, ['editor'])).toBe(true)
-    await stopChild(other, 'SIGTERM', 5000)
   })
 
   it('of a database that still runs leads to its being stopped first', async () => {
@@ -54,7 +58,6 @@ describe('a pid file', () => {
     mkdirSync(join(folder, 'data'))
     writeFileSync(join(folder, 'data/postmaster.pid'), `${other.pid}\n/elsewhere\n`)
     expect(livingPostmaster(join(folder, 'data'))).toBeUndefined()
-    await stopChild(other, 'SIGTERM', 5000)
   })
 })
 
@@ -75,7 +78,6 @@ describe('a lock', () => {
     const other = await stranger('editor')
     writeFileSync(file, JSON.stringify({ pid: other.pid, command: 'start.mjs' }))
     expect(takeLock(file, { pid: process.pid, command: 'x' }).held).toBe(true)
-    await stopChild(other, 'SIGTERM', 5000)
   })
 
   it('that was written only in part counts as nobody’s', () => {

@@ -12,7 +12,8 @@ describe('a port', () => {
       expect(outcome).toEqual({ code: 'EADDRINUSE' })
       expect(portMessage('EADDRINUSE', port, '127.0.0.1')).toMatch(new RegExp(`Port ${port} .*in use.*PORT=3000 npm start`))
       expect(await freeLoopbackPort(port)).not.toBe(port)
-    } finally {
+    }
+    finally {
       await new Promise(resolve => server.close(resolve))
     }
   })

@@ -4,7 +4,8 @@ import { httpAddress, isLoopback, readSettings } from '../../../server/cli/lib/s
 const refusal = (env: Record<string, string>): string => {
   try {
     readSettings(env)
-  } catch (error) {
+  }
+  catch (error) {
     return (error as Error).message
   }
   return ''

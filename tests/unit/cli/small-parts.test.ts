@@ -27,7 +27,8 @@ describe('secrets', () => {
       expect(made.demoPassword.length).toBeGreaterThanOrEqual(12)
       writeFileSync(join(folder, 'secrets.json'), '{"clust')
       expect(() => keepSecrets(folder)).toThrow(/Restore it/)
-    } finally {
+    }
+    finally {
       rmSync(folder, { recursive: true })
     }
   })
