@@ -1,0 +1,39 @@
+import type { BudgetModel, BudgetParts, Hz, RadioModel, UtcMs } from '../types'
+
+/** How the needed frequency answers to each cause at one instant. Hz per second of time; signs do not matter. */
+export interface Sensitivity {
+  readonly utcMs: UtcMs
+  readonly carrierHz: Hz
+  /** ḟ, everything moving. */
+  readonly rateHzPerS: number
+  /** ∂f/∂t_along: the spacecraft moved along its orbit, the station staying. */
+  readonly alongTrackHzPerS: number
+  /** ∂f/∂UT1: the station turned with the Earth, the spacecraft staying. */
+  readonly ut1HzPerS: number
+}
+
+/** The uncertain parts of the budget: all but `stepsHz`. */
+export type UncertainParts = Omit<BudgetParts, 'stepsHz'>
+
+/**
+ * Error budget at one instant, Hz:
+ * - timing, a limit: (station clock error + uncertainty of the command latency)·|ḟ|. The latency itself is no error.
+ * - UT1, a limit: its bound·|∂f/∂UT1|.
+ * - orbit, one sigma: σ along-track in seconds·|∂f/∂t_along|.
+ * - oscillator, one sigma: f·√(L_spacecraft² + L_station²)/√3. Data sheets state limits; evenly spread within ±L is σ = L/√3
+ *   (JCGM 100:2008, 4.3.7).
+ */
+export function budgetAt(at: Sensitivity, budget: BudgetModel, radio: Pick<RadioModel, 'latencyUncertaintyMs'>): UncertainParts {
+  return {
+    timingHz: (budget.clockErrorMs + radio.latencyUncertaintyMs) / 1000 * Math.abs(at.rateHzPerS),
+    ut1Hz: budget.ut1BoundS * Math.abs(at.ut1HzPerS),
+    orbitHz: budget.alongTrackSigmaS(at.utcMs) * Math.abs(at.alongTrackHzPerS),
+    oscillatorHz: at.carrierHz * 1e-6 * Math.hypot(budget.spacecraftPpm, budget.stationPpm) / Math.sqrt(3),
+    trimHz: 0,
+  }
+}
+
+/** Limits add; one-sigma spreads add as root of squares, times k. Hz. */
+export function uncertaintyHz(parts: UncertainParts, k: number): Hz {
+  return parts.timingHz + parts.ut1Hz + k * Math.hypot(parts.orbitHz, parts.oscillatorHz, parts.trimHz)
+}

@@ -1,0 +1,102 @@
+import type { Corridor } from './corridor'
+import { gridRange } from './corridor'
+
+/**
+ * How far one constant setting serves. A constant fits [a, b] exactly when a grid point lies between the greatest low side and
+ * the least high side of the corridor over the workable parts in [a, b]; sub-intervals inherit, so going as far as possible
+ * with each setting needs the fewest.
+ */
+
+/** Latest whole instant to which one setting serves from `from`; Infinity when to the end; below `from` when none serves there. */
+export function reachFrom(c: Corridor, from: number): number {
+  let knot = firstKnotAt(c, from)
+  let low = -Infinity
+  let high = Infinity
+  if (insidePiece(c, knot, from)) {
+    low = between(c, c.lowHz, knot, from)
+    high = between(c, c.highHz, knot, from)
+    if (!fits(c, low, high)) return from - 1
+  }
+  for (; knot < c.timeMs.length; knot++) {
+    const lower = Math.max(low, c.lowHz[knot]!)
+    const higher = Math.min(high, c.highHz[knot]!)
+    if (!fits(c, lower, higher)) return lastBefore(c, knot, from, low, high)
+    low = lower
+    high = higher
+  }
+  return Infinity
+}
+
+/** Lowest and highest grid multiple that serve over all of [from, to]. */
+export function settingsOver(c: Corridor, from: number, to: number): readonly [number, number] {
+  let low = -Infinity
+  let high = Infinity
+  const include = (lower: number, higher: number) => {
+    low = Math.max(low, lower)
+    high = Math.min(high, higher)
+  }
+  let knot = firstKnotAt(c, from)
+  if (insidePiece(c, knot, from)) include(between(c, c.lowHz, knot, from), between(c, c.highHz, knot, from))
+  for (; knot < c.timeMs.length && c.timeMs[knot]! <= to; knot++) include(c.lowHz[knot]!, c.highHz[knot]!)
+  if (insidePiece(c, knot, to)) include(between(c, c.lowHz, knot, to), between(c, c.highHz, knot, to))
+  return gridRange(c.grid, low, high)
+}
+
+/** Starts of the fewest settings that serve from `first` to the end, each held as long as it serves; null where none does, or past `limit`. */
+export function furthestReach(c: Corridor, first: number, limit: number): number[] | null {
+  const starts = [first]
+  for (let from = first; ;) {
+    const to = reachFrom(c, from)
+    if (to === Infinity) return starts
+    if (to <= from || starts.length >= limit) return null
+    starts.push(to)
+    from = to
+  }
+}
+
+/** True where `time` lies in or on the edge of a workable part. */
+export function isWorkable(c: Corridor, time: number): boolean {
+  const knot = firstKnotAt(c, time)
+  return c.timeMs[knot] === time || insidePiece(c, knot, time)
+}
+
+function fits(c: Corridor, low: number, high: number): boolean {
+  const [least, most] = gridRange(c.grid, low, high)
+  return least <= most
+}
+
+/** The setting that served up to the knot before fails at `knot`: the last whole instant before it fails. */
+function lastBefore(c: Corridor, knot: number, from: number, low: number, high: number): number {
+  let fails = Math.ceil(c.timeMs[knot]!)
+  if (c.beginsPart[knot]) return fails - 1
+  let serves = Math.max(from, Math.floor(c.timeMs[knot - 1]!))
+  while (fails - serves > 1) {
+    const middle = Math.floor((serves + fails) / 2)
+    const ok = fits(c, Math.max(low, between(c, c.lowHz, knot, middle)), Math.min(high, between(c, c.highHz, knot, middle)))
+    if (ok) serves = middle
+    else fails = middle
+  }
+  return serves
+}
+
+/** Index of the first knot at or after `time`. */
+function firstKnotAt(c: Corridor, time: number): number {
+  let before = -1
+  let after = c.timeMs.length
+  while (after - before > 1) {
+    const middle = (before + after) >> 1
+    if (c.timeMs[middle]! < time) before = middle
+    else after = middle
+  }
+  return after
+}
+
+function insidePiece(c: Corridor, knot: number, time: number): boolean {
+  return knot > 0 && knot < c.timeMs.length && !c.beginsPart[knot]! && c.timeMs[knot]! > time && c.timeMs[knot - 1]! <= time
+}
+
+/** A side of the corridor on the piece that ends at `knot`. */
+export function between(c: Corridor, side: readonly number[], knot: number, time: number): number {
+  const start = c.timeMs[knot - 1]!
+  return side[knot - 1]! + (side[knot]! - side[knot - 1]!) * (time - start) / (c.timeMs[knot]! - start)
+}
