@@ -1,6 +1,7 @@
 import { existsSync } from 'node:fs'
 import { join } from 'node:path'
 import { fileURLToPath } from 'node:url'
+import { prepareQueues } from '../jobs/queues.mjs'
 import { root } from './lib/paths.mjs'
 import { Refusal, explain } from './lib/say.mjs'
 
@@ -8,8 +9,8 @@ import { Refusal, explain } from './lib/say.mjs'
 const lockKey = 7_310_442_901
 
 /**
- * Brings a database to the schema of this version. Each migration is a transaction, so one that is killed is
- * done again from its beginning.
+ * Brings a database to the schema of this version, with the queues of its jobs. Each migration is a transaction, so
+ * one that is killed is done again from its beginning.
  *
  * @param {string} databaseUrl
  * @returns {Promise<void>}
@@ -32,6 +33,7 @@ export async function migrateDatabase(databaseUrl) {
     await client.query('select pg_advisory_lock($1)', [lockKey])
     await client.query('set client_min_messages to warning')
     await migrate(drizzle(client), { migrationsFolder })
+    await prepareQueues(databaseUrl)
   }
   finally {
     await client.end()

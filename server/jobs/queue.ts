@@ -10,12 +10,7 @@ export interface Jobs {
 }
 export type JobName = keyof Jobs
 
-export const queues: Record<JobName, PgBoss.Queue> = {
-  // `short` keeps one waiting job per singleton key: many causes in a row lead to one computation.
-  predict: { name: 'predict', policy: 'short', retryLimit: 3, retryDelay: 2, retryBackoff: true, expireInSeconds: 300 },
-  // A mail server may be down for a night: a try a minute, for a day, before a mail counts as failed.
-  mail: { name: 'mail', policy: 'standard', retryLimit: 1440, retryDelay: 60, retryBackoff: false, expireInSeconds: 60 },
-}
+export { queues } from './queues.mjs'
 
 /** Sends through the caller's transaction, so that a job exists exactly when its data does. */
 const sender = new PgBoss({ db: { executeSql: () => Promise.reject(new Error('A job is sent inside a transaction.')) } })
