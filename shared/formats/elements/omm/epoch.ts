@@ -51,8 +51,8 @@ export function readOmmEpoch(text: string): EpochReading {
   if (calendar) {
     const [month, day] = [Number(found[2]), Number(found[3])]
     dayMs = Date.UTC(year, month - 1, day)
-    const made = new Date(dayMs)
-    if (month < 1 || month > 12 || made.getUTCMonth() !== month - 1 || made.getUTCDate() !== day) return refuse(`There is no day ${found[1]}-${found[2]}-${found[3]}. Correct month and day.`)
+    // A day that its month does not have lands in another month.
+    if (month < 1 || month > 12 || new Date(dayMs).getUTCMonth() !== month - 1) return refuse(`There is no day ${found[1]}-${found[2]}-${found[3]}. Correct month and day.`)
   }
   else {
     const day = Number(found[2])

@@ -138,6 +138,10 @@ describe('a TLE', () => {
     expect(reading.warnings[0]!.message).toContain('Lines 1 to 2')
   })
 
+  it('takes a short line of a few numbers for a name', () => {
+    for (const name of ['1 2', '2 of 3', '1 - 1', '2 4 6 8', '1 X9']) expect(onlySet(readText(`${name}\n${LINE_1}\n${LINE_2}`)).elements.name).toBe(name)
+  })
+
   it('keeps the original text of each set, name line included', () => {
     const text = `0 INVENTED\r\n${LINE_1}\r\n\r\n${LINE_2}\r\n`
     expect(onlySet(readText(text)).text).toBe(text.trimEnd())

@@ -1,3 +1,4 @@
+import { createHash } from 'node:crypto'
 import { describe, expect, it } from 'vitest'
 import { readElements } from '#shared/formats/elements/read-elements'
 import type { MeanElements } from '#shared/physics/types'
@@ -74,9 +75,14 @@ describe('uploads of the reference set', () => {
   const today = manifest.files.filter(f => f.file.endsWith('.tle') || f.file.endsWith('.json'))
   const later = manifest.files.filter(f => !today.includes(f))
 
-  it('is whole, as the manifest counts it', () => {
+  it('is whole and unchanged, as manifest and data/README.md have it', () => {
+    const readme = referenceText('../README.md')
     expect(manifest.files).toHaveLength(73)
-    for (const { file, bytes } of manifest.files) expect(referenceBytes(`uploads/${file}`), file).toHaveLength(bytes)
+    for (const { file, bytes } of manifest.files) {
+      expect(referenceBytes(`uploads/${file}`), file).toHaveLength(bytes)
+      const sum = createHash('sha256').update(referenceBytes(`uploads/${file}`)).digest('hex')
+      expect(readme.split('\n').find(row => row.startsWith(`| \`${file}\` |`)), `row of ${file} in data/README.md`).toContain(sum)
+    }
   })
 
   it.each(today.filter(f => f.expect === 'accept'))('takes every set of $file without a word', ({ file, usableSets }) => {
