@@ -12,7 +12,10 @@ export class OmmFields {
     for (const member of object.members) {
       if (member.key === 'COMMENT') continue
       const before = this.byKey.get(member.key)
-      if (before) throw new SetRefusal(member.line, 'duplicate-keyword', `${quote(member.key)} stands twice in this set, at lines ${before.line} and ${member.line}, and nothing says which is meant. Remove one.`)
+      if (before) {
+        const where = before.line === member.line ? `both times on line ${member.line}` : `at lines ${before.line} and ${member.line}`
+        throw new SetRefusal(member.line, 'duplicate-keyword', `${quote(member.key)} stands twice in this set, ${where}, and nothing says which is meant. Remove one.`)
+      }
       this.byKey.set(member.key, member)
     }
   }
