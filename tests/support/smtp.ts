@@ -6,6 +6,8 @@ export interface FakeMailServer {
   url: string
   /** What was taken, whole, as it came over the line. */
   received: string[]
+  /** Whom each of them was for, by the envelope. */
+  recipients: string[][]
   /** How the next mails are answered: a reply code, nothing at all, or a torn connection; null takes them. */
   behave: (how: number | 'hang' | 'reset' | null) => void
   close: () => Promise<void>
@@ -15,6 +17,7 @@ export interface FakeMailServer {
 export async function startFakeMailServer(): Promise<FakeMailServer> {
   let behaviour: number | 'hang' | 'reset' | null = null
   const received: string[] = []
+  const recipients: string[][] = []
   const sockets = new Set<Socket>()
   const smtp = new SMTPServer({
     authOptional: true,
@@ -23,10 +26,11 @@ export async function startFakeMailServer(): Promise<FakeMailServer> {
       if (typeof behaviour !== 'number') return done()
       done(Object.assign(new Error(behaviour < 500 ? 'try again later' : 'no such mailbox'), { responseCode: behaviour }))
     },
-    onData: (stream, _session, done) => {
+    onData: (stream, session, done) => {
       const chunks: Buffer[] = []
       stream.on('data', chunk => chunks.push(chunk)).on('end', () => {
         received.push(Buffer.concat(chunks).toString('utf8'))
+        recipients.push(session.envelope.rcptTo.map(({ address }) => address))
         done()
       })
     },
@@ -41,6 +45,7 @@ export async function startFakeMailServer(): Promise<FakeMailServer> {
   return {
     url: `smtp://127.0.0.1:${(front.address() as AddressInfo).port}`,
     received,
+    recipients,
     behave: (how) => { behaviour = how },
     close: async () => {
       for (const socket of sockets) socket.destroy()

@@ -32,6 +32,7 @@ afterAll(async () => {
 beforeEach(() => {
   server.behave(null)
   server.received.length = 0
+  server.recipients.length = 0
 })
 
 const write = (address = 'night@ops.example', name = 'Night desk') => database.db.transaction(tx => queueMail({ db: tx, now }, { ...letter, to: { name, address } }))
@@ -103,8 +104,7 @@ describe('sending a mail', () => {
   it('writes to one recipient although the name holds a comma and another address', async () => {
     const id = await write('one@ops.example', 'Night, two@ops.example')
     await send(id)
-    expect(server.received[0]).toMatch(/^To: .*<one@ops\.example>\r?$/m)
-    expect(server.received).toHaveLength(1)
+    expect(server.recipients).toEqual([['one@ops.example']])
   })
 })
 
