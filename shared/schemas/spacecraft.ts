@@ -16,6 +16,8 @@ const fields = {
 }
 export const createSpacecraftBody = z.strictObject({
   ...fields,
+  /** May be left out with fromElementSetId: then the set's. */
+  name: fields.name.optional(),
   catalogueNumber: fields.catalogueNumber.default(null),
   designator: fields.designator.default(null),
   oscillatorPpm: fields.oscillatorPpm.default(0),
@@ -25,7 +27,7 @@ export const createSpacecraftBody = z.strictObject({
   alongTrackGrowthKmPerDay: fields.alongTrackGrowthKmPerDay.default(null),
   /** Made from this held set in one step; the set then waits for it. */
   fromElementSetId: idSchema.optional(),
-})
+}).refine(body => body.name !== undefined || body.fromElementSetId !== undefined, { path: ['name'], message: 'Give a name.' })
 export const changeSpacecraftBody = z.strictObject(fields).partial()
 export const spacecraftOut = z.object({
   ...fields,
