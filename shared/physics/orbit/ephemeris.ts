@@ -33,7 +33,7 @@ export function gridStepMs(elements: MeanElements): number {
 /** Whether the set has failed between its epoch and the window: errors come and go near decay, so sampled sparsely. */
 function errorBefore(propagator: Propagator, fromMs: UtcMs): PropagationError | null {
   const epochMs = propagator.elements.epochUtcUs / 1000
-  const stepMs = Math.max(0.618 * 86_400_000 / propagator.elements.meanMotionRevPerDay, (fromMs - epochMs) / MOST_SAMPLES_BEFORE_WINDOW)
+  const stepMs = Math.max(0.21 * 86_400_000 / propagator.elements.meanMotionRevPerDay, (fromMs - epochMs) / MOST_SAMPLES_BEFORE_WINDOW)
   for (let t = epochMs + stepMs; t < fromMs; t += stepMs) {
     const result = propagator.at(t)
     if (!result.ok) return result.error
@@ -95,7 +95,7 @@ export function createEphemeris(propagator: Propagator, fromMs: UtcMs, toMs: Utc
   }
   const wantedEndMs = toMs + EPHEMERIS_PAD_MS
   let endMs = wantedEndMs
-  if (failing) endMs = Math.min(wantedEndMs, validUntil(propagator, Math.max(fromMs, (usableTo) * stepMs), failing.ms))
+  if (failing) endMs = Math.min(wantedEndMs, validUntil(propagator, Math.max(fromMs, usableTo * stepMs), failing.ms))
   const endedBy = failing && endMs < toMs ? failing.error : null
 
   const hasStencil = (left: number): boolean => left - BEFORE >= usableFrom && left - BEFORE + NODES - 1 <= usableTo

@@ -100,6 +100,28 @@ describe('the pass finder', () => {
     expect(workablePartsForLink(passes[0]!, sso.ephemeris, site, -1, 0)).toEqual(passes[0]!.workable)
   })
 
+  it('parts two passes that a dip of some minutes divides, shorter than its own step', () => {
+    // Source: every 5 s of the curve itself. A synchronous orbit's elevation has a flat minimum twelve hours from its
+    // maximum, which the reference puts at 23222 s.
+    const geo = satellite('GEO')
+    const site = siteFromDegrees(place('EQ0'))
+    const elevation = (t: number): number => {
+      const state = geo.ephemeris.propagator.at(t)
+      if (!state.ok) throw new Error(state.error)
+      return lookAt(state, site, t, 0).elevationRad
+    }
+    const around = Array.from({ length: 4000 }, (_, i) => geo.fromMs + 23_222_000 + 43_080_000 + (i - 2000) * 5000)
+    const lowest = around.reduce((best, t) => elevation(t) < elevation(best) ? t : best)
+    const minElevationRad = Math.max(elevation(lowest - 150_000), elevation(lowest + 150_000))
+    const { passes } = findPasses({ ...geo, site, fromMs: lowest - 20_000_000, toMs: lowest + 20_000_000, minElevationRad, ut1MinusUtcS: 0 })
+    expect(passes).toHaveLength(2)
+    const gap = passes[1]!.aosMs - passes[0]!.losMs
+    expect(gap).toBeGreaterThan(270_000)
+    expect(gap).toBeLessThan(400_000)
+    expect(lowest).toBeGreaterThan(passes[0]!.losMs)
+    expect(lowest).toBeLessThan(passes[1]!.aosMs)
+  })
+
   it('takes the larger of two minimum elevations', () => {
     const site = siteFromDegrees(place('HI25'), 5)
     expect(findPasses({ ...sso, site, ut1MinusUtcS: 0, minElevationRad: 10 * RAD }).passes).toHaveLength(expectedAt('HI25', 10).length)
