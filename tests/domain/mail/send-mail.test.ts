@@ -102,7 +102,7 @@ describe('sending a mail', () => {
   })
 
   it('writes to one recipient although the name holds a comma and another address', async () => {
-    const id = await write('one@ops.example', 'Night, two@ops.example')
+    const id = await write('one@ops.example', 'two@ops.example, Night')
     await send(id)
     expect(server.recipients).toEqual([['one@ops.example']])
   })
