@@ -5,6 +5,7 @@ import { ensureDependencies } from './lib/dependencies.mjs'
 import { inTurn } from './lib/lock.mjs'
 import { beOnlyStart, endOnlyStart, noteServer } from './lib/one-start.mjs'
 import { ensureOwnPrograms, startOwnDatabase } from './lib/own-database.mjs'
+import { whenNpmIsGone } from './lib/parent.mjs'
 import { dataFolder, ensureDataFolder } from './lib/paths.mjs'
 import { portMessage, tryPort } from './lib/ports.mjs'
 import { stopAllGroups } from './lib/processes.mjs'
@@ -115,6 +116,7 @@ async function main() {
 
 requireNode()
 for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) process.on(signal, () => onSignal(signal))
+whenNpmIsGone(() => onSignal('npm is gone'))
 main().catch((error) => {
   if (ending) return
   explain(error)

@@ -6,6 +6,7 @@ import { ensureChromium } from './lib/chromium.mjs'
 import { ensureDependencies } from './lib/dependencies.mjs'
 import { inTurn } from './lib/lock.mjs'
 import { startIsRunning } from './lib/one-start.mjs'
+import { whenNpmIsGone } from './lib/parent.mjs'
 import { dataFolder, ensureDataFolder, root } from './lib/paths.mjs'
 import { ensurePostgres } from './lib/postgres-programs.mjs'
 import { stopAllGroups } from './lib/processes.mjs'
@@ -85,6 +86,7 @@ function end(code) {
 
 requireNode()
 for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) process.on(signal, () => void end(1))
+whenNpmIsGone(() => void end(1))
 try {
   await main()
 }

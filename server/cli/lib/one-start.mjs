@@ -2,6 +2,7 @@ import { join } from 'node:path'
 import { setTimeout as wait } from 'node:timers/promises'
 import { writeWhole } from './files.mjs'
 import { holderOf, releaseLock, takeLock } from './lock.mjs'
+import { npmParent } from './parent.mjs'
 import { isRunning } from './processes.mjs'
 import { Refusal } from './say.mjs'
 
@@ -17,12 +18,26 @@ const serverWords = { serve: ['.output/server/index.mjs'], dev: ['nuxt', 'dev'] 
  */
 export async function beOnlyStart(dataFolder, address) {
   const file = join(dataFolder, 'start.lock')
-  const outcome = takeLock(file, { pid: process.pid, command, note: address })
+  const me = { pid: process.pid, command, note: address, npm: npmParent() }
+  let outcome = takeLock(file, me)
+  for (let waited = 0; !outcome.held && waited < 30_000 && isEnding(outcome.by); waited += 200) {
+    await wait(200)
+    outcome = takeLock(file, me)
+  }
   if (!outcome.held) {
     throw new Refusal(`Nullbeat is running from this folder already: process ${outcome.by.pid}, ${outcome.by.note}. Stop it first (Ctrl-C there, or kill ${outcome.by.pid}); for a second one, use a second checkout.`)
   }
   const orphan = Number(/** @type {{ serverPid?: number } | undefined} */ (outcome.previous)?.serverPid)
   if (orphan) await endOrphan(orphan)
+}
+
+/**
+ * A start whose npm was killed notices and ends by itself.
+ *
+ * @param {import('./lock.mjs').Holder & { npm?: number }} holder
+ */
+function isEnding(holder) {
+  return holder.npm !== undefined && !isRunning(holder.npm, ['npm'])
 }
 
 /** @param {number} pid */
