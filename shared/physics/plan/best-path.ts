@@ -1,7 +1,7 @@
 import type { Path } from './choose-path'
-import type { Curve, Grid } from './corridor'
+import type { Corridor, Curve, Grid } from './corridor'
 import { corridorOf } from './corridor'
-import { chooseRows, fewestRows } from './fewest-rows'
+import { chooseRows, fewestRows, isLargeSearch } from './fewest-rows'
 import type { Limits } from './hold-paths'
 
 /** Least rows, then least ratio of residual to half-width, then earliest, then lowest; null where the half-width has no plan. */
@@ -10,34 +10,43 @@ export function bestPath(curve: Curve, grid: Grid, limits: Limits, halfWidthHz: 
   const corridor = (ratio: number) => corridorOf(curve, grid, j => ratio * halfWidthHz[j]!)
   const rows = fewestRows(corridor(1), limits)
   if (rows === null) return null
-  let ratio = leastThat(0, 1, ratio => fewestRows(corridor(ratio), limits, rows) !== null)
-  // A search on a thinned grid can lose at a ratio just above what it found; the whole half-width always serves.
-  let path = chooseRows(corridor(ratio), limits, rows)
-  for (; path === null && ratio < 1; path = chooseRows(corridor(ratio), limits, rows)) ratio = Math.min(1, ratio * 1.001 + 1e-6)
-  return path
+  const ratio = leastThat(0, 1, limits, corridor, rows)
+  return chosenAbove(ratio, limits, rows, corridor)
 }
 
-/** The plan with half-width max(h, x), x the least that has one. */
+/** The plan with half-width max(h, x), x the least that has one; then least rows, earliest, lowest. */
 export function widenedPath(curve: Curve, grid: Grid, limits: Limits, halfWidthHz: readonly number[]): Path {
-  const widened = (x: number) => halfWidthHz.map(h => Math.max(h, x))
-  const serves = (x: number) => fewestRows(corridorOf(curve, grid, j => widened(x)[j]!), limits) !== null
+  const corridor = (x: number) => corridorOf(curve, grid, j => Math.max(halfWidthHz[j]!, x))
   let enough = grid.stepHz
-  while (!serves(enough)) enough *= 2
-  const x = leastThat(0, enough, serves)
-  // Somewhere above the least x that was found to serve there is a plan, at the latest at twice the last bracket.
-  for (let wider = x; ; wider = wider * 1.001 + 1e-6) {
-    const path = bestPath(curve, grid, limits, widened(wider))
-    if (path !== null) return path
-  }
+  while (fewestRows(corridor(enough), limits) === null) enough *= 2
+  const x = leastThat(0, enough, limits, corridor, Infinity)
+  return chosenAbove(x, limits, fewestRows(corridor(x), limits) ?? Infinity, corridor)
 }
 
-/** Least value above `fails` that satisfies `test`, to a part in 10⁹ of the bracket; `serves` is known to. */
-function leastThat(fails: number, serves: number, test: (value: number) => boolean): number {
+/**
+ * Least width above `fails` at which `rows` suffice, to a part in 10⁹ of `serves`, which is known to; to a part in 10⁴ where long
+ * searches are needed to tell.
+ */
+function leastThat(fails: number, serves: number, limits: Limits, corridor: (width: number) => Corridor, rows: number): number {
   let [low, high] = [fails, serves]
-  for (let i = 0; i < 30; i++) {
+  let precision = 1e-9
+  while (high - low > precision * serves) {
     const middle = (low + high) / 2
-    if (test(middle)) high = middle
-    else low = middle
+    const c = corridor(middle)
+    const onSearch = () => {
+      if (isLargeSearch(c, limits)) precision = 1e-4
+    }
+    if (fewestRows(c, limits, rows, onSearch) === null) low = middle
+    else high = middle
   }
   return high
+}
+
+/** The rows at the least width. On a thinned grid a search can miss where the other way of asking did not: a little wider, then. */
+function chosenAbove(width: number, limits: Limits, rows: number, corridor: (width: number) => Corridor): Path {
+  for (let wider = width; ; wider = wider * 1.001 + 1e-9) {
+    const least = wider === width ? rows : fewestRows(corridor(wider), limits) ?? rows
+    const path = chooseRows(corridor(wider), limits, least)
+    if (path !== null) return path
+  }
 }

@@ -29,7 +29,7 @@ export function choosePath(holds: Holds, limits: Limits, rows: number): Path | n
     time >= from[u]! && time <= to[v]! && time <= latestStart(u, left)
     && (Math.abs(setting[u]! - setting[v]!) <= limits.jump || isGap(time))
 
-  const all = setting.map((_, v) => v)
+  const all = Array.from(setting.keys())
   const choices: number[][] = [all.filter(v => from[v]! <= first && to[v]! >= first)]
   const starts = [first]
   let leave = Math.max(limits.notBefore + limits.dwell, first + 1)

@@ -11,12 +11,13 @@ import { furthestReach, isWorkable, settingsOver } from './reach'
 /**
  * Fewest rows through a corridor. Furthest reach is tried first: without dwell and jump limit it is optimal, so where its rows
  * happen to keep both, it is optimal with them too, and where it needs too many rows, so does every plan. Only in between are
- * the paths from hold to hold searched.
+ * the paths from hold to hold searched, which `onSearch` is told.
  */
-export function fewestRows(c: Corridor, limits: Limits, limit = Infinity): number | null {
+export function fewestRows(c: Corridor, limits: Limits, limit = Infinity, onSearch?: () => void): number | null {
   const starts = furthestReach(c, firstInstant(c), limit)
   if (starts === null) return null
   if (keepsDwell(starts, limits) && settingsFor(c, starts, limits.jump) !== null) return starts.length
+  onSearch?.()
   const bound = boundJump(c, limits)
   const { layers, complete } = earliestStarts(holdsFor(c, bound), bound, limit)
   return complete ? layers.length : null
@@ -76,17 +77,28 @@ function boundJump(c: Corridor, limits: Limits): Limits {
 }
 
 /** Pairs of neighbouring grid points that a search may look at. */
-const MOST_PAIRS = 500_000
+const MOST_PAIRS = 200_000
 
 /**
  * Holds of the corridor. A grid so fine that the search would look at more than `MOST_PAIRS` pairs is thinned to every n-th
  * point, n a divisor of the jump limit so that the largest jump stays in reach: least rows and least ratio are then those of the
  * thinned grid, which costs at most n/2 steps of the half-width.
  */
-function holdsFor(c: Corridor, { jump }: Limits): Holds {
-  const points = (c.highHz.reduce((a, b) => Math.max(a, b)) - c.lowHz.reduce((a, b) => Math.min(a, b))) / c.grid.stepHz
-  const least = Math.max(1, Math.sqrt(points * Math.min(jump, points) / MOST_PAIRS))
-  let stride = Math.floor(least)
-  if (stride > 1) while (stride < jump && jump % stride !== 0) stride++
+function holdsFor(c: Corridor, limits: Limits): Holds {
+  const least = Math.sqrt(pairsOf(c, limits) / MOST_PAIRS)
+  let stride = Math.max(1, Math.floor(least))
+  if (stride > 1) while (stride < limits.jump && limits.jump % stride !== 0) stride++
   return holdsOf(c, stride)
+}
+
+function pairsOf(c: Corridor, { jump }: Limits): number {
+  const lowest = c.lowHz.reduce((a, b) => Math.min(a, b))
+  const highest = c.highHz.reduce((a, b) => Math.max(a, b))
+  const points = Math.min(c.grid.most - c.grid.least, (highest - lowest) / c.grid.stepHz) + 1
+  return points * Math.min(jump, points)
+}
+
+/** True where a search through this corridor's holds takes long enough that a ratio or half-width is worth only a few digits. */
+export function isLargeSearch(c: Corridor, limits: Limits): boolean {
+  return pairsOf(c, boundJump(c, limits)) > MOST_PAIRS / 10
 }

@@ -16,9 +16,9 @@ export interface Limits {
  * or where no layer improves, or after `limit` rows.
  */
 export function earliestStarts(holds: Holds, limits: Limits, limit: number): { layers: Float64Array[], complete: boolean } {
-  const { setting, from, to, first, last } = holds
-  const count = setting.length
-  let layer = new Float64Array(count).fill(Infinity)
+  const { from, to, first, last } = holds
+  const count = from.length
+  let layer: Float64Array = new Float64Array(count).fill(Infinity)
   let frontier: number[] = []
   for (let v = 0; v < count; v++) {
     if (from[v]! > first) continue
@@ -30,19 +30,22 @@ export function earliestStarts(holds: Holds, limits: Limits, limit: number): { l
     if (frontier.some(v => to[v]! >= last)) return { layers, complete: true }
     if (layers.length >= limit) break
     const next = Float64Array.from(layer)
-    const improved = new Set<number>()
+    const improved: number[] = []
     for (const v of frontier) {
       const leave = Math.max(layer[v]! + limits.dwell, first + 1)
+      const until = to[v]!
+      if (leave > until) continue
       const [begin, end] = neighbours(holds, v, leave, limits.jump)
       for (let u = begin; u < end; u++) {
-        if (from[u]! >= next[u]!) continue
+        const known = next[u]!
+        if (from[u]! >= known || from[u]! > until || to[u]! < leave) continue
         const start = earliestChange(holds, v, u, leave, limits.jump)
-        if (start >= next[u]!) continue
+        if (start >= known) continue
+        if (known === layer[u]) improved.push(u)
         next[u] = start
-        improved.add(u)
       }
     }
-    frontier = [...improved]
+    frontier = improved
     if (frontier.length === 0) break
     layer = next
     layers.push(layer)
@@ -67,7 +70,7 @@ export function neighbours(holds: Holds, v: number, leave: number, jump: number)
   return [firstAtOrAbove(holds.setting, holds.setting[v]! - jump), firstAtOrAbove(holds.setting, holds.setting[v]! + jump + 1)]
 }
 
-function firstAtOrAbove(sorted: readonly number[], value: number): number {
+function firstAtOrAbove(sorted: Float64Array, value: number): number {
   let below = -1
   let above = sorted.length
   while (above - below > 1) {

@@ -9,9 +9,9 @@ import { between } from './reach'
  */
 export interface Holds {
   /** Grid points in multiples of the step, in rising order; hold `i` stands at `setting[i]`. */
-  readonly setting: readonly number[]
-  readonly from: readonly number[]
-  readonly to: readonly number[]
+  readonly setting: Float64Array
+  readonly from: Float64Array
+  readonly to: Float64Array
   /** First and last whole instant of the whole plan. */
   readonly first: number
   readonly last: number
@@ -68,7 +68,8 @@ export function holdsOf(c: Corridor, stride: number): Holds {
   })
   for (let i = 0; i < count; i++) if (!Number.isNaN(open[i]!)) close(i, last)
   found.sort((a, b) => a[0] - b[0] || a[1] - b[1])
-  return { setting: found.map(h => h[0]), from: found.map(h => h[1]), to: found.map(h => h[2]), first, last, gaps }
+  const column = (n: 0 | 1 | 2) => Float64Array.from(found, hold => hold[n])
+  return { setting: column(0), from: column(1), to: column(2), first, last, gaps }
 }
 
 /** The same holds with time running backwards. */

@@ -1,0 +1,58 @@
+import { neededOverCarrierMinusOne } from '../doppler/ratio'
+import type { Hz, LinkModel, Propagator, Site, Span, StateTeme, UtcMs } from '../types'
+import { seriesOf } from './check-series'
+
+export interface CheckCurveQuery {
+  readonly propagator: Propagator
+  readonly site: Site
+  readonly link: Pick<LinkModel, 'direction' | 'carrierHz'>
+  readonly ut1MinusUtcS: number
+  readonly span: Span
+}
+
+/** What the checker knows of the needed frequency over one workable part. */
+export interface CheckCurve {
+  /** Frequency to set minus carrier. */
+  readonly offsetHz: (utcMs: UtcMs) => Hz
+  readonly rateHzPerS: (utcMs: UtcMs) => number
+  /** ∂f/∂UT1, signed: the station turned, the spacecraft staying. */
+  readonly ut1HzPerS: (utcMs: UtcMs) => number
+  /** ∂f/∂t_along, signed: the spacecraft moved along its orbit, the station staying. What ḟ has beside the station's turning. */
+  readonly alongTrackHzPerS: (utcMs: UtcMs) => number
+}
+
+/** Offset by direct propagation, Hz; the truth that the curve interpolates. Throws RangeError where the propagator fails. */
+export function directOffsetHz({ propagator, site, link, ut1MinusUtcS }: Omit<CheckCurveQuery, 'span'>, utcMs: UtcMs): Hz {
+  const stateAt = (at: UtcMs): StateTeme => {
+    const state = propagator.at(at)
+    if (!state.ok) throw new RangeError(`The element set cannot be propagated to ${new Date(at).toISOString()}: ${state.error}. Cut the table before that instant.`)
+    return state
+  }
+  return link.carrierHz * neededOverCarrierMinusOne({ stateAt, site, ut1MinusUtcS }, link.direction, utcMs)
+}
+
+const UT1_STEP_S = 0.5
+
+/**
+ * The checker's own interpolation of the needed frequency, from its own propagations: Chebyshev series, within 1e-3 Hz plus
+ * 1e-12 of the carrier of direct propagation. Panels begin at a 48th of the orbit's period and are halved until the series
+ * dies out. The partials are made when first asked for.
+ */
+export function checkCurveOf(query: CheckCurveQuery): CheckCurve {
+  const { propagator, link, ut1MinusUtcS, span } = query
+  const panelMs = 86_400_000 / propagator.elements.meanMotionRevPerDay / 48
+  const offset = seriesOf(utcMs => directOffsetHz(query, utcMs), {
+    ...span, panelMs, nodes: 16, tolerance: 1e-4 + 1e-13 * link.carrierHz,
+  })
+  const makeUt1 = () => seriesOf((utcMs) => {
+    const later = directOffsetHz({ ...query, ut1MinusUtcS: ut1MinusUtcS + UT1_STEP_S }, utcMs)
+    const earlier = directOffsetHz({ ...query, ut1MinusUtcS: ut1MinusUtcS - UT1_STEP_S }, utcMs)
+    return (later - earlier) / (2 * UT1_STEP_S)
+  }, { ...span, panelMs: panelMs / 2, nodes: 10, tolerance: 1e-11 * link.carrierHz })
+  let ut1: ReturnType<typeof makeUt1> | null = null
+  const ut1HzPerS = (utcMs: UtcMs) => (ut1 ??= makeUt1()).valueAt(utcMs)
+  return {
+    offsetHz: offset.valueAt, rateHzPerS: offset.rateAt, ut1HzPerS,
+    alongTrackHzPerS: utcMs => offset.rateAt(utcMs) - ut1HzPerS(utcMs),
+  }
+}

@@ -1,0 +1,90 @@
+/** A smooth function of time as Chebyshev series on panels. */
+export interface Series {
+  readonly valueAt: (utcMs: number) => number
+  /** Per second. */
+  readonly rateAt: (utcMs: number) => number
+}
+
+export interface SeriesOptions {
+  readonly fromMs: number
+  readonly toMs: number
+  /** Longest panel to begin with. */
+  readonly panelMs: number
+  readonly nodes: number
+  /** A panel is halved while its last two coefficients exceed this, unit of the function. */
+  readonly tolerance: number
+}
+
+interface Panel { readonly middleMs: number, readonly halfMs: number, readonly value: readonly number[], readonly rate: readonly number[] }
+
+const SHORTEST_PANEL_MS = 250
+
+/**
+ * Interpolates `fn` at Chebyshev points, panels halved until the series has died out. Source: Press et al., Numerical Recipes,
+ * chapter on Chebyshev approximation (coefficients, Clenshaw's recurrence, derivative). Outside [fromMs, toMs] the nearest
+ * panel is continued, which is good for milliseconds only.
+ */
+export function seriesOf(fn: (utcMs: number) => number, options: SeriesOptions): Series {
+  const panels: Panel[] = []
+  const count = Math.max(1, Math.ceil((options.toMs - options.fromMs) / options.panelMs))
+  const length = (options.toMs - options.fromMs) / count
+  for (let i = 0; i < count; i++) addPanels(fn, options, options.fromMs + length * i, options.fromMs + length * (i + 1), panels)
+  const panelAt = (utcMs: number): Panel => {
+    let before = 0
+    let after = panels.length
+    while (after - before > 1) {
+      const middle = (before + after) >> 1
+      if (panels[middle]!.middleMs - panels[middle]!.halfMs <= utcMs) before = middle
+      else after = middle
+    }
+    return panels[before]!
+  }
+  return {
+    valueAt: (utcMs) => {
+      const panel = panelAt(utcMs)
+      return clenshaw(panel.value, (utcMs - panel.middleMs) / panel.halfMs)
+    },
+    rateAt: (utcMs) => {
+      const panel = panelAt(utcMs)
+      return clenshaw(panel.rate, (utcMs - panel.middleMs) / panel.halfMs)
+    },
+  }
+}
+
+function addPanels(fn: (utcMs: number) => number, options: SeriesOptions, fromMs: number, toMs: number, panels: Panel[]): void {
+  const middleMs = (fromMs + toMs) / 2
+  // A part of no length still gets a panel.
+  const halfMs = Math.max((toMs - fromMs) / 2, 1)
+  const value = coefficients(x => fn(middleMs + x * halfMs), options.nodes)
+  const tail = Math.abs(value[options.nodes - 1]!) + Math.abs(value[options.nodes - 2]!)
+  if (tail > options.tolerance && toMs - fromMs > SHORTEST_PANEL_MS) {
+    addPanels(fn, options, fromMs, middleMs, panels)
+    addPanels(fn, options, middleMs, toMs, panels)
+    return
+  }
+  panels.push({ middleMs, halfMs, value, rate: derivative(value).map(c => c / (halfMs / 1000)) })
+}
+
+/** Coefficients of the series through n Chebyshev points; the first already halved. */
+function coefficients(fn: (x: number) => number, n: number): number[] {
+  const samples = Array.from({ length: n }, (_, j) => fn(Math.cos(Math.PI * (j + 0.5) / n)))
+  return samples.map((_, k) => {
+    let sum = 0
+    for (let j = 0; j < n; j++) sum += samples[j]! * Math.cos(Math.PI * k * (j + 0.5) / n)
+    return sum * (k === 0 ? 1 : 2) / n
+  })
+}
+
+function derivative(c: readonly number[]): number[] {
+  const n = c.length
+  const d = new Array<number>(n + 1).fill(0)
+  for (let k = n - 2; k >= 0; k--) d[k] = d[k + 2]! + 2 * (k + 1) * c[k + 1]!
+  d[0] = d[0]! / 2
+  return d.slice(0, n)
+}
+
+function clenshaw(c: readonly number[], x: number): number {
+  let [next, afterNext] = [0, 0]
+  for (let k = c.length - 1; k >= 1; k--) [next, afterNext] = [2 * x * next - afterNext + c[k]!, next]
+  return x * next - afterNext + c[0]!
+}

@@ -1,0 +1,96 @@
+import { createNeededFrequency } from '../doppler/needed'
+import type { LinkPath } from '../doppler/needed'
+import { partialAlongTrackHzPerS, partialUt1HzPerS } from '../orbit/along-track'
+import { workablePartsForLink } from '../orbit/passes'
+import { allowanceOf } from '../link/allowance'
+import { budgetAt, uncertaintyHz } from '../plan/budget'
+import { checkTable } from '../plan/check-table'
+import { planRetunes } from '../plan/plan-retunes'
+import type { BudgetModel, Ephemeris, Hz, LinkModel, PredictedPass, Propagator, RadioModel, RetuneRow, Site, Span, TableCheck, UtcMs } from '../types'
+
+export interface TableQuery {
+  readonly propagator: Propagator
+  /** Of the same element set, over the pass. */
+  readonly ephemeris: Ephemeris
+  readonly site: Site
+  readonly link: LinkModel
+  /** The link's own minimum elevation; the site's holds where that is higher. */
+  readonly linkMinElevationRad: number
+  readonly radio: RadioModel
+  readonly budget: BudgetModel
+  readonly pass: PredictedPass
+  /** One dwell after the radio's previous row, where there is one. */
+  readonly notBeforeMs?: UtcMs
+}
+
+export interface BuiltTable {
+  readonly kind: 'table'
+  readonly rows: readonly RetuneRow[]
+  readonly check: TableCheck
+  readonly parts: readonly Span[]
+  /** Share of the allowance the plan keeps to; null where no plan keeps to it. */
+  readonly kappa: 0.8 | 1 | null
+}
+
+/** The pass has no instant above the link's own minimum elevation. */
+export interface NotWorkable { readonly kind: 'not-workable' }
+
+/** The tuning table of one pass and one link: planned on the ephemeris, then checked as published on true propagation. */
+export function buildTable(query: TableQuery): BuiltTable | NotWorkable {
+  const { propagator, ephemeris, site, link, radio, budget, pass } = query
+  const parts = workablePartsForLink(pass, ephemeris, site, query.linkMinElevationRad, budget.ut1MinusUtcS)
+  if (parts.length === 0) return { kind: 'not-workable' }
+  const path: LinkPath = {
+    stateAt: utcMs => ephemeris.stateAt(utcMs), site, ut1MinusUtcS: budget.ut1MinusUtcS, direction: link.direction, carrierHz: link.carrierHz,
+  }
+  const isUplink = link.direction === 'uplink'
+  const plan = planRetunes({
+    needed: createNeededFrequency(path), uncertaintyHz: uncertaintyOver(path, ephemeris, budget, radio), allowanceHz: allowanceOf(link).allowanceHz,
+    parts, radio, jumpLimitHz: link.jumpLimitHz,
+    bandLowHz: isUplink ? link.bandLowHz : null, bandHighHz: isUplink ? link.bandHighHz : null,
+    ...(query.notBeforeMs === undefined ? {} : { notBeforeMs: query.notBeforeMs }),
+  })
+  const rows = plan.rows.map(({ effectMs, frequencyHz }): RetuneRow => ({
+    // Exact: planned rows take effect one latency after a whole millisecond.
+    atMs: Math.round(effectMs - radio.latencyMs), frequencyHz, slopeHzPerS: 0,
+  }))
+  return { kind: 'table', rows, check: checkTable({ propagator, site, link, radio, budget, parts, rows }), parts, kappa: plan.kappa }
+}
+
+export type ResidualQuery = Omit<TableQuery, 'notBeforeMs'> & { readonly rows: readonly RetuneRow[] }
+
+/** Rows already published, checked anew: against newer elements, another budget, or the same pass as it now falls. */
+export function residualOfRows(query: ResidualQuery): TableCheck | NotWorkable {
+  const { pass, ephemeris, site, budget } = query
+  const parts = workablePartsForLink(pass, ephemeris, site, query.linkMinElevationRad, budget.ut1MinusUtcS)
+  return parts.length === 0 ? { kind: 'not-workable' } : checkTable({ ...query, parts })
+}
+
+/** Spacing of the nodes between which the uncertainty is interpolated, and what is added for it. */
+const NODE_MS = 4000
+const NODE_ROOM = 1.01
+
+/**
+ * Uncertainty over time. The partials cost a dozen propagations an instant and change slowly, so they are asked every 4 s and
+ * interpolated in straight pieces; one per cent is added, which no low orbit uses up.
+ */
+function uncertaintyOver(path: LinkPath, ephemeris: Ephemeris, budget: BudgetModel, radio: RadioModel): (utcMs: UtcMs) => Hz {
+  const rate = createNeededFrequency(path).rateHzPerS
+  const exact = (utcMs: UtcMs): Hz => uncertaintyHz(budgetAt({
+    utcMs, carrierHz: path.carrierHz,
+    rateHzPerS: budget.clockErrorMs + radio.latencyUncertaintyMs > 0 ? rate(utcMs) : 0,
+    alongTrackHzPerS: budget.alongTrackSigmaS(utcMs) > 0 ? partialAlongTrackHzPerS(path, utcMs) : 0,
+    ut1HzPerS: budget.ut1BoundS > 0 ? partialUt1HzPerS(path, utcMs) : 0,
+  }, budget, radio), budget.k)
+  const nodes = new Map<number, Hz>()
+  const node = (n: number): Hz => {
+    let value = nodes.get(n)
+    if (value === undefined) nodes.set(n, value = exact(Math.min(Math.max(n * NODE_MS, ephemeris.fromMs), ephemeris.toMs)))
+    return value
+  }
+  return (utcMs) => {
+    const n = Math.floor(utcMs / NODE_MS)
+    const share = utcMs / NODE_MS - n
+    return NODE_ROOM * (node(n) * (1 - share) + node(n + 1) * share)
+  }
+}
