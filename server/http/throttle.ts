@@ -18,14 +18,25 @@ function useLimiters() {
   return limiters
 }
 
-export async function throttleSignIn<T>(event: H3Event, email: string, attempt: () => Promise<T>): Promise<T> {
+export const throttleSignIn = <T>(event: H3Event, email: string, attempt: () => Promise<T>) =>
+  throttle(event, email.trim().toLowerCase().slice(0, 254), error => error.code === 'not-signed-in', attempt)
+
+/** Whoever tries one-time addresses at random is counted like a failed sign-in. */
+export const throttleOneTimeLink = <T>(event: H3Event, attempt: () => Promise<T>) =>
+  throttle(event, 'one-time address', error => error.code === 'not-found', attempt)
+
+/** A session left open is no way to try out passwords. */
+export const throttlePasswordChange = <T>(event: H3Event, email: string, attempt: () => Promise<T>) =>
+  throttle(event, email, error => error.fields.some(field => field.path === 'currentPassword'), attempt)
+
+async function throttle<T>(event: H3Event, account: string, isFailure: (error: DomainError) => boolean, attempt: () => Promise<T>): Promise<T> {
   const { pair, address } = useLimiters()
   const ip = getRequestIP(event, { xForwardedFor: process.env.TRUST_PROXY === '1' }) ?? 'unknown'
-  const keys = [{ limiter: pair, key: `${email.trim().toLowerCase().slice(0, 254)}|${ip}` }, { limiter: address, key: ip }]
+  const keys = [{ limiter: pair, key: `${account}|${ip}` }, { limiter: address, key: ip }]
   for (const { limiter, key } of keys) {
     const state = await limiter.get(key)
     if (state && state.consumedPoints >= limiter.points) {
-      throw new DomainError('too-many', 'Too many failed sign-ins: wait and try again.', [], Math.max(1, state.msBeforeNext / 1000))
+      throw new DomainError('too-many', 'Too many failed attempts: wait and try again.', [], Math.max(1, state.msBeforeNext / 1000))
     }
   }
   try {
@@ -34,7 +45,7 @@ export async function throttleSignIn<T>(event: H3Event, email: string, attempt: 
     return result
   }
   catch (error) {
-    if (error instanceof DomainError && error.code === 'not-signed-in') await Promise.all(keys.map(({ limiter, key }) => limiter.penalty(key)))
+    if (error instanceof DomainError && isFailure(error)) await Promise.all(keys.map(({ limiter, key }) => limiter.penalty(key)))
     throw error
   }
 }
