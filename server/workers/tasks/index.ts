@@ -1,5 +1,14 @@
+import { compareSets } from './compare-sets'
+import { readElements } from './read-elements'
+import { passSamples } from './pass-samples'
+import { predictStation } from './predict-station'
+
 /** Heavy computing, off the thread that answers requests. Each task is a pure function of plain data. */
 export const tasks = {
+  'compare-sets': compareSets,
+  'read-elements': readElements,
+  'predict-station': predictStation,
+  'pass-samples': passSamples,
 }
 
 export type TaskName = keyof typeof tasks

@@ -1,0 +1,91 @@
+import type { AlongTrackModel } from '#shared/physics/accuracy/prior'
+import { meanSpeedMps, perigeeSpeedMps, priorFor } from '#shared/physics/accuracy/prior'
+import { SPEED_OF_LIGHT_MPS } from '#shared/physics/doppler/ratio'
+import type { BudgetModel, LinkModel, MeanElements, RadioModel, Site } from '#shared/physics/types'
+import type { Settings } from '#shared/schemas/settings'
+import type { links, radios, spacecraft, stations } from '~~/server/database/schema'
+
+export type SpacecraftRow = typeof spacecraft.$inferSelect
+export type StationRow = typeof stations.$inferSelect
+export type LinkRow = typeof links.$inferSelect
+export type RadioRow = typeof radios.$inferSelect
+
+/** An error budget as plain data, to cross to a worker; `budgetModelOf` gives it its function of time there. */
+export interface BudgetParameters extends Omit<BudgetModel, 'alongTrackSigmaS'> { readonly alongTrack: AlongTrackModel }
+
+const RAD_PER_DEG = Math.PI / 180
+/** Speed of the ground at the equator. */
+const GROUND_SPEED_MPS = 465.1
+
+export function siteOf(station: StationRow): Site {
+  return {
+    latitudeRad: station.latitudeDeg * RAD_PER_DEG,
+    longitudeRad: station.longitudeDeg * RAD_PER_DEG,
+    heightM: station.heightM,
+    minElevationRad: station.minElevationDeg * RAD_PER_DEG,
+    mask: station.mask.map(point => ({ azimuthRad: point.azimuthDeg * RAD_PER_DEG, elevationRad: point.elevationDeg * RAD_PER_DEG })),
+  }
+}
+
+export function linkModelOf(link: LinkRow): LinkModel {
+  const { direction, carrierHz, symbolRateHz, detector, permittedLossDb, captureRangeHz, filterBandwidthHz, rolloff } = link
+  const { driftLimitHzPerS, jumpLimitHz, limitHz, errorRate, bandLowHz, bandHighHz } = link
+  return { direction, carrierHz, symbolRateHz, detector, permittedLossDb, captureRangeHz, filterBandwidthHz, rolloff, driftLimitHzPerS, jumpLimitHz, limitHz, errorRate, bandLowHz, bandHighHz }
+}
+
+/** A link's own minimum elevation, rad. */
+export const linkMinElevationRad = (link: LinkRow): number => link.minElevationDeg * RAD_PER_DEG
+
+export function radioModelOf({ stepHz, offsetHz, minDwellS, latencyMs, latencyUncertaintyMs }: RadioRow): RadioModel {
+  return { stepHz, offsetHz, minDwellS, latencyMs, latencyUncertaintyMs }
+}
+
+/** The spacecraft's own along-track accuracy where it is stated, else the settings' prior for its perigee. */
+export function alongTrackOf(craft: SpacecraftRow, elements: MeanElements, settings: Pick<Settings, 'prior'>): AlongTrackModel {
+  const prior = priorFor(elements, settings.prior)
+  return {
+    floorKm: craft.alongTrackFloorKm ?? prior.floorKm,
+    growthKmPerDay: craft.alongTrackGrowthKmPerDay ?? prior.growthKmPerDay,
+    epochMs: elements.epochUtcUs / 1000,
+    speedMps: meanSpeedMps(elements),
+  }
+}
+
+export interface BudgetSources {
+  readonly craft: SpacecraftRow
+  readonly station: StationRow
+  readonly radio: RadioRow
+  readonly elements: MeanElements
+  readonly settings: Pick<Settings, 'prior' | 'k'>
+  readonly ut1: { readonly ut1MinusUtcS: number, readonly boundS: number }
+}
+
+export function budgetParametersOf({ craft, station, radio, elements, settings, ut1 }: BudgetSources): BudgetParameters {
+  return {
+    clockErrorMs: station.clockErrorMs,
+    ut1MinusUtcS: ut1.ut1MinusUtcS,
+    ut1BoundS: ut1.boundS,
+    spacecraftPpm: craft.oscillatorPpm,
+    stationPpm: radio.referencePpm,
+    k: settings.k,
+    alongTrack: alongTrackOf(craft, elements, settings),
+  }
+}
+
+/** Largest Doppler shift that a set's orbit can give a carrier, either way, Hz. */
+export function dopplerRoomHz(carrierHz: number, elements: MeanElements): number {
+  return carrierHz * (perigeeSpeedMps(elements) + GROUND_SPEED_MPS) / SPEED_OF_LIGHT_MPS
+}
+
+/**
+ * The radio that serves a link at a station: it works in the link's direction and its tuning range holds the carrier
+ * with its Doppler shift. Of several the one with the finest step, then by name and id, so that the choice stays.
+ */
+export function radioFor(link: LinkRow, elements: MeanElements, radios: readonly RadioRow[]): RadioRow | null {
+  const room = dopplerRoomHz(link.carrierHz, elements)
+  const [best] = radios
+    .filter(radio => radio.retiredAt === null && (link.direction === 'uplink' ? radio.transmits : radio.receives)
+      && radio.tuneLowHz <= link.carrierHz - room && link.carrierHz + room <= radio.tuneHighHz)
+    .sort((a, b) => a.stepHz - b.stepHz || (a.name < b.name ? -1 : a.name > b.name ? 1 : 0) || (a.id < b.id ? -1 : 1))
+  return best ?? null
+}

@@ -1,0 +1,63 @@
+import { sql } from 'drizzle-orm'
+import type { PredictStationOutput } from '~~/server/workers/tasks/predict-station'
+import { runTask } from '~~/server/workers/pool'
+import type { Deps } from '../context'
+import { systemActor } from '../context'
+import type { PairIds, PairInputs } from './load-inputs'
+import { fingerprint, loadInputs } from './load-inputs'
+import type { KnownPass } from './load-known'
+import { knownFingerprint, loadKnown, lockTables } from './load-known'
+import { mergePrediction } from './merge-prediction'
+import type { PredictionOutcome } from './recheck-outcome'
+import { windowStart, workerInputOf } from './worker-input'
+import { writePrediction } from './write-prediction'
+
+const MOST_TRIES = 3
+
+export interface PredictionRequest extends PairIds {
+  /** Goes to the tables that change, in words. */
+  reason: string
+}
+
+/**
+ * Computes the coming passes of one spacecraft over one station and the tuning tables of its links, and joins them to
+ * what is known. The computing runs in a worker, outside the transaction; what it was made with is compared again under
+ * a lock on the pair, and what has changed meanwhile leads to another try.
+ */
+export async function predictStation({ db, now }: Pick<Deps, 'db' | 'now'>, request: PredictionRequest): Promise<PredictionOutcome> {
+  const from = windowStart(now)
+  for (let tries = 0; tries < MOST_TRIES; tries++) {
+    const inputs = await loadInputs({ db, now }, request)
+    const known = await loadKnown({ db }, request, from)
+    const predicted = await compute(inputs, known, now)
+    const outcome = await db.transaction(async (tx) => {
+      await tx.execute(sql`SELECT pg_advisory_xact_lock(hashtextextended(${`${request.spacecraftId}:${request.stationId}`}, 0))`)
+      await lockTables({ db: tx }, known.flatMap(pass => pass.tables.map(table => table.id)))
+      const knownNow = await loadKnown({ db: tx }, request, from)
+      const isCurrent = knownFingerprint(knownNow) === knownFingerprint(known)
+        && fingerprint(await loadInputs({ db: tx, now }, request)) === fingerprint(inputs)
+      return isCurrent ? join({ db: tx, now, actor: systemActor }, request, inputs, knownNow, predicted) : null
+    })
+    if (outcome) return outcome
+  }
+  throw new Error('What the prediction is made with kept changing: try again when the changes are done.')
+}
+
+function compute(inputs: PairInputs, known: readonly KnownPass[], now: Date): Promise<PredictStationOutput> | null {
+  if (!inputs.set || inputs.stopped) return null
+  return runTask('predict-station', workerInputOf({ ...inputs, set: inputs.set }, known, now))
+}
+
+async function join(deps: Deps, { spacecraftId, stationId, reason }: PredictionRequest, inputs: PairInputs, known: readonly KnownPass[], predicted: PredictStationOutput | null): Promise<PredictionOutcome> {
+  const merge = mergePrediction({ inputs, known, predicted, reason, now: deps.now })
+  await writePrediction(deps, merge)
+  const outcome: PredictionOutcome = {
+    spacecraftId,
+    stationId,
+    reason,
+    passes: { added: merge.passInserts.length, changed: merge.passChanges.length, gone: merge.gonePassIds.length },
+    revisions: { drafted: merge.revisionInserts.length, recomputed: merge.revisionChanges.filter(change => change.rows).length, lapsed: merge.lapses.length },
+    rechecks: merge.rechecks,
+  }
+  return outcome
+}

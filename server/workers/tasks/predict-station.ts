@@ -1,0 +1,103 @@
+import { createEphemeris } from '#shared/physics/orbit/ephemeris'
+import { findPasses } from '#shared/physics/orbit/passes'
+import { createPropagator } from '#shared/physics/orbit/propagator'
+import { buildTable, residualOfRows } from '#shared/physics/predict/build-table'
+import type { Ephemeris, LinkModel, MeanElements, PredictedPass, PropagationError, RadioModel, RetuneRow, Site, UtcMs, Verdict } from '#shared/physics/types'
+import { needsNewRevision } from '#shared/table-life'
+import type { StoredCheck, StoredRetune } from '~~/server/database/schema'
+import { identityToleranceMs, matchPasses } from '~~/server/domain/prediction/match-passes'
+import type { BudgetParameters } from '~~/server/domain/prediction/models'
+import { budgetModelOf } from './budget-model'
+import { isoOf, storedCheck, storedRetune } from './stored-table'
+
+export interface LinkTask { linkId: string, model: LinkModel, minElevationRad: number, radioModel: RadioModel, budget: BudgetParameters }
+
+/** What is to be done for a table that exists: rows that are out are rechecked, a plan is made or not. */
+export interface KnownTableTask {
+  linkId: string
+  plan: 'make' | 'leave' | 'make-if-moved'
+  /** Rows that the station has, with the check they went out with. */
+  out: { rows: RetuneRow[], verdict: Verdict, worstResidualHz: number, otherRadio: boolean } | null
+}
+export interface KnownPassTask { id: string, aosMs: UtcMs, culminationMs: UtcMs, gone: boolean, tables: KnownTableTask[] }
+
+export interface PredictStationInput {
+  elements: MeanElements
+  site: Site
+  ut1MinusUtcS: number
+  nowMs: UtcMs
+  fromMs: UtcMs
+  toMs: UtcMs
+  links: LinkTask[]
+  known: KnownPassTask[]
+}
+
+export interface Recheck { verdict: Verdict, worstResidualHz: number, worstAt: string, allowanceHz: number, moved: boolean }
+export interface PlannedTable { verdict: Verdict, retunes: StoredRetune[], check: StoredCheck }
+export interface PredictedTable {
+  linkId: string
+  kind: 'left' | 'not-workable' | 'planned'
+  planned: PlannedTable | null
+  recheck: Recheck | null
+}
+export interface StationPass {
+  knownId: string | null
+  /** Begun, or cut by the window: stays as it is known, or waits for the next time if it is new. */
+  untouched: boolean
+  aosMs: UtcMs
+  culminationMs: UtcMs
+  losMs: UtcMs
+  maxElevationDeg: number
+  tables: PredictedTable[]
+}
+export interface PredictStationOutput { passes: StationPass[], endedBy: PropagationError | null }
+
+/** Passes of one spacecraft over one station, told apart from those known, with a table for each link that needs one. */
+export function predictStation(input: PredictStationInput): PredictStationOutput {
+  const { elements, site, ut1MinusUtcS, nowMs, fromMs, toMs } = input
+  const created = createPropagator(elements)
+  if (!created.ok) return { passes: [], endedBy: created.error }
+  const ephemeris = createEphemeris(created.propagator, fromMs, toMs)
+  const { passes, endedBy } = findPasses({ ephemeris, site, fromMs, toMs, ut1MinusUtcS })
+  const matches = matchPasses(passes, input.known, identityToleranceMs(elements.meanMotionRevPerDay))
+  return {
+    endedBy,
+    passes: passes.map((pass, i) => {
+      const known = matches[i] ?? null
+      const untouched = pass.aosClipped || pass.losClipped || pass.aosMs <= nowMs || (known !== null && known.aosMs <= nowMs)
+      return {
+        knownId: known?.id ?? null,
+        untouched,
+        aosMs: Math.round(pass.aosMs),
+        culminationMs: Math.round(pass.culminationMs),
+        losMs: Math.round(pass.losMs),
+        maxElevationDeg: pass.maxElevationRad * 180 / Math.PI,
+        tables: untouched ? [] : input.links.map(link => predictTable(link, known?.tables.find(table => table.linkId === link.linkId), { ephemeris, site, pass })),
+      }
+    }),
+  }
+}
+
+function predictTable(task: LinkTask, known: KnownTableTask | undefined, { ephemeris, site, pass }: { ephemeris: Ephemeris, site: Site, pass: PredictedPass }): PredictedTable {
+  const { linkId, model: link, minElevationRad: linkMinElevationRad, radioModel: radio } = task
+  const query = { propagator: ephemeris.propagator, ephemeris, site, link, linkMinElevationRad, radio, budget: budgetModelOf(task.budget), pass }
+
+  let recheck: Recheck | null = null
+  if (known?.out) {
+    const check = residualOfRows({ ...query, rows: known.out.rows })
+    if ('kind' in check) return { linkId, kind: 'not-workable', planned: null, recheck: null }
+    const figures = { verdict: check.verdict, worstResidualHz: check.worstResidualHz, allowanceHz: check.allowance.allowanceHz }
+    recheck = { ...figures, worstAt: isoOf(check.worstAtMs), moved: known.out.otherRadio || needsNewRevision(known.out, figures) }
+  }
+  const plan = known?.plan ?? 'make'
+  if (plan === 'leave' || (plan === 'make-if-moved' && !recheck?.moved)) return { linkId, kind: 'left', planned: null, recheck }
+
+  const built = buildTable(query)
+  if (built.kind === 'not-workable') return { linkId, kind: 'not-workable', planned: null, recheck }
+  return {
+    linkId,
+    kind: 'planned',
+    planned: { verdict: built.check.verdict, retunes: built.check.retunes.map(storedRetune), check: storedCheck(built.check, built.parts, built.kappa) },
+    recheck,
+  }
+}
