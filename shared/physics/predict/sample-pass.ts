@@ -31,7 +31,7 @@ function sampleTimes(pass: PredictedPass, stepMs: number): UtcMs[] {
   return [...distinct, ...stepped.filter(isFree)].sort((a, b) => a - b)
 }
 
-/** What an antenna and a radio see through a pass: look angles (§ look), Doppler and its rate at each sample. */
+/** What an antenna and a radio see through a pass: look angles, Doppler and its rate at each sample. */
 export function samplePass(pass: PredictedPass, options: SampleOptions): PassSample[] {
   const { ephemeris, site, ut1MinusUtcS, stepS } = options
   if (!(stepS > 0)) throw new RangeError(`stepS is ${stepS}: give a positive number of seconds`)

@@ -41,6 +41,12 @@ describe('a pass in samples', () => {
     expect(Math.max(...samples.map(s => s.elevationRad))).toBe(samples.find(s => s.atMs === pass!.culminationMs)!.elevationRad)
   })
 
+  it('bears culmination or LOS in place of a step within half a millisecond of it', () => {
+    const even = { ...pass!, culminationMs: pass!.aosMs + 100_000.2, losMs: pass!.aosMs + 200_000.2 }
+    const times = samplePass(even, { ...options, direction: 'uplink', stepS: 50 }).map(sample => sample.atMs - pass!.aosMs)
+    expect(times).toEqual([0, 50_000, 100_000.2, 150_000, 200_000.2].map(t => expect.closeTo(t, 2)))
+  })
+
   it('has three samples when the step is longer than the pass, one instant each', () => {
     expect(samplePass(pass!, { ...options, direction: 'uplink', stepS: 1e5 })).toHaveLength(3)
     const cut = { ...pass!, culminationMs: pass!.aosMs }
