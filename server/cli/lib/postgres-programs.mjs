@@ -59,8 +59,7 @@ function versionsBelow(base) {
  */
 export function findPostgres({ major, packages = join(dataFolder, 'packages') } = {}) {
   const onPath = (process.env.PATH ?? '').split(delimiter).filter(Boolean)
-  // Not looked for where this is set: for trying the unpacked programs on a machine that has installed ones.
-  const ofSystem = process.env.NULLBEAT_POSTGRES === 'unpacked' ? [] : [...versionsBelow('/usr/lib/postgresql'), ...onPath]
+  const ofSystem = [...versionsBelow('/usr/lib/postgresql'), ...onPath]
   const unpackedEnv = { LD_LIBRARY_PATH: libraryFolders(packages).join(':') }
   for (const [bins, env] of /** @type {[string[], Record<string, string>][]} */ ([[ofSystem, {}], [versionsBelow(join(packages, 'usr/lib/postgresql')), unpackedEnv]])) {
     for (const bin of bins) {
@@ -83,7 +82,7 @@ export async function ensurePostgres(major) {
   const name = major ? `postgresql-${major}` : 'postgresql'
   let reason = ''
   try {
-    if (canInstall() && process.env.NULLBEAT_POSTGRES !== 'unpacked') {
+    if (canInstall()) {
       refuseMainCluster()
       await install([name])
     }
