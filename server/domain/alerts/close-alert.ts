@@ -1,0 +1,31 @@
+import { eq } from 'drizzle-orm'
+import type { AlertOut } from '#shared/schemas/alerts'
+import { alerts } from '~~/server/database/schema'
+import { recordAudit } from '../audit'
+import type { Deps } from '../context'
+import { DomainError } from '../errors'
+import { findCauses } from './find-causes'
+import { readAlert } from './read-alerts'
+import { requireAlert } from './require-alert'
+
+/**
+ * Closes an alert. While its cause stands that is setting it aside: with a reason, by on-call or an administrator only;
+ * it then calls again when the cause has been gone and comes back, or is worse by a fifth.
+ */
+export async function closeAlert(given: Deps, input: { alertId: string, reason?: string }): Promise<AlertOut> {
+  const { alertId, reason } = input
+  return await given.db.transaction(async (tx) => {
+    const deps = { ...given, db: tx }
+    const { alert, person, mayActOnAny } = await requireAlert(deps, alertId)
+    if (alert.state === 'closed') throw new DomainError('conflict', `This alert was closed already by ${alert.closedBy}.`)
+    const causes = await findCauses(deps, { kinds: [alert.kind] })
+    const cause = causes.find(one => one.cause === alert.cause)
+    if (cause && !mayActOnAny) throw new DomainError('not-allowed', 'The cause still stands: decide on the tables, and the alert closes by itself. Only on-call or an administrator may set it aside.')
+    if (cause && !reason) throw new DomainError('not-valid', 'The cause still stands: say why it may be set aside.', [{ path: 'reason', message: 'Say why, in a few words.' }])
+    await tx.update(alerts).set({ state: 'closed', closedAt: deps.now, closedBy: person.name, closeReason: cause ? `Set aside while it stands: ${reason}` : reason ?? 'Closed after the cause was gone.' }).where(eq(alerts.id, alertId))
+    const entry = { entityKind: 'alert', entityId: alertId, tableId: alert.tableId ?? undefined, reason: reason ?? null }
+    await recordAudit(deps, { ...entry, action: 'alert.close', before: { state: alert.state }, after: { state: 'closed' } })
+    if (cause) await recordAudit(deps, { ...entry, action: 'alert.set-aside', after: { weight: cause.weight } })
+    return await readAlert(deps, alertId)
+  })
+}
