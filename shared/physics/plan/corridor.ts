@@ -29,7 +29,7 @@ export interface CurveSource {
   readonly toleranceHz: Hz
 }
 
-const FIRST_STEP_MS = 4000
+const FIRST_STEP_MS = 16_000
 const LEAST_STEP_MS = 3
 
 /**
