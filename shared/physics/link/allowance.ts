@@ -1,5 +1,5 @@
-import type { Allowance, LimitedBy, LinkModel } from '../types.ts'
-import { amplitudeAt, firstNullEpsilon } from './loss.ts'
+import type { Allowance, LimitedBy, LinkModel } from '../types'
+import { amplitudeAt, firstNullEpsilon } from './loss'
 
 /**
  * The largest residual a link bears, Hz: the smallest of

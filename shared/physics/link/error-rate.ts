@@ -1,4 +1,4 @@
-import { erfc } from './erfc.ts'
+import { erfc } from './erfc'
 
 /**
  * Bit error rate of coherent BPSK, and of QPSK with Gray mapping, over white noise: P = ½ erfc √(Eb/N0).

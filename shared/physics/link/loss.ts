@@ -1,6 +1,6 @@
-import type { Hz, LinkModel } from '../types.ts'
-import { overlap } from './root-raised-cosine.ts'
-import { sinc } from './sinc.ts'
+import type { Hz, LinkModel } from '../types'
+import { overlap } from './root-raised-cosine'
+import { sinc } from './sinc'
 
 /** At a null of the detector nothing comes out; JSON has no Infinity, so the loss is stated as this, dB. */
 export const LOSS_CAP_DB = 300

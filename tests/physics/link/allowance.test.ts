@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest'
-import { allowanceOf } from '../../../shared/physics/link/allowance.ts'
-import type { LinkModel } from '../../../shared/physics/types.ts'
+import { allowanceOf } from '../../../shared/physics/link/allowance'
+import type { LinkModel } from '../../../shared/physics/types'
 
 const link: LinkModel = {
   direction: 'downlink', carrierHz: 437.5e6, symbolRateHz: 9600, detector: 'quadrature', permittedLossDb: 0.5,

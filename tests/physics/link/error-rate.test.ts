@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest'
-import { erfc } from '../../../shared/physics/link/erfc.ts'
-import { bitErrorRate, bitErrorRateAfterLoss, requiredEbN0Db } from '../../../shared/physics/link/error-rate.ts'
+import { erfc } from '../../../shared/physics/link/erfc'
+import { bitErrorRate, bitErrorRateAfterLoss, requiredEbN0Db } from '../../../shared/physics/link/error-rate'
 
 describe('the bit error rate of BPSK', () => {
   it('is 1e-5 at 9.59 dB', () => {

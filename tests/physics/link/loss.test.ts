@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest'
-import { interSymbolInterferenceDb, overlap } from '../../../shared/physics/link/root-raised-cosine.ts'
-import { LOSS_CAP_DB, lossDb } from '../../../shared/physics/link/loss.ts'
+import { interSymbolInterferenceDb, overlap } from '../../../shared/physics/link/root-raised-cosine'
+import { LOSS_CAP_DB, lossDb } from '../../../shared/physics/link/loss'
 
 const SYMBOL_RATE = 9600
 const link = (detector: 'quadrature' | 'coherent' | 'stated', rolloff: number | null = null) => ({ detector, rolloff, symbolRateHz: SYMBOL_RATE })
