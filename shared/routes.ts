@@ -131,7 +131,7 @@ export const routes = {
   'POST /api/station/v1/tables/{id}/report': { access: station, summary: 'What the station did with a revision', params: idParams, body: feed.reportBody, status: 204 },
   'GET /api/station/v1/keys': { access: station, summary: 'Public keys that signatures verify with', response: feed.jwkSetOut },
 
-  'GET /api/openapi.json': { access: open('The description holds no data.'), summary: 'This description' },
+  'GET /api/openapi.json': { access: open('The description holds no data.'), summary: 'This description', response: z.looseObject({ openapi: z.string() }) },
   'GET /api/health/live': { access: open('Asked by process supervisors.'), summary: 'The process answers', response: z.object({ status: z.literal('live') }) },
   'GET /api/health/ready': { access: open('Asked by process supervisors.'), summary: 'Database, migrations, scheduler', response: z.object({ status: z.enum(['ready', 'not-ready']), checks: z.record(z.string(), z.string()) }) },
 } as const satisfies Record<string, RouteSpec>

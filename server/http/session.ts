@@ -6,17 +6,19 @@ export function publicUrl(): URL {
   return new URL(process.env.PUBLIC_URL || 'http://127.0.0.1:3000')
 }
 
+const isSecure = () => publicUrl().protocol === 'https:'
 /** Behind TLS the cookie is Secure and bears the __Host- prefix; on plain HTTP it has another name. */
+export const sessionCookieName = () => isSecure() ? '__Host-nullbeat' : 'nullbeat-session'
+
 function sessionCookie(event: H3Event) {
-  const secure = publicUrl().protocol === 'https:'
   const password = process.env.NUXT_SESSION_PASSWORD
   if (!password || password.length < 32) throw new Error('SESSION_SECRET is missing or shorter than 32 characters.')
   return useSession<{ sid?: string }>(event, {
-    name: secure ? '__Host-nullbeat' : 'nullbeat-session',
+    name: sessionCookieName(),
     password,
     maxAge: sessionMaxMs / 1000,
     sessionHeader: false,
-    cookie: { httpOnly: true, sameSite: 'lax', path: '/', secure },
+    cookie: { httpOnly: true, sameSite: 'lax', path: '/', secure: isSecure() },
   })
 }
 

@@ -30,7 +30,7 @@ export type Settings = z.infer<typeof settingsSchema>
 /** Without defaults: what a change leaves out stays as it is. */
 export const changeSettingsBody = z.strictObject(fields).partial()
 export const settingsOut = z.object({
-  settings: z.object(fields),
+  settings: z.object({ ...fields, ut1: z.object({ ut1MinusUtcS: z.number(), validUntil: instantOut }).nullable() }),
   demo: z.boolean(),
   mail: z.object({ local: z.boolean(), queued: z.number().int(), failed: z.number().int() }),
 })
