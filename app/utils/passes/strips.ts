@@ -85,21 +85,19 @@ export function residualLines(data: StripData): ResidualPoint[][] {
 /** The areas in which the budgeted residual lies past the edge, above (+1) or below (−1); each begins and ends on the edge. */
 export function pastEdge(points: readonly ResidualPoint[], allowanceHz: number, side: 1 | -1): Point[][] {
   const areas: Point[][] = []
-  let area: Point[] | null = null
+  let previous: ResidualPoint | null = null
   const over = (point: ResidualPoint) => side * point.y + point.u - allowanceHz
-  points.forEach((point, i) => {
+  const edge = side * allowanceHz
+  for (const point of points) {
     const now = over(point)
-    const previous = points[i - 1]
     const before = previous ? over(previous) : -1
-    if (now > 0 !== before > 0) {
-      const t = previous ? previous.t + (point.t - previous.t) * before / (before - now) : point.t
-      const crossing = { t, y: side * allowanceHz }
-      if (now > 0) areas.push(area = [crossing])
-      else area?.push(crossing)
-    }
-    if (now > 0) area?.push({ t: point.t, y: side * (allowanceHz + now) })
-  })
-  if (area && points.length && over(points.at(-1)!) > 0) area.push({ t: points.at(-1)!.t, y: side * allowanceHz })
+    const crossingMs = previous ? previous.t + (point.t - previous.t) * before / (before - now) : point.t
+    if (now > 0 && !(before > 0)) areas.push([{ t: crossingMs, y: edge }])
+    if (now > 0) areas.at(-1)!.push({ t: point.t, y: edge + side * now })
+    if (before > 0 && !(now > 0)) areas.at(-1)!.push({ t: crossingMs, y: edge })
+    previous = point
+  }
+  if (previous && over(previous) > 0) areas.at(-1)!.push({ t: previous.t, y: edge })
   return areas
 }
 
