@@ -11,7 +11,7 @@ export function describeRoute(method: string, path: string, spec: RouteSpec): Re
   const parameters = [
     ...describeParameters('path', spec.params),
     ...describeParameters('query', spec.query),
-    ...(spec.creates && !spec.rawBody ? [{ $ref: '#/components/parameters/IdempotencyKey' }] : []),
+    ...(spec.creates ? [{ $ref: '#/components/parameters/IdempotencyKey' }] : []),
   ]
   return {
     operationId: operationId(method, path),
@@ -60,6 +60,7 @@ function describeAnswers(path: string, spec: RouteSpec): Record<string, object> 
   const status = String(spec.status ?? 200)
   const content = spec.response ? { content: { 'application/json': { schema: toSchema(spec.response, 'output') } } } : {}
   const answers: Record<string, object> = { [status]: { description: status === '204' ? 'Done' : status === '201' ? 'Created' : 'As asked', ...content } }
+  if (spec.rawBody) answers['202'] = { description: 'Large: being read; the report is at GET …/uploads/{id}', ...content }
   // Not ready is an answer of its own kind, no problem report.
   if (path === '/api/health/ready') answers['503'] = { description: 'Not ready: the checks say what fails', ...content }
   return answers
