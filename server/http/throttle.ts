@@ -1,19 +1,20 @@
 import type { H3Event } from 'h3'
 import { getRequestIP } from 'h3'
-import { RateLimiterPostgres } from 'rate-limiter-flexible'
+import { RateLimiterDrizzle } from 'rate-limiter-flexible'
 import { useDatabase } from '~~/server/database/client'
+import { rateLimits } from '~~/server/database/schema'
 import { DomainError } from '~~/server/domain/errors'
 
 /**
  * Failed sign-ins are counted per account from one address, and per address over all accounts. An attacker elsewhere
  * uses up only his own count, so the owner is never locked out.
  */
-let limiters: { pair: RateLimiterPostgres, address: RateLimiterPostgres } | null = null
+let limiters: { pair: RateLimiterDrizzle, address: RateLimiterDrizzle } | null = null
 function useLimiters() {
-  const shared = { storeClient: useDatabase().pool, tableName: 'rate_limits', tableCreated: true, duration: 15 * 60 }
+  const shared = { storeClient: useDatabase().db, schema: rateLimits, duration: 15 * 60 }
   limiters ??= {
-    pair: new RateLimiterPostgres({ ...shared, keyPrefix: 'sign-in', points: 8 }),
-    address: new RateLimiterPostgres({ ...shared, keyPrefix: 'address', points: 60 }),
+    pair: new RateLimiterDrizzle({ ...shared, keyPrefix: 'sign-in', points: 8 }),
+    address: new RateLimiterDrizzle({ ...shared, keyPrefix: 'address', points: 60 }),
   }
   return limiters
 }
