@@ -1,10 +1,12 @@
 import { createHash, randomUUID } from 'node:crypto'
 import { eq } from 'drizzle-orm'
 import type { Role } from '../../shared/permissions'
+import type { MeanElements } from '../../shared/physics/types'
 import type { Db } from '../../server/database/client'
 import type { StoredCheck } from '../../server/database/schema'
 import * as schema from '../../server/database/schema'
 import type { PersonActor } from '../../server/domain/context'
+import { loadInputs } from '../../server/domain/prediction/load-inputs'
 
 /** Rows that tests begin with, put in directly; each function gives the row, and takes what differs from an ordinary one. */
 type Given<T extends { $inferInsert: object }> = Partial<T['$inferInsert']>
@@ -44,13 +46,19 @@ export async function addSpacecraft(db: Db, epoch: Date, given: Given<typeof sch
 }
 export type SpacecraftFixture = Awaited<ReturnType<typeof addSpacecraft>>
 
+/** A near-circular orbit at some 500 km. */
+const ordinaryElements: MeanElements = {
+  name: null, catalogueNumber: null, designator: null, epochUtcUs: 0, meanMotionRevPerDay: 15.2, eccentricity: 0.001, inclinationDeg: 97.4, raanDeg: 10, argPericenterDeg: 20, meanAnomalyDeg: 30,
+  bstar: 1e-4, meanMotionDot: 0, meanMotionDdot: 0, classification: 'U', elementSetNumber: null, revolutionAtEpoch: null,
+}
+
 export async function addElementSet(db: Db, epoch: Date, given: Given<typeof schema.elementSets> = {}) {
   const text = randomUUID()
   const sha256 = createHash('sha256').update(text).digest('hex')
   const [upload] = await db.insert(schema.elementUploads).values({ state: 'finished', by: 'Test', source: 'api', original: Buffer.from(text), sha256, totalBytes: text.length }).returning()
   const [set] = await db.insert(schema.elementSets).values({
     uploadId: upload!.id, epoch, epochUtcUs: epoch.getTime() * 1000, originalText: text, lineNumber: 1, sha256, contentSha256: sha256,
-    elements: {} as typeof schema.elementSets.$inferInsert['elements'], ...given,
+    elements: { ...ordinaryElements, epochUtcUs: epoch.getTime() * 1000 }, ...given,
   }).returning()
   return set!
 }
@@ -101,4 +109,10 @@ export async function addRevision(db: Db, craft: SpacecraftFixture, station: Sta
     ...rest,
   }).returning()
   return revision!
+}
+
+/** What a revision's `inputsDigest` is while nothing it depends on has changed: such a table can be published. */
+export async function presentDigest(db: Db, now: Date, craft: SpacecraftFixture, station: { id: string }): Promise<string> {
+  const { served } = await loadInputs({ db, now }, { spacecraftId: craft.id, stationId: station.id })
+  return served.find(({ link }) => link.id === craft.link.id)!.digest
 }

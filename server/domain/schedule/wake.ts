@@ -1,0 +1,38 @@
+import type { Deps } from '../context'
+import { scheduleActor } from '../context'
+import { reconcileAlerts } from '../alerts/reconcile-alerts'
+import { lapseDue } from '../tables/lapse-due'
+import { findDueLeads, publishLead } from './publish-lead'
+import { findDueNights, publishNight } from './publish-night'
+import { rollForward } from './roll-forward'
+import { sendDigest } from './send-digest'
+
+export interface WakeOptions {
+  /** Alerts are looked at once a minute, not at every wake. */
+  withAlerts: boolean
+  /** One thing that fails stops none of the others. */
+  onError: (part: string, error: unknown) => void
+}
+
+/** Does what is due by the clock that it is handed: the database's. Idempotent, and safe on several servers at once. */
+export async function wake({ db, now }: Pick<Deps, 'db' | 'now'>, { withAlerts, onError }: WakeOptions): Promise<void> {
+  const deps: Deps = { db, now, actor: scheduleActor }
+  const attempt = async (part: string, act: () => Promise<unknown>) => {
+    try {
+      await act()
+    }
+    catch (error) {
+      onError(part, error)
+    }
+  }
+  await attempt('publish before passes', async () => {
+    for (const lead of await findDueLeads(deps)) await attempt(`publish table ${lead.tableId}`, () => publishLead(deps, lead))
+  })
+  await attempt('publish evenings', async () => {
+    for (const night of await findDueNights(deps)) await attempt(`publish the evening of ${night.station.name}`, () => publishNight(deps, night))
+  })
+  await attempt('lapse', () => lapseDue(deps))
+  await attempt('digest', () => sendDigest(deps))
+  await attempt('roll forward', () => rollForward(deps))
+  if (withAlerts) await attempt('alerts', () => reconcileAlerts(deps))
+}
