@@ -1,7 +1,8 @@
-import { allowanceOf } from '#shared/physics/link/allowance'
-import type { links } from '~~/server/database/schema'
+import { allowanceOf } from './physics/link/allowance'
+import type { LinkModel } from './physics/types'
 
-export type LinkRow = typeof links.$inferSelect
+/** What a link may be loosened in. */
+export type LimitedLink = LinkModel & { readonly bandLowHz: number, readonly bandHighHz: number, readonly minElevationDeg: number }
 
 /** Limits that bind by being small; null is no limit at all. */
 const ceilings = {
@@ -16,9 +17,9 @@ const ceilings = {
 /**
  * In words, which limits a change loosens, so that what broke before may pass now: a larger ceiling, a wider band, a
  * larger allowance by whatever field, another minimum elevation (lower: worked where it was not; higher: what lies
- * below is no longer checked). Empty when it only tightens.
+ * below is no longer checked). Empty when it only tightens. The server asks for a reason by it, the form shows it.
  */
-export function loosenedLimits(before: LinkRow, after: LinkRow): string[] {
+export function loosenedLimits(before: LimitedLink, after: LimitedLink): string[] {
   const said: string[] = []
   const say = (what: string, from: number | null, to: number | null) => said.push(`${what}: ${from ?? 'none'} → ${to ?? 'none'}`)
   for (const [field, what] of Object.entries(ceilings) as [keyof typeof ceilings, string][]) {
