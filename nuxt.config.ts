@@ -55,6 +55,8 @@ export default defineNuxtConfig({
     tsConfig: { compilerOptions: { noUncheckedIndexedAccess: true } },
   },
   nitro: {
+    // Its inner files are imported by path, which the development server cannot resolve when left outside the bundle.
+    externals: { inline: ['satellite.js'] },
     typescript: { strict: true },
     hooks: { compiled: nitro => bundleWorkers(nitro.options.output.serverDir) },
     esbuild: { options: { target: 'node20' } },
