@@ -10,7 +10,7 @@ const marker = join(root, '.output', '.nullbeat-built')
 
 /** @returns {string} the fingerprint of what the server is built from */
 export function sourcesFingerprint() {
-  return fingerprint(root, sources, [process.version])
+  return fingerprint(root, sources, [process.version], ['server/cli'])
 }
 
 /** @returns {boolean} whether the built server is the one that the sources make */

@@ -10,12 +10,14 @@ import { readIfThere, writeWhole } from './files.mjs'
  * @param {string} root
  * @param {string[]} names files or folders below root
  * @param {string[]} [extra] whatever else the outcome depends on
+ * @param {string[]} [except] files or folders in them that do not matter
  * @returns {string} in hexadecimal
  */
-export function fingerprint(root, names, extra = []) {
+export function fingerprint(root, names, extra = [], except = []) {
   const hash = createHash('sha256').update(JSON.stringify(extra))
   /** @param {string} name */
   const add = (name) => {
+    if (except.includes(name)) return
     const path = join(root, name)
     const stat = statSync(path, { throwIfNoEntry: false })
     if (stat?.isDirectory()) {

@@ -102,7 +102,7 @@ async function whatFails(address) {
   try {
     const response = await fetch(address, { signal: AbortSignal.timeout(5000), redirect: 'manual' })
     const text = await response.text()
-    return response.status === 200 ? undefined : `it answers ${response.status}: ${text.slice(0, 300)}`
+    return response.status === 200 ? undefined : `it answers ${response.status}: ${text.replace(/\s+/g, ' ').slice(0, 300)}`
   }
   catch {
     return 'it does not answer yet'

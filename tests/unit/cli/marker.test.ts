@@ -33,6 +33,14 @@ describe('a fingerprint of sources', () => {
     writeFileSync(join(root, 'app/pages/.a.vue.swp'), 'x')
     expect(now()).toBe(before)
   })
+
+  it('leaves out what it is told does not matter', () => {
+    const before = fingerprint(root, ['app'], [], ['app/pages'])
+    writeFileSync(join(root, 'app/pages/a.vue'), 'two')
+    expect(fingerprint(root, ['app'], [], ['app/pages'])).toBe(before)
+    writeFileSync(join(root, 'app/app.vue'), 'x')
+    expect(fingerprint(root, ['app'], [], ['app/pages'])).not.toBe(before)
+  })
 })
 
 describe('a slow step', () => {
