@@ -12,9 +12,9 @@ describe('a table of one row on the carrier', () => {
   const pass = referenceDoppler().passes[0]!
   const fromMs = Date.parse(pass.windowStart) + pass.startS * 1000
   const toMs = fromMs + (pass.rangeRateMps.length - 1) * pass.stepS * 1000
-  const check = (direction: 'downlink' | 'uplink') => checkTable({
+  const check = (direction: 'downlink' | 'uplink', untilMs = toMs) => checkTable({
     propagator: propagatorOf(elementsFromLines(pass.line1, pass.line2)), site: siteFromDegrees(pass.station),
-    link: { ...uhfLink, direction }, radio: { ...steppedRadio, latencyUncertaintyMs: 0 }, budget: noUncertainty, parts: [{ fromMs, toMs }],
+    link: { ...uhfLink, direction }, radio: { ...steppedRadio, latencyUncertaintyMs: 0 }, budget: noUncertainty, parts: [{ fromMs, toMs: untilMs }],
     rows: [{ atMs: fromMs - 50, frequencyHz: 437_500_000, slopeHzPerS: 0 }],
   })
 
@@ -46,8 +46,11 @@ describe('a table of one row on the carrier', () => {
     const [slowest, fastest] = check('downlink').symbolClockPpm
     expect(slowest).toBeCloseTo(Math.min(...offsets) / 437.5, 3)
     expect(fastest).toBeCloseTo(Math.max(...offsets) / 437.5, 3)
-    // The uplink arrives scaled the same way, though it is transmitted the other way about.
-    expect(check('uplink').symbolClockPpm[1]).toBeCloseTo(fastest, 1)
+    // The uplink arrives scaled the same way, though it is transmitted the other way about; both while approaching, and to
+    // the difference between the two directions, v²/c².
+    const approaching = (direction: 'downlink' | 'uplink') => check(direction, fromMs + 60_000).symbolClockPpm
+    expect(approaching('uplink')[0]).toBeCloseTo(approaching('downlink')[0], 1)
+    expect(approaching('uplink')[1]).toBeCloseTo(offsets[0]! / 437.5, 1)
   })
 
   it('is on its radio and within no reach of the link', () => {
@@ -141,6 +144,8 @@ describe('the checker catches what goes wrong with a good table', () => {
     const drift = check(table.rows, { link: { ...link, driftLimitHzPerS: 50 } })
     expect(codes(drift)).toEqual(['drift'])
     expect(drift.verdict).toBe('breaks')
+    const both = check(table.rows, { link: { ...link, jumpLimitHz: 1000, driftLimitHzPerS: 50 } }).faults.map(fault => fault.atMs)
+    expect(both).toEqual([...both].sort((a, b) => a - b))
   })
 
   it('a slope that this radio cannot follow', () => {
