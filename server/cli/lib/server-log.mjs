@@ -28,13 +28,12 @@ export class ServerLog {
 
   /**
    * @param {import('node:stream').Readable | null} stream
-   * @param {(line: string) => void} onLine
+   * @param {(line: string) => boolean} onLine whether the line may be kept: one that holds a secret may not
    */
   follow(stream, onLine) {
     if (!stream) return
     createInterface({ input: stream }).on('line', (line) => {
-      this.#keep(line)
-      onLine(line)
+      if (onLine(line)) this.#keep(line)
     })
   }
 

@@ -67,6 +67,7 @@ export async function startServer(settings, env, { dev, logFile, onSpawn }) {
       const found = /^first-administrator (\S+)$/.exec(line)
       if (found) server.firstAdministrator = found[1]
       else if (dev || needsAttention(line)) console.log(line)
+      return !found
     })
   }
   onSpawn(server)

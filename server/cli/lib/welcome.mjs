@@ -17,7 +17,7 @@ export function welcome(settings, secrets, firstAdministrator) {
   else if (firstAdministrator) {
     lines.push('  There is nobody yet. Make the first administrator at this address, which works once:', '', `    ${firstAdministrator}`, '')
   }
-  if (!settings.smtpUrl) lines.push(`  Mail stays inside: read it at ${settings.publicUrl}/mail`)
+  if (!settings.smtpUrl) lines.push(`  Mail stays inside: read it at ${settings.publicUrl}/demo/mail`)
   lines.push('  Stop with Ctrl-C. The log is .data/server.log', '')
   return lines.join('\n')
 }

@@ -1,10 +1,12 @@
-import { mkdtempSync, rmSync, statSync, writeFileSync } from 'node:fs'
+import { mkdtempSync, readFileSync, rmSync, statSync, writeFileSync } from 'node:fs'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
+import { Readable } from 'node:stream'
+import { setTimeout as wait } from 'node:timers/promises'
 import { describe, expect, it } from 'vitest'
 import { isAtLeast } from '../../../server/cli/lib/require-node.mjs'
 import { keepSecrets } from '../../../server/cli/lib/secrets.mjs'
-import { needsAttention } from '../../../server/cli/lib/server-log.mjs'
+import { ServerLog, needsAttention } from '../../../server/cli/lib/server-log.mjs'
 import { countResults } from '../../../server/cli/lib/test-results.mjs'
 
 describe('versions', () => {
@@ -37,6 +39,27 @@ describe('secrets', () => {
 describe('the server’s log on the screen', () => {
   it('shows warnings and what is no structured line about an error, and nothing else', () => {
     expect(['{"level":40,"msg":"a"}', '{"level":30,"msg":"error"}', '[error] unhandled', 'Listening on'].map(needsAttention)).toEqual([true, false, true, false])
+  })
+})
+
+describe('the server’s log in its file', () => {
+  it('holds all lines but those with a secret, for the owner only, beside the log before it', async () => {
+    const folder = mkdtempSync(join(tmpdir(), 'nullbeat-unit-'))
+    const file = join(folder, 'server.log')
+    try {
+      writeFileSync(file, 'before\n')
+      const log = new ServerLog(file)
+      const lines = Readable.from(['one\nfirst-administrator http://x/#token=abc\n', 'two\n'])
+      log.follow(lines, line => !line.startsWith('first-administrator'))
+      while (!log.tail(9).includes('two') || readFileSync(file, 'utf8').length < 8) await wait(5)
+      expect(readFileSync(file, 'utf8')).toBe('one\ntwo\n')
+      expect(log.tail(9)).toBe('one\ntwo')
+      expect(statSync(file).mode & 0o777).toBe(0o600)
+      expect(readFileSync(`${file}.1`, 'utf8')).toBe('before\n')
+    }
+    finally {
+      rmSync(folder, { recursive: true })
+    }
   })
 })
 
