@@ -6,14 +6,14 @@ import { budgetOut, retuneOut, verdictSchema } from './tables'
 const orNull = <T extends z.ZodType>(schema: T) => schema.nullable().default(null)
 const benchLinkFields = {
   direction: directionSchema.default('downlink'),
-  carrierHz: positive().max(1e12).default(437_500_000),
-  symbolRateHz: positive().max(1e10).default(9600),
+  carrierHz: z.number().min(1).max(1e12).default(437_500_000),
+  symbolRateHz: z.number().min(1e-3).max(1e10).default(9600),
   detector: detectorSchema.default('quadrature'),
   permittedLossDb: positive().max(100).default(0.5),
   captureRangeHz: orNull(positive()),
   driftLimitHzPerS: orNull(positive()),
   jumpLimitHz: orNull(positive()),
-  errorRate: z.number().gt(0).lt(0.5).default(1e-5),
+  errorRate: z.number().min(1e-100).lt(0.5).default(1e-5),
   esN0Db: z.number().min(-50).max(100).default(20),
   rolloff: orNull(z.number().min(0).max(1)),
   filterBandwidthHz: orNull(positive()),
@@ -28,7 +28,7 @@ const needsLimit = (link: BenchLinkNumbers, ctx: z.RefinementCtx) => {
 }
 export const benchLink = z.strictObject(benchLinkFields).superRefine(needsLimit)
 export const benchRadio = z.strictObject({
-  stepHz: positive().default(10), offsetHz: z.number().default(0), minDwellS: atLeastZero().max(3600).default(1),
+  stepHz: z.number().min(1e-3).max(1e9).default(10), offsetHz: z.number().min(-1e12).max(1e12).default(0), minDwellS: atLeastZero().max(3600).default(1),
   latencyMs: atLeastZero().max(60_000).default(50), latencyUncertaintyMs: atLeastZero().max(60_000).default(0),
   ramp: z.literal(false, { error: 'Ramping radios are not planned for yet: leave ramp out or false.' }).default(false),
   slopeStepHzPerS: orNull(positive()), maxSlopeHzPerS: orNull(positive()),
@@ -49,7 +49,8 @@ export const benchPredictBody = z.strictObject({
   station: z.union([z.strictObject({ stationId: idSchema }), benchStation], { error: 'Give a station with latitudeDeg, longitudeDeg and heightM, or { "stationId": … }.' }),
   from: instantSchema,
   to: instantSchema,
-  sampleIntervalS: z.number().min(0.01).max(3600).default(10),
+  /** Whole milliseconds, as instants are. */
+  sampleIntervalS: z.number().min(0.01).max(3600).multipleOf(0.001, 'Give whole milliseconds, such as 0.5 or 0.333.').default(10),
   ut1MinusUtcS: z.number().min(-0.9).max(0.9).default(0),
   link: z.union([z.strictObject({ linkId: idSchema }), benchLink]).optional(),
   radio: z.union([z.strictObject({ radioId: idSchema }), benchRadio]).optional(),
@@ -70,12 +71,12 @@ export const benchPredictOut = z.object({
     samples: z.array(z.object({ at: instantOut, azimuthDeg: z.number(), elevationDeg: z.number(), rangeM: z.number(), rangeRateMps: z.number(), dopplerHz: z.number(), dopplerRateHzPerS: z.number() })),
     table: benchTable.nullable(),
   })),
-  /** Said when the elements stop being usable inside the window. */
+  /** What the elements' reader warned of, and when they stop being usable inside the window. */
   notes: z.array(z.string()),
 })
 export type BenchPredictOut = z.infer<typeof benchPredictOut>
 
 export const benchAllowanceBody = benchLink
 export const benchAllowanceOut = z.object({ symbolTimeS: z.number(), epsilon: z.number(), allowanceHz: z.number(), limitedBy: z.enum(['loss', 'captureRange', 'filter', 'stated']) })
-export const benchLossBody = z.strictObject({ ...benchLinkFields, offsetHz: z.number() }).superRefine(needsLimit)
+export const benchLossBody = z.strictObject({ ...benchLinkFields, offsetHz: z.number().min(-1e12).max(1e12) }).superRefine(needsLimit)
 export const benchLossOut = z.object({ epsilon: z.number(), lossDb: z.number().nullable(), bitErrorRate: z.number().optional() })

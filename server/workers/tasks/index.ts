@@ -1,3 +1,4 @@
+import { benchPredict } from './bench-predict'
 import { compareSets } from './compare-sets'
 import { readElements } from './read-elements'
 import { passSamples } from './pass-samples'
@@ -5,6 +6,7 @@ import { predictStation } from './predict-station'
 
 /** Heavy computing, off the thread that answers requests. Each task is a pure function of plain data. */
 export const tasks = {
+  'bench-predict': benchPredict,
   'compare-sets': compareSets,
   'read-elements': readElements,
   'predict-station': predictStation,

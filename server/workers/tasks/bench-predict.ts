@@ -1,0 +1,1 @@
+export { benchPredict } from '#shared/physics/predict/bench-predict'
