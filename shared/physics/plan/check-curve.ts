@@ -23,10 +23,12 @@ export interface CheckCurve {
 
 /** Offset by direct propagation, Hz; the truth that the curve interpolates. Throws RangeError where the propagator fails. */
 export function directOffsetHz({ propagator, site, link, ut1MinusUtcS }: Omit<CheckCurveQuery, 'span'>, utcMs: UtcMs): Hz {
-  const stateAt = (at: UtcMs): StateTeme => {
-    const state = propagator.at(at)
-    if (!state.ok) throw new RangeError(`The element set cannot be propagated to ${new Date(at).toISOString()}: ${state.error}. Cut the table before that instant.`)
-    return state
+  const now = propagator.at(utcMs)
+  if (!now.ok) throw new RangeError(`The element set cannot be propagated to ${new Date(utcMs).toISOString()}: ${now.error}. Cut the table before that instant.`)
+  // A light time beyond the set's end is bridged from the state now.
+  const stateAt = (at: UtcMs): StateTeme | null => {
+    const state = at === utcMs ? now : propagator.at(at)
+    return state.ok ? state : null
   }
   return link.carrierHz * neededOverCarrierMinusOne({ stateAt, site, ut1MinusUtcS }, link.direction, utcMs)
 }

@@ -80,4 +80,12 @@ describe('the checker\'s own curve of the needed frequency', () => {
     const failing = { elements: query.propagator.elements, at: () => ({ ok: false, error: 'decayed' } as const), atMinutes: () => ({ ok: false, error: 'decayed' } as const) }
     expect(() => checkCurveOf({ ...query, propagator: failing, link: { direction: 'downlink', carrierHz: 437.5e6 }, ut1MinusUtcS: 0 })).toThrow(/decayed/)
   })
+
+  it('reaches the very end of an element set on an uplink, whose signal arrives after it', () => {
+    const query = passes[0]!
+    const { fromMs } = query.span
+    const ending = { ...query.propagator, at: (at: number) => at <= fromMs ? query.propagator.at(at) : { ok: false, error: 'decayed' } as const }
+    const ask = { ...query, link: { direction: 'uplink' as const, carrierHz: 437.5e6 }, ut1MinusUtcS: 0 }
+    expect(directOffsetHz({ ...ask, propagator: ending }, fromMs)).toBeCloseTo(directOffsetHz(ask, fromMs), 2)
+  })
 })
