@@ -14,7 +14,7 @@ export function useForm<S extends z.ZodType, T>(schema: S, initial: () => z.inpu
   function validate(): boolean {
     const result = schema.safeParse(toRaw(values))
     errors.value = {}
-    if (!result.success) for (const issue of result.error.issues) errors.value[issue.path.map(String).join('.')] ??= issue.message
+    if (!result.success) for (const issue of result.error.issues) errors.value[issue.path.map(String).join('.')] ??= plainIssue(issue)
     return result.success
   }
 
