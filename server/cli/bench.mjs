@@ -1,5 +1,5 @@
 import { spawnSync } from 'node:child_process'
-import { mkdtempSync, readdirSync, rmSync } from 'node:fs'
+import { existsSync, mkdtempSync, readdirSync, rmSync } from 'node:fs'
 import { join } from 'node:path'
 import { root } from './lib/paths.mjs'
 
@@ -10,7 +10,7 @@ const bundles = mkdtempSync(join(root, 'node_modules/.bench-'))
 process.once('exit', () => rmSync(bundles, { recursive: true, force: true }))
 
 const wanted = process.argv.slice(2)
-const files = readdirSync(folder, { recursive: true, encoding: 'utf8' })
+const files = (existsSync(folder) ? readdirSync(folder, { recursive: true, encoding: 'utf8' }) : [])
   .filter(name => /\.bench\.(mjs|ts)$/.test(name) && (wanted.length === 0 || wanted.some(word => name.includes(word)))).sort()
 if (files.length === 0) {
   console.error(`No ${wanted.join(' or ') || '*.bench.ts'} under ${folder}.`)
