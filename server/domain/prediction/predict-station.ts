@@ -1,6 +1,7 @@
 import { sql } from 'drizzle-orm'
 import type { PredictStationOutput } from '~~/server/workers/tasks/predict-station'
 import { runTask } from '~~/server/workers/pool'
+import { afterPrediction } from '../alerts/after-prediction'
 import type { Deps } from '../context'
 import { systemActor } from '../context'
 import type { PairIds, PairInputs } from './load-inputs'
@@ -59,5 +60,6 @@ async function join(deps: Deps, { spacecraftId, stationId, reason }: PredictionR
     revisions: { drafted: merge.revisionInserts.length, recomputed: merge.revisionChanges.filter(change => change.rows).length, lapsed: merge.lapses.length },
     rechecks: merge.rechecks,
   }
+  await afterPrediction(deps, outcome)
   return outcome
 }

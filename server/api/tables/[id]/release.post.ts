@@ -1,0 +1,5 @@
+import { releaseTable } from '~~/server/domain/tables/hold-table'
+import { requirePerson } from '~~/server/domain/tables/require-person'
+import { defineRoute } from '~~/server/http/define-route'
+
+export default defineRoute('POST /api/tables/{id}/release', async ({ db, now, actor, params, body }) => releaseTable({ db, now, actor: requirePerson(actor) }, { ...body, id: params.id }))

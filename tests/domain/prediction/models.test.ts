@@ -1,0 +1,33 @@
+import { describe, expect, it } from 'vitest'
+import type { LinkRow, RadioRow } from '~~/server/domain/prediction/models'
+import { dopplerRoomHz, radioFor } from '~~/server/domain/prediction/models'
+import { referenceElements } from './fleet'
+
+const elements = referenceElements('SSO500')
+const link = { direction: 'downlink', carrierHz: 437.5e6 } as LinkRow
+const radio = (id: string, fields: Partial<RadioRow> = {}) => ({ id, name: id, transmits: false, receives: true, tuneLowHz: 430e6, tuneHighHz: 440e6, stepHz: 10, retiredAt: null, ...fields }) as RadioRow
+
+describe('the radio that serves a link', () => {
+  it('leaves room for the Doppler shift of the orbit', () => {
+    // First-order Doppler at the horizon for 500 km at 437 MHz is 10 377 Hz (mechanics); the room is no less and not much more.
+    const room = dopplerRoomHz(437e6, elements)
+    expect(room).toBeGreaterThan(10_377)
+    expect(room).toBeLessThan(1.2 * 10_377)
+    expect(radioFor(link, elements, [radio('a', { tuneHighHz: 437.505e6 })])).toBeNull()
+    expect(radioFor(link, elements, [radio('a', { tuneLowHz: 437.495e6 })])).toBeNull()
+    expect(radioFor(link, elements, [radio('a', { tuneLowHz: 437.485e6, tuneHighHz: 437.515e6 })])?.id).toBe('a')
+  })
+
+  it('works in the link’s direction and is not retired', () => {
+    expect(radioFor({ ...link, direction: 'uplink' }, elements, [radio('a')])).toBeNull()
+    expect(radioFor(link, elements, [radio('a', { receives: false, transmits: true })])).toBeNull()
+    expect(radioFor(link, elements, [radio('a', { retiredAt: new Date(0) })])).toBeNull()
+  })
+
+  it('is the one with the finest step, then the first by name, whatever their order', () => {
+    const radios = [radio('b'), radio('a'), radio('c', { stepHz: 100 })]
+    expect(radioFor(link, elements, radios)?.id).toBe('a')
+    expect(radioFor(link, elements, [...radios].reverse())?.id).toBe('a')
+    expect(radioFor(link, elements, [...radios, radio('d', { stepHz: 1 })])?.id).toBe('d')
+  })
+})
