@@ -22,20 +22,20 @@ export async function readUploadBody(event: H3Event): Promise<UploadBody> {
   const type = contentType(event)
   if (bodyTypes.includes(type)) return { bytes: await readLimited(event, uploadLimitBytes), fileName: null, path: 'body', isFile: false }
   if (type !== 'multipart/form-data') throw new DomainError('wrong-type', 'Send a form (multipart/form-data) with the field file, or the element sets themselves as text/plain or application/json.')
-  const form = await readForm(await readLimited(event, uploadLimitBytes + formRoomBytes), getRequestHeader(event, 'content-type')!)
+  const form = await readForm(new Uint8Array(await readLimited(event, uploadLimitBytes + formRoomBytes)), getRequestHeader(event, 'content-type')!)
   const parts = form.getAll('file')
   const [file] = parts
   if (file === undefined || parts.length > 1) {
     const message = file === undefined ? 'Choose a file: the form has no field of this name.' : 'Send one file at a time.'
     throw new DomainError('not-valid', `file: ${message}`, [{ path: 'file', message }])
   }
-  const bytes = Buffer.from(typeof file === 'string' ? file : await file.arrayBuffer())
+  const bytes = typeof file === 'string' ? Buffer.from(file) : Buffer.from(await file.arrayBuffer())
   if (bytes.length > uploadLimitBytes) throw new DomainError('too-large', `At most ${uploadLimitBytes.toLocaleString('en-GB')} bytes are read here: send less, or in parts.`)
   return { bytes, fileName: typeof file === 'string' ? null : file.name, path: 'file', isFile: typeof file !== 'string' }
 }
 
 /** The platform's own reader of forms (WHATWG Fetch) on bytes that have been counted already. */
-async function readForm(bytes: Buffer, type: string): Promise<FormData> {
+async function readForm(bytes: Uint8Array<ArrayBuffer>, type: string): Promise<FormData> {
   try {
     return await new Response(bytes, { headers: { 'content-type': type } }).formData()
   }

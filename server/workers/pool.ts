@@ -12,8 +12,14 @@ function workerFile(): string | null {
   return candidates.find((file): file is string => !!file && existsSync(file)) ?? null
 }
 
-/** Runs a task in a worker thread. Without a bundle (unit tests) it runs here. */
-export async function runTask<N extends TaskName>(name: N, input: TaskInput<N>): Promise<TaskOutput<N>> {
+/** Thrown when a task is stopped at its time limit, or outgrows its thread's memory. */
+export class TaskTooHeavy extends Error {}
+
+/**
+ * Runs a task in a worker thread. Without a bundle (unit tests) it runs here. A task that others' input makes heavy is
+ * given `limitMs`; past it its thread is ended and TaskTooHeavy thrown.
+ */
+export async function runTask<N extends TaskName>(name: N, input: TaskInput<N>, { limitMs }: { limitMs?: number } = {}): Promise<TaskOutput<N>> {
   if (!pool) {
     const filename = workerFile()
     if (!filename) {
@@ -22,7 +28,13 @@ export async function runTask<N extends TaskName>(name: N, input: TaskInput<N>):
     }
     pool = new Piscina({ filename, maxThreads: Math.max(1, availableParallelism()), idleTimeout: 30_000, resourceLimits: { maxOldGenerationSizeMb: 512 } })
   }
-  return pool.run({ name, input })
+  try {
+    return await pool.run({ name, input }, limitMs === undefined ? {} : { signal: AbortSignal.timeout(limitMs) })
+  }
+  catch (error) {
+    if (error instanceof Error && (error.name === 'AbortError' || (error as { code?: unknown }).code === 'ERR_WORKER_OUT_OF_MEMORY')) throw new TaskTooHeavy(`${name} was stopped`)
+    throw error
+  }
 }
 
 export async function closePool(): Promise<void> {

@@ -2,7 +2,7 @@ import type { BenchAnswer, BenchPass } from '#shared/physics/predict/bench-predi
 import type { TableCheck } from '#shared/physics/types'
 import type { BenchPredictBody, BenchPredictOut } from '#shared/schemas/bench'
 import { benchBudget } from '#shared/schemas/bench'
-import { runTask } from '~~/server/workers/pool'
+import { TaskTooHeavy, runTask } from '~~/server/workers/pool'
 import type { Deps } from '../context'
 import { propagationErrorText } from '../elements/propagation-error-text'
 import { DomainError } from '../errors'
@@ -10,6 +10,8 @@ import { resolveElements, resolveLink, resolveRadio, resolveSite } from './resol
 
 export const longestWindowDays = 14
 export const mostSamples = 100_000
+/** Ordinary questions take a second or two; one with hundreds of thousands of retunes is stopped. */
+const limitMs = 60_000
 
 const DAY_MS = 86_400_000
 const DEG_PER_RAD = 180 / Math.PI
@@ -26,7 +28,10 @@ export async function predictBench(deps: Deps, body: BenchPredictBody): Promise<
   const { link, linkMinElevationRad } = await resolveLink(deps, body.link)
   const radio = await resolveRadio(deps, body.radio)
   const budget = { ...(body.budget ?? benchBudget.parse({})), ut1MinusUtcS: body.ut1MinusUtcS }
-  const answer = await runTask('bench-predict', { elements, site, fromMs, toMs, sampleIntervalS: body.sampleIntervalS, link, linkMinElevationRad, radio, budget, mostSamples })
+  const answer = await runTask('bench-predict', { elements, site, fromMs, toMs, sampleIntervalS: body.sampleIntervalS, link, linkMinElevationRad, radio, budget, mostSamples }, { limitMs }).catch((error: unknown) => {
+    if (error instanceof TaskTooHeavy) throw refuse('to', `This takes longer than the ${limitMs / 1000} s that a question may: take a shorter window, or a radio or link that needs fewer retunes.`)
+    throw error
+  })
   const { passes, endedBy, validUntilMs } = requirePasses(answer)
   const ended = endedBy ? [`The elements can be used until ${instant(validUntilMs)} only: ${propagationErrorText[endedBy]}. No pass is given after that.`] : []
   return { passes: passes.map(passOut), notes: [...warnings, ...ended] }
