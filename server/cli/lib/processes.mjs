@@ -70,6 +70,11 @@ export function spawnGroup(command, args, { deathSignal = 'TERM', ...options } =
   const child = spawn(program, words, { ...options, detached: true })
   groups.set(child, `SIG${deathSignal}`)
   child.once('error', () => groups.delete(child))
+  child.once('exit', () => {
+    // At once, while the number cannot have been given to anyone else: what the head has left behind ends too.
+    signalGroup(child, 'SIGKILL')
+    groups.delete(child)
+  })
   return child
 }
 
@@ -88,7 +93,7 @@ export function signalGroup(child, signal) {
 }
 
 /**
- * Stops one child: a signal, a patience, then force; and whatever is left of its group.
+ * Stops one child: a signal, a patience, then force.
  *
  * @param {import('node:child_process').ChildProcess} child
  * @param {NodeJS.Signals} signal
@@ -96,19 +101,19 @@ export function signalGroup(child, signal) {
  * @returns {Promise<boolean>} whether it ended by itself in time
  */
 export async function stopChild(child, signal, patienceMs) {
-  const ended = hasEnded(child)
-    ? true
-    : await new Promise((resolve) => {
-        const timer = setTimeout(() => resolve(false), patienceMs)
-        child.once('exit', () => {
-          clearTimeout(timer)
-          resolve(true)
-        })
-        child.kill(signal)
-      })
-  signalGroup(child, 'SIGKILL')
-  groups.delete(child)
-  return ended
+  if (hasEnded(child)) return true
+  return new Promise((resolve) => {
+    let inTime = true
+    const timer = setTimeout(() => {
+      inTime = false
+      child.kill('SIGKILL')
+    }, patienceMs)
+    child.once('exit', () => {
+      clearTimeout(timer)
+      resolve(inTime)
+    })
+    child.kill(signal)
+  })
 }
 
 /** @param {import('node:child_process').ChildProcess} child */

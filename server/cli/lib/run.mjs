@@ -1,7 +1,7 @@
 import { join } from 'node:path'
 import { writeWhole } from './files.mjs'
 import { dataFolder } from './paths.mjs'
-import { signalGroup, spawnGroup } from './processes.mjs'
+import { spawnGroup } from './processes.mjs'
 import { Refusal } from './say.mjs'
 
 /**
@@ -24,10 +24,7 @@ export function run(command, args, { show = false, input, ...options } = {}) {
     }
     if (input !== undefined) child.stdin?.end(input)
     child.once('error', error => resolve({ code: 127, output: error.message }))
-    child.once('close', (code) => {
-      signalGroup(child, 'SIGKILL')
-      resolve({ code: code ?? 1, output })
-    })
+    child.once('close', code => resolve({ code: code ?? 1, output }))
   })
 }
 
