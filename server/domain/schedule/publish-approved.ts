@@ -13,7 +13,7 @@ export async function publishApproved(deps: Deps, due: readonly DueTable[]): Pro
   const done: Published = { published: 0, failed: 0, refused: {} }
   for (const table of due) {
     try {
-      const { outcome } = await deps.db.transaction(tx => publishRevision({ ...deps, db: tx }, { tableId: table.tableId, mover: 'schedule' }))
+      const { outcome } = await publishRevision(deps, { tableId: table.tableId, mover: 'schedule' })
       if (outcome === 'published') done.published++
       else done.refused[outcome] = (done.refused[outcome] ?? 0) + 1
     }
