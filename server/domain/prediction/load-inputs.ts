@@ -11,6 +11,9 @@ import { ut1InForce } from '../settings/ut1-in-force'
 import type { BudgetParameters, LinkRow, RadioRow, SpacecraftRow, StationRow } from './models'
 import { budgetParametersOf, linkMinElevationRad, linkModelOf, radioFor, radioModelOf, siteOf } from './models'
 
+/** AOS is uncertain by a second or two; a newer set may bring it forward by some more. */
+const LARGEST_LEAD_MS = 30_000
+
 export interface PairIds { spacecraftId: string, stationId: string }
 
 /** A link that the station can serve, with all that its tables are made of. */
@@ -21,6 +24,8 @@ export interface ServedLink {
   readonly minElevationRad: number
   readonly radioModel: RadioModel
   readonly budget: BudgetParameters
+  /** How much before AOS the first row takes effect. */
+  readonly firstRowLeadMs: number
   /** SHA-256 of all that goes into a table of this link beside the pass itself. */
   readonly digest: string
 }
@@ -47,7 +52,7 @@ export async function loadInputs({ db, now }: Pick<Deps, 'db' | 'now'>, { spacec
   const wanted = setId ?? craft.inUseSetId
   const [set] = wanted ? await db.select({ id: elementSets.id, elements: elementSets.elements }).from(elementSets).where(eq(elementSets.id, wanted)) : []
   const linkRows = await db.select().from(links).where(eq(links.spacecraftId, spacecraftId)).orderBy(asc(links.id))
-  const radioRows = await db.select({ radio: radios }).from(radios).innerJoin(antennas, eq(antennas.id, radios.antennaId))
+  const radioRows = await db.select({ radio: radios, setupS: antennas.setupS }).from(radios).innerJoin(antennas, eq(antennas.id, radios.antennaId))
     .where(and(eq(antennas.stationId, stationId), isNull(antennas.retiredAt), isNull(radios.retiredAt)))
   const settings = await readSettings(db)
   const ut1 = ut1InForce(settings, now)
@@ -57,8 +62,9 @@ export async function loadInputs({ db, now }: Pick<Deps, 'db' | 'now'>, { spacec
   const unserved = new Map<string, string>()
   for (const link of linkRows) {
     const radio = set && radioFor(link, set.elements, radioRows.map(row => row.radio))
+    const setupS = radioRows.find(row => row.radio === radio)?.setupS ?? 0
     if (link.retiredAt) unserved.set(link.id, 'The link has been retired.')
-    else if (set && radio) served.push(serve({ craft, station, link, radio, elements: set.elements, settings, ut1, site }))
+    else if (set && radio) served.push(serve({ craft, station, link, radio, setupS, elements: set.elements, settings, ut1, site }))
     else unserved.set(link.id, `No radio at ${station.name} covers this link any more.`)
   }
   return { craft, station, settings, set: set ?? null, stopped: whyStopped(craft, station, set !== undefined), site, ut1, served, unserved }
@@ -70,18 +76,21 @@ function whyStopped(craft: SpacecraftRow, station: StationRow, hasSet: boolean):
   return hasSet ? null : `${craft.name} has no element set in use.`
 }
 
-type Sources = Parameters<typeof budgetParametersOf>[0] & { link: LinkRow, site: Site }
+type Sources = Parameters<typeof budgetParametersOf>[0] & { link: LinkRow, site: Site, setupS: number }
 
-function serve({ craft, station, link, radio, elements, settings, ut1, site }: Sources): ServedLink {
+function serve({ craft, station, link, radio, setupS, elements, settings, ut1, site }: Sources): ServedLink {
   const model = linkModelOf(link)
   const minElevationRad = linkMinElevationRad(link)
   const radioModel = radioModelOf(radio)
   const budget = budgetParametersOf({ craft, station, radio, elements, settings, ut1 })
-  return { link, radio, model, minElevationRad, radioModel, budget, digest: inputsDigest({ elements, site, model, minElevationRad, radioId: radio.id, radioModel, budget }) }
+  // The antenna is free for its set-up time before a pass, so the radio may be, too.
+  const firstRowLeadMs = Math.min(LARGEST_LEAD_MS, setupS * 1000)
+  const inputs = { elements, site, model, minElevationRad, radioId: radio.id, radioModel, budget, firstRowLeadMs }
+  return { link, radio, model, minElevationRad, radioModel, budget, firstRowLeadMs, digest: inputsDigest(inputs) }
 }
 
 /** Names of objects and the like change nothing in a prediction; raise `version` when the computing itself changes. */
-export function inputsDigest(inputs: { elements: MeanElements, site: Site, model: LinkModel, minElevationRad: number, radioId: string, radioModel: RadioModel, budget: BudgetParameters }): string {
+export function inputsDigest(inputs: { elements: MeanElements, site: Site, model: LinkModel, minElevationRad: number, radioId: string, radioModel: RadioModel, budget: BudgetParameters, firstRowLeadMs: number }): string {
   const { name: _name, designator: _designator, classification: _classification, elementSetNumber: _number, revolutionAtEpoch: _revolution, ...numbers } = inputs.elements
   return createHash('sha256').update(canonicalJson({ version: 1, ...inputs, elements: numbers })).digest('hex')
 }

@@ -7,8 +7,8 @@ const HOUR_MS = 3_600_000
 /** A pass that began up to an hour ago is still seen whole. */
 export const windowStart = (now: Date): Date => new Date(now.getTime() - HOUR_MS)
 
-export function linkTaskOf({ link, model, minElevationRad, radioModel, budget }: ServedLink): LinkTask {
-  return { linkId: link.id, model, minElevationRad, radioModel, budget }
+export function linkTaskOf({ link, model, minElevationRad, radioModel, budget, firstRowLeadMs }: ServedLink): LinkTask {
+  return { linkId: link.id, model, minElevationRad, radioModel, budget, firstRowLeadMs }
 }
 
 /** The horizon, or as far as passes are known already, so that a shorter horizon leaves none with old elements. */

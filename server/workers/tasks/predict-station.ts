@@ -10,7 +10,7 @@ import type { BudgetParameters } from '~~/server/domain/prediction/models'
 import { budgetModelOf } from './budget-model'
 import { isoOf, storedCheck, storedRetune } from './stored-table'
 
-export interface LinkTask { linkId: string, model: LinkModel, minElevationRad: number, radioModel: RadioModel, budget: BudgetParameters }
+export interface LinkTask { linkId: string, model: LinkModel, minElevationRad: number, radioModel: RadioModel, budget: BudgetParameters, firstRowLeadMs: number }
 
 /** What is to be done for a table that exists: rows that are out are rechecked, a plan is made or not. */
 export interface KnownTableTask {
@@ -92,7 +92,7 @@ function predictTable(task: LinkTask, known: KnownTableTask | undefined, { ephem
   const plan = known?.plan ?? 'make'
   if (plan === 'leave' || (plan === 'make-if-moved' && !recheck?.moved)) return { linkId, kind: 'left', planned: null, recheck }
 
-  const built = buildTable(query)
+  const built = buildTable({ ...query, firstRowLeadMs: task.firstRowLeadMs })
   if (built.kind === 'not-workable') return { linkId, kind: 'not-workable', planned: null, recheck }
   return {
     linkId,

@@ -21,6 +21,11 @@ export interface TableQuery {
   readonly pass: PredictedPass
   /** One dwell after the radio's previous row, where there is one. */
   readonly notBeforeMs?: UtcMs
+  /**
+   * How much earlier than needed the first row takes effect, 0 when left out: nothing listens before the pass, and rows that
+   * are out stay good when newer elements bring AOS forward.
+   */
+  readonly firstRowLeadMs?: number
 }
 
 export interface BuiltTable {
@@ -53,11 +58,17 @@ export function buildTable(query: TableQuery): BuiltTable | NotWorkable {
   const rows = plan.rows.map(({ effectMs, frequencyHz }): RetuneRow => ({
     // Exact: planned rows take effect one latency after a whole millisecond.
     atMs: Math.round(effectMs - radio.latencyMs), frequencyHz, slopeHzPerS: 0,
-  }))
+  })).map((row, i) => i === 0 ? earlier(row, query) : row)
   return { kind: 'table', rows, check: checkTable({ propagator, site, link, radio, budget, parts, rows }), parts, kappa: plan.kappa }
 }
 
-export type ResidualQuery = Omit<TableQuery, 'notBeforeMs'> & { readonly rows: readonly RetuneRow[] }
+/** The first row with its lead, no earlier than the radio is free. */
+function earlier(row: RetuneRow, { firstRowLeadMs = 0, notBeforeMs = -Infinity, radio }: TableQuery): RetuneRow {
+  const atMs = Math.max(row.atMs - Math.round(firstRowLeadMs), Math.ceil(notBeforeMs - radio.latencyMs))
+  return { ...row, atMs: Math.min(atMs, row.atMs) }
+}
+
+export type ResidualQuery = Omit<TableQuery, 'notBeforeMs' | 'firstRowLeadMs'> & { readonly rows: readonly RetuneRow[] }
 
 /** Rows already published, checked anew: against newer elements, another budget, or the same pass as it now falls. */
 export function residualOfRows(query: ResidualQuery): TableCheck | NotWorkable {

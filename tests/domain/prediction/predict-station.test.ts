@@ -2,7 +2,7 @@ import { and, asc, eq } from 'drizzle-orm'
 import { afterAll, beforeAll, beforeEach, describe, expect, it } from 'vitest'
 import type { Database } from '~~/server/database/client'
 import { openDatabase } from '~~/server/database/client'
-import { audit, links, passes, radios, settings, spacecraft, stations, tableRevisions, tables } from '~~/server/database/schema'
+import { antennas, audit, links, passes, radios, settings, spacecraft, stations, tableRevisions, tables } from '~~/server/database/schema'
 import { predictStation } from '~~/server/domain/prediction/predict-station'
 import type { TestDatabase } from '../../support/database'
 import { createTestDatabase } from '../../support/database'
@@ -58,6 +58,16 @@ describe('prediction of one spacecraft at one station', () => {
       expect(revision.retunes.length).toBeGreaterThan(0)
       expect(revision.check.margin).toBeGreaterThanOrEqual(1.25)
     }
+  })
+
+  it('sets the radio half a minute before AOS, or as long before as the antenna is free', async () => {
+    await predict()
+    const lead = ({ revision, aos }: Awaited<ReturnType<typeof revisionRows>>[number]) => aos.getTime() - Date.parse(revision.retunes[0]!.at)
+    // With the radio's 50 ms of latency; its first row need not be in effect before AOS.
+    for (const row of await revisionRows()) expect(Math.abs(lead(row) - 30_050)).toBeLessThanOrEqual(2)
+    await database.db.update(antennas).set({ setupS: 0 }).where(eq(antennas.id, fleet.antennaId))
+    await predict('No set-up time.')
+    for (const row of await revisionRows()) expect(Math.abs(lead(row) - 50)).toBeLessThanOrEqual(2)
   })
 
   it('computes nothing anew while nothing has changed', async () => {
