@@ -30,7 +30,12 @@ export function eveningInstants(rule: EveningRule, fromMs: number, toMs: number)
 
 /** The evening whose publication covers a pass: the last before its AOS. It covers all that rise before the next evening's. */
 export function eveningBefore(rule: EveningRule, aosMs: number): number {
-  return eveningInstants(rule, aosMs - 3 * 86_400_000, aosMs).at(-1)!
+  const day = DateTime.fromMillis(aosMs, { zone: rule.zone }).startOf('day')
+  for (let days = 0; ; days++) {
+    const { year, month, day: date } = day.minus({ days })
+    const instant = eveningInstant(rule, year, month, date)
+    if (instant < aosMs) return instant
+  }
 }
 
 /**

@@ -93,7 +93,7 @@ describe('prediction of one spacecraft at one station', () => {
     await predict()
     const down = (await revisionRows()).filter(row => row.linkId === fleet.downlinkId)
     await database.db.update(tableRevisions).set({ state: 'held', reason: 'Snow on the dish.' }).where(eq(tableRevisions.id, down[0]!.revision.id))
-    await database.db.update(links).set({ captureRangeHz: 1 }).where(eq(links.id, fleet.downlinkId))
+    await database.db.update(links).set({ captureRangeHz: 50 }).where(eq(links.id, fleet.downlinkId))
     await predict('Telemetry’s limit is stricter.')
     const [held, returned] = (await revisionRows()).filter(row => row.linkId === fleet.downlinkId).map(({ revision }) => revision)
     expect(held).toMatchObject({ state: 'held', verdict: 'breaks', reason: 'Snow on the dish.' })

@@ -54,7 +54,7 @@ async function firstTable(linkId: string) {
 const before = (aos: Date, minutes: number) => new Date(aos.getTime() - minutes * 60_000)
 const conflict = (text: RegExp) => expect.objectContaining({ code: 'conflict', message: expect.stringMatching(text) })
 async function makeItBreak() {
-  await database.db.update(links).set({ captureRangeHz: 1 }).where(eq(links.id, fleet.uplinkId))
+  await database.db.update(links).set({ captureRangeHz: 10 }).where(eq(links.id, fleet.uplinkId))
   await predictStation({ db: database.db, now }, { ...fleet, reason: 'A stricter limit.' })
 }
 
