@@ -10,5 +10,5 @@ export const entityTag = (digest: string, notation: Notation) => `"${digest}-${n
 export function matchTag(header: string | undefined, tag: string): 'same' | 'any' | 'none' {
   if (header === undefined) return 'none'
   if (header.trim() === '*') return 'any'
-  return (header.match(/"[^"]*"/g) ?? []).includes(tag) ? 'same' : 'none'
+  return [...header.matchAll(/"[^"]*"/g)].some(([held]) => held === tag) ? 'same' : 'none'
 }
