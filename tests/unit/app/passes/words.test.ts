@@ -1,6 +1,9 @@
 import { describe, expect, it } from 'vitest'
 import { budgetParts } from '~/utils/passes/budget-bar'
+import { historyWords } from '~/utils/passes/history-words'
+import { stripsSentence } from '~/utils/passes/strips-sentence'
 import { formatMargin, verdictSentence } from '~/utils/passes/verdict-sentence'
+import { worstTable } from '~/utils/passes/worst-table'
 
 const at = (time: string) => `2026-12-01T${time}.000Z`
 const holds = {
@@ -60,5 +63,36 @@ describe('the budget bar', () => {
 
   it('states each spread by itself, k times one sigma', () => {
     expect(parts.filter(part => part.kind === 'spread').map(part => part.aloneHz)).toEqual([60, 80, 0])
+  })
+})
+
+describe('the words beside the strips', () => {
+  const row = { at: at('03:08:00'), frequencyHz: 0, slopeHzPerS: 0, dopplerHz: 0, rangeRateMps: 0, azimuthDeg: 0, elevationDeg: 0, lossDb: null }
+  const data = { fromMs: 0, toMs: 1000, needed: { atMs: [0, 1000], value: [10_204, -10_198], ratePerS: [0, 0] }, uncertaintyHz: [0, 0], elevationDeg: [0, 0], horizonDeg: [0, 0], settings: [], effectMs: [], workable: [], allowanceHz: 1786 }
+  const table = { maxElevationDeg: 64.24, culmination: at('03:13:00'), allowanceHz: 1786, worstResidualHz: 214, retunes: [{ ...row, residualMinHz: -104, residualMaxHz: 60 }, { ...row, residualMinHz: -90, residualMaxHz: 98 }] }
+
+  it('tell who cannot see them how the curve runs and what the retunes leave', () => {
+    expect(stripsSentence(data, table)).toBe('The needed offset falls from +10\u202F204 Hz at AOS to \u221210\u202F198 Hz at LOS. 2 retunes follow it and leave between \u2212104 and +98 Hz. Budgeted, that is 214 Hz at worst, of 1\u202F786 Hz allowed. Elevation culminates at 64.2° at 03:13:00 UTC.')
+  })
+
+  it('say so when no retune follows', () => {
+    expect(stripsSentence(data, { ...table, retunes: [] })).toContain('No retune follows it.')
+  })
+})
+
+describe('a pass with several tables', () => {
+  const table = (verdict: 'holds' | 'tight' | 'breaks', margin: number) => ({ id: `${verdict}${margin}`, linkId: '', linkName: '', direction: 'downlink' as const, state: 'drafted' as const, verdict, margin })
+
+  it('is known by the one with least margin, a broken rule before all', () => {
+    expect(worstTable([table('holds', 3), table('tight', 1.1), table('tight', 1.05)])?.margin).toBe(1.05)
+    expect(worstTable([table('tight', 1.05), table('breaks', 4)])?.verdict).toBe('breaks')
+    expect(worstTable([])).toBeNull()
+  })
+})
+
+describe('a step of a table’s life', () => {
+  it('names revision, deed and person', () => {
+    expect(historyWords({ action: 'table.second', by: 'Ines Okafor', revision: 2 })).toBe('Revision 2 approved as second person by Ines Okafor')
+    expect(historyWords({ action: 'table.return-to-draft', by: 'the server', revision: null })).toBe('Table returned to draft by the server')
   })
 })
