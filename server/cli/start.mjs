@@ -1,4 +1,5 @@
 import { join } from 'node:path'
+import { setTimeout as wait } from 'node:timers/promises'
 import { requireNode } from './lib/require-node.mjs'
 import { ensureBuild } from './lib/build.mjs'
 import { ensureDependencies } from './lib/dependencies.mjs'
@@ -76,8 +77,13 @@ function keepDatabase(/** @type {import('./lib/secrets.mjs').Secrets} */ secrets
 async function main() {
   const settings = readSettings(process.env)
   ensureDataFolder()
-  await beOnlyStart(dataFolder, settings.publicUrl)
-  const port = await tryPort(settings.port, settings.host)
+  const { afterCrash } = await beOnlyStart(dataFolder, settings.publicUrl)
+  let port = await tryPort(settings.port, settings.host)
+  // The system closes a killed server's port a moment after the process is gone.
+  for (let waited = 0; 'code' in port && afterCrash && waited < 5000; waited += 100) {
+    await wait(100)
+    port = await tryPort(settings.port, settings.host)
+  }
   if ('code' in port) throw new Refusal(portMessage(port.code, settings.port, settings.host))
   const secrets = keepSecrets(dataFolder)
 

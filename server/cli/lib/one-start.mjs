@@ -15,6 +15,7 @@ const serverWords = { serve: ['.output/server/index.mjs'], dev: ['nuxt', 'dev'] 
  *
  * @param {string} dataFolder
  * @param {string} address noted for whoever tries to start a second one
+ * @returns {Promise<{ afterCrash: boolean }>} whether an earlier one was killed
  */
 export async function beOnlyStart(dataFolder, address) {
   const file = join(dataFolder, 'start.lock')
@@ -29,6 +30,7 @@ export async function beOnlyStart(dataFolder, address) {
   }
   const orphan = Number(/** @type {{ serverPid?: number } | undefined} */ (outcome.previous)?.serverPid)
   if (orphan) await endOrphan(orphan)
+  return { afterCrash: outcome.previous !== undefined }
 }
 
 /**
