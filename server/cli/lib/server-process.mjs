@@ -20,6 +20,8 @@ export function serverEnvironment(settings, secrets, databaseUrl) {
     ...process.env,
     NITRO_PORT: String(settings.port),
     NITRO_HOST: settings.host,
+    // Open connections end before the ten seconds that a stop waits for.
+    NITRO_SHUTDOWN_TIMEOUT: '8000',
     PORT: String(settings.port),
     HOST: settings.host,
     DATABASE_URL: databaseUrl,
