@@ -90,6 +90,13 @@ describe('an invitation', () => {
     expect(await refusalOf(lookAtOneTimeLink(at(), token))).toMatchObject({ code: 'not-found' })
   })
 
+  it('sets one password when two use the address at once', async () => {
+    const person = await addPerson(database.db, ['operator'])
+    const token = tokenOf((await makeOneTimeLink(at(), { kind: 'invitation', personId: person.id })).path)
+    const tries = await Promise.allSettled(['one', 'two'].map(word => takeUpLink(at(), { token, password: `${password} ${word}` })))
+    expect(tries.map(result => result.status).sort()).toEqual(['fulfilled', 'rejected'])
+  })
+
   it('works for seven days and not a moment longer, nor for somebody disabled', async () => {
     const person = await addPerson(database.db, ['operator'])
     const token = tokenOf((await makeOneTimeLink(at(), { kind: 'invitation', personId: person.id })).path)

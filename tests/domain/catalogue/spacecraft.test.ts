@@ -63,8 +63,10 @@ it('refuses a name or a catalogue number that another has, at its field, and fre
   const first = await create({ name: 'Dunlin', catalogueNumber: '90201' })
   expect(await refusalOf(create({ name: 'dunlin' }))).toMatchObject({ code: 'conflict', paths: ['name'] })
   expect(await refusalOf(create({ name: 'Knot', catalogueNumber: '90201' }))).toMatchObject({ code: 'conflict', paths: ['catalogueNumber'] })
+  const set = await addElementSet(test.db, now, { spacecraftId: first.id, catalogueNumber: '90201' })
   await retireSpacecraft(deps(), first.id)
-  expect(await create({ name: 'Dunlin', catalogueNumber: '90201' })).toMatchObject({ name: 'Dunlin' })
+  expect(await create({ name: 'Dunlin', catalogueNumber: '90201' })).toMatchObject({ name: 'Dunlin', waitingSets: 0 })
+  expect((await setOf(set.id)).spacecraftId).toBe(first.id)
   expect((await listSpacecraft(deps(), { limit: 1000 })).items.map(item => item.id)).not.toContain(first.id)
 })
 
