@@ -3,7 +3,7 @@ import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import { setTimeout as wait } from 'node:timers/promises'
 import { readIfThere } from './files.mjs'
-import { commandLineOf, hasEnded, isRunning, spawnGroup, stopChild } from './processes.mjs'
+import { commandLineOf, findRunning, hasEnded, isRunning, spawnGroup, stopChild } from './processes.mjs'
 import { lastLines, runOrRefuse } from './run.mjs'
 import { Refusal } from './say.mjs'
 
@@ -50,15 +50,16 @@ export async function initialiseCluster({ programs, folder, user }, password, { 
 }
 
 /**
- * The living server of a cluster, if its pid file tells the truth. A file left by a crash names a process that
- * is gone, or one that has been given the same number since.
+ * The living server of a cluster. Its pid file is believed only if that process is one: after a crash it names one
+ * that is gone, or one that has been given the same number since. A server whose file is lost is found by its command.
  *
  * @param {string} folder
  * @returns {number | undefined} its process id
  */
 export function livingPostmaster(folder) {
   const pid = Number.parseInt(readIfThere(join(folder, 'postmaster.pid')) ?? '', 10)
-  return isRunning(pid, ['postgres', folder]) ? pid : undefined
+  if (isRunning(pid, ['postgres', folder])) return pid
+  return findRunning(`postgres -D ${folder} `)
 }
 
 /**
@@ -94,8 +95,22 @@ export async function clearLeftOver(folder) {
  * @param {{ port: number, password: string, logFile: string, settings?: Record<string, string> }} options
  * @returns {Promise<RunningCluster>}
  */
-export async function startCluster({ programs, folder, user }, { port, password, logFile, settings = {} }) {
-  await clearLeftOver(folder)
+export async function startCluster(place, options) {
+  for (let attempt = 1; ; attempt += 1) {
+    await clearLeftOver(place.folder)
+    try {
+      return await startOnce(place, options)
+    }
+    catch (error) {
+      // After a crash the workers of the old server may hold its memory for a moment more.
+      if (attempt === 10 || !(error instanceof Refusal) || !error.message.includes('still in use')) throw error
+      await wait(1000)
+    }
+  }
+}
+
+/** @type {typeof startCluster} */
+async function startOnce({ programs, folder, user }, { port, password, logFile, settings = {} }) {
   const all = { listen_addresses: '127.0.0.1', port: String(port), unix_socket_directories: '', jit: 'off', timezone: 'UTC', log_timezone: 'UTC', ...settings }
   const tooLong = (statSync(logFile, { throwIfNoEntry: false })?.size ?? 0) > 10_000_000
   const log = openSync(logFile, tooLong ? 'w' : 'a')

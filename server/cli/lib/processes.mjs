@@ -1,5 +1,5 @@
 import { execFileSync, spawn, spawnSync } from 'node:child_process'
-import { existsSync, readFileSync } from 'node:fs'
+import { existsSync, readFileSync, readdirSync } from 'node:fs'
 
 /**
  * The command line of a process. It, and not a signal, tells whether a process id kept in a file still
@@ -34,6 +34,17 @@ export function commandLineOf(pid) {
 export function isRunning(pid, words) {
   const line = commandLineOf(pid)
   return line !== undefined && words.every(word => line.includes(word))
+}
+
+/**
+ * Looks through all processes, where the system lists them as files.
+ *
+ * @param {string} words that must follow each other in the command line
+ * @returns {number | undefined}
+ */
+export function findRunning(words) {
+  if (!existsSync('/proc/self/cmdline')) return undefined
+  return readdirSync('/proc').map(Number).filter(pid => pid > 0 && pid !== process.pid).find(pid => commandLineOf(pid)?.includes(words))
 }
 
 /** @type {boolean | undefined} */

@@ -53,6 +53,14 @@ describe('a pid file', () => {
     expect(commandLineOf(old.pid as number)).toBeUndefined()
   })
 
+  it('that is lost, or names another program, does not hide a database that still runs', async () => {
+    const old = await stranger('postgres', '-D', folder, '-c', 'x')
+    expect(livingPostmaster(folder)).toBe(old.pid)
+    writeFileSync(join(folder, 'postmaster.pid'), `${await deadPid()}\n${folder}\n`)
+    await clearLeftOver(folder)
+    expect(commandLineOf(old.pid as number)).toBeUndefined()
+  })
+
   it('of a database of another folder is not taken for ours', async () => {
     const other = await stranger('postgres', '-D', '/elsewhere')
     mkdirSync(join(folder, 'data'))
