@@ -4,7 +4,7 @@ import type { RouteSpec } from '#shared/routes'
 import { describeInterface } from '~~/server/http/open-api/describe-interface'
 
 /** The shape is checked against the OpenAPI Specification 3.1.0 (sections named) and JSON Schema 2020-12. */
-const document = JSON.parse(JSON.stringify(describeInterface({ url: 'https://ops.example', sessionCookieName: '__Host-nullbeat' }))) as Record<string, never>
+const document = JSON.parse(JSON.stringify(describeInterface({ url: 'https://ops.example', sessionCookieName: '__Host-nullbeat' }))) as Record<string, unknown>
 interface Operation {
   operationId: string
   summary: string
