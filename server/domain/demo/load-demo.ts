@@ -1,4 +1,4 @@
-import { and, desc, eq, isNotNull } from 'drizzle-orm'
+import { and, desc, eq } from 'drizzle-orm'
 import type { z } from 'zod'
 import { createLinkBody } from '#shared/schemas/links'
 import { createSpacecraftBody } from '#shared/schemas/spacecraft'
@@ -16,7 +16,7 @@ import { uploadElements } from '../elements/upload-elements'
 import { useElementSet } from '../elements/use-element-set'
 import { loadInputs } from '../prediction/load-inputs'
 import { demoEpochs, demoNightFile } from './demo-elements'
-import { limitFor, uncertaintiesAhead } from './limits-for-demo'
+import { limitFor, needsAhead } from './limits-for-demo'
 
 /** Elements in use that are older than this are brought up to date, as a nightly upload would. */
 const staleMs = 20 * 3_600_000
@@ -56,26 +56,22 @@ async function loadCatalogue(deps: Deps): Promise<void> {
   }
 }
 
-/** Uploads the nights that are missing and puts the newest sets into use, but those the scenario leaves for a person. */
+/** Uploads the nights that are missing and puts each into use, but the newest of those the scenario leaves for a person. */
 async function bringElementsUpToDate(deps: Deps): Promise<void> {
   const { db, now } = deps
   const [newest] = await db.select({ epoch: elementSets.epoch }).from(elementSets).innerJoin(spacecraft, eq(spacecraft.inUseSetId, elementSets.id)).orderBy(desc(elementSets.epoch)).limit(1)
   if (newest && now.getTime() - newest.epoch.getTime() < staleMs) return
   const referenceMs = Date.parse(scenario.referenceEpoch)
-  for (const epochMs of demoEpochs(now.getTime(), scenario.historyDays)) {
-    if (newest && epochMs <= newest.epoch.getTime()) continue
+  const epochs = demoEpochs(now.getTime(), scenario.historyDays).filter(epochMs => !newest || epochMs > newest.epoch.getTime())
+  for (const epochMs of epochs) {
     const bytes = Buffer.from(demoNightFile(scenario.spacecraft, referenceMs, epochMs))
-    await uploadElements(deps, { bytes, source: 'demo', fileName: `night-${new Date(epochMs).toISOString().slice(0, 13)}h.json` })
-  }
-  const firstTime = !newest
-  for (const craft of scenario.spacecraft) {
-    const [row] = await db.select().from(spacecraft).where(and(eq(spacecraft.catalogueNumber, craft.catalogueNumber), isNotNull(spacecraft.catalogueNumber)))
-    if (!row || row.retiredAt) continue
-    const sets = await db.select({ id: elementSets.id, state: elementSets.state }).from(elementSets).where(eq(elementSets.spacecraftId, row.id)).orderBy(desc(elementSets.epoch)).limit(2)
-    const set = scenario.leftWaiting.includes(craft.name) ? sets[1] : sets[0]
-    if (!set || set.state === 'in-use') continue
-    if (firstTime) await chooseLimits(deps, row.id, craft.name, set.id)
-    await useElementSet(deps, { id: set.id })
+    const { sets } = await uploadElements(deps, { bytes, source: 'demo', fileName: `night-${new Date(epochMs).toISOString().slice(0, 13)}h.json` })
+    const isLast = epochMs === epochs.at(-1)
+    for (const set of sets) {
+      if (set.state !== 'waiting' || set.spacecraftId === null || (isLast && scenario.leftWaiting.includes(set.spacecraftName ?? ''))) continue
+      if (isLast && !newest) await chooseLimits(deps, set.spacecraftId, set.spacecraftName ?? '', set.id)
+      await useElementSet(deps, { id: set.id })
+    }
   }
 }
 
@@ -87,9 +83,9 @@ async function chooseLimits(deps: Deps, spacecraftId: string, name: string, setI
     const [link] = await db.select().from(links).where(and(eq(links.spacecraftId, spacecraftId), eq(links.name, scenario[outcome].link)))
     if (!link) continue
     const places = await db.select({ id: stations.id }).from(stations)
-    const uncertainties: number[] = []
-    for (const { id: stationId } of places) uncertainties.push(...uncertaintiesAhead(await loadInputs(deps, { spacecraftId, stationId }, setId), link.id, now.getTime()))
-    const limitHz = limitFor(outcome, uncertainties)
+    const needs: number[] = []
+    for (const { id: stationId } of places) needs.push(...needsAhead(await loadInputs(deps, { spacecraftId, stationId }, setId), link.id, now.getTime()))
+    const limitHz = limitFor(outcome, needs)
     if (limitHz) await db.update(links).set({ limitHz }).where(eq(links.id, link.id))
   }
 }
