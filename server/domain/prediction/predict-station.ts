@@ -14,6 +14,9 @@ import { windowStart, workerInputOf } from './worker-input'
 import { writePrediction } from './write-prediction'
 
 const MOST_TRIES = 3
+/** Shorter than the database takes to look for a deadlock (1 s): a computation gives way to publications and decisions. */
+const LOCK_PATIENCE_MS = 500
+const MOST_WAITS = 8
 
 export interface PredictionRequest extends PairIds {
   /** Goes to the tables that change, in words. */
@@ -31,17 +34,37 @@ export async function predictStation({ db, now }: Pick<Deps, 'db' | 'now'>, requ
     const inputs = await loadInputs({ db, now }, request)
     const known = await loadKnown({ db }, request, from)
     const predicted = await compute(inputs, known, now)
-    const outcome = await db.transaction(async (tx) => {
+    const outcome = await givingWay(() => db.transaction(async (tx) => {
+      await tx.execute(sql.raw(`SET LOCAL lock_timeout = ${LOCK_PATIENCE_MS}`))
       await tx.execute(sql`SELECT pg_advisory_xact_lock(hashtextextended(${`${request.spacecraftId}:${request.stationId}`}, 0))`)
       await lockTables({ db: tx }, known.flatMap(pass => pass.tables.map(table => table.id)))
       const knownNow = await loadKnown({ db: tx }, request, from)
       const isCurrent = knownFingerprint(knownNow) === knownFingerprint(known)
         && fingerprint(await loadInputs({ db: tx, now }, request)) === fingerprint(inputs)
       return isCurrent ? join({ db: tx, now, actor: systemActor }, request, inputs, knownNow, predicted) : null
-    })
+    }))
     if (outcome) return outcome
   }
   throw new Error('What the prediction is made with kept changing: try again when the changes are done.')
+}
+
+/** Tries again what could not get its locks in time; what has been computed stays good meanwhile, or is found not to be. */
+async function givingWay<T>(act: () => Promise<T>): Promise<T> {
+  for (let waits = 1; ; waits++) {
+    try {
+      return await act()
+    }
+    catch (error) {
+      if (waits === MOST_WAITS || !isLockTimeout(error)) throw error
+    }
+  }
+}
+
+function isLockTimeout(error: unknown): boolean {
+  for (let cause = error; cause instanceof Error; cause = cause.cause) {
+    if ((cause as { code?: unknown }).code === '55P03') return true
+  }
+  return false
 }
 
 function compute(inputs: PairInputs, known: readonly KnownPass[], now: Date): Promise<PredictStationOutput> | null {

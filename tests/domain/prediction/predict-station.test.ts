@@ -1,4 +1,4 @@
-import { and, asc, eq } from 'drizzle-orm'
+import { and, asc, eq, sql } from 'drizzle-orm'
 import { afterAll, beforeAll, beforeEach, describe, expect, it } from 'vitest'
 import type { Database } from '~~/server/database/client'
 import { openDatabase } from '~~/server/database/client'
@@ -155,6 +155,23 @@ describe('prediction of one spacecraft at one station', () => {
   it('two computations of one pair at once keep each pass once', async () => {
     await Promise.all([predict('One.'), predict('Other.')])
     expect(await passRows()).toHaveLength(referencePassesOf('SSO500', 'N78', 5).length)
+  })
+
+  it('gives way to whoever holds one of its tables, and comes after', async () => {
+    await predict()
+    const [first] = await revisionRows()
+    const other = await addSet(database.db, fleet.spacecraftId, ahead(referenceElements('SSO500'), 20))
+    await useSet(database.db, fleet.spacecraftId, other)
+    let released = 0
+    await Promise.all([
+      database.db.transaction(async (tx) => {
+        await tx.select().from(tables).where(eq(tables.id, first!.revision.tableId)).for('update')
+        await tx.execute(sql`SELECT pg_sleep(2)`)
+        released = performance.now()
+      }),
+      predict('New elements.').then(() => expect(released).toBeGreaterThan(0)),
+    ])
+    expect((await revisionRows()).every(({ revision }) => revision.elementSetId === other)).toBe(true)
   })
 
   it('starts over when another set goes into use while it computes', async () => {
