@@ -51,7 +51,10 @@ export default defineNuxtConfig({
   vite: { worker: { format: 'es' } },
   typescript: {
     strict: true,
-    nodeTsConfig: { include: ['../tests/**/*', '../vitest.config.ts', '../drizzle.config.ts', '../server/workers/bundle.ts'] },
+    nodeTsConfig: {
+      include: ['../tests/**/*', '../vitest.config.ts', '../drizzle.config.ts', '../server/workers/bundle.ts'],
+      compilerOptions: { paths: { '#shared/*': ['../shared/*'], '~~/*': ['../*'], '~/*': ['../app/*'] } },
+    },
     tsConfig: { compilerOptions: { noUncheckedIndexedAccess: true } },
   },
   nitro: {
