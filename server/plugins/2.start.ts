@@ -4,6 +4,7 @@ import { ensureFirstAdministrator } from '~~/server/domain/auth/ensure-first-adm
 import { systemActor } from '~~/server/domain/context'
 import { loadDemo } from '~~/server/domain/demo/load-demo'
 import { isUnavailable } from '~~/server/domain/errors'
+import { resumeUploads } from '~~/server/domain/elements/resume-uploads'
 import { lifecycle } from '~~/server/domain/schedule/lifecycle'
 import { log } from '~~/server/http/log'
 import { bootStep, serves } from '~~/server/jobs/boot'
@@ -16,6 +17,8 @@ export default defineNitroPlugin(() => {
   bootStep('start', async () => {
     const { db } = useDatabase()
     const now = await databaseNow(db)
+    const { resumed, broken } = await resumeUploads({ db, now, actor: systemActor })
+    if (resumed + broken > 0) log.info({ resumed, broken }, 'uploads that a stop had cut off')
     if (!demo) {
       const address = await ensureFirstAdministrator({ db, now })
       // One bare line for the start command, which shows it to whoever started the product.

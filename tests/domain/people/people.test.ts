@@ -4,6 +4,7 @@ import type { Role } from '#shared/permissions'
 import { audit, mails, oneTimeLinks, people, sessions } from '~~/server/database/schema'
 import { hashPassword } from '~~/server/domain/auth/passwords'
 import { startSession } from '~~/server/domain/auth/sign-in'
+import { takeUpLink } from '~~/server/domain/auth/take-up-link'
 import type { PersonActor } from '~~/server/domain/context'
 import { changeMe } from '~~/server/domain/people/change-me'
 import { changePerson } from '~~/server/domain/people/change-person'
@@ -46,7 +47,7 @@ describe('an invitation', () => {
     expect(await refusalOf(invitePerson(deps(), { name: 'Again', email, roles: ['reader'], zone: 'UTC' }))).toMatchObject({ code: 'conflict', paths: ['email'] })
   })
 
-  it('can be sent anew, which ends the one before; not to somebody who has taken it up or is disabled', async () => {
+  it('can be sent anew, which ends the one before; not to somebody who is disabled', async () => {
     const person = await invitePerson(deps(), { name: 'Late', email: 'late@ops.example', roles: ['reader'], zone: 'UTC' })
     const before = await test.db.select().from(oneTimeLinks).where(eq(oneTimeLinks.personId, person.id))
     await inviteAgain(deps(), person.id)
@@ -54,9 +55,18 @@ describe('an invitation', () => {
     expect(after).toHaveLength(1)
     expect(after[0]!.tokenHash).not.toBe(before[0]!.tokenHash)
     expect(await test.db.$count(mails, eq(mails.toAddress, 'late@ops.example'))).toBe(2)
-    expect(await refusalOf(inviteAgain(deps(), (await active(['reader'])).id))).toMatchObject({ code: 'conflict' })
     await changePerson(deps(), person.id, { disabled: true })
     expect(await refusalOf(inviteAgain(deps(), person.id))).toMatchObject({ code: 'conflict' })
+  })
+
+  it('lets somebody who has forgotten the password choose another; the old one works until then', async () => {
+    const person = await active(['reader'])
+    await inviteAgain(deps(), person.id)
+    const [mail] = await test.db.select().from(mails).where(eq(mails.toAddress, person.email))
+    expect(mail!.subject).toContain('new password')
+    expect((await test.db.select().from(people).where(eq(people.id, person.id)))[0]!.passwordHash).toBe(person.passwordHash)
+    await takeUpLink({ db: test.db, now }, { token: /#token=([\w-]+)/.exec(mail!.text)![1]!, password: 'seven quiet herons at low tide' })
+    expect((await test.db.select().from(people).where(eq(people.id, person.id)))[0]!.passwordHash).not.toBe(person.passwordHash)
   })
 })
 
