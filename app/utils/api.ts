@@ -4,9 +4,12 @@ export interface FieldProblem { path: string, message: string, line?: number }
 
 /** What the server said when it did not do it; `fields` name what to mend. */
 export class ApiProblem extends Error {
+  /** As the server wrote it; what a page rendered there hands over to the browser is read from this. */
+  readonly data: { title: string, detail: string, errors: FieldProblem[] }
   constructor(readonly status: number, readonly title: string, readonly detail: string, readonly fields: FieldProblem[] = [], readonly retryAfterS: number | null = null) {
     super(detail)
     this.name = 'ApiProblem'
+    this.data = { title, detail, errors: fields }
   }
 }
 
@@ -37,7 +40,7 @@ export async function callApi<R extends RouteName>(route: R, options: CallOption
 
 export function asProblem(error: unknown): ApiProblem {
   if (error instanceof ApiProblem) return error
-  const { data, status, response } = error as { data?: { title?: string, detail?: string, errors?: FieldProblem[] }, status?: number, response?: { headers: Headers } }
+  const { data, statusCode, status = statusCode, response } = error as { data?: { title?: string, detail?: string, errors?: FieldProblem[] }, status?: number, statusCode?: number, response?: { headers: Headers } }
   if (status && data?.detail) return new ApiProblem(status, data.title ?? '', data.detail, data.errors ?? [], Number(response?.headers.get('retry-after')) || null)
   return new ApiProblem(status ?? 0, 'No answer', status ? `The server answered ${status}.` : 'The server did not answer: check the connection and try again. Nothing you typed is lost.')
 }
