@@ -44,8 +44,8 @@ export function nullHz(link: Pick<LinkModel, 'detector' | 'symbolRateHz' | 'roll
 }
 
 /** What a detector is and where its null lies, with the number once the symbol rate is there. */
-export function detectorSentence(detector: Detector, symbolRateHz: number, rolloff: number | null): string {
-  const at = nullHz({ detector, symbolRateHz, rolloff })
+export function detectorSentence(detector: Detector, symbolRateHz: number | null, rolloff: number | null): string {
+  const at = nullHz({ detector, symbolRateHz: symbolRateHz ?? 0, rolloff })
   const number = at === null ? '' : `: ${formatHz(at)} Hz here`
   switch (detector) {
     case 'quadrature': return rolloff === null

@@ -20,7 +20,7 @@ describe('what a link bears, in the form', () => {
 
   it('has no limit while the symbol rate is not typed, and keeps quiet about it', () => {
     expect(limitsAsTyped({ ...link, symbolRateHz: null as unknown as number })).toEqual([])
-    expect(detectorSentence('quadrature', null as unknown as number, null)).toMatch(/at the symbol rate\.$/)
+    expect(detectorSentence('quadrature', null, null)).toMatch(/at the symbol rate\.$/)
   })
 
   it('places the null of each detector: 1/T in quadrature, 1/(2T) coherent, none when stated', () => {
