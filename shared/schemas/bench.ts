@@ -61,6 +61,7 @@ export type BenchPredictBody = z.infer<typeof benchPredictBody>
 export const benchTable = z.object({
   verdict: verdictSchema, allowanceHz: z.number(), limitedBy: z.string(), worstResidualHz: z.number(), worstAt: instantOut, margin: z.number(), budget: budgetOut,
   excess: z.array(z.object({ from: instantOut, to: instantOut })),
+  workable: z.array(z.object({ from: instantOut, to: instantOut })),
   faults: z.array(z.object({ code: z.string(), at: instantOut, message: z.string() })),
   retunes: z.array(retuneOut),
 })
@@ -68,7 +69,13 @@ export const benchPredictOut = z.object({
   passes: z.array(z.object({
     aos: instantOut, culmination: instantOut, los: instantOut, maxElevationDeg: z.number(),
     aosClipped: z.boolean().optional(), losClipped: z.boolean().optional(),
-    samples: z.array(z.object({ at: instantOut, azimuthDeg: z.number(), elevationDeg: z.number(), rangeM: z.number(), rangeRateMps: z.number(), dopplerHz: z.number(), dopplerRateHzPerS: z.number() })),
+    samples: z.array(z.object({
+      at: instantOut, azimuthDeg: z.number(), elevationDeg: z.number(), rangeM: z.number(), rangeRateMps: z.number(), dopplerHz: z.number(), dopplerRateHzPerS: z.number(),
+      /** What the spacecraft must be above there: mask and minimum elevations. */
+      horizonDeg: z.number(),
+      /** Budget beyond the steps: timing + UT1 + k·spread. */
+      uncertaintyHz: z.number(),
+    })),
     table: benchTable.nullable(),
   })),
   /** What the elements' reader warned of, and when they stop being usable inside the window. */

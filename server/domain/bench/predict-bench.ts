@@ -1,5 +1,5 @@
 import type { BenchAnswer, BenchPass } from '#shared/physics/predict/bench-predict'
-import type { TableCheck } from '#shared/physics/types'
+import type { Span, TableCheck } from '#shared/physics/types'
 import type { BenchPredictBody, BenchPredictOut } from '#shared/schemas/bench'
 import { benchBudget } from '#shared/schemas/bench'
 import { TaskTooHeavy, runTask } from '~~/server/workers/pool'
@@ -43,25 +43,27 @@ function requirePasses(answer: BenchAnswer) {
   return answer
 }
 
-function passOut({ pass, samples, table }: BenchPass): BenchPredictOut['passes'][number] {
+function passOut({ pass, samples, table, parts }: BenchPass): BenchPredictOut['passes'][number] {
   return {
     aos: instant(pass.aosMs), culmination: instant(pass.culminationMs), los: instant(pass.losMs), maxElevationDeg: pass.maxElevationRad * DEG_PER_RAD,
     ...(pass.aosClipped ? { aosClipped: true } : {}),
     ...(pass.losClipped ? { losClipped: true } : {}),
-    samples: samples.map(({ atMs, azimuthRad, elevationRad, rangeM, rangeRateMps, dopplerHz, dopplerRateHzPerS }) => ({
-      at: instant(atMs), azimuthDeg: azimuthRad * DEG_PER_RAD, elevationDeg: elevationRad * DEG_PER_RAD, rangeM, rangeRateMps, dopplerHz, dopplerRateHzPerS,
+    samples: samples.map(({ atMs, azimuthRad, elevationRad, horizonRad, ...rest }) => ({
+      at: instant(atMs), azimuthDeg: azimuthRad * DEG_PER_RAD, elevationDeg: elevationRad * DEG_PER_RAD, horizonDeg: horizonRad * DEG_PER_RAD, ...rest,
     })),
-    table: table && tableOut(table),
+    table: table && { ...tableOut(table), workable: spansOut(parts) },
   }
 }
 
-function tableOut(check: TableCheck): NonNullable<BenchPredictOut['passes'][number]['table']> {
+const spansOut = (spans: readonly Span[]) => spans.map(span => ({ from: instant(span.fromMs), to: instant(span.toMs) }))
+
+function tableOut(check: TableCheck): Omit<NonNullable<BenchPredictOut['passes'][number]['table']>, 'workable'> {
   const { verdict, allowance, worstResidualHz, margin, budget } = check
   const { stepsHz, timingHz, ut1Hz, orbitHz, oscillatorHz, trimHz } = budget
   return {
     verdict, allowanceHz: allowance.allowanceHz, limitedBy: allowance.limitedBy, worstResidualHz, worstAt: instant(check.worstAtMs), margin,
     budget: { stepsHz, timingHz, ut1Hz, orbitHz, oscillatorHz, trimHz },
-    excess: check.excess.map(span => ({ from: instant(span.fromMs), to: instant(span.toMs) })),
+    excess: spansOut(check.excess),
     faults: check.faults.map(({ code, atMs, message }) => ({ code, at: instant(atMs), message })),
     retunes: check.retunes.map(({ atMs, azimuthRad, elevationRad, frequencyHz, slopeHzPerS, dopplerHz, rangeRateMps, residualMinHz, residualMaxHz, lossDb }) => ({
       at: instant(atMs), frequencyHz, slopeHzPerS, dopplerHz, rangeRateMps,

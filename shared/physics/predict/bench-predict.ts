@@ -1,8 +1,9 @@
 import { createEphemeris } from '../orbit/ephemeris'
+import { horizonRad } from '../orbit/mask'
 import { findPasses } from '../orbit/passes'
 import { createPropagator } from '../orbit/propagator'
-import type { BudgetModel, LinkModel, MeanElements, PredictedPass, PropagationError, RadioModel, Site, TableCheck, UtcMs } from '../types'
-import { buildTable } from './build-table'
+import type { BudgetModel, LinkModel, MeanElements, PredictedPass, PropagationError, RadioModel, Site, Span, TableCheck, UtcMs } from '../types'
+import { buildTable, exactUncertainty } from './build-table'
 import type { PassSample } from './sample-pass'
 import { samplePass } from './sample-pass'
 
@@ -20,12 +21,21 @@ export interface BenchProblem {
   readonly mostSamples: number
 }
 
+export interface BenchSample extends PassSample {
+  /** Mask and minimum elevation at the sample's azimuth, the link's own minimum included. */
+  readonly horizonRad: number
+  /** Budget beyond the steps: timing + UT1 + k·spread. */
+  readonly uncertaintyHz: number
+}
+
 export interface BenchPass {
   /** AOS, culmination and LOS to the whole millisecond. */
   readonly pass: PredictedPass
-  readonly samples: readonly PassSample[]
+  readonly samples: readonly BenchSample[]
   /** Null where the pass has no instant above the link's own minimum elevation. */
   readonly table: TableCheck | null
+  /** Workable part of the pass for the link; empty where there is no table. */
+  readonly parts: readonly Span[]
 }
 
 export type BenchAnswer =
@@ -51,14 +61,18 @@ export function benchPredict(problem: BenchProblem): BenchAnswer {
   if (count > problem.mostSamples) return { kind: 'too-many-samples', count }
 
   const budget: BudgetModel = { ...problem.budget, alongTrackSigmaS: () => problem.budget.alongTrackSigmaS }
+  const { direction, carrierHz } = link
+  const uncertainty = exactUncertainty({ stateAt: ephemeris.stateAt, site, ut1MinusUtcS, direction, carrierHz }, budget, radio)
   return {
     kind: 'passes', endedBy, validUntilMs,
     passes: passes.map((exact) => {
       // Samples bear whole milliseconds: in half of one the range rate of a low pass moves by 0.05 m/s.
       const pass = wholeMilliseconds(exact, Math.floor(ephemeris.toMs))
-      const samples = samplePass(pass, { ephemeris, site, direction: link.direction, carrierHz: link.carrierHz, ut1MinusUtcS, stepS: sampleIntervalS })
+      const samples = samplePass(pass, { ephemeris, site, direction, carrierHz, ut1MinusUtcS, stepS: sampleIntervalS }).map(sample => ({
+        ...sample, horizonRad: horizonRad(site, sample.azimuthRad, problem.linkMinElevationRad), uncertaintyHz: uncertainty(sample.atMs),
+      }))
       const table = buildTable({ propagator, ephemeris, site, link, linkMinElevationRad: problem.linkMinElevationRad, radio, budget, pass: exact })
-      return { pass, samples, table: table.kind === 'table' ? table.check : null }
+      return table.kind === 'table' ? { pass, samples, table: table.check, parts: table.parts } : { pass, samples, table: null, parts: [] }
     }),
   }
 }

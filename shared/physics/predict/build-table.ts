@@ -77,6 +77,17 @@ export function residualOfRows(query: ResidualQuery): TableCheck | NotWorkable {
   return parts.length === 0 ? { kind: 'not-workable' } : checkTable({ ...query, parts })
 }
 
+/** Uncertainty at an instant, Hz: timing + UT1 + k·spread. Partials of causes that are zero are not asked for. */
+export function exactUncertainty(path: LinkPath, budget: BudgetModel, radio: RadioModel): (utcMs: UtcMs) => Hz {
+  const rate = createNeededFrequency(path).rateHzPerS
+  return utcMs => uncertaintyHz(budgetAt({
+    utcMs, carrierHz: path.carrierHz,
+    rateHzPerS: budget.clockErrorMs + radio.latencyUncertaintyMs > 0 ? rate(utcMs) : 0,
+    alongTrackHzPerS: budget.alongTrackSigmaS(utcMs) > 0 ? partialAlongTrackHzPerS(path, utcMs) : 0,
+    ut1HzPerS: budget.ut1BoundS > 0 ? partialUt1HzPerS(path, utcMs) : 0,
+  }, budget, radio), budget.k)
+}
+
 /** Spacing of the nodes between which the uncertainty is interpolated, and what is added for it. */
 const NODE_MS = 4000
 const NODE_ROOM = 1.01
@@ -86,13 +97,7 @@ const NODE_ROOM = 1.01
  * interpolated in straight pieces; one per cent is added, which no low orbit uses up.
  */
 function uncertaintyOver(path: LinkPath, ephemeris: Ephemeris, budget: BudgetModel, radio: RadioModel): (utcMs: UtcMs) => Hz {
-  const rate = createNeededFrequency(path).rateHzPerS
-  const exact = (utcMs: UtcMs): Hz => uncertaintyHz(budgetAt({
-    utcMs, carrierHz: path.carrierHz,
-    rateHzPerS: budget.clockErrorMs + radio.latencyUncertaintyMs > 0 ? rate(utcMs) : 0,
-    alongTrackHzPerS: budget.alongTrackSigmaS(utcMs) > 0 ? partialAlongTrackHzPerS(path, utcMs) : 0,
-    ut1HzPerS: budget.ut1BoundS > 0 ? partialUt1HzPerS(path, utcMs) : 0,
-  }, budget, radio), budget.k)
+  const exact = exactUncertainty(path, budget, radio)
   const nodes = new Map<number, Hz>()
   const node = (n: number): Hz => {
     let value = nodes.get(n)

@@ -56,6 +56,33 @@ describe('a what-if', () => {
     expect(Math.min(timingHz, ut1Hz, orbitHz)).toBeGreaterThan(0)
   })
 
+  it('says how uncertain each sample is: what the budget holds beyond its steps', async () => {
+    const [plain] = (await ask()).passes
+    expect(plain!.samples.every(sample => sample.uncertaintyHz === 0)).toBe(true)
+    const passes = (await ask({ budget: { clockErrorMs: 10, alongTrackSigmaS: 0.1, spacecraftPpm: 0.1, stationPpm: 0.1, ut1BoundS: 0.05, k: 3 }, sampleIntervalS: 1 })).passes
+    for (const { table, samples } of passes) {
+      const { timingHz, ut1Hz, orbitHz, oscillatorHz } = table!.budget
+      const nearest = samples.reduce((best, sample) => Math.abs(Date.parse(sample.at) - Date.parse(table!.worstAt)) < Math.abs(Date.parse(best.at) - Date.parse(table!.worstAt)) ? sample : best)
+      // Limits add; k times the root of the squares of the spreads. Within half a second it moves by under a per cent.
+      expect(nearest.uncertaintyHz / (timingHz + ut1Hz + 3 * Math.hypot(orbitHz, oscillatorHz))).toBeCloseTo(1, 2)
+    }
+  })
+
+  it('gives the workable part above mask and minimum, whose ends lie on the horizon beside each sample', async () => {
+    const mask = [{ azimuthDeg: 0, elevationDeg: 8 }, { azimuthDeg: 180, elevationDeg: 30 }]
+    const passes = (await ask({ station: { ...place, mask }, sampleIntervalS: 0.1 })).passes.filter(pass => pass.table)
+    expect(passes.length).toBeGreaterThan(2)
+    for (const { table, samples } of passes) {
+      for (const { at, azimuthDeg, horizonDeg, elevationDeg } of samples) {
+        // Linear between the mask's two points, on either side of north.
+        const turn = Math.min(azimuthDeg, 360 - azimuthDeg)
+        expect(horizonDeg).toBeCloseTo(8 + turn * 22 / 180, 6)
+        const inside = table!.workable.some(({ from, to }) => from <= at && at <= to)
+        if (Math.abs(elevationDeg - horizonDeg) > 0.01) expect(inside).toBe(elevationDeg > horizonDeg)
+      }
+    }
+  })
+
   it('samples from AOS by the interval asked for, with culmination and LOS, in whole milliseconds', async () => {
     for (const pass of (await ask({ sampleIntervalS: 7.5 })).passes) {
       const times = pass.samples.map(sample => Date.parse(sample.at))
