@@ -65,14 +65,12 @@ CREATE TABLE "spacecraft" (
 	"catalogue_number" text,
 	"designator" text,
 	"oscillator_ppm" double precision DEFAULT 0 NOT NULL,
-	"priority" integer DEFAULT 5 NOT NULL,
 	"element_age_limit_hours" double precision DEFAULT 72 NOT NULL,
 	"along_track_floor_km" double precision,
 	"along_track_growth_km_per_day" double precision,
 	"in_use_set_id" uuid,
 	"retired_at" timestamp (3) with time zone,
 	"created_at" timestamp (3) with time zone DEFAULT now() NOT NULL,
-	CONSTRAINT "spacecraft_priority_range" CHECK ("spacecraft"."priority" BETWEEN 1 AND 9),
 	CONSTRAINT "spacecraft_oscillator_range" CHECK ("spacecraft"."oscillator_ppm" >= 0 AND "spacecraft"."oscillator_ppm" <= 1000),
 	CONSTRAINT "spacecraft_age_limit_range" CHECK ("spacecraft"."element_age_limit_hours" > 0)
 );

@@ -86,9 +86,9 @@ it('tells the age of the elements in use, the links in service and the sets that
 
 it('asks for its tables anew when the error budget changes, and only then; the trail says before and after', async () => {
   const craft = await addSpacecraft(test.db, now, { oscillatorPpm: 1 })
-  await changeSpacecraft(deps(), craft.id, { priority: 1, elementAgeLimitHours: 24 })
+  await changeSpacecraft(deps(), craft.id, { elementAgeLimitHours: 24 })
   expect(await queuedJobs(test.db, 'predict')).toEqual([])
-  await changeSpacecraft(deps(), craft.id, { oscillatorPpm: 2, priority: 1 })
+  await changeSpacecraft(deps(), craft.id, { oscillatorPpm: 2 })
   expect(await queuedJobs(test.db, 'predict')).toHaveLength(2)
   const [row] = await test.db.select().from(audit).where(and(eq(audit.entityId, craft.id), eq(audit.action, 'spacecraft.change'))).orderBy(desc(audit.id)).limit(1)
   expect(row).toMatchObject({ before: { oscillatorPpm: 1 }, after: { oscillatorPpm: 2 }, actorId: actor.id })
