@@ -53,3 +53,10 @@ export function budgetWords(budget: { clockErrorMs: number, alongTrackSigmaS: nu
   ].filter(Boolean)
   return parts.length ? parts.join(', ') : 'every uncertainty 0'
 }
+
+/** Things under the heading that each belongs to, headings in the order in which they first come. */
+export function underHeadings<T extends { id: string }>(things: readonly T[], heading: (thing: T) => string, name: (thing: T) => string): { name: string, options: { id: string, name: string }[] }[] {
+  const groups = new Map<string, { id: string, name: string }[]>()
+  for (const thing of things) groups.set(heading(thing), [...groups.get(heading(thing)) ?? [], { id: thing.id, name: name(thing) }])
+  return [...groups].map(([of, options]) => ({ name: of, options }))
+}
