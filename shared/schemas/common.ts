@@ -1,5 +1,8 @@
 import { z } from 'zod'
 
+// In the browser schemas are interpreted: their compiled form needs eval, which the content security policy forbids.
+if ('window' in globalThis) z.config({ jitless: true })
+
 export const idSchema = z.uuid()
 
 /** Any offset is accepted and converted; an instant without a zone is refused. Out: UTC, milliseconds, Z. */
