@@ -65,6 +65,19 @@ describe('a residual beyond its allowance', () => {
     expect(alert!.mails).toEqual([{ to: 'Ona', state: 'queued', attempts: 0, lastError: null, sentAt: null }])
   })
 
+  it('speaks of the tables that break, not of those that are only tight', async () => {
+    await tableAt(minutes(70), { margin: 1.02 })
+    const other = await addStation(database.db)
+    await addTable(database.db, craft, other, await addPass(database.db, craft, other, after(minutes(80))), { margin: 1.04 })
+    const breaking = await tableAt(minutes(300), { margin: 0.8 })
+    await tableAt(minutes(360), { margin: 0.5 })
+    await reconcile()
+    const [alert] = await standing()
+    expect(alert).toMatchObject({ count: 2, tableId: breaking.id, dueAt: after(minutes(300)).toISOString() })
+    expect(alert!.detail).toMatch(/^2 tables .* at one station break, the first with AOS 2026-12-01 17:00:00 UTC.* 2\u202F000 Hz/)
+    expect((await database.db.select().from(mails))[0]!.text).toContain('2026-12-01 17:00:00 UTC')
+  })
+
   it('leaves alone what is held, further than two days ahead, or over', async () => {
     await tableAt(minutes(70), { margin: 0.5, state: 'held' })
     await tableAt(minutes(49 * 60), { margin: 0.5 })
