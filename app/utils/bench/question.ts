@@ -24,7 +24,7 @@ export interface BenchQuestion {
 
 const MINUTE_MS = 60_000
 const DAY_MS = 86_400_000
-const minuteText = (utcMs: number) => `${new Date(utcMs).toISOString().slice(0, 16)}Z`
+const minuteText = (utcMs: number) => new Date(utcMs).toISOString().slice(0, 16).replace('T', ' ')
 
 /** The 24 hours from this minute on. */
 export function comingDay(nowMs: number): { from: string, to: string } {
