@@ -1,5 +1,9 @@
-import type { z } from 'zod'
+import { z } from 'zod'
+import { findUnstorable } from '#shared/storable-text'
 import { DomainError } from './errors'
+
+/** An instant in a cursor, as `toISOString` writes it and the database reads it. */
+export const cursorInstant = z.iso.datetime({ precision: 3 }).regex(/^[1-9]/)
 
 /** The key of a page's last row, opaque to the caller. */
 export function writeCursor(key: readonly (string | number | null)[]): string {
@@ -11,7 +15,7 @@ export function readCursor<T extends z.ZodType>(cursor: string | undefined, form
   if (cursor === undefined) return null
   try {
     const result = form.safeParse(JSON.parse(Buffer.from(cursor, 'base64url').toString('utf8')))
-    if (result.success) return result.data
+    if (result.success && !findUnstorable(result.data)) return result.data
   }
   catch { /* not JSON */ }
   throw new DomainError('not-valid', 'cursor: take it from nextCursor of the page before, unchanged.', [{ path: 'cursor', message: 'Take it from nextCursor of the page before, unchanged.' }])

@@ -39,12 +39,21 @@ export class DomainError extends Error {
   }
 }
 
-/** A database, worker or mail server out of reach answers 503, and nothing else does. */
+/** A database out of reach, or two transactions in each other's way, answers 503, and nothing else does: trying again helps. */
 export function isUnavailable(error: unknown): boolean {
   for (let cause = error; cause instanceof Error; cause = cause.cause) {
     const code = (cause as { code?: unknown }).code
-    if (typeof code === 'string' && (/^(08|57P0|53)/.test(code) || code === '57014' || code === 'ECONNREFUSED' || code === 'ECONNRESET' || code === 'EPIPE' || code === 'ETIMEDOUT')) return true
+    if (typeof code === 'string' && (/^(08|57P0|53|40)/.test(code) || code === '57014' || code === 'ECONNREFUSED' || code === 'ECONNRESET' || code === 'EPIPE' || code === 'ETIMEDOUT')) return true
     if (/timeout exceeded when trying to connect|Connection terminated|Query read timeout/i.test(cause.message)) return true
+  }
+  return false
+}
+
+/** A value that PostgreSQL cannot read or hold (SQLSTATE class 22): what came in should have been refused before. */
+export function isDataException(error: unknown): boolean {
+  for (let cause = error; cause instanceof Error; cause = cause.cause) {
+    const { code } = cause as { code?: unknown }
+    if (typeof code === 'string' && /^22\w{3}$/.test(code)) return true
   }
   return false
 }

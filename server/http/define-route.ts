@@ -3,7 +3,9 @@ import { defineEventHandler, getQuery, getRequestHeader, getRouterParams, setRes
 import type { z } from 'zod'
 import type { RouteAnswer, RouteBody, RouteName, RouteParams, RouteQuery, RouteSpec, Routes } from '#shared/routes'
 import { routes } from '#shared/routes'
+import { findUnstorable } from '#shared/storable-text'
 import type { Actor, KeyActor, PersonActor } from '~~/server/domain/context'
+import type { FieldError } from '~~/server/domain/errors'
 import { DomainError } from '~~/server/domain/errors'
 import type { Db } from '~~/server/database/client'
 import { databaseNow, useDatabase } from '~~/server/database/client'
@@ -57,9 +59,13 @@ export function defineRoute<R extends RouteName>(name: R, act: (context: RouteCo
 }
 
 function parse(schema: z.ZodType, value: unknown, code: 'not-found' | 'not-valid'): unknown {
+  const unstorable = code === 'not-valid' ? findUnstorable(value) : null
+  if (unstorable) throw notValid([unstorable])
   const result = schema.safeParse(value)
   if (result.success) return result.data
   if (code === 'not-found') throw new DomainError('not-found', 'There is nothing under this address.')
-  const fields = result.error.issues.map(issue => ({ path: issue.path.map(String).join('.'), message: issue.message }))
-  throw new DomainError('not-valid', fields.length === 1 ? `${fields[0]!.path || 'body'}: ${fields[0]!.message}` : `${fields.length} fields need mending.`, fields)
+  throw notValid(result.error.issues.map(issue => ({ path: issue.path.map(String).join('.'), message: issue.message })))
 }
+
+const notValid = (fields: readonly FieldError[]) =>
+  new DomainError('not-valid', fields.length === 1 ? `${fields[0]!.path || 'body'}: ${fields[0]!.message}` : `${fields.length} fields need mending.`, fields)

@@ -6,6 +6,7 @@ import { entityTag, matchTag } from '~~/server/domain/station/entity-tag'
 import { chooseNotation, notations } from '~~/server/domain/station/notation'
 import type { FeedTable } from '~~/server/domain/station/read-feed-table'
 import { readFeedTable, writeFeedTable } from '~~/server/domain/station/read-feed-table'
+import { describeError } from './describe-error'
 import { log } from './log'
 
 type Request = Deps<KeyActor & { stationId: string }> & { event: H3Event, params: { id: string } }
@@ -21,7 +22,7 @@ export async function serveTable({ event, db, now, actor, params }: Request): Pr
   const tag = entityTag(table.digest, notation)
   setResponseHeaders(event, { 'etag': tag, 'table-revision': String(table.revision), 'table-digest': `sha-256=${table.digest}`, 'table-signature': table.signature })
   const match = matchTag(getRequestHeader(event, 'if-none-match'), tag)
-  if (match !== 'any' && event.method !== 'HEAD' && !table.isCollected) collectWhenSent(event, { db, now, actor }, table)
+  if (match !== 'any' && event.node.req.method !== 'HEAD' && !table.isCollected) collectWhenSent(event, { db, now, actor }, table)
   if (match !== 'none') {
     setResponseStatus(event, 304)
     await send(event, null)
@@ -35,6 +36,6 @@ function collectWhenSent(event: H3Event, deps: Deps, table: FeedTable): void {
   res.once('finish', () => {
     // Node says `finish` also where the connection was lost before the last bytes were taken.
     if (req.socket.destroyed) return
-    collectTable(deps, table).catch(error => log.error({ requestId: event.context.requestId, tableId: table.tableId, error: String(error) }, 'a fetched table could not be marked collected'))
+    collectTable(deps, table).catch(error => log.error({ requestId: event.context.requestId, tableId: table.tableId, error: describeError(error) }, 'a fetched table could not be marked collected'))
   })
 }

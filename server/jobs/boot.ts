@@ -1,4 +1,5 @@
 import { lifecycle } from '~~/server/domain/schedule/lifecycle'
+import { describeError } from '~~/server/http/describe-error'
 import { log } from '~~/server/http/log'
 
 let chain: Promise<void> = Promise.resolve()
@@ -14,7 +15,7 @@ export function bootStep(name: string, step: () => Promise<void>): void {
         return await step()
       }
       catch (error) {
-        log.error({ step: name, error: error instanceof Error ? { name: error.name, message: error.message, stack: error.stack } : String(error) }, 'a step of the start failed; it is tried again')
+        log.error({ step: name, error: describeError(error) }, 'a step of the start failed; it is tried again')
         await new Promise(resolve => setTimeout(resolve, 2000))
       }
     }

@@ -6,6 +6,7 @@ import { loadDemo } from '~~/server/domain/demo/load-demo'
 import { isUnavailable } from '~~/server/domain/errors'
 import { resumeUploads } from '~~/server/domain/elements/resume-uploads'
 import { lifecycle } from '~~/server/domain/schedule/lifecycle'
+import { describeError } from '~~/server/http/describe-error'
 import { log } from '~~/server/http/log'
 import { bootStep, serves } from '~~/server/jobs/boot'
 
@@ -32,7 +33,7 @@ export default defineNitroPlugin(() => {
     catch (error) {
       if (isUnavailable(error)) throw error
       lifecycle.demo = 'failed'
-      log.error({ error: error instanceof Error ? { name: error.name, message: error.message, stack: error.stack } : String(error) }, 'the demo did not load')
+      log.error({ error: describeError(error) }, 'the demo did not load')
     }
   })
 })

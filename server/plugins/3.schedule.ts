@@ -4,6 +4,7 @@ import { databaseNow, useDatabase } from '~~/server/database/client'
 import { isUnavailable } from '~~/server/domain/errors'
 import { lifecycle } from '~~/server/domain/schedule/lifecycle'
 import { wake } from '~~/server/domain/schedule/wake'
+import { describeError } from '~~/server/http/describe-error'
 import { log } from '~~/server/http/log'
 import { bootStep, serves } from '~~/server/jobs/boot'
 
@@ -16,7 +17,7 @@ export default defineNitroPlugin((nitroApp) => {
   let alertsAt = 0
 
   const onError = (part: string, error: unknown) => {
-    const told = { part, error: error instanceof Error ? { name: error.name, message: error.message, cause: error.cause instanceof Error ? error.cause.message : undefined, stack: error.stack } : String(error) }
+    const told = { part, error: describeError(error) }
     if (isUnavailable(error)) log.warn(told, 'the schedule waits for the database')
     else log.error(told, 'a part of the schedule failed')
   }

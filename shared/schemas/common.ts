@@ -5,12 +5,19 @@ if ('window' in globalThis) z.config({ jitless: true })
 
 export const idSchema = z.uuid()
 
+/** What ISO 8601 writes with four digits and the database reads. */
+const [firstMs, lastMs] = [Date.parse('1000-01-01T00:00:00.000Z'), Date.parse('9999-12-31T23:59:59.999Z')]
+
 /** Any offset is accepted and converted; an instant without a zone is refused. Out: UTC, milliseconds, Z. */
 export const instantSchema = z.string()
   .regex(/^\d{4}-\d{2}-\d{2}T\d{2}:\d{2}(:\d{2}(\.\d{1,9})?)?(Z|[+-]\d{2}:\d{2})$/, 'Write an instant as 2026-12-01T03:12:45.000Z; a zone (Z or +01:00) is needed.')
   .refine(text => Number.isFinite(Date.parse(text)) && dayExists(text), 'This day or time does not exist.')
+  .refine(text => !(Date.parse(text) < firstMs || Date.parse(text) > lastMs), 'Give a year from 1000 to 9999.')
   .transform(text => new Date(Date.parse(text)).toISOString())
   .meta({ format: 'date-time' })
+
+/** In an address a plus sign that was not escaped arrives as a space; before an offset it can have been nothing else. */
+export const instantQuerySchema = z.string().transform(text => text.replace(/ (?=\d{2}:\d{2}$)/, '+')).pipe(instantSchema).meta({ format: 'date-time' })
 
 function dayExists(text: string): boolean {
   const [year, month, day] = text.slice(0, 10).split('-').map(Number) as [number, number, number]
@@ -46,5 +53,3 @@ export const pageQuery = z.strictObject({
 })
 export const listOf = <T extends z.ZodType>(item: T) => z.object({ items: z.array(item), nextCursor: z.string().nullable() })
 export const idParams = z.strictObject({ id: idSchema })
-export const reasonBody = z.strictObject({ reason: reasonSchema })
-export const emptyBody = z.strictObject({}).optional()

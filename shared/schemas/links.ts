@@ -5,13 +5,15 @@ export const directionSchema = z.enum(['uplink', 'downlink'])
 export const detectorSchema = z.enum(['quadrature', 'coherent', 'stated'])
 
 const hz = positive().max(1e12)
+/** Smaller figures mean nothing, and dividing by them overflows. */
+const carrierHz = z.number().min(1).max(1e12)
 const fields = {
   name: nameSchema,
   direction: directionSchema,
-  carrierHz: hz,
+  carrierHz,
   bandLowHz: hz,
   bandHighHz: hz,
-  symbolRateHz: positive().max(1e10),
+  symbolRateHz: z.number().min(1e-3).max(1e10),
   modulation: shortTextSchema.min(1, 'Name the modulation, such as BPSK.'),
   detector: detectorSchema,
   permittedLossDb: positive().max(20),
@@ -22,7 +24,7 @@ const fields = {
   limitHz: hz.nullable(),
   driftLimitHzPerS: positive().max(1e9).nullable(),
   jumpLimitHz: hz.nullable(),
-  errorRate: z.number().gt(0).lt(0.5),
+  errorRate: z.number().min(1e-100).lt(0.5),
   minElevationDeg: atLeastZero().lt(90),
   approveWhatHolds: z.boolean(),
 }

@@ -39,7 +39,7 @@ const radioFields = {
   receives: z.boolean(),
   tuneLowHz: positive().max(1e12),
   tuneHighHz: positive().max(1e12),
-  stepHz: positive().max(1e9),
+  stepHz: z.number().min(1e-3).max(1e9),
   offsetHz: z.number().min(-1e12).max(1e12),
   minDwellS: atLeastZero().max(3600),
   latencyMs: atLeastZero().max(60_000),

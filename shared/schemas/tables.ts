@@ -1,11 +1,11 @@
 import { z } from 'zod'
 import { revisionStates } from '../table-life'
-import { idSchema, instantOut, instantSchema, pageQuery, reasonSchema } from './common'
+import { idSchema, instantOut, instantQuerySchema, pageQuery, reasonSchema } from './common'
 
 export const verdictSchema = z.enum(['holds', 'tight', 'breaks'])
 export const revisionStateSchema = z.enum(revisionStates)
 
-export const passesQuery = pageQuery.extend({ from: instantSchema.optional(), to: instantSchema.optional(), stationId: idSchema.optional(), spacecraftId: idSchema.optional() })
+export const passesQuery = pageQuery.extend({ from: instantQuerySchema.optional(), to: instantQuerySchema.optional(), stationId: idSchema.optional(), spacecraftId: idSchema.optional() })
 export const tablesQuery = passesQuery.extend({ state: revisionStateSchema.optional(), verdict: verdictSchema.optional() })
 
 export const tableBrief = z.object({

@@ -4,12 +4,12 @@ import type { AlertOut } from '#shared/schemas/alerts'
 import { alerts, mails, spacecraft, stations, tables } from '~~/server/database/schema'
 import type { Db } from '~~/server/database/client'
 import type { Deps } from '../context'
-import { readCursor, toPage } from '../cursor'
+import { cursorInstant, readCursor, toPage } from '../cursor'
 import { DomainError } from '../errors'
 
 export interface AlertsQuery { state?: 'open' | 'acknowledged' | 'closed' | 'standing', limit: number, cursor?: string }
 
-const form = z.tuple([z.iso.datetime(), z.uuid()])
+const form = z.tuple([cursorInstant, z.uuid()])
 
 /** Newest first, with names and what became of their mails. */
 export async function listAlerts({ db }: Pick<Deps, 'db'>, { state, limit, cursor }: AlertsQuery): Promise<{ items: AlertOut[], nextCursor: string | null }> {

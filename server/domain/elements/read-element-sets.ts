@@ -4,7 +4,7 @@ import type { ElementSetOut, elementSetsQuery } from '#shared/schemas/elements'
 import type { Db } from '~~/server/database/client'
 import { elementSets, elementUploads, spacecraft } from '~~/server/database/schema'
 import type { Deps } from '../context'
-import { readCursor, toPage } from '../cursor'
+import { cursorInstant, readCursor, toPage } from '../cursor'
 import { DomainError } from '../errors'
 import { apsidesKm } from './apsides'
 
@@ -32,7 +32,7 @@ function toOut({ set, spacecraftName, uploadedAt, uploadedBy }: Row, now: Date):
 
 /** Element sets, newest epoch first. */
 export async function listElementSets({ db, now }: Pick<Deps, 'db' | 'now'>, query: z.output<typeof elementSetsQuery>) {
-  const after = readCursor(query.cursor, z.tuple([z.iso.datetime(), z.uuid()]))
+  const after = readCursor(query.cursor, z.tuple([cursorInstant, z.uuid()]))
   const rows = await select(db)
     .where(and(
       query.spacecraftId ? eq(elementSets.spacecraftId, query.spacecraftId) : undefined,

@@ -4,7 +4,7 @@ import type { UploadOut } from '#shared/schemas/elements'
 import type { Db } from '~~/server/database/client'
 import { elementSets, elementUploads, spacecraft } from '~~/server/database/schema'
 import type { Deps } from '../context'
-import { readCursor, toPage } from '../cursor'
+import { cursorInstant, readCursor, toPage } from '../cursor'
 import { DomainError } from '../errors'
 import { readBytesOf, readOriginal } from './read-upload'
 import { contentSha256 } from './store-sets'
@@ -23,7 +23,7 @@ function briefOut(row: Brief) {
 
 /** Uploads, newest first, without their reports. */
 export async function listUploads({ db }: Pick<Deps, 'db'>, query: { limit: number, cursor?: string }) {
-  const after = readCursor(query.cursor, z.tuple([z.iso.datetime(), z.uuid()]))
+  const after = readCursor(query.cursor, z.tuple([cursorInstant, z.uuid()]))
   const rows = await db.select(briefColumns).from(elementUploads)
     .where(after ? sql`(${elementUploads.createdAt}, ${elementUploads.id}) < (${after[0]}::timestamptz, ${after[1]}::uuid)` : undefined)
     .orderBy(desc(elementUploads.createdAt), desc(elementUploads.id)).limit(query.limit + 1)

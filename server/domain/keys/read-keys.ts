@@ -4,7 +4,7 @@ import type { keyOut } from '#shared/schemas/people'
 import { apiKeys, stations } from '~~/server/database/schema'
 import { requireFound } from '../catalogue/require-row'
 import type { Deps } from '../context'
-import { readCursor, toPage } from '../cursor'
+import { cursorInstant, readCursor, toPage } from '../cursor'
 
 type KeyOut = z.infer<typeof keyOut>
 const select = (db: Deps['db']) => db.select({ key: apiKeys, stationName: stations.name }).from(apiKeys).leftJoin(stations, eq(stations.id, apiKeys.stationId)).$dynamic()
@@ -16,7 +16,7 @@ function toOut({ key, stationName }: { key: typeof apiKeys.$inferSelect, station
 
 /** Keys, newest first, revoked ones too. */
 export async function listKeys({ db }: Pick<Deps, 'db'>, query: { limit: number, cursor?: string }) {
-  const after = readCursor(query.cursor, z.tuple([z.iso.datetime(), z.uuid()]))
+  const after = readCursor(query.cursor, z.tuple([cursorInstant, z.uuid()]))
   const rows = await select(db)
     .where(after ? sql`(${apiKeys.createdAt}, ${apiKeys.id}) < (${after[0]}::timestamptz, ${after[1]}::uuid)` : undefined)
     .orderBy(desc(apiKeys.createdAt), desc(apiKeys.id)).limit(query.limit + 1)

@@ -3,7 +3,7 @@ import { z } from 'zod'
 import type { mailOut } from '#shared/schemas/alerts'
 import { mails } from '~~/server/database/schema'
 import type { Deps } from '../context'
-import { readCursor, toPage } from '../cursor'
+import { cursorInstant, readCursor, toPage } from '../cursor'
 
 export type MailRow = typeof mails.$inferSelect
 
@@ -14,7 +14,7 @@ export function mailToOut({ id, kind, toName, toAddress, subject, state, attempt
 
 /** Mail sent, waiting and failed, newest first. */
 export async function listMails({ db }: Pick<Deps, 'db'>, query: { limit: number, cursor?: string }) {
-  const after = readCursor(query.cursor, z.tuple([z.iso.datetime(), z.uuid()]))
+  const after = readCursor(query.cursor, z.tuple([cursorInstant, z.uuid()]))
   const rows = await db.select().from(mails)
     .where(after ? sql`(${mails.createdAt}, ${mails.id}) < (${after[0]}::timestamptz, ${after[1]}::uuid)` : undefined)
     .orderBy(desc(mails.createdAt), desc(mails.id)).limit(query.limit + 1)

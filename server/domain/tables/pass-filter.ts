@@ -2,11 +2,12 @@ import type { SQL } from 'drizzle-orm'
 import { and, eq, gte, lt, sql } from 'drizzle-orm'
 import { z } from 'zod'
 import { passes } from '~~/server/database/schema'
+import { cursorInstant } from '../cursor'
 
 export interface PassFilter { from?: string, to?: string, stationId?: string, spacecraftId?: string }
 
 /** AOS and id of a page's last row. */
-export const passKey = z.tuple([z.iso.datetime(), z.uuid()])
+export const passKey = z.tuple([cursorInstant, z.uuid()])
 
 /** Passes that end at or after `from` and rise before `to`. Those no longer predicted only while a station has a table of theirs. */
 export function passConditions({ from, to, stationId, spacecraftId }: PassFilter): SQL | undefined {
