@@ -52,7 +52,7 @@ export const elementSetOut = z.object({
 })
 export type ElementSetOut = z.infer<typeof elementSetOut>
 
-export const refuseSetBody = z.strictObject({ reason: reasonSchema })
+export const refuseSetBody = z.strictObject({ reason: reasonSchema.optional() }).optional()
 
 /** Shift of prediction of the coming passes against the set in use. */
 export const comparisonOut = z.object({

@@ -9,7 +9,7 @@ import { readAlert } from './read-alerts'
 import { requireAlert } from './require-alert'
 
 /**
- * Closes an alert. While its cause stands that is setting it aside: with a reason, by on-call or an administrator only;
+ * Closes an alert. While its cause stands that is setting it aside, by on-call or an administrator only;
  * it then calls again when the cause has been gone and comes back, or is worse by a fifth.
  */
 export async function closeAlert(given: Deps, input: { alertId: string, reason?: string }): Promise<AlertOut> {
@@ -21,11 +21,15 @@ export async function closeAlert(given: Deps, input: { alertId: string, reason?:
     const causes = await findCauses(deps, { kinds: [alert.kind] })
     const cause = causes.find(one => one.cause === alert.cause)
     if (cause && !mayActOnAny) throw new DomainError('not-allowed', 'The cause still stands: decide on the tables, and the alert closes by itself. Only on-call or an administrator may set it aside.')
-    if (cause && !reason) throw new DomainError('not-valid', 'The cause still stands: say why it may be set aside.', [{ path: 'reason', message: 'Say why, in a few words.' }])
-    await tx.update(alerts).set({ state: 'closed', closedAt: deps.now, closedBy: person.name, closeReason: cause ? `Set aside while it stands: ${reason}` : reason ?? 'Closed after the cause was gone.' }).where(eq(alerts.id, alertId))
+    await tx.update(alerts).set({ state: 'closed', closedAt: deps.now, closedBy: person.name, closeReason: closeReasonOf(cause !== undefined, reason) }).where(eq(alerts.id, alertId))
     const entry = { entityKind: 'alert', entityId: alertId, tableId: alert.tableId ?? undefined, reason: reason ?? null }
     await recordAudit(deps, { ...entry, action: 'alert.close', before: { state: alert.state }, after: { state: 'closed' } })
     if (cause) await recordAudit(deps, { ...entry, action: 'alert.set-aside', after: { weight: cause.weight } })
     return await readAlert(deps, alertId)
   })
+}
+
+function closeReasonOf(stands: boolean, reason: string | undefined): string {
+  if (!stands) return reason ?? 'Closed after the cause was gone.'
+  return reason === undefined ? 'Set aside while it stands.' : `Set aside while it stands: ${reason}`
 }

@@ -12,8 +12,8 @@ const told = {
   'refused': 'This set has been refused already.',
 }
 
-/** Refuses a waiting set, with a reason; it stays on record. */
-export async function refuseElementSet(deps: Deps, { id, reason }: { id: string, reason: string }): Promise<ElementSetOut> {
+/** Refuses a waiting set, with a reason if there is one to give; it stays on record. */
+export async function refuseElementSet(deps: Deps, { id, reason = null }: { id: string, reason?: string | null }): Promise<ElementSetOut> {
   await deps.db.transaction(async (tx) => {
     const [set] = await tx.select({ state: elementSets.state, spacecraftId: elementSets.spacecraftId }).from(elementSets).where(eq(elementSets.id, id)).for('update')
     if (!set) throw new DomainError('not-found', 'There is no element set under this address.')

@@ -193,7 +193,25 @@ describe('the list of tables', () => {
     expect(entry.eTag).toBe((await get(`/tables/${two.id}`)).headers.get('etag'))
     const span = await (await get(`/tables?from=${entry.pass.aos}&to=${new Date(Date.parse(entry.pass.aos) + 1).toISOString()}`)).json() as { items: { id: string }[] }
     expect(span.items.map(({ id }) => id)).toEqual([two.id])
-    expect(await (await get('/tables', {}, key.other)).json()).toEqual({ items: [] })
+    expect(await (await get('/tables', {}, key.other)).json()).toEqual({ items: [], nextCursor: null })
+  })
+
+  it('comes page by page, and is not sent again to a controller that has it', async () => {
+    for (let count = 0; count < 3; count++) await publish()
+    type Page = { items: { id: string }[], nextCursor: string | null }
+    const whole = await (await get('/tables')).json() as Page
+    const ids: string[] = []
+    for (let page: Page = { items: [], nextCursor: '' }; page.nextCursor !== null;) {
+      page = await (await get(`/tables?limit=2${page.nextCursor && `&cursor=${page.nextCursor}`}`)).json() as Page
+      expect(page.items.length).toBeLessThanOrEqual(2)
+      ids.push(...page.items.map(({ id }) => id))
+    }
+    expect(ids).toEqual(whole.items.map(({ id }) => id))
+    const tag = (await get('/tables')).headers.get('etag')!
+    const again = await get('/tables', { 'if-none-match': tag })
+    expect([again.status, await again.text()]).toEqual([304, ''])
+    await publish()
+    expect((await get('/tables', { 'if-none-match': tag })).status).toBe(200)
   })
 })
 

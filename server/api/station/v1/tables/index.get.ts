@@ -1,4 +1,4 @@
-import { listFeed } from '~~/server/domain/station/list-feed'
 import { defineRoute } from '~~/server/http/define-route'
+import { serveFeedList } from '~~/server/http/serve-feed-list'
 
-export default defineRoute('GET /api/station/v1/tables', async ({ db, now, actor, query }) => listFeed({ db, now }, { stationId: actor.stationId, ...query }))
+export default defineRoute('GET /api/station/v1/tables', serveFeedList)
