@@ -10,13 +10,33 @@ export interface Jobs {
 }
 export type JobName = keyof Jobs
 
+const mostTries = 5
+
 export { queues } from './queues.mjs'
 
 /** Sends through the caller's transaction, so that a job exists exactly when its data does. */
 const sender = new PgBoss({ db: { executeSql: () => Promise.reject(new Error('A job is sent inside a transaction.')) } })
 
-export async function enqueue<N extends JobName>(db: Db, name: N, data: Jobs[N], options: PgBoss.SendOptions = {}): Promise<void> {
-  await sender.send(name, data, { ...options, db: { executeSql: (text, values) => executeIn(db, text, values) } })
+/** Gives the job's id; null where one of the same singleton key waits already. */
+export async function enqueue<N extends JobName>(db: Db, name: N, data: Jobs[N], options: PgBoss.SendOptions = {}): Promise<string | null> {
+  return sender.send(name, data, { ...options, db: { executeSql: (text, values) => executeIn(db, text, values) } })
+}
+
+/**
+ * One waiting job for each key. One that waits already takes the newer data where that is as urgent, and moves up where
+ * it is more so. It stays locked until the caller's transaction ends: taken before that, it would run without what the
+ * transaction changes, and nothing would be left to run afterwards.
+ */
+export async function enqueueOnce<N extends JobName>(db: Db, name: N, data: Jobs[N], { key, priority }: { key: string, priority: number }): Promise<void> {
+  for (let tries = 0; tries < mostTries; tries++) {
+    if (await enqueue(db, name, data, { singletonKey: key, priority }) !== null) return
+    const { rows } = await db.execute(sql`
+      UPDATE pgboss.job SET data = CASE WHEN priority <= ${priority} THEN ${JSON.stringify(data)}::jsonb ELSE data END, priority = greatest(priority, ${priority})
+      WHERE name = ${name} AND singleton_key = ${key} AND state = 'created' RETURNING id`)
+    // None: it has just been taken, so that there is room for another.
+    if (rows.length > 0) return
+  }
+  throw new Error(`The queue ${name} takes no job: is it made? The migration makes it.`)
 }
 
 /** The queue package hands over text with numbered places; the transaction's driver takes chunks. */

@@ -1,6 +1,8 @@
 import type PgBoss from 'pg-boss'
 import type { Db } from '~~/server/database/client'
 import { databaseNow } from '~~/server/database/client'
+import { describeError } from '~~/server/http/describe-error'
+import { log } from '~~/server/http/log'
 import { useBoss } from './boss'
 import { runMail } from './mail'
 import { runPredict } from './predict'
@@ -24,9 +26,17 @@ async function work<T>(boss: PgBoss, name: keyof typeof atOnce, run: (job: PgBos
   for (let count = 0; count < atOnce[name]; count++) {
     let id = ''
     id = await boss.work<T>(name, { includeMetadata: true, batchSize: 1, pollingIntervalSeconds: pollSeconds[name] }, async ([job]) => {
-      await run(job!)
+      await run(job!).catch((error: unknown) => { throw told(name, error) })
       // Where there was one there may be more: look again at once.
       boss.notifyWorker(id)
     })
   }
+}
+
+/** The queue keeps an error with its job, whole: the values of a statement do not belong there, and it holds no NUL. */
+function told(name: string, error: unknown): Error {
+  // A mail that waits for its server is shown where mails are shown.
+  log[name === 'mail' ? 'info' : 'warn']({ job: name, error: describeError(error) }, 'a job did not succeed; the queue tries it again')
+  const message = error instanceof Error ? error.message.split('\nparams:', 1)[0]! : String(error)
+  return new Error(message.replaceAll('\u0000', '').toWellFormed().slice(0, 1000))
 }

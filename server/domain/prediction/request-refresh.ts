@@ -1,6 +1,6 @@
 import { and, inArray, isNotNull, isNull, sql } from 'drizzle-orm'
 import { spacecraft, stations } from '~~/server/database/schema'
-import { enqueue } from '~~/server/jobs/queue'
+import { enqueueOnce } from '~~/server/jobs/queue'
 import type { Deps } from '../context'
 
 export interface RefreshRequest {
@@ -16,12 +16,14 @@ export interface RefreshRequest {
 
 /**
  * Asks for passes and tables to be computed anew: one job for each pair of a spacecraft that has a set in use and
- * a station. A pair that waits already is not asked for twice. Call it inside the transaction that makes the change.
+ * a station. A pair that waits already is not asked for twice. What somebody has changed at one spacecraft or station
+ * goes before what rolls on for all. Call it inside the transaction that makes the change.
  * Gives the number of pairs.
  */
 export async function requestRefresh({ db }: Pick<Deps, 'db'>, request: RefreshRequest): Promise<number> {
   const { spacecraftIds, stationIds, reason, includeRetired = false } = request
   if (spacecraftIds?.length === 0 || stationIds?.length === 0) return 0
+  const priority = priorityOf(request)
   const pairs = await db.select({ spacecraftId: spacecraft.id, stationId: stations.id }).from(spacecraft)
     .innerJoin(stations, and(sql`true`, includeRetired ? undefined : isNull(stations.retiredAt), stationIds && inArray(stations.id, [...stationIds])))
     .where(and(
@@ -31,7 +33,9 @@ export async function requestRefresh({ db }: Pick<Deps, 'db'>, request: RefreshR
     ))
     .orderBy(spacecraft.id, stations.id)
   for (const pair of pairs) {
-    await enqueue(db, 'predict', { ...pair, reason }, { singletonKey: `${pair.spacecraftId}:${pair.stationId}` })
+    await enqueueOnce(db, 'predict', { ...pair, reason }, { key: `${pair.spacecraftId}:${pair.stationId}`, priority })
   }
   return pairs.length
 }
+
+const priorityOf = ({ spacecraftIds, stationIds }: RefreshRequest): number => (spacecraftIds ? 20 : 0) + (stationIds ? 10 : 0)
