@@ -75,8 +75,8 @@ it('flight dynamics uploads a file, makes a spacecraft of one set, puts it into 
   await flight.getByText(`${craft} is in the fleet`).waitFor()
   await flight.getByRole('listitem').filter({ has: flight.getByRole('heading', { name: new RegExp(craft) }) }).getByRole('button', { name: 'Put into use' }).click()
   await flight.getByText(/are in use\. Passes and tables are being recomputed/).waitFor()
-  const { rows: [{ id }] } = await sql.query<{ id: string }>('SELECT id FROM spacecraft WHERE name = $1', [craft]) as { rows: [{ id: string }] }
-  await flight.goto(`${server.url}/passes?spacecraft=${id}`, { waitUntil: 'networkidle' })
+  const { rows } = await sql.query<{ id: string }>('SELECT id FROM spacecraft WHERE name = $1', [craft])
+  await flight.goto(`${server.url}/passes?spacecraft=${rows[0]!.id}`, { waitUntil: 'networkidle' })
   await eventually(flight, () => flight.getByRole('row').filter({ hasText: craft }))
 })
 

@@ -1,5 +1,5 @@
 import { sql } from 'drizzle-orm'
-import { boolean, check, index, pgTable, text, uniqueIndex, uuid } from 'drizzle-orm/pg-core'
+import { boolean, check, index, integer, pgTable, text, uniqueIndex, uuid } from 'drizzle-orm/pg-core'
 import { createdAt, id, instant, real } from './columns'
 import { spacecraft } from './spacecraft'
 
@@ -13,12 +13,17 @@ export const links = pgTable('links', {
   bandHighHz: real('band_high_hz').notNull(),
   symbolRateHz: real('symbol_rate_hz').notNull(),
   modulation: text('modulation').notNull(),
-  detector: text('detector', { enum: ['quadrature', 'coherent', 'stated'] }).notNull(),
+  detector: text('detector', { enum: ['quadrature', 'coherent', 'msk', 'differential', 'fsk', 'multicarrier', 'chirp', 'stated'] }).notNull(),
   permittedLossDb: real('permitted_loss_db').notNull().default(0.5),
   captureRangeHz: real('capture_range_hz'),
   filterBandwidthHz: real('filter_bandwidth_hz'),
   rolloff: real('rolloff'),
   limitHz: real('limit_hz'),
+  /** Occupied bandwidth and spreading factor of a chirp. */
+  bandwidthHz: real('bandwidth_hz'),
+  spreadingFactor: integer('spreading_factor'),
+  /** Es/N0 that a multicarrier link works at. */
+  esN0Db: real('es_n0_db').notNull().default(20),
   driftLimitHzPerS: real('drift_limit_hz_per_s'),
   jumpLimitHz: real('jump_limit_hz'),
   errorRate: real('error_rate').notNull().default(1e-5),
@@ -34,5 +39,6 @@ export const links = pgTable('links', {
   check('links_symbol_rate_positive', sql`${t.symbolRateHz} > 0`),
   check('links_permitted_loss_range', sql`${t.permittedLossDb} > 0 AND ${t.permittedLossDb} <= 20`),
   check('links_stated_has_limit', sql`${t.detector} <> 'stated' OR ${t.limitHz} > 0`),
+  check('links_chirp_has_shape', sql`${t.detector} <> 'chirp' OR (${t.bandwidthHz} > 0 AND ${t.spreadingFactor} BETWEEN 5 AND 12)`),
   check('links_min_elevation_range', sql`${t.minElevationDeg} >= 0 AND ${t.minElevationDeg} < 90`),
 ])
