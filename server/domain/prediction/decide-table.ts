@@ -103,7 +103,7 @@ function draft(given: TableCase, planned: PlannedTable): TableDecision {
 const rowsOf = ({ served, elementSetId }: TableCase, planned: PlannedTable) => ({ ...planned, radioId: served.radio.id, elementSetId, inputsDigest: served.digest })
 
 /** By how much the published rows have moved, for whoever reads why there is a newer revision. */
-export function whyAnew(out: Pick<KnownRevision, 'verdict' | 'worstResidualHz'>, recheck: Recheck, reason: string): string {
+function whyAnew(out: Pick<KnownRevision, 'verdict' | 'worstResidualHz'>, recheck: Recheck, reason: string): string {
   const hz = Math.abs(recheck.worstResidualHz - out.worstResidualHz)
   const verdict = recheck.verdict === out.verdict ? '' : `${out.verdict} → ${recheck.verdict}, `
   return `${verdict}moves by ${hz < 10 ? hz.toFixed(1) : Math.round(hz)} Hz: ${reason}`

@@ -1,7 +1,7 @@
 import type { UtcMs } from '#shared/physics/types'
 
 /** A pass moves by seconds when elements change, by minutes after a manoeuvre; beyond this it is another pass. */
-export const LARGEST_SHIFT_MS = 30 * 60_000
+const LARGEST_SHIFT_MS = 30 * 60_000
 
 /** How far a culmination may move and still be the same pass: half a revolution, 30 minutes at most. */
 export function identityToleranceMs(meanMotionRevPerDay: number): number {
