@@ -8,6 +8,14 @@ import { dot, minus, norm, type Triple } from './vector'
  *
  * Range rate = (r − r_site)·(v − ω×r)/|r − r_site| in Earth-fixed axes, v rotated; positive when receding
  * (plain mechanics). Geometric: no light time. Within 0.0005°, 1 m and 0.01 m/s of independent programs.
+ *
+ * @card Look angles and range rate: where a spacecraft stands as seen from a station, and how fast it recedes.
+ * @formula ρ̇ = (r − r_s)·(v − ω×r)/|r − r_s|; azimuth = atan2(east, north); elevation = atan2(up, √(east² + north²))
+ * @source mechanics; axes of the station: Vallado 2013 §4.4
+ * @units m, m/s, UTC ms, s → rad, m, m/s
+ * @frame TEME in; out in the station’s horizon of WGS-84, azimuth from true north clockwise
+ * @range elevation geometric, without refraction; no light time; range above 0
+ * @tolerance 0.0005°, 1 m and 0.01 m/s of an independent program (orbit/reference-passes.test.ts)
  */
 export function lookAt(state: StateTeme, site: Site, utcMs: UtcMs, ut1MinusUtcS: number): Look {
   const ut1Ms = ut1Of(utcMs, ut1MinusUtcS)

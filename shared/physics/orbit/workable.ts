@@ -73,6 +73,14 @@ export function partsAboveHorizon(sights: Sights, site: Site, arc: Span, minElev
 /**
  * The workable parts of a pass for a link with its own minimum elevation (rad): within the station's, those above it.
  * Crossings by true propagation, below 1 ms.
+ *
+ * @card Workable parts: the spans of a pass in which a link has its own least elevation.
+ * @formula elevation(t) ≥ larger of the link’s and the station’s least elevation and the mask
+ * @source mechanics
+ * @units UTC ms, rad → UTC ms
+ * @frame station’s horizon of WGS-84
+ * @range within the pass
+ * @tolerance 2 ms (orbit/passes.test.ts)
  */
 export function workablePartsForLink(
   pass: PredictedPass, ephemeris: Ephemeris, site: Site, linkMinElevationRad: number, ut1MinusUtcS: number,

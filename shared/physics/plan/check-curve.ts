@@ -21,7 +21,17 @@ export interface CheckCurve {
   readonly alongTrackHzPerS: (utcMs: UtcMs) => number
 }
 
-/** Offset by direct propagation, Hz; the truth that the curve interpolates. Throws RangeError where the propagator fails. */
+/**
+ * Offset by direct propagation, Hz; the truth that the curve interpolates. Throws RangeError where the propagator fails.
+ *
+ * @card Checker’s offset: the needed offset on true propagation, one instant.
+ * @formula f0·(ratio − 1) on a downlink, f0·(1/ratio − 1) on an uplink
+ * @source special relativity
+ * @units UTC ms → Hz
+ * @frame TEME axes
+ * @range as far as SGP4 answers
+ * @tolerance 0.05, 0.2, 0.5 Hz at 437.5, 2245, 8200 MHz (plan/check-curve.test.ts)
+ */
 export function directOffsetHz({ propagator, site, link, ut1MinusUtcS }: Omit<CheckCurveQuery, 'span'>, utcMs: UtcMs): Hz {
   const now = propagator.at(utcMs)
   if (!now.ok) throw new RangeError(`The element set cannot be propagated to ${new Date(utcMs).toISOString()}: ${now.error}. Cut the table before that instant.`)
@@ -39,6 +49,14 @@ const UT1_STEP_S = 0.5
  * The checker's own interpolation of the needed frequency, from its own propagations: Chebyshev series, within 1e-3 Hz plus
  * 1e-12 of the carrier of direct propagation. Panels begin at a 48th of the orbit's period and are halved until the series
  * dies out. The partials are made when first asked for.
+ *
+ * @card Checker’s curve: needed offset, rate and partials over a workable part, on its own interpolation.
+ * @formula Chebyshev series on panels of a 48th of the period, halved until they die out; ∂f/∂t_along = ḟ − ∂f/∂UT1
+ * @source Press et al., Numerical Recipes §5.8; mechanics
+ * @units UTC ms → Hz, Hz/s
+ * @frame TEME axes
+ * @range within the part
+ * @tolerance 1e-3 Hz and 1e-12 of the carrier of true propagation (plan/check-curve.test.ts)
  */
 export function checkCurveOf(query: CheckCurveQuery): CheckCurve {
   const { propagator, link, ut1MinusUtcS, span } = query

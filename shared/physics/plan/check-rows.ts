@@ -5,7 +5,17 @@ export type Fault = TableCheck['faults'][number]
 /** A published row as the radio applies it. */
 export interface AppliedRow { readonly row: RetuneRow, readonly effectMs: UtcMs }
 
-/** A command takes effect one latency after its instant, in the order of time. */
+/**
+ * A command takes effect one latency after its instant, in the order of time.
+ *
+ * @card Rows in effect: when each published row takes effect.
+ * @formula effect = at + latency
+ * @source mechanics
+ * @units UTC ms, ms → UTC ms
+ * @frame none
+ * @range any rows, put in order of time
+ * @tolerance exact: late rows are caught (plan/check-table.test.ts)
+ */
 export function applyRows(rows: readonly RetuneRow[], radio: RadioModel): AppliedRow[] {
   return rows.map(row => ({ row, effectMs: row.atMs + radio.latencyMs })).sort((a, b) => a.effectMs - b.effectMs)
 }
@@ -15,6 +25,14 @@ const instant = (utcMs: UtcMs) => new Date(utcMs).toISOString()
 /**
  * What is wrong with rows whatever the residual: `order`, `late`, `off-grid`, `slope`, `band`, `dwell`, `jump`. Drift is the
  * curve's, not the rows'.
+ *
+ * @card Faults of rows: what breaks a table whatever its residual.
+ * @formula order, first row in time, grid, slope, band, dwell, jump, each against the radio’s and the link’s limits
+ * @source mechanics of the radio
+ * @units Hz, UTC ms, s → named faults
+ * @frame sky frequency
+ * @range grid to 1e-4 of a step, dwell to 1 µs
+ * @tolerance every injected fault is caught (plan/check-table.test.ts)
  */
 export function faultsOfRows(rows: readonly RetuneRow[], applied: readonly AppliedRow[], link: LinkModel, radio: RadioModel, parts: readonly Span[]): Fault[] {
   const faults: Fault[] = []

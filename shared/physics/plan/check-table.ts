@@ -33,6 +33,14 @@ export const MARGIN_CAP = 1e6
  * taken to stand on the carrier. A row that serves no workable instant has residual 0.
  *
  * Throws RangeError without a workable part, or where the propagator fails within one.
+ *
+ * @card Verdict: what rows leave when they are applied as the radio would, apart from the planner.
+ * @formula budgeted residual = |f − g_i| + timing + UT1 + k·spread; margin = allowance/worst; holds ≥ 1.25, tight ≥ 1, breaks below
+ * @source mechanics; thresholds are the product’s
+ * @units Hz, UTC ms → Hz, margin, verdict
+ * @frame sky frequency
+ * @range 1 Hz, both sides of every retune, every extreme between; a fault breaks
+ * @tolerance 0.05 Hz at 437.5 MHz with one row for the whole pass (plan/check-table.test.ts)
  */
 export function checkTable(query: CheckQuery): TableCheck {
   const { link, radio, budget, parts, rows } = query

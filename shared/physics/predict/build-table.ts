@@ -40,7 +40,17 @@ export interface BuiltTable {
 /** The pass has no instant above the link's own minimum elevation. */
 export interface NotWorkable { readonly kind: 'not-workable' }
 
-/** The tuning table of one pass and one link: planned on the ephemeris, then checked as published on true propagation. */
+/**
+ * The tuning table of one pass and one link: planned on the ephemeris, then checked as published on true propagation.
+ *
+ * @card Tuning table: planned, then checked as published.
+ * @formula workable parts, needed frequency, budget, plan, check; row’s instant = effect − latency
+ * @source the cards of each
+ * @units UTC ms, Hz → UTC ms, Hz, verdict
+ * @frame sky frequency, TEME axes
+ * @range a pass above the link’s least elevation
+ * @tolerance a plan within four fifths of the allowance is found to hold (predict/build-table.test.ts)
+ */
 export function buildTable(query: TableQuery): BuiltTable | NotWorkable {
   const { propagator, ephemeris, site, link, radio, budget, pass } = query
   const parts = workablePartsForLink(pass, ephemeris, site, query.linkMinElevationRad, budget.ut1MinusUtcS)
@@ -70,14 +80,34 @@ function earlier(row: RetuneRow, { firstRowLeadMs = 0, notBeforeMs = -Infinity, 
 
 export type ResidualQuery = Omit<TableQuery, 'notBeforeMs' | 'firstRowLeadMs'> & { readonly rows: readonly RetuneRow[] }
 
-/** Rows already published, checked anew: against newer elements, another budget, or the same pass as it now falls. */
+/**
+ * Rows already published, checked anew: against newer elements, another budget, or the same pass as it now falls.
+ *
+ * @card Rows checked anew: what published rows leave against newer elements.
+ * @formula the verdict on rows that stand
+ * @source the card of the verdict
+ * @units UTC ms, Hz → verdict
+ * @frame sky frequency, TEME axes
+ * @range a pass above the link’s least elevation
+ * @tolerance unchanged while nothing changes (predict/build-table.test.ts)
+ */
 export function residualOfRows(query: ResidualQuery): TableCheck | NotWorkable {
   const { pass, ephemeris, site, budget } = query
   const parts = workablePartsForLink(pass, ephemeris, site, query.linkMinElevationRad, budget.ut1MinusUtcS)
   return parts.length === 0 ? { kind: 'not-workable' } : checkTable({ ...query, parts })
 }
 
-/** Uncertainty at an instant, Hz: timing + UT1 + k·spread. Partials of causes that are zero are not asked for. */
+/**
+ * Uncertainty at an instant, Hz: timing + UT1 + k·spread. Partials of causes that are zero are not asked for.
+ *
+ * @card Uncertainty at an instant: the budget with its partials taken there.
+ * @formula timing + UT1 + k·spread
+ * @source the cards of the budget
+ * @units UTC ms → Hz
+ * @frame TEME axes
+ * @range within the ephemeris
+ * @tolerance within 1 % of the checker’s: plans hold (predict/build-table.test.ts)
+ */
 export function exactUncertainty(path: LinkPath, budget: BudgetModel, radio: RadioModel): (utcMs: UtcMs) => Hz {
   const rate = createNeededFrequency(path).rateHzPerS
   return utcMs => uncertaintyHz(budgetAt({

@@ -31,7 +31,17 @@ function sampleTimes(pass: PredictedPass, stepMs: number): UtcMs[] {
   return [...distinct, ...stepped.filter(isFree)].sort((a, b) => a - b)
 }
 
-/** What an antenna and a radio see through a pass: look angles, Doppler and its rate at each sample. */
+/**
+ * What an antenna and a radio see through a pass: look angles, Doppler and its rate at each sample.
+ *
+ * @card Samples of a pass: angles, Doppler and its rate at even steps, at culmination and at both ends.
+ * @formula look angles and needed frequency at AOS + k·step
+ * @source the cards of each
+ * @units UTC ms, s → rad, m, m/s, Hz, Hz/s
+ * @frame station’s horizon; TEME axes
+ * @range steps above 0
+ * @tolerance 0.05 Hz and 0.01 m/s at 437.5 MHz (predict/sample-pass.test.ts)
+ */
 export function samplePass(pass: PredictedPass, options: SampleOptions): PassSample[] {
   const { ephemeris, site, ut1MinusUtcS, stepS } = options
   if (!(stepS > 0)) throw new RangeError(`stepS is ${stepS}: give a positive number of seconds`)
