@@ -71,6 +71,7 @@ export const routes = {
   'GET /api/spacecraft': { access: read, summary: 'Spacecraft', query: pageQuery, response: listOf(spacecraft.spacecraftOut) },
   'POST /api/spacecraft': { access: may('spacecraft:edit'), summary: 'Create a spacecraft', body: spacecraft.createSpacecraftBody, response: spacecraft.spacecraftOut, status: 201, creates: true },
   'GET /api/spacecraft/{id}': { access: read, summary: 'One spacecraft', params: idParams, response: spacecraft.spacecraftOut },
+  'GET /api/spacecraft/{id}/accuracy': { access: read, summary: 'How fast its element sets go wrong, and from what that is known', params: idParams, response: spacecraft.accuracyOut },
   'PATCH /api/spacecraft/{id}': { access: may('spacecraft:edit'), summary: 'Change a spacecraft', params: idParams, body: spacecraft.changeSpacecraftBody, response: spacecraft.spacecraftOut },
   'DELETE /api/spacecraft/{id}': { access: may('spacecraft:edit'), summary: 'Retire a spacecraft with its links; its coming passes are taken back', params: idParams, status: 204 },
 

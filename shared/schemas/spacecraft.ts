@@ -38,4 +38,15 @@ export const spacecraftOut = z.object({
   linkCount: z.number().int(),
   retiredAt: instantOut.nullable(),
 })
+const growth = { floorKm: z.number(), growthKmPerDay: z.number() }
+/** One sigma along track: at an age of a days, floorKm + growthKmPerDay·a. */
+export const accuracyOut = z.object({
+  /** Where the figures come from: stated on the spacecraft, learned from pairs of its sets, or the settings' prior. */
+  source: z.enum(['stated', 'learned', 'prior']),
+  pairs: z.number().int(),
+  ...growth,
+  bins: z.array(z.object({ ageDays: z.number(), sigmaKm: z.number(), pairs: z.number().int() })),
+  prior: z.object(growth),
+})
+export type AccuracyOut = z.infer<typeof accuracyOut>
 export type SpacecraftOut = z.infer<typeof spacecraftOut>

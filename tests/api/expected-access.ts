@@ -48,6 +48,7 @@ export const expectedAccess: Record<string, Expected> = {
 
   'GET /api/spacecraft': reading,
   'GET /api/spacecraft/{id}': reading,
+  'GET /api/spacecraft/{id}/accuracy': reading,
   'POST /api/spacecraft': flightDynamics,
   'PATCH /api/spacecraft/{id}': flightDynamics,
   'DELETE /api/spacecraft/{id}': flightDynamics,

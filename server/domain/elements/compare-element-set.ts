@@ -1,9 +1,12 @@
 import { and, asc, eq, isNull } from 'drizzle-orm'
 import { allowanceOf } from '#shared/physics/link/allowance'
+import type { MeanElements } from '#shared/physics/types'
 import type { ComparisonOut } from '#shared/schemas/elements'
 import { elementSets, links, spacecraft, stations } from '~~/server/database/schema'
 import { runTask } from '~~/server/workers/pool'
 import type { Deps } from '../context'
+import { learnedAccuracy } from '../prediction/learned-accuracy'
+import type { SpacecraftRow } from '../prediction/models'
 import { alongTrackOf, linkModelOf, siteOf } from '../prediction/models'
 import { readSettings } from '../settings/read-settings'
 import { ut1InForce } from '../settings/ut1-in-force'
@@ -23,11 +26,14 @@ export async function compareElementSet({ db, now }: Pick<Deps, 'db' | 'now'>, {
   const stationRows = await db.select().from(stations).where(isNull(stations.retiredAt)).orderBy(asc(stations.name))
   const linkRows = craft ? await db.select().from(links).where(and(eq(links.spacecraftId, craft.id), isNull(links.retiredAt))).orderBy(asc(links.name)) : []
   const settings = await readSettings(db)
+  // What flies now says how far a set may be from it; the candidate must not excuse itself.
+  const accuracyOf = async (craft: SpacecraftRow, elements: MeanElements) =>
+    alongTrackOf(craft, elements, await learnedAccuracy({ db }, { spacecraftId: craft.id, elements: (inUse ?? set).elements, settings }))
 
   const fromMs = now.getTime()
   const { warnings, passes } = await runTask('compare-sets', {
-    candidate: { elements: set.elements, accuracy: craft ? alongTrackOf(craft, set.elements, settings) : null },
-    inUse: craft && inUse ? { elements: inUse.elements, accuracy: alongTrackOf(craft, inUse.elements, settings) } : null,
+    candidate: { elements: set.elements, accuracy: craft ? await accuracyOf(craft, set.elements) : null },
+    inUse: craft && inUse ? { elements: inUse.elements, accuracy: await accuracyOf(craft, inUse.elements) } : null,
     stations: stationRows.map(row => ({ id: row.id, site: siteOf(row) })),
     links: linkRows.map(({ id, direction, carrierHz }) => ({ id, direction, carrierHz })),
     fromMs, toMs: fromMs + SPAN_MS, horizonEndMs: fromMs + settings.horizonDays * DAY_MS,

@@ -1,5 +1,5 @@
-import type { AlongTrackModel } from '#shared/physics/accuracy/prior'
-import { meanSpeedMps, perigeeSpeedMps, priorFor } from '#shared/physics/accuracy/prior'
+import type { AlongTrackGrowth, AlongTrackModel } from '#shared/physics/accuracy/prior'
+import { meanSpeedMps, perigeeSpeedMps } from '#shared/physics/accuracy/prior'
 import { SPEED_OF_LIGHT_MPS } from '#shared/physics/doppler/ratio'
 import type { BudgetModel, LinkModel, MeanElements, RadioModel, Site } from '#shared/physics/types'
 import type { Settings } from '#shared/schemas/settings'
@@ -40,12 +40,11 @@ export function radioModelOf({ stepHz, offsetHz, minDwellS, latencyMs, latencyUn
   return { stepHz, offsetHz, minDwellS, latencyMs, latencyUncertaintyMs }
 }
 
-/** The spacecraft's own along-track accuracy where it is stated, else the settings' prior for its perigee. */
-export function alongTrackOf(craft: SpacecraftRow, elements: MeanElements, settings: Pick<Settings, 'prior'>): AlongTrackModel {
-  const prior = priorFor(elements, settings.prior)
+/** The spacecraft's own along-track accuracy where it is stated, else what its sets have taught, which is the prior where they are few. */
+export function alongTrackOf(craft: SpacecraftRow, elements: MeanElements, learned: AlongTrackGrowth): AlongTrackModel {
   return {
-    floorKm: craft.alongTrackFloorKm ?? prior.floorKm,
-    growthKmPerDay: craft.alongTrackGrowthKmPerDay ?? prior.growthKmPerDay,
+    floorKm: craft.alongTrackFloorKm ?? learned.floorKm,
+    growthKmPerDay: craft.alongTrackGrowthKmPerDay ?? learned.growthKmPerDay,
     epochMs: elements.epochUtcUs / 1000,
     speedMps: meanSpeedMps(elements),
   }
@@ -56,11 +55,12 @@ export interface BudgetSources {
   readonly station: StationRow
   readonly radio: RadioRow
   readonly elements: MeanElements
-  readonly settings: Pick<Settings, 'prior' | 'k'>
+  readonly settings: Pick<Settings, 'k'>
+  readonly learned: AlongTrackGrowth
   readonly ut1: { readonly ut1MinusUtcS: number, readonly boundS: number }
 }
 
-export function budgetParametersOf({ craft, station, radio, elements, settings, ut1 }: BudgetSources): BudgetParameters {
+export function budgetParametersOf({ craft, station, radio, elements, settings, learned, ut1 }: BudgetSources): BudgetParameters {
   return {
     clockErrorMs: station.clockErrorMs,
     ut1MinusUtcS: ut1.ut1MinusUtcS,
@@ -68,7 +68,7 @@ export function budgetParametersOf({ craft, station, radio, elements, settings, 
     spacecraftPpm: craft.oscillatorPpm,
     stationPpm: radio.referencePpm,
     k: settings.k,
-    alongTrack: alongTrackOf(craft, elements, settings),
+    alongTrack: alongTrackOf(craft, elements, learned),
   }
 }
 

@@ -1,5 +1,6 @@
 import { benchPredict } from './bench-predict'
 import { compareSets } from './compare-sets'
+import { learnAccuracyTask } from './learn-accuracy'
 import { readElements } from './read-elements'
 import { passSamples } from './pass-samples'
 import { predictStation } from './predict-station'
@@ -8,6 +9,7 @@ import { predictStation } from './predict-station'
 export const tasks = {
   'bench-predict': benchPredict,
   'compare-sets': compareSets,
+  'learn-accuracy': learnAccuracyTask,
   'read-elements': readElements,
   'predict-station': predictStation,
   'pass-samples': passSamples,

@@ -26,6 +26,14 @@ export interface LearnedAccuracy extends AlongTrackGrowth {
  * Fewer than ten pairs count for pairs/10 and the prior for the rest. The floor is never below the prior's, since
  * differences hide what all sets have in common. Three significant digits: a pair more must not move what rests on it.
  * Method: Osweiler 2006. Of a normal history with 60 sets the growth is good to about a quarter.
+ *
+ * @card Learned accuracy: how fast a spacecraft’s own sets go wrong, in place of the prior.
+ * @formula floor and growth of σ_t(age) times n·a; pairs/10 of it and the prior for the rest under ten pairs; floor ≥ the prior’s
+ * @source Osweiler 2006; prior: Flohrer 2008, Levit and Marshall 2011, Riesing 2015
+ * @units element sets → km, km/day
+ * @frame along the orbit
+ * @range the newest 100 sets, ages to 14 days
+ * @tolerance 10 % of a floor or a growth alone with 60 sets of known error, 25 % together (accuracy/learned.test.ts)
  */
 export function learnAccuracy(sets: readonly MeanElements[], prior: AlongTrackGrowth, manoeuvres: readonly Span[] = []): LearnedAccuracy {
   const errors = agedErrors(sets, manoeuvres)
