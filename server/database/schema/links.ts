@@ -24,6 +24,10 @@ export const links = pgTable('links', {
   spreadingFactor: integer('spreading_factor'),
   /** Es/N0 that a multicarrier link works at. */
   esN0Db: real('es_n0_db').notNull().default(20),
+  /** Of a downlink that the transponder makes from what it hears: downlink = numerator/denominator × uplink. Null where its own oscillator makes it. */
+  turnaroundNumerator: integer('turnaround_numerator'),
+  turnaroundDenominator: integer('turnaround_denominator'),
+  uplinkPrecompensated: boolean('uplink_precompensated').notNull().default(true),
   driftLimitHzPerS: real('drift_limit_hz_per_s'),
   jumpLimitHz: real('jump_limit_hz'),
   errorRate: real('error_rate').notNull().default(1e-5),
@@ -40,5 +44,6 @@ export const links = pgTable('links', {
   check('links_permitted_loss_range', sql`${t.permittedLossDb} > 0 AND ${t.permittedLossDb} <= 20`),
   check('links_stated_has_limit', sql`${t.detector} <> 'stated' OR ${t.limitHz} > 0`),
   check('links_chirp_has_shape', sql`${t.detector} <> 'chirp' OR (${t.bandwidthHz} > 0 AND ${t.spreadingFactor} BETWEEN 5 AND 12)`),
+  check('links_turnaround_whole', sql`(${t.turnaroundNumerator} IS NULL AND ${t.turnaroundDenominator} IS NULL) OR (${t.direction} = 'downlink' AND ${t.turnaroundNumerator} BETWEEN 1 AND 100000 AND ${t.turnaroundDenominator} BETWEEN 1 AND 100000 AND ${t.turnaroundDenominator} IS NOT NULL AND ${t.turnaroundNumerator} IS NOT NULL)`),
   check('links_min_elevation_range', sql`${t.minElevationDeg} >= 0 AND ${t.minElevationDeg} < 90`),
 ])

@@ -1,0 +1,4 @@
+ALTER TABLE "links" ADD COLUMN "turnaround_numerator" integer;--> statement-breakpoint
+ALTER TABLE "links" ADD COLUMN "turnaround_denominator" integer;--> statement-breakpoint
+ALTER TABLE "links" ADD COLUMN "uplink_precompensated" boolean DEFAULT true NOT NULL;--> statement-breakpoint
+ALTER TABLE "links" ADD CONSTRAINT "links_turnaround_whole" CHECK (("links"."turnaround_numerator" IS NULL AND "links"."turnaround_denominator" IS NULL) OR ("links"."direction" = 'downlink' AND "links"."turnaround_numerator" BETWEEN 1 AND 100000 AND "links"."turnaround_denominator" BETWEEN 1 AND 100000 AND "links"."turnaround_denominator" IS NOT NULL AND "links"."turnaround_numerator" IS NOT NULL));
