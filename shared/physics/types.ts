@@ -103,6 +103,16 @@ export interface PredictedPass {
 export type Direction = 'uplink' | 'downlink'
 export type Detector = 'quadrature' | 'coherent' | 'stated'
 
+/** A coherent transponder: downlink = numerator/denominator × what it hears. */
+export interface Turnaround {
+  readonly numerator: number
+  readonly denominator: number
+  /** The station moves its uplink so that the spacecraft hears it at its nominal frequency. */
+  readonly uplinkPrecompensated: boolean
+  /** Nominal uplink; null for the one that makes the carrier. */
+  readonly uplinkHz: Hz | null
+}
+
 /** What the link's physics needs; null means not stated. */
 export interface LinkModel {
   readonly direction: Direction
@@ -121,6 +131,8 @@ export interface LinkModel {
   /** Licensed band; uplink rows stay inside it. */
   readonly bandLowHz: Hz | null
   readonly bandHighHz: Hz | null
+  /** Of downlinks only; without one the spacecraft's own oscillator makes the carrier. */
+  readonly turnaround?: Turnaround | null
 }
 
 export type LimitedBy = 'loss' | 'captureRange' | 'filter' | 'stated'

@@ -35,7 +35,7 @@ export async function compareElementSet({ db, now }: Pick<Deps, 'db' | 'now'>, {
     candidate: { elements: set.elements, accuracy: craft ? await accuracyOf(craft, set.elements) : null },
     inUse: craft && inUse ? { elements: inUse.elements, accuracy: await accuracyOf(craft, inUse.elements) } : null,
     stations: stationRows.map(row => ({ id: row.id, site: siteOf(row) })),
-    links: linkRows.map(({ id, direction, carrierHz }) => ({ id, direction, carrierHz })),
+    links: linkRows.map(({ id, direction, carrierHz, turnaroundNumerator }) => ({ id, direction, carrierHz, isCoherent: turnaroundNumerator !== null })),
     fromMs, toMs: fromMs + SPAN_MS, horizonEndMs: fromMs + settings.horizonDays * DAY_MS,
     ut1MinusUtcS: ut1InForce(settings, now).ut1MinusUtcS,
   })

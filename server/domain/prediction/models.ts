@@ -30,7 +30,12 @@ export function siteOf(station: StationRow): Site {
 export function linkModelOf(link: LinkRow): LinkModel {
   const { direction, carrierHz, symbolRateHz, detector, permittedLossDb, captureRangeHz, filterBandwidthHz, rolloff } = link
   const { driftLimitHzPerS, jumpLimitHz, limitHz, errorRate, bandLowHz, bandHighHz } = link
-  return { direction, carrierHz, symbolRateHz, detector, permittedLossDb, captureRangeHz, filterBandwidthHz, rolloff, driftLimitHzPerS, jumpLimitHz, limitHz, errorRate, bandLowHz, bandHighHz }
+  return { direction, carrierHz, symbolRateHz, detector, permittedLossDb, captureRangeHz, filterBandwidthHz, rolloff, driftLimitHzPerS, jumpLimitHz, limitHz, errorRate, bandLowHz, bandHighHz, ...turnaroundOf(link) }
+}
+
+/** Nothing where there is none, so that the digests of one-way links stay what they were. */
+function turnaroundOf({ turnaroundNumerator: numerator, turnaroundDenominator: denominator, uplinkPrecompensated }: LinkRow): Pick<LinkModel, 'turnaround'> {
+  return numerator === null || denominator === null ? {} : { turnaround: { numerator, denominator, uplinkPrecompensated, uplinkHz: null } }
 }
 
 /** A link's own minimum elevation, rad. */
@@ -82,7 +87,9 @@ export function dopplerRoomHz(carrierHz: number, elements: MeanElements): number
  * with its Doppler shift. Of several the one with the finest step, then by name and id, so that the choice stays.
  */
 export function radioFor(link: LinkRow, elements: MeanElements, radios: readonly RadioRow[]): RadioRow | null {
-  const room = dopplerRoomHz(link.carrierHz, elements)
+  // Shifted on the way up and again on the way down.
+  const legs = link.turnaroundNumerator !== null && !link.uplinkPrecompensated ? 2 : 1
+  const room = legs * dopplerRoomHz(link.carrierHz, elements)
   const [best] = radios
     .filter(radio => radio.retiredAt === null && (link.direction === 'uplink' ? radio.transmits : radio.receives)
       && radio.tuneLowHz <= link.carrierHz - room && link.carrierHz + room <= radio.tuneHighHz)

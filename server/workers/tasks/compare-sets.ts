@@ -1,6 +1,7 @@
 import type { AlongTrackModel } from '#shared/physics/accuracy/prior'
 import { perigeeHeightKm } from '#shared/physics/accuracy/prior'
 import { neededOverCarrierMinusOne } from '#shared/physics/doppler/ratio'
+import { twoWayOf } from '#shared/physics/doppler/two-way'
 import { createEphemeris } from '#shared/physics/orbit/ephemeris'
 import { findPasses } from '#shared/physics/orbit/passes'
 import { createPropagator } from '#shared/physics/orbit/propagator'
@@ -13,7 +14,8 @@ export interface CompareInput {
   readonly candidate: { readonly elements: MeanElements, readonly accuracy: AlongTrackModel | null }
   readonly inUse: { readonly elements: MeanElements, readonly accuracy: AlongTrackModel } | null
   readonly stations: readonly { readonly id: string, readonly site: Site }[]
-  readonly links: readonly { readonly id: string, readonly direction: Direction, readonly carrierHz: number }[]
+  /** A coherent link hears of a set twice: in its own shift, and in that of the uplink it is made from. */
+  readonly links: readonly { readonly id: string, readonly direction: Direction, readonly carrierHz: number, readonly isCoherent: boolean }[]
   readonly fromMs: UtcMs
   readonly toMs: UtcMs
   /** Until when decay is looked for. */
@@ -96,15 +98,21 @@ function shiftsOfLinks(now: PredictedPass, before: PredictedPass, site: Site, mi
   const toMs = Math.min(meets ? Math.min(now.losMs, before.losMs) : now.losMs, mine.toMs, old.toMs)
   if (!(toMs >= fromMs)) return []
   const steps = Math.max(1, Math.min(MOST_STEPS, Math.ceil((toMs - fromMs) / STEP_MS)))
-  const worst = new Map<Direction, number>()
-  for (const direction of new Set(links.map(link => link.direction))) {
-    const share = (ephemeris: Ephemeris, utcMs: UtcMs) => neededOverCarrierMinusOne({ stateAt: ephemeris.stateAt, site, ut1MinusUtcS }, direction, utcMs)
+  const wayOf = (link: CompareInput['links'][number]) => link.isCoherent ? 'two-way' : link.direction
+  const worst = new Map<Direction | 'two-way', number>()
+  for (const way of new Set(links.map(wayOf))) {
+    const share = ({ stateAt }: Ephemeris, utcMs: UtcMs) => {
+      const path = { stateAt, site, ut1MinusUtcS }
+      if (way !== 'two-way') return neededOverCarrierMinusOne(path, way, utcMs)
+      const { upMinusOne, downMinusOne } = twoWayOf(path, utcMs)
+      return upMinusOne + downMinusOne + upMinusOne * downMinusOne
+    }
     let largest = 0
     for (let i = 0; i <= steps; i++) {
       const utcMs = fromMs + (toMs - fromMs) * i / steps
       largest = Math.max(largest, Math.abs(share(mine, utcMs) - share(old, utcMs)))
     }
-    worst.set(direction, largest)
+    worst.set(way, largest)
   }
-  return links.map(({ id, direction, carrierHz }) => ({ id, worstShiftHz: carrierHz * worst.get(direction)! }))
+  return links.map(link => ({ id: link.id, worstShiftHz: link.carrierHz * worst.get(wayOf(link))! }))
 }

@@ -1,4 +1,5 @@
 import { createNeededFrequency } from '#shared/physics/doppler/needed'
+import { answeringLink, withOscillatorsOf } from '#shared/physics/doppler/two-way'
 import { partialAlongTrackHzPerS, partialUt1HzPerS } from '#shared/physics/orbit/along-track'
 import { createEphemeris } from '#shared/physics/orbit/ephemeris'
 import { lookAt } from '#shared/physics/orbit/look'
@@ -53,17 +54,19 @@ export function passSamples(input: PassSamplesInput): PassSamplesOutput {
         rangeRateMps: look.rangeRateMps,
       }
     }),
-    links: input.links.map(({ linkId, model: { direction, carrierHz }, radioModel, budget: parameters }) => {
-      const path = { stateAt: ephemeris.stateAt, site, ut1MinusUtcS, direction, carrierHz }
+    links: input.links.map(({ linkId, model: { direction, carrierHz, turnaround = null }, radioModel, budget: parameters }) => {
+      const path = { stateAt: ephemeris.stateAt, site, ut1MinusUtcS, direction, carrierHz, turnaround }
       const needed = createNeededFrequency(path)
-      const budget = budgetModelOf(parameters)
+      const answering = answeringLink(path)
+      const answer = createNeededFrequency(answering)
+      const budget = withOscillatorsOf(budgetModelOf(parameters), path)
       const dopplerRateHzPerS = times.map(needed.rateHzPerS)
       return {
         linkId,
         dopplerHz: times.map(needed.dopplerHz),
         dopplerRateHzPerS,
         uncertaintyHz: times.map((utcMs, i) => uncertaintyHz(budgetAt({
-          utcMs, carrierHz, rateHzPerS: dopplerRateHzPerS[i]!, alongTrackHzPerS: partialAlongTrackHzPerS(path, utcMs), ut1HzPerS: partialUt1HzPerS(path, utcMs),
+          utcMs, carrierHz, rateHzPerS: answering === path ? dopplerRateHzPerS[i]! : answer.rateHzPerS(utcMs), alongTrackHzPerS: partialAlongTrackHzPerS(answering, utcMs), ut1HzPerS: partialUt1HzPerS(answering, utcMs),
         }, budget, radioModel), budget.k)),
       }
     }),

@@ -1,11 +1,14 @@
-import type { Direction, Hz, Propagator, UtcMs } from '../types'
+import type { Direction, Hz, Propagator, Turnaround, UtcMs } from '../types'
 import { derivativePerS } from './derivative'
+import { coherentOffsetHz } from './two-way'
 import { neededOverCarrierMinusOne, receivedOverTransmitted, type Path, type StateAt } from './ratio'
 
 /** A path and what is sent over it. */
 export interface LinkPath extends Path {
   readonly direction: Direction
   readonly carrierHz: Hz
+  /** Of a downlink that a coherent transponder makes from this station's uplink. */
+  readonly turnaround?: Turnaround | null
 }
 
 export interface NeededFrequency {
@@ -35,7 +38,9 @@ export const statesOf = (propagator: Propagator): StateAt => (utcMs) => {
  * @tolerance 0.05, 0.2, 0.5 Hz at 437.5, 2245, 8200 MHz (doppler/reference-doppler.test.ts)
  */
 export const dopplerHz = (link: LinkPath, utcMs: UtcMs): Hz =>
-  link.carrierHz * neededOverCarrierMinusOne(link, link.direction, utcMs)
+  link.turnaround
+    ? coherentOffsetHz(link, { carrierHz: link.carrierHz, turnaround: link.turnaround }, utcMs)
+    : link.carrierHz * neededOverCarrierMinusOne(link, link.direction, utcMs)
 
 /**
  * What to set at the station, sky frequency (before any converter), over time. Downlink: carrier · ratio, which falls

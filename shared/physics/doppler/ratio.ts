@@ -9,6 +9,9 @@ export const EARTH_GM_M3PS2 = 398_600.8e9
 const LIGHT_TIME_TOLERANCE_S = 1e-12
 const MOST_ROUNDS = 8
 
+/** A leg of light between a station and a spacecraft: its ratio, and the spacecraft where the light meets it, TEME. */
+export interface Leg extends FrequencyRatio { readonly craft: { readonly position: Triple, readonly velocity: Triple } }
+
 /** States of a spacecraft by instant: an ephemeris's `stateAt`, or a propagator through `statesOf`. */
 export type StateAt = (utcMs: UtcMs) => StateTeme | null
 
@@ -37,8 +40,19 @@ function shifted(state: StateTeme, bySeconds: number): { position: Triple, veloc
   }
 }
 
-/** sqrt((1−βt²)/(1−βr²)) − 1 and (1−n·βr)/(1−n·βt) − 1, joined without cancellation. */
-function ratioMinusOne(transmitter: Triple, receiver: Triple, direction: Triple): number {
+/**
+ * Received over transmitted, minus one, of two velocities (m/s) and the unit arrow from transmitter to receiver:
+ * sqrt((1−βt²)/(1−βr²)) − 1 and (1−n·βr)/(1−n·βt) − 1, joined without cancellation.
+ *
+ * @card Ratio of two velocities: relativistic Doppler without loss of digits.
+ * @formula (1 − n·v_r/c)/(1 − n·v_t/c) · √((1 − v_t²/c²)/(1 − v_r²/c²)) − 1
+ * @source special relativity
+ * @units m/s → dimensionless
+ * @frame one inertial frame for all three
+ * @range speeds under that of light
+ * @tolerance 0.01 Hz at 437 MHz and 7 km/s, both signs (doppler/closed-forms.test.ts)
+ */
+export function ratioMinusOne(transmitter: Triple, receiver: Triple, direction: Triple): number {
   const c = SPEED_OF_LIGHT_MPS
   const motion = dot(direction, minus(transmitter, receiver)) / c / (1 - dot(direction, transmitter) / c)
   const [bt2, br2] = [dot(transmitter, transmitter) / c / c, dot(receiver, receiver) / c / c]
@@ -69,6 +83,22 @@ function ratioMinusOne(transmitter: Triple, receiver: Triple, direction: Triple)
  * @tolerance 0.05, 0.2, 0.5 Hz at 437.5, 2245, 8200 MHz of an independent program (doppler/reference-doppler.test.ts)
  */
 export function receivedOverTransmitted(path: Path, direction: Direction, utcMs: UtcMs): FrequencyRatio {
+  const { ratio, ratioMinusOne: offset, lightTimeS } = legOf(path, direction, utcMs)
+  return { ratio, ratioMinusOne: offset, lightTimeS }
+}
+
+/**
+ * The leg of light behind `receivedOverTransmitted`, with the spacecraft where the light meets it.
+ *
+ * @card Leg of light: the frequency ratio with the spacecraft's state where the light meets it.
+ * @formula as the frequency ratio
+ * @source special relativity
+ * @units UTC ms of the station → dimensionless, s, m, m/s
+ * @frame TEME axes, taken as not turning
+ * @range as the frequency ratio
+ * @tolerance 2 ns of light time of an independent program (doppler/reference-doppler.test.ts)
+ */
+export function legOf(path: Path, direction: Direction, utcMs: UtcMs): Leg {
   const station = siteStateTeme(path.site, utcMs, path.ut1MinusUtcS)
   const now = path.stateAt(utcMs)
   if (!now) throw new RangeError(`The spacecraft's state at ${utcMs} is not known: ask within the ephemeris`)
@@ -99,7 +129,7 @@ export function receivedOverTransmitted(path: Path, direction: Direction, utcMs:
   const offset = direction === 'downlink'
     ? ratioMinusOne(spacecraft.velocity, velocity, alongRay)
     : ratioMinusOne(velocity, spacecraft.velocity, alongRay)
-  return { ratio: 1 + offset, ratioMinusOne: offset, lightTimeS }
+  return { ratio: 1 + offset, ratioMinusOne: offset, lightTimeS, craft: spacecraft }
 }
 
 /**

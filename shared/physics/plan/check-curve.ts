@@ -1,11 +1,12 @@
 import { neededOverCarrierMinusOne } from '../doppler/ratio'
+import { answeringLink, coherentOffsetHz } from '../doppler/two-way'
 import type { Hz, LinkModel, Propagator, Site, Span, StateTeme, UtcMs } from '../types'
 import { seriesOf } from './check-series'
 
 export interface CheckCurveQuery {
   readonly propagator: Propagator
   readonly site: Site
-  readonly link: Pick<LinkModel, 'direction' | 'carrierHz'>
+  readonly link: Pick<LinkModel, 'direction' | 'carrierHz' | 'turnaround'>
   readonly ut1MinusUtcS: number
   readonly span: Span
 }
@@ -15,6 +16,8 @@ export interface CheckCurve {
   /** Frequency to set minus carrier. */
   readonly offsetHz: (utcMs: UtcMs) => Hz
   readonly rateHzPerS: (utcMs: UtcMs) => number
+  /** What an error of timing moves the need by: `rateHzPerS`, but of both legs where a coherent link's uplink is pre-compensated. */
+  readonly answerHzPerS: (utcMs: UtcMs) => number
   /** ∂f/∂UT1, signed: the station turned, the spacecraft staying. */
   readonly ut1HzPerS: (utcMs: UtcMs) => number
   /** ∂f/∂t_along, signed: the spacecraft moved along its orbit, the station staying. What ḟ has beside the station's turning. */
@@ -40,7 +43,10 @@ export function directOffsetHz({ propagator, site, link, ut1MinusUtcS }: Omit<Ch
     const state = at === utcMs ? now : propagator.at(at)
     return state.ok ? state : null
   }
-  return link.carrierHz * neededOverCarrierMinusOne({ stateAt, site, ut1MinusUtcS }, link.direction, utcMs)
+  const path = { stateAt, site, ut1MinusUtcS }
+  return link.turnaround
+    ? coherentOffsetHz(path, { carrierHz: link.carrierHz, turnaround: link.turnaround }, utcMs)
+    : link.carrierHz * neededOverCarrierMinusOne(path, link.direction, utcMs)
 }
 
 const UT1_STEP_S = 0.5
@@ -64,15 +70,19 @@ export function checkCurveOf(query: CheckCurveQuery): CheckCurve {
   const offset = seriesOf(utcMs => directOffsetHz(query, utcMs), {
     ...span, panelMs, nodes: 16, tolerance: 1e-4 + 1e-13 * link.carrierHz,
   })
+  // What a link answers to errors by may be another curve than the one it is tuned along.
+  const answering = answeringLink(link)
+  const answerQuery = { ...query, link: answering }
+  const answer = answering === link ? offset : seriesOf(utcMs => directOffsetHz(answerQuery, utcMs), { ...span, panelMs, nodes: 16, tolerance: 1e-4 + 1e-13 * link.carrierHz })
   const makeUt1 = () => seriesOf((utcMs) => {
-    const later = directOffsetHz({ ...query, ut1MinusUtcS: ut1MinusUtcS + UT1_STEP_S }, utcMs)
-    const earlier = directOffsetHz({ ...query, ut1MinusUtcS: ut1MinusUtcS - UT1_STEP_S }, utcMs)
+    const later = directOffsetHz({ ...answerQuery, ut1MinusUtcS: ut1MinusUtcS + UT1_STEP_S }, utcMs)
+    const earlier = directOffsetHz({ ...answerQuery, ut1MinusUtcS: ut1MinusUtcS - UT1_STEP_S }, utcMs)
     return (later - earlier) / (2 * UT1_STEP_S)
   }, { ...span, panelMs: panelMs / 2, nodes: 10, tolerance: 1e-11 * link.carrierHz })
   let ut1: ReturnType<typeof makeUt1> | null = null
   const ut1HzPerS = (utcMs: UtcMs) => (ut1 ??= makeUt1()).valueAt(utcMs)
   return {
-    offsetHz: offset.valueAt, rateHzPerS: offset.rateAt, ut1HzPerS,
-    alongTrackHzPerS: utcMs => offset.rateAt(utcMs) - ut1HzPerS(utcMs),
+    offsetHz: offset.valueAt, rateHzPerS: offset.rateAt, answerHzPerS: answer.rateAt, ut1HzPerS,
+    alongTrackHzPerS: utcMs => answer.rateAt(utcMs) - ut1HzPerS(utcMs),
   }
 }

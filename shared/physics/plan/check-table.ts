@@ -1,5 +1,7 @@
 import { allowanceOf } from '../link/allowance'
 import { lossDb } from '../link/loss'
+import { statesOf } from '../doppler/needed'
+import { receivedOverTransmitted } from '../doppler/ratio'
 import { lookAt } from '../orbit/look'
 import type { BudgetModel, BudgetParts, CheckedRetune, Hz, LinkModel, Propagator, RadioModel, RetuneRow, Site, Span, TableCheck, UtcMs, Verdict } from '../types'
 import type { CheckCurve } from './check-curve'
@@ -72,7 +74,7 @@ export function checkTable(query: CheckQuery): TableCheck {
           span.min = Math.min(span.min, at.stepsHz)
           span.max = Math.max(span.max, at.stepsHz)
         }
-        const ratioMinusOne = symbolClock(link, curve.offsetHz(atMs))
+        const ratioMinusOne = symbolClock(query, curve.offsetHz(atMs), atMs)
         slowest = Math.min(slowest, ratioMinusOne)
         fastest = Math.max(fastest, ratioMinusOne)
         const isOver = residualHz > allowance.allowanceHz
@@ -112,10 +114,10 @@ function piecesOf(part: Span, applied: readonly AppliedRow[]): { row: number, fr
 function uncertainAt(curve: CheckCurve, utcMs: UtcMs, { budget, radio, link }: CheckQuery): Omit<BudgetParts, 'stepsHz'> {
   const sigmaS = budget.alongTrackSigmaS(utcMs)
   const timingS = (budget.clockErrorMs + radio.latencyUncertaintyMs) / 1000
-  // Oscillator figures are limits; a limit L spreads as L/√3.
-  const oscillator = Math.sqrt((budget.spacecraftPpm ** 2 + budget.stationPpm ** 2) / 3) / 1e6
+  // Oscillator figures are limits; a limit L spreads as L/√3. A coherent link has the station's alone, at both ends of the trip.
+  const oscillator = link.turnaround ? 0 : Math.sqrt((budget.spacecraftPpm ** 2 + budget.stationPpm ** 2) / 3) / 1e6
   return {
-    timingHz: timingS * Math.abs(curve.rateHzPerS(utcMs)),
+    timingHz: timingS * Math.abs(curve.answerHzPerS(utcMs)),
     ut1Hz: budget.ut1BoundS === 0 ? 0 : budget.ut1BoundS * Math.abs(curve.ut1HzPerS(utcMs)),
     orbitHz: sigmaS === 0 ? 0 : sigmaS * Math.abs(curve.alongTrackHzPerS(utcMs)),
     oscillatorHz: link.carrierHz * oscillator,
@@ -154,8 +156,9 @@ function driftFault(curve: CheckCurve, part: Span, link: LinkModel): Fault | nul
   }
 }
 
-/** Received over transmitted, minus one: the scale of the symbol clock at the receiving end. */
-function symbolClock(link: LinkModel, offsetHz: Hz): number {
+/** Received over transmitted, minus one: the scale of the symbol clock at the receiving end. A coherent spacecraft still counts its symbols by its own clock. */
+function symbolClock({ link, propagator, site, budget }: CheckQuery, offsetHz: Hz, utcMs: UtcMs): number {
+  if (link.turnaround) return receivedOverTransmitted({ stateAt: statesOf(propagator), site, ut1MinusUtcS: budget.ut1MinusUtcS }, 'downlink', utcMs).ratioMinusOne
   return link.direction === 'downlink' ? offsetHz / link.carrierHz : -offsetHz / (link.carrierHz + offsetHz)
 }
 

@@ -69,14 +69,14 @@ export function benchPredict(problem: BenchProblem): BenchAnswer {
   if (count > problem.mostSamples) return { kind: 'too-many-samples', count }
 
   const budget: BudgetModel = { ...problem.budget, alongTrackSigmaS: () => problem.budget.alongTrackSigmaS }
-  const { direction, carrierHz } = link
-  const uncertainty = exactUncertainty({ stateAt: ephemeris.stateAt, site, ut1MinusUtcS, direction, carrierHz }, budget, radio)
+  const { direction, carrierHz, turnaround = null } = link
+  const uncertainty = exactUncertainty({ stateAt: ephemeris.stateAt, site, ut1MinusUtcS, direction, carrierHz, turnaround }, budget, radio)
   return {
     kind: 'passes', endedBy, validUntilMs,
     passes: passes.map((exact) => {
       // Samples bear whole milliseconds: in half of one the range rate of a low pass moves by 0.05 m/s.
       const pass = wholeMilliseconds(exact, Math.floor(ephemeris.toMs))
-      const samples = samplePass(pass, { ephemeris, site, direction, carrierHz, ut1MinusUtcS, stepS: sampleIntervalS }).map(sample => ({
+      const samples = samplePass(pass, { ephemeris, site, direction, carrierHz, turnaround, ut1MinusUtcS, stepS: sampleIntervalS }).map(sample => ({
         ...sample, horizonRad: horizonRad(site, sample.azimuthRad, problem.linkMinElevationRad), uncertaintyHz: uncertainty(sample.atMs),
       }))
       const table = buildTable({ propagator, ephemeris, site, link, linkMinElevationRad: problem.linkMinElevationRad, radio, budget, pass: exact })

@@ -1,4 +1,5 @@
 import { createNeededFrequency } from '../doppler/needed'
+import { answeringLink, withOscillatorsOf } from '../doppler/two-way'
 import type { LinkPath } from '../doppler/needed'
 import { partialAlongTrackHzPerS, partialUt1HzPerS } from '../orbit/along-track'
 import { workablePartsForLink } from '../orbit/passes'
@@ -56,7 +57,7 @@ export function buildTable(query: TableQuery): BuiltTable | NotWorkable {
   const parts = workablePartsForLink(pass, ephemeris, site, query.linkMinElevationRad, budget.ut1MinusUtcS)
   if (parts.length === 0) return { kind: 'not-workable' }
   const path: LinkPath = {
-    stateAt: utcMs => ephemeris.stateAt(utcMs), site, ut1MinusUtcS: budget.ut1MinusUtcS, direction: link.direction, carrierHz: link.carrierHz,
+    stateAt: utcMs => ephemeris.stateAt(utcMs), site, ut1MinusUtcS: budget.ut1MinusUtcS, direction: link.direction, carrierHz: link.carrierHz, turnaround: link.turnaround ?? null,
   }
   const isUplink = link.direction === 'uplink'
   const plan = planRetunes({
@@ -109,13 +110,15 @@ export function residualOfRows(query: ResidualQuery): TableCheck | NotWorkable {
  * @tolerance within 1 % of the checker’s: plans hold (predict/build-table.test.ts)
  */
 export function exactUncertainty(path: LinkPath, budget: BudgetModel, radio: RadioModel): (utcMs: UtcMs) => Hz {
-  const rate = createNeededFrequency(path).rateHzPerS
+  const answering = answeringLink(path)
+  const rate = createNeededFrequency(answering).rateHzPerS
+  const counted = withOscillatorsOf(budget, path)
   return utcMs => uncertaintyHz(budgetAt({
     utcMs, carrierHz: path.carrierHz,
     rateHzPerS: budget.clockErrorMs + radio.latencyUncertaintyMs > 0 ? rate(utcMs) : 0,
-    alongTrackHzPerS: budget.alongTrackSigmaS(utcMs) > 0 ? partialAlongTrackHzPerS(path, utcMs) : 0,
-    ut1HzPerS: budget.ut1BoundS > 0 ? partialUt1HzPerS(path, utcMs) : 0,
-  }, budget, radio), budget.k)
+    alongTrackHzPerS: budget.alongTrackSigmaS(utcMs) > 0 ? partialAlongTrackHzPerS(answering, utcMs) : 0,
+    ut1HzPerS: budget.ut1BoundS > 0 ? partialUt1HzPerS(answering, utcMs) : 0,
+  }, counted, radio), budget.k)
 }
 
 /** Spacing of the nodes between which the uncertainty is interpolated, and what is added for it. */

@@ -1,4 +1,4 @@
-import type { Direction, Ephemeris, Hz, Look, PredictedPass, Site, UtcMs } from '../types'
+import type { Direction, Ephemeris, Hz, Look, PredictedPass, Site, Turnaround, UtcMs } from '../types'
 import { createNeededFrequency } from '../doppler/needed'
 import { lookAt } from '../orbit/look'
 
@@ -10,6 +10,7 @@ export interface SampleOptions {
   readonly site: Site
   readonly direction: Direction
   readonly carrierHz: Hz
+  readonly turnaround?: Turnaround | null
   readonly ut1MinusUtcS: number
   readonly stepS: number
 }
