@@ -2,6 +2,8 @@ import type { Direction, Hz, UtcMs } from '../types'
 import { EARTH_ROTATION_RAD_PER_S } from '../orbit/frames'
 import type { SiteTrack } from '../orbit/site-track'
 import { EAST, EAST_RATE, NORTH, NORTH_RATE, UP, UP_RATE, VIEW_LENGTH } from '../orbit/site-track'
+import { derivativePerS } from './derivative'
+import type { NeededFrequency } from './needed'
 import { EARTH_GM_M3PS2, SPEED_OF_LIGHT_MPS } from './ratio'
 
 const C = SPEED_OF_LIGHT_MPS
@@ -44,7 +46,7 @@ export function seenOverCarrierMinusOne(track: SiteTrack, view: Float64Array, di
   let su = 0
   if (turnS !== 0) {
     const inward = -EARTH_ROTATION_RAD_PER_S * siteSpeedMps
-    // Away from the axis is up by cos and south by sin of the latitude, which are the axis's parts along north and up.
+    // Away from the axis is up by the cosine and south by the sine of the latitude: the axis's own parts along north and up.
     sn = -inward * track.axisUp * turnS
     su = inward * track.axisNorth * turnS
     e -= turnS * siteSpeedMps
@@ -107,4 +109,21 @@ export function seenPartials(track: SiteTrack, direction: Direction, carrierHz: 
   const alongTrackHzPerS = carrierHz * (share(PARTIAL_STEP_S, 0) - share(-PARTIAL_STEP_S, 0)) / (2 * PARTIAL_STEP_S)
   const ut1HzPerS = carrierHz * (share(0, PARTIAL_STEP_S) - share(0, -PARTIAL_STEP_S)) / (2 * PARTIAL_STEP_S)
   return { alongTrackHzPerS, ut1HzPerS, rateHzPerS: alongTrackHzPerS + ut1HzPerS }
+}
+
+/**
+ * What to set at the station over time, as `createNeededFrequency`, from a track: quicker by an order, within 1e-12 of the
+ * carrier. The rate is the same fourth-order difference. Throws a RangeError outside the track.
+ */
+export function createSeenFrequency(track: SiteTrack, direction: Direction, carrierHz: Hz): NeededFrequency {
+  const view = new Float64Array(VIEW_LENGTH)
+  const dopplerHz = (utcMs: UtcMs): Hz => {
+    if (!track.viewAt(utcMs, view)) throw new RangeError(`The spacecraft's state at ${utcMs} is not known: ask within the ephemeris`)
+    return carrierHz * seenOverCarrierMinusOne(track, view, direction)
+  }
+  return {
+    frequencyHz: utcMs => carrierHz + dopplerHz(utcMs),
+    dopplerHz,
+    rateHzPerS: utcMs => derivativePerS(seconds => dopplerHz(utcMs + seconds * 1000)),
+  }
 }

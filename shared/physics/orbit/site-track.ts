@@ -1,4 +1,4 @@
-import type { Ephemeris, Site, UtcMs } from '../types'
+import type { Ephemeris, Site, StateTeme, UtcMs } from '../types'
 import { BEFORE, gridOf, NODES, WEIGHTS, type EphemerisGrid } from './ephemeris'
 import { EARTH_ROTATION_RAD_PER_S, gmstRad, siteAxes, ut1Of, type SiteAxes } from './frames'
 
@@ -25,10 +25,8 @@ export interface SiteTrack {
   readonly axisUp: number
   /** Writes the view at an instant: east, north, up, and their rates in axes that do not rotate. False outside the ephemeris. */
   viewAt(utcMs: UtcMs, view: Float64Array): boolean
-  /** Spacing of the propagated nodes, ms; node n stands at n·stepMs. */
-  readonly stepMs: number
-  /** Sine of the elevation at a node, which costs no interpolation; NaN where there is no state. */
-  sinElevationAtNode(node: number): number
+  /** The same by true propagation, for refinement; where that fails, as `viewAt`. */
+  exactViewAt(utcMs: UtcMs, view: Float64Array): boolean
 }
 
 interface TurnedGrid { readonly grid: EphemerisGrid, readonly states: Float64Array }
@@ -93,8 +91,7 @@ export function createSiteTrack(ephemeris: Ephemeris, site: Site, ut1MinusUtcS: 
   const { positionM, east, north, up } = axes
   const along = (axis: readonly [number, number, number]): number => axis[0] * positionM[0] + axis[1] * positionM[1] + axis[2] * positionM[2]
   const fixed = new Float64Array(6)
-  const direct = (utcMs: UtcMs, to: Float64Array): boolean => {
-    const state = ephemeris.stateAt(utcMs)
+  const written = (state: StateTeme | null, utcMs: UtcMs, to: Float64Array): boolean => {
     if (!state) return false
     turn([...state.positionM, ...state.velocityMps], 0, fixed, 0, gmstRad(ut1Of(utcMs, ut1MinusUtcS)))
     view(fixed, 0, axes, to, 0)
@@ -117,30 +114,34 @@ export function createSiteTrack(ephemeris: Ephemeris, site: Site, ut1MinusUtcS: 
       lastIsGood = turned !== null && turned.grid.isInterpolated(left)
     }
     const share = utcMs / stepMs - left
-    // On a node the weights are infinite: the node itself is the answer, or what the ephemeris says.
-    if (!lastIsGood || share < 1e-12) return direct(utcMs, to)
+    // On a node the weights are infinite: the node itself is the answer.
+    if (share === 0 && turned !== null && left >= turned.grid.usableFrom && left <= turned.grid.usableTo) {
+      const at = VIEW_LENGTH * (left - firstNode)
+      for (let k = 0; k < VIEW_LENGTH; k++) to[k] = views[at + k]!
+      return true
+    }
+    if (!lastIsGood || share < 1e-12) return written(ephemeris.stateAt(utcMs), utcMs, to)
     interpolate(views, VIEW_LENGTH * (left - BEFORE - firstNode), share, to)
     return true
   }
 
   return {
-    site, stepMs, viewAt,
+    site, viewAt,
     siteEastM: along(east), siteNorthM: along(north), siteUpM: along(up),
     siteSpeedMps: EARTH_ROTATION_RAD_PER_S * Math.hypot(positionM[0], positionM[1]),
     axisNorth: north[2], axisUp: up[2],
-    sinElevationAtNode: (node) => {
-      const at = VIEW_LENGTH * (node - firstNode)
-      if (turned === null || node < turned.grid.usableFrom || node > turned.grid.usableTo) return NaN
-      return sinElevation(views, at)
+    exactViewAt: (utcMs, to) => {
+      const state = ephemeris.propagator.at(utcMs)
+      return state.ok ? written(state, utcMs, to) : viewAt(utcMs, to)
     },
   }
 }
 
 /** Up over range of a view; rises and falls with the elevation, and costs no arc tangent. */
-export function sinElevation(views: Float64Array, at = 0): number {
-  const e = views[at + EAST]!
-  const n = views[at + NORTH]!
-  const u = views[at + UP]!
+export function sinElevation(view: Float64Array): number {
+  const e = view[EAST]!
+  const n = view[NORTH]!
+  const u = view[UP]!
   return u / Math.sqrt(e * e + n * n + u * u)
 }
 
