@@ -1,7 +1,7 @@
 import { readFileSync, readdirSync } from 'node:fs'
 import { join } from 'node:path'
 import type { Plugin } from 'vite'
-import { readCards } from '../../shared/formula-cards/read-cards'
+import { readCards } from '../../shared/formats/formula-cards'
 
 const NAME = 'virtual:formula-cards'
 const RESOLVED = `\0${NAME}`
