@@ -42,7 +42,17 @@ export function lookAt(state: StateTeme, site: Site, utcMs: UtcMs, ut1MinusUtcS:
   }
 }
 
-/** The same from a track's view (site-track.ts). The site's own motion is to the east: (r − r_site)·(ω×(r − r_site)) is nothing. */
+/**
+ * The same from a track's view (site-track.ts). The site's own motion is to the east: (r − r_site)·(ω×(r − r_site)) is nothing.
+ *
+ * @card Look angles and range rate, from a view: the same in the station’s own axes.
+ * @formula ρ̇ = (e·(v_e − v_s) + n·v_n + u·v_u)/ρ, v_s the station’s speed to the east
+ * @source mechanics
+ * @units m, m/s → rad, m, m/s
+ * @frame east, north, up of the station
+ * @range elevation geometric; range above 0
+ * @tolerance 2 ms in AOS and LOS (orbit/reference-passes.test.ts)
+ */
 export function lookOfView(track: SiteTrack, view: Float64Array): Look {
   const [east, north, up] = [view[EAST]!, view[NORTH]!, view[UP]!]
   const level = Math.sqrt(east * east + north * north)

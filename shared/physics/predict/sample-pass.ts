@@ -54,6 +54,14 @@ export interface RowOptions {
  * Look angles and Doppler through a pass at each sample, one row after the other in the same array: copy what is to stay.
  * Nothing is allocated a row, so that a day of a fleet fits in little memory. Within 1e-12 of the carrier, 0.0005°, 1 m and
  * 0.01 m/s, as the parts it is made of. Throws a RangeError where the track does not cover the pass.
+ *
+ * @card Samples of a pass, streamed: angles and Doppler row by row, nothing kept.
+ * @formula look angles and needed frequency at AOS + k·step
+ * @source the cards of each
+ * @units UTC ms, s → rad, m, m/s, Hz
+ * @frame east, north, up of the station
+ * @range steps above 0
+ * @tolerance 0.05 Hz and 0.01 m/s at 437.5 MHz (predict/sample-pass.test.ts)
  */
 export function streamPass(pass: PredictedPass, track: SiteTrack, { direction, carrierHz, stepS }: RowOptions, visit: (row: Float64Array) => void): void {
   const row = new Float64Array(6)
@@ -76,7 +84,17 @@ export function streamPass(pass: PredictedPass, track: SiteTrack, { direction, c
   })
 }
 
-/** What an antenna and a radio see through a pass: look angles, Doppler and its rate at each sample. */
+/**
+ * What an antenna and a radio see through a pass: look angles, Doppler and its rate at each sample.
+ *
+ * @card Samples of a pass: angles, Doppler and its rate at even steps, at culmination and at both ends.
+ * @formula look angles and needed frequency at AOS + k·step
+ * @source the cards of each
+ * @units UTC ms, s → rad, m, m/s, Hz, Hz/s
+ * @frame east, north, up of the station
+ * @range steps above 0
+ * @tolerance 0.05 Hz and 0.01 m/s at 437.5 MHz (predict/sample-pass.test.ts)
+ */
 export function samplePass(pass: PredictedPass, options: SampleOptions): PassSample[] {
   const { ephemeris, site, ut1MinusUtcS, stepS, direction, carrierHz } = options
   if (!(stepS > 0)) throw new RangeError(`stepS is ${stepS}: give a positive number of seconds`)
