@@ -12,6 +12,7 @@ const helpers: Record<string, string> = {
   'orbit/refine.ts': 'root and maximum of any function; what they find is held by findPasses',
   'orbit/positive-spans.ts': 'search for sign changes, held by findPasses',
   'orbit/mask.ts sortedMask': 'order of points, held by horizonRad',
+  'orbit/ephemeris.ts gridOf': 'hands out an ephemeris\'s own nodes',
   'orbit/workable.ts sightsFrom': 'joins an ephemeris and a station, held by findPasses',
   'orbit/workable.ts partsAboveHorizon': 'step of findPasses and workablePartsForLink',
   'orbit/ephemeris.ts gridOf': 'hands out what createEphemeris made',

@@ -1,5 +1,5 @@
 import { neededOverCarrierMinusOne } from '../doppler/ratio'
-import type { Hz, LinkModel, Propagator, Site, Span, StateTeme, UtcMs } from '../types'
+import type { Hz, LinkModel, PropagationError, Propagator, Site, Span, StateTeme, UtcMs } from '../types'
 import { seriesOf } from './check-series'
 
 export interface CheckCurveQuery {
@@ -34,7 +34,7 @@ export interface CheckCurve {
  */
 export function directOffsetHz({ propagator, site, link, ut1MinusUtcS }: Omit<CheckCurveQuery, 'span'>, utcMs: UtcMs): Hz {
   const now = propagator.at(utcMs)
-  if (!now.ok) throw new RangeError(`The element set cannot be propagated to ${new Date(utcMs).toISOString()}: ${now.error}. Cut the table before that instant.`)
+  if (!now.ok) throw failed(now.error, utcMs)
   // A light time beyond the set's end is bridged from the state now.
   const stateAt = (at: UtcMs): StateTeme | null => {
     const state = at === utcMs ? now : propagator.at(at)
@@ -42,6 +42,9 @@ export function directOffsetHz({ propagator, site, link, ut1MinusUtcS }: Omit<Ch
   }
   return link.carrierHz * neededOverCarrierMinusOne({ stateAt, site, ut1MinusUtcS }, link.direction, utcMs)
 }
+
+const failed = (error: PropagationError, utcMs: UtcMs) =>
+  new RangeError(`The element set cannot be propagated to ${new Date(utcMs).toISOString()}: ${error}. Cut the table before that instant.`)
 
 const UT1_STEP_S = 0.5
 
@@ -65,14 +68,33 @@ export function checkCurveOf(query: CheckCurveQuery): CheckCurve {
     ...span, panelMs, nodes: 16, tolerance: 1e-4 + 1e-13 * link.carrierHz,
   })
   const makeUt1 = () => seriesOf((utcMs) => {
-    const later = directOffsetHz({ ...query, ut1MinusUtcS: ut1MinusUtcS + UT1_STEP_S }, utcMs)
-    const earlier = directOffsetHz({ ...query, ut1MinusUtcS: ut1MinusUtcS - UT1_STEP_S }, utcMs)
-    return (later - earlier) / (2 * UT1_STEP_S)
-  }, { ...span, panelMs: panelMs / 2, nodes: 10, tolerance: 1e-11 * link.carrierHz })
+    // One propagation for both turns: what the light time adds over the state now is the same in both.
+    const now = propagator.at(utcMs)
+    if (!now.ok) throw failed(now.error, utcMs)
+    const stateAt = (at: UtcMs): StateTeme | null => at === utcMs ? now : null
+    const turned = (byS: number) => neededOverCarrierMinusOne({ stateAt, site: query.site, ut1MinusUtcS: ut1MinusUtcS + byS }, link.direction, utcMs)
+    return link.carrierHz * (turned(UT1_STEP_S) - turned(-UT1_STEP_S)) / (2 * UT1_STEP_S)
+  }, { ...span, panelMs, nodes: 12, tolerance: 1e-11 * link.carrierHz })
   let ut1: ReturnType<typeof makeUt1> | null = null
-  const ut1HzPerS = (utcMs: UtcMs) => (ut1 ??= makeUt1()).valueAt(utcMs)
+  const ut1At = (utcMs: UtcMs) => (ut1 ??= makeUt1()).valueAt(utcMs)
+  // The parts of the budget ask for the same instant one after the other.
+  const rateHzPerS = remembering(offset.rateAt)
+  const ut1HzPerS = remembering(ut1At)
   return {
-    offsetHz: offset.valueAt, rateHzPerS: offset.rateAt, ut1HzPerS,
-    alongTrackHzPerS: utcMs => offset.rateAt(utcMs) - ut1HzPerS(utcMs),
+    offsetHz: remembering(offset.valueAt), rateHzPerS, ut1HzPerS,
+    alongTrackHzPerS: utcMs => rateHzPerS(utcMs) - ut1HzPerS(utcMs),
+  }
+}
+
+/** The function, with its latest answer kept. */
+function remembering(fn: (utcMs: UtcMs) => number): (utcMs: UtcMs) => number {
+  let lastMs = NaN
+  let last = NaN
+  return (utcMs) => {
+    if (utcMs !== lastMs) {
+      last = fn(utcMs)
+      lastMs = utcMs
+    }
+    return last
   }
 }

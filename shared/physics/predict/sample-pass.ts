@@ -23,7 +23,7 @@ export interface PassSample extends Look {
 }
 
 /** AOS, AOS + stepS, …, with culmination and LOS in their places; rising, no instant twice. */
-export function forEachSampleTime(pass: PredictedPass, stepMs: number, visit: (utcMs: UtcMs) => void): void {
+function forEachSampleTime(pass: PredictedPass, stepMs: number, visit: (utcMs: UtcMs) => void): void {
   const { aosMs, culminationMs, losMs } = pass
   const isApart = (a: UtcMs, b: UtcMs): boolean => Math.abs(a - b) >= SAME_INSTANT_MS
   const hasCulmination = isApart(culminationMs, aosMs)
