@@ -1,5 +1,7 @@
 import type { Look, Site, StateTeme, UtcMs } from '../types'
 import { EARTH_ROTATION_RAD_PER_S, siteAxes, temeToEarthFixed, ut1Of } from './frames'
+import type { SiteTrack } from './site-track'
+import { EAST, EAST_RATE, NORTH, NORTH_RATE, UP, UP_RATE } from './site-track'
 import { dot, minus, norm, type Triple } from './vector'
 
 /**
@@ -37,5 +39,29 @@ export function lookAt(state: StateTeme, site: Site, utcMs: UtcMs, ut1MinusUtcS:
     elevationRad: Math.atan2(dot(line, axes.up as Triple), Math.hypot(east, north)),
     rangeM,
     rangeRateMps: dot(line, velocity) / rangeM,
+  }
+}
+
+/**
+ * The same from a track's view (site-track.ts). The site's own motion is to the east: (r − r_site)·(ω×(r − r_site)) is nothing.
+ *
+ * @card Look angles and range rate, from a view: the same in the station’s own axes.
+ * @formula ρ̇ = (e·(v_e − v_s) + n·v_n + u·v_u)/ρ, v_s the station’s speed to the east
+ * @source mechanics
+ * @units m, m/s → rad, m, m/s
+ * @frame east, north, up of the station
+ * @range elevation geometric; range above 0
+ * @tolerance 2 ms in AOS and LOS (orbit/reference-passes.test.ts)
+ */
+export function lookOfView(track: SiteTrack, view: Float64Array): Look {
+  const [east, north, up] = [view[EAST]!, view[NORTH]!, view[UP]!]
+  const level = Math.sqrt(east * east + north * north)
+  const rangeM = Math.sqrt(level * level + up * up)
+  const azimuthRad = Math.atan2(east, north)
+  return {
+    azimuthRad: azimuthRad < 0 ? azimuthRad + 2 * Math.PI : azimuthRad,
+    elevationRad: Math.atan2(up, level),
+    rangeM,
+    rangeRateMps: (east * (view[EAST_RATE]! - track.siteSpeedMps) + north * view[NORTH_RATE]! + up * view[UP_RATE]!) / rangeM,
   }
 }

@@ -47,12 +47,12 @@ function passOnArc(sights: Sights, query: PassQuery, window: Span, arc: Span, pl
   if (!first || !last) return null
   const [aosMs, losMs] = [first.fromMs, last.toMs]
   const times = evenTimes(aosMs, losMs, Math.max(FEWEST_STEPS, Math.ceil(2 * (losMs - aosMs) / stepMs)))
-  const culmination = highest(t => sights.exact(t).elevationRad, times)
+  const culminationMs = highest(sights.nearSin, times).ms
   return {
     aosMs,
-    culminationMs: culmination.ms,
+    culminationMs,
     losMs,
-    maxElevationRad: culmination.value,
+    maxElevationRad: sights.exact(culminationMs).elevationRad,
     aosClipped: aosMs === window.fromMs,
     losClipped: losMs === window.toMs,
     workable,
@@ -88,10 +88,12 @@ export function findPasses(query: PassQuery): PassSearch {
   const sights = sightsFrom(ephemeris, site, query.ut1MinusUtcS)
   const plainRad = Math.max(site.minElevationRad, query.minElevationRad ?? -Infinity)
   const stepMs = gridStepMs(ephemeris.propagator.elements)
+  const sinPlain = Math.sin(plainRad)
   const arcs = positiveSpans(
-    t => sights.near(t).elevationRad - plainRad,
-    t => sights.exact(t).elevationRad - plainRad,
+    t => sights.nearSin(t) - sinPlain,
+    t => sights.exactSin(t) - sinPlain,
     gridTimes(fromMs, toMs, stepMs),
+    { isSmooth: true },
   )
   const window = { fromMs, toMs }
   const passes = arcs.flatMap(arc => passOnArc(sights, query, window, arc, plainRad, stepMs) ?? [])

@@ -1,6 +1,6 @@
-import { neededOverCarrierMinusOne } from '../doppler/ratio'
-import { answeringLink, coherentOffsetHz } from '../doppler/two-way'
-import type { Hz, LinkModel, Propagator, Site, Span, StateTeme, UtcMs } from '../types'
+import { dopplerHz } from '../doppler/needed'
+import { answeringLink } from '../doppler/two-way'
+import type { Hz, LinkModel, PropagationError, Propagator, Site, Span, StateTeme, UtcMs } from '../types'
 import { seriesOf } from './check-series'
 
 export interface CheckCurveQuery {
@@ -28,7 +28,7 @@ export interface CheckCurve {
  * Offset by direct propagation, Hz; the truth that the curve interpolates. Throws RangeError where the propagator fails.
  *
  * @card Checker’s offset: the needed offset on true propagation, one instant.
- * @formula f0·(ratio − 1) on a downlink, f0·(1/ratio − 1) on an uplink
+ * @formula f0·(ratio − 1) on a downlink, f0·(1/ratio − 1) on an uplink; on a coherent link its own
  * @source special relativity
  * @units UTC ms → Hz
  * @frame TEME axes
@@ -37,17 +37,17 @@ export interface CheckCurve {
  */
 export function directOffsetHz({ propagator, site, link, ut1MinusUtcS }: Omit<CheckCurveQuery, 'span'>, utcMs: UtcMs): Hz {
   const now = propagator.at(utcMs)
-  if (!now.ok) throw new RangeError(`The element set cannot be propagated to ${new Date(utcMs).toISOString()}: ${now.error}. Cut the table before that instant.`)
+  if (!now.ok) throw failed(now.error, utcMs)
   // A light time beyond the set's end is bridged from the state now.
   const stateAt = (at: UtcMs): StateTeme | null => {
     const state = at === utcMs ? now : propagator.at(at)
     return state.ok ? state : null
   }
-  const path = { stateAt, site, ut1MinusUtcS }
-  return link.turnaround
-    ? coherentOffsetHz(path, { carrierHz: link.carrierHz, turnaround: link.turnaround }, utcMs)
-    : link.carrierHz * neededOverCarrierMinusOne(path, link.direction, utcMs)
+  return dopplerHz({ ...link, stateAt, site, ut1MinusUtcS }, utcMs)
 }
+
+const failed = (error: PropagationError, utcMs: UtcMs) =>
+  new RangeError(`The element set cannot be propagated to ${new Date(utcMs).toISOString()}: ${error}. Cut the table before that instant.`)
 
 const UT1_STEP_S = 0.5
 
@@ -72,17 +72,36 @@ export function checkCurveOf(query: CheckCurveQuery): CheckCurve {
   })
   // What a link answers to errors by may be another curve than the one it is tuned along.
   const answering = answeringLink(link)
-  const answerQuery = { ...query, link: answering }
-  const answer = answering === link ? offset : seriesOf(utcMs => directOffsetHz(answerQuery, utcMs), { ...span, panelMs, nodes: 16, tolerance: 1e-4 + 1e-13 * link.carrierHz })
+  const answer = answering === link ? offset : seriesOf(utcMs => directOffsetHz({ ...query, link: answering }, utcMs), { ...span, panelMs, nodes: 16, tolerance: 1e-4 + 1e-13 * link.carrierHz })
   const makeUt1 = () => seriesOf((utcMs) => {
-    const later = directOffsetHz({ ...answerQuery, ut1MinusUtcS: ut1MinusUtcS + UT1_STEP_S }, utcMs)
-    const earlier = directOffsetHz({ ...answerQuery, ut1MinusUtcS: ut1MinusUtcS - UT1_STEP_S }, utcMs)
-    return (later - earlier) / (2 * UT1_STEP_S)
-  }, { ...span, panelMs: panelMs / 2, nodes: 10, tolerance: 1e-11 * link.carrierHz })
+    // One propagation for both turns: what the light time adds over the state now is the same in both.
+    const now = propagator.at(utcMs)
+    if (!now.ok) throw failed(now.error, utcMs)
+    const stateAt = (at: UtcMs): StateTeme | null => at === utcMs ? now : null
+    const turned = (byS: number) => dopplerHz({ ...answering, stateAt, site: query.site, ut1MinusUtcS: ut1MinusUtcS + byS }, utcMs)
+    return (turned(UT1_STEP_S) - turned(-UT1_STEP_S)) / (2 * UT1_STEP_S)
+  }, { ...span, panelMs, nodes: 12, tolerance: 1e-11 * link.carrierHz })
   let ut1: ReturnType<typeof makeUt1> | null = null
-  const ut1HzPerS = (utcMs: UtcMs) => (ut1 ??= makeUt1()).valueAt(utcMs)
+  const ut1At = (utcMs: UtcMs) => (ut1 ??= makeUt1()).valueAt(utcMs)
+  // The parts of the budget ask for the same instant one after the other.
+  const rateHzPerS = remembering(offset.rateAt)
+  const answerHzPerS = answer === offset ? rateHzPerS : remembering(answer.rateAt)
+  const ut1HzPerS = remembering(ut1At)
   return {
-    offsetHz: offset.valueAt, rateHzPerS: offset.rateAt, answerHzPerS: answer.rateAt, ut1HzPerS,
-    alongTrackHzPerS: utcMs => answer.rateAt(utcMs) - ut1HzPerS(utcMs),
+    offsetHz: remembering(offset.valueAt), rateHzPerS, answerHzPerS, ut1HzPerS,
+    alongTrackHzPerS: utcMs => answerHzPerS(utcMs) - ut1HzPerS(utcMs),
+  }
+}
+
+/** The function, with its latest answer kept. */
+function remembering(fn: (utcMs: UtcMs) => number): (utcMs: UtcMs) => number {
+  let lastMs = NaN
+  let last = NaN
+  return (utcMs) => {
+    if (utcMs !== lastMs) {
+      last = fn(utcMs)
+      lastMs = utcMs
+    }
+    return last
   }
 }

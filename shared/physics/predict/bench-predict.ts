@@ -2,6 +2,7 @@ import { createEphemeris } from '../orbit/ephemeris'
 import { horizonRad } from '../orbit/mask'
 import { findPasses } from '../orbit/passes'
 import { createPropagator } from '../orbit/propagator'
+import { createSiteTrack } from '../orbit/site-track'
 import type { BudgetModel, LinkModel, MeanElements, PredictedPass, PropagationError, RadioModel, Site, Span, TableCheck, UtcMs } from '../types'
 import { buildTable, exactUncertainty } from './build-table'
 import type { PassSample } from './sample-pass'
@@ -70,7 +71,7 @@ export function benchPredict(problem: BenchProblem): BenchAnswer {
 
   const budget: BudgetModel = { ...problem.budget, alongTrackSigmaS: () => problem.budget.alongTrackSigmaS }
   const { direction, carrierHz, turnaround = null } = link
-  const uncertainty = exactUncertainty({ stateAt: ephemeris.stateAt, site, ut1MinusUtcS, direction, carrierHz, turnaround }, budget, radio)
+  const uncertainty = exactUncertainty(createSiteTrack(ephemeris, site, ut1MinusUtcS), link, budget, radio)
   return {
     kind: 'passes', endedBy, validUntilMs,
     passes: passes.map((exact) => {

@@ -1,7 +1,9 @@
+import type { NeededFrequency } from '../doppler/needed'
 import { createNeededFrequency } from '../doppler/needed'
-import { answeringLink, withOscillatorsOf } from '../doppler/two-way'
-import type { LinkPath } from '../doppler/needed'
-import { partialAlongTrackHzPerS, partialUt1HzPerS } from '../orbit/along-track'
+import { createSeenFrequency, seenPartials } from '../doppler/seen-ratio'
+import { withOscillatorsOf } from '../doppler/two-way'
+import { createSiteTrack } from '../orbit/site-track'
+import type { SiteTrack } from '../orbit/site-track'
 import { workablePartsForLink } from '../orbit/passes'
 import { allowanceOf } from '../link/allowance'
 import { budgetAt, uncertaintyHz } from '../plan/budget'
@@ -56,12 +58,10 @@ export function buildTable(query: TableQuery): BuiltTable | NotWorkable {
   const { propagator, ephemeris, site, link, radio, budget, pass } = query
   const parts = workablePartsForLink(pass, ephemeris, site, query.linkMinElevationRad, budget.ut1MinusUtcS)
   if (parts.length === 0) return { kind: 'not-workable' }
-  const path: LinkPath = {
-    stateAt: utcMs => ephemeris.stateAt(utcMs), site, ut1MinusUtcS: budget.ut1MinusUtcS, direction: link.direction, carrierHz: link.carrierHz, turnaround: link.turnaround ?? null,
-  }
+  const track = createSiteTrack(ephemeris, site, budget.ut1MinusUtcS)
   const isUplink = link.direction === 'uplink'
   const plan = planRetunes({
-    needed: createNeededFrequency(path), uncertaintyHz: uncertaintyOver(path, ephemeris, budget, radio), allowanceHz: allowanceOf(link).allowanceHz,
+    needed: neededOn(track, query), uncertaintyHz: uncertaintyOver(track, ephemeris, query), allowanceHz: allowanceOf(link).allowanceHz,
     parts, radio, jumpLimitHz: link.jumpLimitHz,
     bandLowHz: isUplink ? link.bandLowHz : null, bandHighHz: isUplink ? link.bandHighHz : null,
     ...(query.notBeforeMs === undefined ? {} : { notBeforeMs: query.notBeforeMs }),
@@ -71,6 +71,13 @@ export function buildTable(query: TableQuery): BuiltTable | NotWorkable {
     atMs: Math.round(effectMs - radio.latencyMs), frequencyHz, slopeHzPerS: 0,
   })).map((row, i) => i === 0 ? earlier(row, query) : row)
   return { kind: 'table', rows, check: checkTable({ propagator, site, link, radio, budget, parts, rows }), parts, kappa: plan.kappa }
+}
+
+/** What a table is planned along. Two legs, or a carrier that is not what the uplink makes, are asked of the ephemeris itself. */
+function neededOn(track: SiteTrack, { ephemeris, site, link, budget }: TableQuery): NeededFrequency {
+  const { direction, carrierHz, turnaround = null } = link
+  if (!turnaround || (turnaround.uplinkPrecompensated && turnaround.uplinkHz === null)) return createSeenFrequency(track, direction, carrierHz)
+  return createNeededFrequency({ stateAt: ephemeris.stateAt, site, ut1MinusUtcS: budget.ut1MinusUtcS, direction, carrierHz, turnaround })
 }
 
 /** The first row with its lead, no earlier than the radio is free. */
@@ -99,26 +106,22 @@ export function residualOfRows(query: ResidualQuery): TableCheck | NotWorkable {
 }
 
 /**
- * Uncertainty at an instant, Hz: timing + UT1 + k·spread. Partials of causes that are zero are not asked for.
+ * Uncertainty at an instant, Hz: timing + UT1 + k·spread.
  *
  * @card Uncertainty at an instant: the budget with its partials taken there.
  * @formula timing + UT1 + k·spread
  * @source the cards of the budget
  * @units UTC ms → Hz
- * @frame TEME axes
+ * @frame the site’s own axes
  * @range within the ephemeris
  * @tolerance within 1 % of the checker’s: plans hold (predict/build-table.test.ts)
  */
-export function exactUncertainty(path: LinkPath, budget: BudgetModel, radio: RadioModel): (utcMs: UtcMs) => Hz {
-  const answering = answeringLink(path)
-  const rate = createNeededFrequency(answering).rateHzPerS
-  const counted = withOscillatorsOf(budget, path)
-  return utcMs => uncertaintyHz(budgetAt({
-    utcMs, carrierHz: path.carrierHz,
-    rateHzPerS: budget.clockErrorMs + radio.latencyUncertaintyMs > 0 ? rate(utcMs) : 0,
-    alongTrackHzPerS: budget.alongTrackSigmaS(utcMs) > 0 ? partialAlongTrackHzPerS(answering, utcMs) : 0,
-    ut1HzPerS: budget.ut1BoundS > 0 ? partialUt1HzPerS(answering, utcMs) : 0,
-  }, counted, radio), budget.k)
+export function exactUncertainty(track: SiteTrack, link: Pick<LinkModel, 'direction' | 'carrierHz' | 'turnaround'>, budget: BudgetModel, radio: RadioModel): (utcMs: UtcMs) => Hz {
+  const { direction, carrierHz } = link
+  const counted = withOscillatorsOf(budget, link)
+  // Both legs of a coherent link answer alike, whether or not its uplink is pre-compensated.
+  const legs = link.turnaround ? 2 : 1
+  return utcMs => uncertaintyHz(budgetAt({ utcMs, carrierHz, ...seenPartials(track, direction, legs * carrierHz, utcMs) }, counted, radio), budget.k)
 }
 
 /** Spacing of the nodes between which the uncertainty is interpolated, and what is added for it. */
@@ -126,11 +129,11 @@ const NODE_MS = 4000
 const NODE_ROOM = 1.01
 
 /**
- * Uncertainty over time. The partials cost a dozen propagations an instant and change slowly, so they are asked every 4 s and
+ * Uncertainty over time. The partials cost several ratios an instant and change slowly, so they are asked every 4 s and
  * interpolated in straight pieces; one per cent is added, which no low orbit uses up.
  */
-function uncertaintyOver(path: LinkPath, ephemeris: Ephemeris, budget: BudgetModel, radio: RadioModel): (utcMs: UtcMs) => Hz {
-  const exact = exactUncertainty(path, budget, radio)
+function uncertaintyOver(track: SiteTrack, ephemeris: Ephemeris, { link, budget, radio }: TableQuery): (utcMs: UtcMs) => Hz {
+  const exact = exactUncertainty(track, link, budget, radio)
   const nodes = new Map<number, Hz>()
   const node = (n: number): Hz => {
     let value = nodes.get(n)
