@@ -85,7 +85,7 @@ describe('both legs against an independent program', () => {
     const startMs = Date.parse(pass.windowStart) + pass.startS * 1000
     const endMs = startMs + (pass.lightTimeDownS.length - 1) * pass.stepS * 1000
     const { stateAt } = createEphemeris(propagator, startMs, endMs)
-    const columnOf = (columns: Record<string, number[]>, hz: number) => Object.entries(columns).find(([key]) => Number(key) === hz)![1]
+    const columnOf = (columns: Readonly<Record<string, readonly number[]>>, hz: number) => Object.entries(columns).find(([key]) => Number(key) === hz)![1]
     for (const [hz, tolerance] of [[437.5e6, 0.1], [2245e6, 0.4], [8200e6, 1]] as const) {
       const received = columnOf(pass.receivedMinusCarrierHz, hz)
       const sent = columnOf(pass.transmitMinusCarrierHz, hz)
