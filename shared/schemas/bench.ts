@@ -1,6 +1,6 @@
 import { z } from 'zod'
 import { atLeastZero, idSchema, instantOut, instantSchema, positive } from './common'
-import { detectorSchema, directionSchema } from './links'
+import { detectorSchema, directionSchema, turnaroundTerm } from './links'
 import { budgetOut, retuneOut, verdictSchema } from './tables'
 
 const orNull = <T extends z.ZodType>(schema: T) => schema.nullable().default(null)
@@ -20,10 +20,17 @@ const benchLinkFields = {
   bandwidthHz: orNull(positive()),
   spreadingFactor: orNull(z.number().int().min(5).max(12)),
   limitHz: orNull(positive()),
-  turnaround: z.null({ error: 'Coherent turnaround is not computed yet: leave it out.' }).default(null),
+  /** Of a coherent transponder: the downlink it makes is numerator/denominator × the uplink it hears. */
+  turnaround: orNull(z.strictObject({
+    numerator: turnaroundTerm, denominator: turnaroundTerm,
+    /** Nominal uplink; left out, the one that makes the carrier. */
+    uplinkHz: orNull(z.number().min(1).max(1e12)),
+    uplinkPrecompensated: z.boolean().default(false),
+  })),
 }
-interface BenchLinkNumbers { detector: string, limitHz: number | null }
+interface BenchLinkNumbers { direction: string, turnaround: object | null, detector: string, limitHz: number | null }
 const needsLimit = (link: BenchLinkNumbers, ctx: z.RefinementCtx) => {
+  if (link.direction !== 'downlink' && link.turnaround !== null) ctx.addIssue({ code: 'custom', path: ['turnaround'], message: 'Only a downlink is made from an uplink: leave turnaround out.' })
   if (link.detector === 'stated' && link.limitHz === null) ctx.addIssue({ code: 'custom', path: ['limitHz'], message: 'A stated detector needs limitHz, from the modem’s data sheet.' })
 }
 export const benchLink = z.strictObject(benchLinkFields).superRefine(needsLimit)

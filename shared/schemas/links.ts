@@ -7,6 +7,8 @@ export const detectorSchema = z.enum(['quadrature', 'coherent', 'stated'])
 const hz = positive().max(1e12)
 /** Smaller figures mean nothing, and dividing by them overflows. */
 const carrierHz = z.number().min(1).max(1e12)
+/** A part of a turnaround ratio. */
+export const turnaroundTerm = z.number().int().min(1).max(100_000)
 const fields = {
   name: nameSchema,
   direction: directionSchema,
@@ -22,6 +24,10 @@ const fields = {
   rolloff: z.number().min(0).max(1).nullable(),
   /** Allowance of a link whose detector is stated, from the modem's data sheet. */
   limitHz: hz.nullable(),
+  /** Coherent: downlink = numerator/denominator × uplink; both null where the spacecraft's own oscillator makes the carrier. */
+  turnaroundNumerator: turnaroundTerm.nullable(),
+  turnaroundDenominator: turnaroundTerm.nullable(),
+  uplinkPrecompensated: z.boolean(),
   driftLimitHzPerS: positive().max(1e9).nullable(),
   jumpLimitHz: hz.nullable(),
   errorRate: z.number().min(1e-100).lt(0.5),
@@ -29,7 +35,7 @@ const fields = {
   approveWhatHolds: z.boolean(),
 }
 
-interface LinkNumbers { carrierHz: number, bandLowHz: number, bandHighHz: number, symbolRateHz: number, detector: string, limitHz: number | null, filterBandwidthHz: number | null, rolloff: number | null }
+interface LinkNumbers { direction: string, turnaroundNumerator: number | null, turnaroundDenominator: number | null, carrierHz: number, bandLowHz: number, bandHighHz: number, symbolRateHz: number, detector: string, limitHz: number | null, filterBandwidthHz: number | null, rolloff: number | null }
 
 /** Rules between fields; the server runs them again on the link as it would stand after a change. */
 export function linkProblems(link: LinkNumbers): { path: string, message: string }[] {
@@ -37,6 +43,8 @@ export function linkProblems(link: LinkNumbers): { path: string, message: string
   if (link.bandLowHz > link.carrierHz || link.carrierHz > link.bandHighHz) problems.push({ path: 'carrierHz', message: 'The carrier lies outside the licensed band: mend the carrier or the band’s edges.' })
   if (link.detector === 'stated' && link.limitHz === null) problems.push({ path: 'limitHz', message: 'A stated detector needs its limit in hertz from the modem’s data sheet.' })
   if (link.filterBandwidthHz !== null && (1 + (link.rolloff ?? 0)) * link.symbolRateHz >= link.filterBandwidthHz) problems.push({ path: 'filterBandwidthHz', message: 'The receiver’s filter is narrower than the signal: at least (1 + roll-off) × symbol rate is needed.' })
+  if ((link.turnaroundNumerator === null) !== (link.turnaroundDenominator === null)) problems.push({ path: link.turnaroundNumerator === null ? 'turnaroundNumerator' : 'turnaroundDenominator', message: 'A turnaround ratio needs both numbers, such as 240 and 221, or neither.' })
+  if (link.direction !== 'downlink' && link.turnaroundNumerator !== null) problems.push({ path: 'turnaroundNumerator', message: 'Only a downlink is made from an uplink: leave the turnaround ratio out.' })
   return problems
 }
 const checked = <T extends z.ZodType<LinkNumbers>>(schema: T) => schema.superRefine((link, ctx) => {
@@ -51,6 +59,9 @@ export const createLinkBody = checked(z.strictObject({
   filterBandwidthHz: fields.filterBandwidthHz.default(null),
   rolloff: fields.rolloff.default(null),
   limitHz: fields.limitHz.default(null),
+  turnaroundNumerator: fields.turnaroundNumerator.default(null),
+  turnaroundDenominator: fields.turnaroundDenominator.default(null),
+  uplinkPrecompensated: fields.uplinkPrecompensated.default(true),
   driftLimitHzPerS: fields.driftLimitHzPerS.default(null),
   jumpLimitHz: fields.jumpLimitHz.default(null),
   errorRate: fields.errorRate.default(1e-5),

@@ -12,7 +12,7 @@ const names: { readonly [S in Section]: Readonly<Partial<Record<string, string>>
   elements: { source: 'e', id: 'set', text: 'text' },
   station: { source: 's', id: 'station', latitudeDeg: 'lat', longitudeDeg: 'lon', heightM: 'h', minElevationDeg: 'el', mask: 'mask' },
   window: { from: 'from', to: 'to', sampleIntervalS: 'dt', ut1MinusUtcS: 'dut1' },
-  link: { source: 'l', id: 'link', direction: 'way', carrierHz: 'f', symbolRateHz: 'rs', detector: 'det', permittedLossDb: 'loss', limitHz: 'lim', captureRangeHz: 'cap', filterBandwidthHz: 'bw', rolloff: 'ro', driftLimitHzPerS: 'drift', jumpLimitHz: 'jump', errorRate: 'ber' },
+  link: { source: 'l', id: 'link', direction: 'way', carrierHz: 'f', symbolRateHz: 'rs', detector: 'det', permittedLossDb: 'loss', limitHz: 'lim', captureRangeHz: 'cap', filterBandwidthHz: 'bw', rolloff: 'ro', driftLimitHzPerS: 'drift', jumpLimitHz: 'jump', errorRate: 'ber', turnaround: 'turn' },
   radio: { source: 'r', id: 'radio', stepHz: 'step', offsetHz: 'grid', minDwellS: 'dwell', latencyMs: 'late', latencyUncertaintyMs: 'jit' },
   budget: { clockErrorMs: 'clock', alongTrackSigmaS: 'along', spacecraftPpm: 'sppm', stationPpm: 'gppm', ut1BoundS: 'but1', k: 'k' },
 }
@@ -28,18 +28,33 @@ function readMask(text: string): MaskPoint[] {
     .filter(point => Number.isFinite(point.azimuthDeg) && Number.isFinite(point.elevationDeg))
 }
 
+type Turnaround = NonNullable<BenchQuestion['link']['turnaround']>
+/** 240:221:1, the last whether the uplink is pre-compensated; behind it the nominal uplink, where one is given. */
+const writeTurnaround = ({ numerator, denominator, uplinkPrecompensated, uplinkHz }: Turnaround) =>
+  `${numerator}:${denominator}:${uplinkPrecompensated ? 1 : 0}${uplinkHz === null ? '' : `:${uplinkHz}`}`
+function readTurnaround(text: string): Turnaround | null {
+  const [, numerator, denominator, compensated, uplinkHz] = /^(\d{1,6}):(\d{1,6}):([01])(?::([\d.]{1,16}))?$/.exec(text) ?? []
+  if (numerator === undefined) return null
+  return { numerator: Number(numerator), denominator: Number(denominator), uplinkPrecompensated: compensated === '1', uplinkHz: uplinkHz === undefined ? null : Number(uplinkHz) }
+}
+const written = (field: string, value: unknown): string => {
+  if (value === null || value === undefined || Number.isNaN(value)) return ''
+  if (Array.isArray(value)) return writeMask(value as MaskPoint[])
+  return field === 'turnaround' ? writeTurnaround(value as Turnaround) : String(value)
+}
+
 /** The question as query parameters; what stands at its default is left out, the window apart, which moves with the clock. */
 export function toAddress(question: BenchQuestion): Query {
   const blank = blankQuestion(0)
   const query: Query = {}
-  const put = (name: string, value: unknown, usual: unknown) => {
-    const written = Array.isArray(value) ? writeMask(value as MaskPoint[]) : value === null || value === undefined || Number.isNaN(value) ? '' : String(value)
-    if (written !== (Array.isArray(usual) ? '' : String(usual ?? ''))) query[name] = written
+  const put = (name: string, value: unknown, usual: unknown, field = name) => {
+    const text = written(field, value)
+    if (text !== (Array.isArray(usual) ? '' : String(usual ?? ''))) query[name] = text
   }
   for (const [section, fields] of Object.entries(names)) {
     const values = question[section as Section] as Record<string, unknown>
     const usual = blank[section as Section] as Record<string, unknown>
-    for (const [field, name] of Object.entries(fields)) put(name!, values[field], section === 'window' && textual.has(field) ? '' : usual[field])
+    for (const [field, name] of Object.entries(fields)) put(name!, values[field], section === 'window' && textual.has(field) ? '' : usual[field], field)
   }
   if (question.elements.text.length > longestTextInAddress) delete query.text
   put('hz', question.offsetHz, null)
@@ -62,6 +77,7 @@ export function fromAddress(query: Readonly<Record<string, unknown>>, nowMs: num
 
 function readField(field: string, written: string, usual: unknown): unknown {
   if (field === 'mask') return readMask(written)
+  if (field === 'turnaround') return readTurnaround(written)
   if (words[field]) return words[field].includes(written) ? written : usual
   if (textual.has(field)) return written === '' && usual === null ? null : written
   return written === '' ? null : numberOr(written, usual)

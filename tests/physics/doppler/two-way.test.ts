@@ -9,6 +9,7 @@ import type { Site, StateTeme, Turnaround } from '../../../shared/physics/types'
 import { circularStates, EARTH_RADIUS_M, EARTH_RATE, meanMotion, siteOnSphere } from '../../support/circular-orbit'
 import { propagatorOf, referenceDoppler } from '../../support/reference-data'
 import { elementsFromLines, siteFromDegrees } from '../../support/reference-elements'
+import { oneWayReference, twoWayReference } from '../../support/two-way-reference'
 
 const C = 299_792_458
 const T0 = Date.UTC(2026, 10, 30, 6)
@@ -64,18 +65,6 @@ describe('a coherent transponder', () => {
 
 describe('both legs against an independent program', () => {
   const reference = referenceDoppler()
-  /** Between samples by eight points; a few tenths of a second off a sample, at 10 s. */
-  const between = (values: readonly number[], at: number): number => {
-    const first = Math.max(0, Math.min(values.length - 8, Math.round(at) - 4))
-    let sum = 0
-    for (let i = first; i < first + 8; i++) {
-      let weight = 1
-      for (let j = first; j < first + 8; j++) if (j !== i) weight *= (at - j) / (i - j)
-      sum += weight * values[i]!
-    }
-    return sum
-  }
-
   it.each(reference.passes.map(pass => [pass.satellite, pass] as const))('agree for %s on every carrier', (_, pass) => {
     // Source: Skyfield 1.45 with python-sgp4 2.15 (data/README.md): what is received over what is sent down at t, and
     // what has to be sent over what is heard a round trip before. Each leg is good to 0.05 and 0.2 Hz; two and the
@@ -85,19 +74,14 @@ describe('both legs against an independent program', () => {
     const startMs = Date.parse(pass.windowStart) + pass.startS * 1000
     const endMs = startMs + (pass.lightTimeDownS.length - 1) * pass.stepS * 1000
     const { stateAt } = createEphemeris(propagator, startMs, endMs)
-    const columnOf = (columns: Readonly<Record<string, readonly number[]>>, hz: number) => Object.entries(columns).find(([key]) => Number(key) === hz)![1]
     for (const [hz, tolerance] of [[437.5e6, 0.1], [2245e6, 0.4], [8200e6, 1]] as const) {
-      const received = columnOf(pass.receivedMinusCarrierHz, hz)
-      const sent = columnOf(pass.transmitMinusCarrierHz, hz)
+      const [received, twoWay] = [oneWayReference(pass, hz), twoWayReference(pass, hz)]
       const link = { stateAt, site, ut1MinusUtcS: 0, direction: 'downlink' as const, carrierHz: hz, turnaround: { ...sBand, numerator: 880, denominator: 749 } }
       const needed = createNeededFrequency(link)
       const compensated = createNeededFrequency({ ...link, turnaround: { ...link.turnaround, uplinkPrecompensated: true } })
       for (let k = 1; k < received.length; k++) {
         const atMs = startMs + k * pass.stepS * 1000
-        const up = -between(sent, k - 2 * pass.lightTimeDownS[k]! / pass.stepS) / hz
-        const heard = up / (1 - up)
-        const down = received[k]! / hz
-        const expected = hz * (heard + down + heard * down)
+        const expected = twoWay[k]!
         expect(Math.abs(needed.dopplerHz(atMs) - expected), `${hz} sample ${k}`).toBeLessThan(tolerance)
         expect(Math.abs(directOffsetHz({ propagator, site, link, ut1MinusUtcS: 0 }, atMs) - expected), `${hz} sample ${k}`).toBeLessThan(tolerance)
         expect(Math.abs(compensated.dopplerHz(atMs) - received[k]!), `${hz} sample ${k}`).toBeLessThan(tolerance)
