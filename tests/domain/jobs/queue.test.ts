@@ -57,17 +57,6 @@ describe('a computation that is asked for', () => {
     await ask({ spacecraftIds: [spacecraftId], reason: 'second' })
     expect(await waiting()).toEqual(['first', 'second'])
   })
-})
-
-it('tries a statement of the queue again when the database has cut its connection, and tells of it once', async () => {
-  const told: unknown[] = []
-  const own = openBossDatabase(test.url, error => told.push(error))
-  const slow = own.executeSql('SELECT pg_sleep(0.3), 7 AS seven', [])
-  await expect.poll(async () => (await database.db.execute(sql`SELECT pg_terminate_backend(pid) FROM pg_stat_activity WHERE application_name = 'nullbeat-jobs' AND state = 'active'`)).rows.length).toBe(1)
-  expect((await slow).rows[0]).toMatchObject({ seven: 7 })
-  expect(told).toHaveLength(1)
-  await expect(own.executeSql('SELECT nonsense', [])).rejects.toThrow('nonsense')
-  await own.close()
 
   it('is told to who takes such jobs in this process, once for many, a moment after it was asked for', async () => {
     let told = 0
@@ -79,4 +68,15 @@ it('tries a statement of the queue again when the database has cut its connectio
     expect(told).toBeLessThan(4)
     onSent('predict', () => {})
   })
+})
+
+it('tries a statement of the queue again when the database has cut its connection, and tells of it once', async () => {
+  const told: unknown[] = []
+  const own = openBossDatabase(test.url, error => told.push(error))
+  const slow = own.executeSql('SELECT pg_sleep(0.3), 7 AS seven', [])
+  await expect.poll(async () => (await database.db.execute(sql`SELECT pg_terminate_backend(pid) FROM pg_stat_activity WHERE application_name = 'nullbeat-jobs' AND state = 'active'`)).rows.length).toBe(1)
+  expect((await slow).rows[0]).toMatchObject({ seven: 7 })
+  expect(told).toHaveLength(1)
+  await expect(own.executeSql('SELECT nonsense', [])).rejects.toThrow('nonsense')
+  await own.close()
 })
