@@ -6,7 +6,7 @@ import type { MaskDeg } from '../catalogue/horizon-line'
 
 /** Taken from what the product keeps, or written out here. */
 export type Source = 'held' | 'given'
-type LinkFields = Pick<z.output<typeof benchLink>, 'direction' | 'carrierHz' | 'symbolRateHz' | 'detector' | 'permittedLossDb' | 'limitHz' | 'captureRangeHz' | 'filterBandwidthHz' | 'rolloff' | 'driftLimitHzPerS' | 'jumpLimitHz' | 'errorRate'>
+type LinkFields = Pick<z.output<typeof benchLink>, 'direction' | 'carrierHz' | 'symbolRateHz' | 'detector' | 'permittedLossDb' | 'limitHz' | 'captureRangeHz' | 'filterBandwidthHz' | 'rolloff' | 'driftLimitHzPerS' | 'jumpLimitHz' | 'errorRate' | 'esN0Db' | 'bandwidthHz' | 'spreadingFactor'>
 type RadioFields = Pick<z.output<typeof benchRadio>, 'stepHz' | 'offsetHz' | 'minDwellS' | 'latencyMs' | 'latencyUncertaintyMs'>
 
 /** What is asked of the bench, as the form holds it: both sources of each part, so that changing over loses nothing typed. */
@@ -32,8 +32,8 @@ export function comingDay(nowMs: number): { from: string, to: string } {
   return { from: minuteText(fromMs), to: minuteText(fromMs + DAY_MS) }
 }
 
-export function pickLink({ direction, carrierHz, symbolRateHz, detector, permittedLossDb, limitHz, captureRangeHz, filterBandwidthHz, rolloff, driftLimitHzPerS, jumpLimitHz, errorRate }: LinkFields | LinkOut): LinkFields {
-  return { direction, carrierHz, symbolRateHz, detector, permittedLossDb, limitHz, captureRangeHz, filterBandwidthHz, rolloff, driftLimitHzPerS, jumpLimitHz, errorRate }
+export function pickLink({ direction, carrierHz, symbolRateHz, detector, permittedLossDb, limitHz, captureRangeHz, filterBandwidthHz, rolloff, driftLimitHzPerS, jumpLimitHz, errorRate, esN0Db, bandwidthHz, spreadingFactor }: LinkFields | LinkOut): LinkFields {
+  return { direction, carrierHz, symbolRateHz, detector, permittedLossDb, limitHz, captureRangeHz, filterBandwidthHz, rolloff, driftLimitHzPerS, jumpLimitHz, errorRate, esN0Db, bandwidthHz, spreadingFactor }
 }
 export function pickRadio({ stepHz, offsetHz, minDwellS, latencyMs, latencyUncertaintyMs }: RadioFields | RadioOut): RadioFields {
   return { stepHz, offsetHz, minDwellS, latencyMs, latencyUncertaintyMs }
