@@ -18,7 +18,6 @@ const helpers: Record<string, string> = {
   'orbit/ephemeris.ts gridOf': 'hands out what createEphemeris made',
   'orbit/site-track.ts sinElevation': 'stands in for the elevation in the search of findPasses',
   'doppler/needed.ts statesOf': 'adapts a propagator',
-  'predict/sample-pass.ts forEachSampleTime': 'order of instants, held by samplePass',
   'plan/check-scan.ts': 'where the checker looks, held by checkTable',
   'plan/corridor.ts mirrored': 'turns time round for the search',
   'plan/holds.ts': 'step of planRetunes\' search, held by exhaustive search',

@@ -6,7 +6,7 @@ import type { MaskDeg } from '../catalogue/horizon-line'
 
 /** Taken from what the product keeps, or written out here. */
 export type Source = 'held' | 'given'
-type LinkFields = Pick<z.output<typeof benchLink>, 'direction' | 'carrierHz' | 'symbolRateHz' | 'detector' | 'permittedLossDb' | 'limitHz' | 'captureRangeHz' | 'filterBandwidthHz' | 'rolloff' | 'driftLimitHzPerS' | 'jumpLimitHz' | 'errorRate' | 'turnaround'>
+type LinkFields = Pick<z.output<typeof benchLink>, 'direction' | 'carrierHz' | 'symbolRateHz' | 'detector' | 'permittedLossDb' | 'limitHz' | 'captureRangeHz' | 'filterBandwidthHz' | 'rolloff' | 'driftLimitHzPerS' | 'jumpLimitHz' | 'errorRate' | 'esN0Db' | 'bandwidthHz' | 'spreadingFactor' | 'turnaround'>
 type RadioFields = Pick<z.output<typeof benchRadio>, 'stepHz' | 'offsetHz' | 'minDwellS' | 'latencyMs' | 'latencyUncertaintyMs'>
 
 /** What is asked of the bench, as the form holds it: both sources of each part, so that changing over loses nothing typed. */
@@ -32,8 +32,9 @@ export function comingDay(nowMs: number): { from: string, to: string } {
   return { from: minuteText(fromMs), to: minuteText(fromMs + DAY_MS) }
 }
 
-export function pickLink({ direction, carrierHz, symbolRateHz, detector, permittedLossDb, limitHz, captureRangeHz, filterBandwidthHz, rolloff, driftLimitHzPerS, jumpLimitHz, errorRate, ...rest }: LinkFields | LinkOut): LinkFields {
-  return { turnaround: 'turnaround' in rest ? rest.turnaround && { ...rest.turnaround } : turnaroundOf(rest), direction, carrierHz, symbolRateHz, detector, permittedLossDb, limitHz, captureRangeHz, filterBandwidthHz, rolloff, driftLimitHzPerS, jumpLimitHz, errorRate }
+export function pickLink({ direction, carrierHz, symbolRateHz, detector, permittedLossDb, limitHz, captureRangeHz, filterBandwidthHz, rolloff, driftLimitHzPerS, jumpLimitHz, errorRate, esN0Db, bandwidthHz, spreadingFactor, ...rest }: LinkFields | LinkOut): LinkFields {
+  const turnaround = 'turnaround' in rest ? rest.turnaround && { ...rest.turnaround } : turnaroundOf(rest)
+  return { turnaround, direction, carrierHz, symbolRateHz, detector, permittedLossDb, limitHz, captureRangeHz, filterBandwidthHz, rolloff, driftLimitHzPerS, jumpLimitHz, errorRate, esN0Db, bandwidthHz, spreadingFactor }
 }
 function turnaroundOf({ turnaroundNumerator: numerator, turnaroundDenominator: denominator, uplinkPrecompensated }: Pick<LinkOut, 'turnaroundNumerator' | 'turnaroundDenominator' | 'uplinkPrecompensated'>): LinkFields['turnaround'] {
   return numerator === null || denominator === null ? null : { numerator, denominator, uplinkPrecompensated, uplinkHz: null }

@@ -29,8 +29,8 @@ export function siteOf(station: StationRow): Site {
 
 export function linkModelOf(link: LinkRow): LinkModel {
   const { direction, carrierHz, symbolRateHz, detector, permittedLossDb, captureRangeHz, filterBandwidthHz, rolloff } = link
-  const { driftLimitHzPerS, jumpLimitHz, limitHz, errorRate, bandLowHz, bandHighHz } = link
-  return { direction, carrierHz, symbolRateHz, detector, permittedLossDb, captureRangeHz, filterBandwidthHz, rolloff, driftLimitHzPerS, jumpLimitHz, limitHz, errorRate, bandLowHz, bandHighHz, ...turnaroundOf(link) }
+  const { driftLimitHzPerS, jumpLimitHz, limitHz, errorRate, esN0Db, bandwidthHz, spreadingFactor, bandLowHz, bandHighHz } = link
+  return { direction, carrierHz, symbolRateHz, detector, permittedLossDb, captureRangeHz, filterBandwidthHz, rolloff, driftLimitHzPerS, jumpLimitHz, limitHz, errorRate, esN0Db, bandwidthHz, spreadingFactor, bandLowHz, bandHighHz, ...turnaroundOf(link) }
 }
 
 /** Nothing where there is none, so that the digests of one-way links stay what they were. */

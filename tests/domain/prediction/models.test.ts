@@ -4,7 +4,7 @@ import { dopplerRoomHz, radioFor } from '~~/server/domain/prediction/models'
 import { referenceElements } from './fleet'
 
 const elements = referenceElements('SSO500')
-const link = { direction: 'downlink', carrierHz: 437.5e6 } as LinkRow
+const link = { direction: 'downlink', carrierHz: 437.5e6, turnaroundNumerator: null, turnaroundDenominator: null } as LinkRow
 const radio = (id: string, fields: Partial<RadioRow> = {}) => ({ id, name: id, transmits: false, receives: true, tuneLowHz: 430e6, tuneHighHz: 440e6, stepHz: 10, retiredAt: null, ...fields }) as RadioRow
 
 describe('the radio that serves a link', () => {
@@ -16,6 +16,15 @@ describe('the radio that serves a link', () => {
     expect(radioFor(link, elements, [radio('a', { tuneHighHz: 437.505e6 })])).toBeNull()
     expect(radioFor(link, elements, [radio('a', { tuneLowHz: 437.495e6 })])).toBeNull()
     expect(radioFor(link, elements, [radio('a', { tuneLowHz: 437.485e6, tuneHighHz: 437.515e6 })])?.id).toBe('a')
+  })
+
+  it('leaves twice the room for a coherent link’s two legs, and once where its uplink is pre-compensated', () => {
+    // 10 377 Hz at the horizon for 437 MHz (mechanics), twice 20 754 Hz.
+    const coherent = { ...link, turnaroundNumerator: 240, turnaroundDenominator: 221, uplinkPrecompensated: false }
+    const narrow = [radio('a', { tuneLowHz: 437.485e6, tuneHighHz: 437.515e6 })]
+    expect(radioFor(coherent, elements, narrow)).toBeNull()
+    expect(radioFor({ ...coherent, uplinkPrecompensated: true }, elements, narrow)?.id).toBe('a')
+    expect(radioFor(coherent, elements, [radio('a', { tuneLowHz: 437.47e6, tuneHighHz: 437.53e6 })])?.id).toBe('a')
   })
 
   it('works in the link’s direction and is not retired', () => {
