@@ -43,6 +43,17 @@ describe('a coherent transponder', () => {
     expect(Math.abs(roundTripS - 2 * 1e6 / (C + 7000))).toBeLessThan(1e-11)
   })
 
+  it.each([[500e3, 1.7], [35_786e3, 0.2]])('loses by both legs what the round trip gains, over a station that turns with the Earth, from %d m', (heightM, inclinationRad) => {
+    // Source: mechanics. One clock sends and receives, so received over sent is 1 − d(round trip)/dt, exactly; by five-point differences of the round trip.
+    const path = { stateAt: circularStates({ radiusM: EARTH_RADIUS_M + heightM, inclinationRad, nodeRad: gmstRad(T0) + 0.1, phaseRad: 0.1, epochMs: T0 }), site: siteOnSphere(0.1, 0), ut1MinusUtcS: 0 }
+    for (const t of [T0 - 120_000, T0, T0 + 60_000]) {
+      const trip = (s: number) => twoWayOf(path, t + s * 1000).roundTripS
+      const gained = (trip(-2) - 8 * trip(-1) + 8 * trip(1) - trip(2)) / 12
+      const { upMinusOne, downMinusOne } = twoWayOf(path, t)
+      expect(Math.abs(upMinusOne + downMinusOne + upMinusOne * downMinusOne + gained)).toBeLessThan(2e-12)
+    }
+  })
+
   it('shows the one-way shift only where its uplink is pre-compensated', () => {
     const compensated = createNeededFrequency({ stateAt: radial(-7000), site: pole, ut1MinusUtcS: 0, direction: 'downlink', carrierHz, turnaround: { ...sBand, uplinkPrecompensated: true } })
     // Source: f·(√((1+β)/(1−β)) − 1), special relativity.
