@@ -18,6 +18,7 @@ const helpers: Record<string, string> = {
   'orbit/ephemeris.ts gridOf': 'hands out what createEphemeris made',
   'orbit/site-track.ts sinElevation': 'stands in for the elevation in the search of findPasses',
   'doppler/needed.ts statesOf': 'adapts a propagator',
+  'link/positive.ts': 'refuses a figure that is not above 0, held by the tests of what it guards',
   'plan/check-scan.ts': 'where the checker looks, held by checkTable',
   'plan/corridor.ts mirrored': 'turns time round for the search',
   'plan/holds.ts': 'step of planRetunes\' search, held by exhaustive search',
