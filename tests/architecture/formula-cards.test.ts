@@ -15,8 +15,6 @@ const helpers: Record<string, string> = {
   'orbit/ephemeris.ts gridOf': 'hands out an ephemeris\'s own nodes',
   'orbit/workable.ts sightsFrom': 'joins an ephemeris and a station, held by findPasses',
   'orbit/workable.ts partsAboveHorizon': 'step of findPasses and workablePartsForLink',
-  'orbit/ephemeris.ts gridOf': 'hands out what createEphemeris made',
-  'orbit/site-track.ts sinElevation': 'stands in for the elevation in the search of findPasses',
   'doppler/needed.ts statesOf': 'adapts a propagator',
   'link/positive.ts': 'refuses a figure that is not above 0, held by the tests of what it guards',
   'plan/check-scan.ts': 'where the checker looks, held by checkTable',
