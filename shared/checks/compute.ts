@@ -92,8 +92,9 @@ export const computations: Record<CheckId, (at: number) => number> = {
   'gmst': () => gmstRad(Date.UTC(1992, 7, 20, 12, 14)) * DEG,
   'site': axis => sitePosition(siteAt(45, 0, 0))[axis] ?? NaN,
   'ut1': (seconds) => {
-    const [a, b] = [0, seconds].map(s => siteStateTeme(siteAt(0, 77, 0), T0, s).positionM) as [readonly number[], readonly number[]]
-    return Math.hypot(a[0]! - b[0]!, a[1]! - b[1]!)
+    const place = (ut1MinusUtcS: number) => siteStateTeme(siteAt(0, 77, 0), T0, ut1MinusUtcS).positionM
+    const [before, after] = [place(0), place(seconds)]
+    return Math.hypot(before[0] - after[0], before[1] - after[1])
   },
   'angles': which => (which === 0 ? lookOfInvented().azimuthRad : lookOfInvented().elevationRad) * DEG,
   'range': () => lookOfInvented().rangeM,
@@ -116,6 +117,10 @@ export const computations: Record<CheckId, (at: number) => number> = {
   'half-power': epsilon => loss(link('quadrature'), epsilon),
   'roll-off': epsilon => loss(link('quadrature', { rolloff: 0.35 }), epsilon),
   'interference': epsilon => interSymbolInterferenceDb(epsilon, 0.35),
+  'msk': epsilon => loss(link('msk'), epsilon),
+  'differential': epsilon => loss(link('differential'), epsilon),
+  'fsk': epsilon => loss(link('fsk'), epsilon),
+  'multicarrier': epsilon => loss(link('multicarrier'), epsilon),
   'filter': () => allowanceOf(link('quadrature', { filterBandwidthHz: 14_000, rolloff: 0.25 })).allowanceHz,
   'bpsk': requiredEbN0Db,
   'budget': budgetPart,

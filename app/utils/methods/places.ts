@@ -14,7 +14,7 @@ export const methodPlaces: readonly MethodPlace[] = [
     'The same ratio scales the symbol clock. First order, −f·ρ̇/c, serves as a check only.',
   ] },
   { place: 'link', title: 'What a link bears', text: [
-    'A residual Δf costs a loss at the detector’s output that depends on ε = Δf·T, T the symbol’s length. The allowance is the Δf at which the loss reaches what the link permits, or the loop’s capture range, or what the receiver’s filter leaves beside the signal, or a limit stated for the modem: whichever is smallest. The pass says which.',
+    'A residual Δf costs a loss at the detector’s output that depends on ε = Δf·T, T the symbol’s length. The allowance is the Δf at which the loss reaches what the link permits, or the loop’s capture range, or what the receiver’s filter leaves beside the signal, or a limit stated for the modem (for a chirp a quarter of its bandwidth): whichever is smallest. The pass says which.',
   ] },
   { place: 'budget', title: 'Error budget', text: [
     'At each instant: the steps of the table, known exactly; timing and UT1 as limits, which add; orbit and oscillators as one-sigma spreads, which add as the root of squares, times k. Timing counts the station’s clock and the uncertainty of the command’s latency; a known latency is no error, rows are sent earlier by it. The budgeted residual is |steps| + timing + UT1 + k·spread, and it is what verdicts, margins and alerts mean.',

@@ -1,16 +1,13 @@
 import type { Direction, Site, StateTeme, UtcMs } from '../types'
 import { siteStateTeme } from '../orbit/frames'
-import { dot, minus, norm, plusScaled, type Triple } from '../orbit/vector'
 
 /** Exact by definition of the metre. */
 export const SPEED_OF_LIGHT_MPS = 299_792_458
 
 export const EARTH_GM_M3PS2 = 398_600.8e9
+const C = SPEED_OF_LIGHT_MPS
 const LIGHT_TIME_TOLERANCE_S = 1e-12
 const MOST_ROUNDS = 8
-
-/** A leg of light between a station and a spacecraft: its ratio, and the spacecraft where the light meets it, TEME. */
-export interface Leg extends FrequencyRatio { readonly craft: { readonly position: Triple, readonly velocity: Triple } }
 
 /** States of a spacecraft by instant: an ephemeris's `stateAt`, or a propagator through `statesOf`. */
 export type StateAt = (utcMs: UtcMs) => StateTeme | null
@@ -26,42 +23,6 @@ export interface Path {
 export interface FrequencyRatio { readonly ratio: number, readonly ratioMinusOne: number, readonly lightTimeS: number }
 
 /**
- * State a small time after another's instant, by the central attraction alone. For steps of light time at most: over
- * 0.3 s what it leaves out (oblateness) is below 1 mm and 3 mm/s.
- */
-function shifted(state: StateTeme, bySeconds: number): { position: Triple, velocity: Triple } {
-  const position = state.positionM as Triple
-  const velocity = state.velocityMps as Triple
-  const pull = -EARTH_GM_M3PS2 / norm(position) ** 3
-  const acceleration: Triple = [pull * position[0], pull * position[1], pull * position[2]]
-  return {
-    position: plusScaled(plusScaled(position, bySeconds, velocity), bySeconds * bySeconds / 2, acceleration),
-    velocity: plusScaled(velocity, bySeconds, acceleration),
-  }
-}
-
-/**
- * Received over transmitted, minus one, of two velocities (m/s) and the unit arrow from transmitter to receiver:
- * sqrt((1−βt²)/(1−βr²)) − 1 and (1−n·βr)/(1−n·βt) − 1, joined without cancellation.
- *
- * @card Ratio of two velocities: relativistic Doppler without loss of digits.
- * @formula (1 − n·v_r/c)/(1 − n·v_t/c) · √((1 − v_t²/c²)/(1 − v_r²/c²)) − 1
- * @source special relativity
- * @units m/s → dimensionless
- * @frame one inertial frame for all three
- * @range speeds under that of light
- * @tolerance 0.01 Hz at 437 MHz and 7 km/s, both signs (doppler/closed-forms.test.ts)
- */
-export function ratioMinusOne(transmitter: Triple, receiver: Triple, direction: Triple): number {
-  const c = SPEED_OF_LIGHT_MPS
-  const motion = dot(direction, minus(transmitter, receiver)) / c / (1 - dot(direction, transmitter) / c)
-  const [bt2, br2] = [dot(transmitter, transmitter) / c / c, dot(receiver, receiver) / c / c]
-  const x = (br2 - bt2) / (1 - br2)
-  const dilation = x / (1 + Math.sqrt(1 + x))
-  return motion + dilation + motion * dilation
-}
-
-/**
  * Frequency received over frequency transmitted, one way, special relativity, in axes that do not rotate (TEME), the
  * station moving with ω×r:
  *
@@ -70,6 +31,8 @@ export function ratioMinusOne(transmitter: Triple, receiver: Triple, direction: 
  * (relativistic Doppler between two moving ends, e.g. Misra and Enge, or any text on special relativity). `utcMs` is the
  * station's instant: of reception for a downlink, of transmission for an uplink. The light time is iterated below 1 ns.
  * Gravity, ionosphere and troposphere are left out.
+ *
+ * Into `craft`, where given, go the spacecraft's place and velocity where the light meets it, TEME, m and m/s.
  *
  * Throws a RangeError where the spacecraft's state is not known. A light time beyond the ephemeris's edge is bridged
  * from the state at the station's instant.
@@ -82,54 +45,68 @@ export function ratioMinusOne(transmitter: Triple, receiver: Triple, direction: 
  * @range within the ephemeris; gravity, ionosphere, troposphere left out
  * @tolerance 0.05, 0.2, 0.5 Hz at 437.5, 2245, 8200 MHz of an independent program (doppler/reference-doppler.test.ts)
  */
-export function receivedOverTransmitted(path: Path, direction: Direction, utcMs: UtcMs): FrequencyRatio {
-  const { ratio, ratioMinusOne: offset, lightTimeS } = legOf(path, direction, utcMs)
-  return { ratio, ratioMinusOne: offset, lightTimeS }
-}
-
-/**
- * The leg of light behind `receivedOverTransmitted`, with the spacecraft where the light meets it.
- *
- * @card Leg of light: the frequency ratio with the spacecraft's state where the light meets it.
- * @formula as the frequency ratio
- * @source special relativity
- * @units UTC ms of the station → dimensionless, s, m, m/s
- * @frame TEME axes, taken as not turning
- * @range as the frequency ratio
- * @tolerance 2 ns of light time of an independent program (doppler/reference-doppler.test.ts)
- */
-export function legOf(path: Path, direction: Direction, utcMs: UtcMs): Leg {
+export function receivedOverTransmitted(path: Path, direction: Direction, utcMs: UtcMs, craft?: Float64Array): FrequencyRatio {
   const station = siteStateTeme(path.site, utcMs, path.ut1MinusUtcS)
   const now = path.stateAt(utcMs)
   if (!now) throw new RangeError(`The spacecraft's state at ${utcMs} is not known: ask within the ephemeris`)
-  const place = station.positionM as Triple
+  const [sx, sy, sz] = station.positionM
   const sign = direction === 'downlink' ? -1 : 1
 
-  // An instant in ms resolves 0.24 µs, a spacecraft moves 2 mm in that: the rest is bridged by `shifted`.
-  let lightTimeS = norm(minus(now.positionM as Triple, place)) / SPEED_OF_LIGHT_MPS
+  // An instant in ms resolves 0.24 µs, a spacecraft moves 2 mm in that: the rest is bridged from the nearest state.
+  let lightTimeS = Math.sqrt((now.positionM[0] - sx) ** 2 + (now.positionM[1] - sy) ** 2 + (now.positionM[2] - sz) ** 2) / C
   const baseMs = utcMs + sign * lightTimeS * 1000
   const base = path.stateAt(baseMs)
-  const fromBase = (tau: number) => base
-    ? shifted(base, sign * tau - (baseMs - utcMs) / 1000)
-    : shifted(now, sign * tau)
+  const [px, py, pz] = (base ?? now).positionM
+  const [vx, vy, vz] = (base ?? now).velocityMps
+  const baseAfterS = base ? (baseMs - utcMs) / 1000 : 0
 
-  let spacecraft = fromBase(lightTimeS)
+  // By the central attraction alone. For light time at most: over 0.3 s what it leaves out (oblateness) is below 1 mm and 3 mm/s.
+  const r2 = px * px + py * py + pz * pz
+  const pull = -EARTH_GM_M3PS2 / (r2 * Math.sqrt(r2))
+  let [by, x, y, z, rangeM, change] = [0, 0, 0, 0, 0, Infinity]
+  // The last round is made with the light time that is given back.
   for (let round = 0; round < MOST_ROUNDS; round++) {
-    const next = norm(minus(spacecraft.position, place)) / SPEED_OF_LIGHT_MPS
-    const change = Math.abs(next - lightTimeS)
-    lightTimeS = next
-    spacecraft = fromBase(lightTimeS)
+    by = sign * lightTimeS - baseAfterS
+    const fall = 1 + by * by / 2 * pull
+    x = px * fall + by * vx - sx
+    y = py * fall + by * vy - sy
+    z = pz * fall + by * vz - sz
+    rangeM = Math.sqrt(x * x + y * y + z * z)
     if (change < LIGHT_TIME_TOLERANCE_S) break
+    change = Math.abs(rangeM / C - lightTimeS)
+    lightTimeS = rangeM / C
   }
 
-  const up = minus(spacecraft.position, place)
-  const length = norm(up)
-  const alongRay: Triple = [sign * up[0] / length, sign * up[1] / length, sign * up[2] / length]
-  const velocity = station.velocityMps as Triple
-  const offset = direction === 'downlink'
-    ? ratioMinusOne(spacecraft.velocity, velocity, alongRay)
-    : ratioMinusOne(velocity, spacecraft.velocity, alongRay)
-  return { ratio: 1 + offset, ratioMinusOne: offset, lightTimeS, craft: spacecraft }
+  // Speeds over c along the ray from transmitter to receiver, and squared in all.
+  const [ux, uy, uz] = [vx + by * pull * px, vy + by * pull * py, vz + by * pull * pz]
+  const [wx, wy] = station.velocityMps
+  const toRay = sign / (rangeM * C)
+  const craftBeta = (x * ux + y * uy + z * uz) * toRay
+  const siteBeta = (x * wx + y * wy) * toRay
+  const craft2 = (ux * ux + uy * uy + uz * uz) / (C * C)
+  const site2 = (wx * wx + wy * wy) / (C * C)
+  const offset = direction === 'downlink' ? ratioMinusOne(craftBeta, siteBeta, craft2, site2) : ratioMinusOne(siteBeta, craftBeta, site2, craft2)
+  if (craft) [craft[0], craft[1], craft[2], craft[3], craft[4], craft[5]] = [x + sx, y + sy, z + sz, ux, uy, uz]
+  return { ratio: 1 + offset, ratioMinusOne: offset, lightTimeS }
+}
+
+/**
+ * (1−n·βr)/(1−n·βt) − 1 and sqrt((1−βt²)/(1−βr²)) − 1, joined without cancellation. `transmitter` and `receiver` are speeds over c
+ * along the ray, the others the squares of whole speeds over c.
+ *
+ * @card Ratio of two speeds: relativistic Doppler without loss of digits.
+ * @formula (1 − n·β_r)/(1 − n·β_t) · √((1 − β_t²)/(1 − β_r²)) − 1
+ * @source special relativity
+ * @units speeds over c → dimensionless
+ * @frame one inertial frame for both, along the ray from transmitter to receiver
+ * @range speeds under that of light
+ * @tolerance 0.01 Hz at 437 MHz and 7 km/s, both signs (doppler/closed-forms.test.ts)
+ */
+export function ratioMinusOne(transmitter: number, receiver: number, transmitter2: number, receiver2: number): number {
+  const motion = (transmitter - receiver) / (1 - transmitter)
+  const x = (receiver2 - transmitter2) / (1 - receiver2)
+  const dilation = x / (1 + Math.sqrt(1 + x))
+  return motion + dilation + motion * dilation
 }
 
 /**

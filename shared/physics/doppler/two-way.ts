@@ -1,7 +1,9 @@
 import { siteStateTeme } from '../orbit/frames'
-import { minus, norm, type Triple } from '../orbit/vector'
+import { dot, minus, norm, type Triple } from '../orbit/vector'
 import type { Hz, Turnaround, UtcMs } from '../types'
-import { legOf, ratioMinusOne, SPEED_OF_LIGHT_MPS, type Path } from './ratio'
+import { ratioMinusOne, receivedOverTransmitted, SPEED_OF_LIGHT_MPS, type Path } from './ratio'
+
+const C = SPEED_OF_LIGHT_MPS
 
 /** Ratios in common use, downlink over uplink: S/S, X/S, X/X and S/X bands (CCSDS 401.0-B). */
 export const COMMON_TURNAROUNDS: readonly (readonly [numerator: number, denominator: number])[] = [[240, 221], [880, 221], [880, 749], [240, 749]]
@@ -31,16 +33,19 @@ export interface TwoWay {
  * @tolerance 0.1 Hz at 437.5 MHz and 0.4 Hz at 2245 MHz of an independent program’s two legs (doppler/two-way.test.ts)
  */
 export function twoWayOf(path: Path, utcMs: UtcMs): TwoWay {
-  const down = legOf(path, 'downlink', utcMs)
+  const craft = new Float64Array(6)
+  const down = receivedOverTransmitted(path, 'downlink', utcMs, craft)
+  const place: Triple = [craft[0]!, craft[1]!, craft[2]!]
+  const velocity: Triple = [craft[3]!, craft[4]!, craft[5]!]
   const stationAt = (tau: number) => siteStateTeme(path.site, utcMs - (down.lightTimeS + tau) * 1000, path.ut1MinusUtcS)
   let upS = down.lightTimeS
-  for (let round = 0; round < LIGHT_TIME_ROUNDS; round++) upS = norm(minus(down.craft.position, stationAt(upS).positionM as Triple)) / SPEED_OF_LIGHT_MPS
+  for (let round = 0; round < LIGHT_TIME_ROUNDS; round++) upS = norm(minus(place, stationAt(upS).positionM as Triple)) / C
   const station = stationAt(upS)
-  const ray = minus(down.craft.position, station.positionM as Triple)
-  const length = norm(ray)
-  const alongRay: Triple = [ray[0] / length, ray[1] / length, ray[2] / length]
+  const siteVelocity = station.velocityMps as Triple
+  const ray = minus(place, station.positionM as Triple)
+  const alongRay = (v: Triple): number => dot(v, ray) / (norm(ray) * C)
   return {
-    upMinusOne: ratioMinusOne(station.velocityMps as Triple, down.craft.velocity, alongRay),
+    upMinusOne: ratioMinusOne(alongRay(siteVelocity), alongRay(velocity), dot(siteVelocity, siteVelocity) / C ** 2, dot(velocity, velocity) / C ** 2),
     downMinusOne: down.ratioMinusOne,
     roundTripS: down.lightTimeS + upS,
   }
@@ -76,7 +81,7 @@ export interface CoherentCarrier { readonly carrierHz: Hz, readonly turnaround: 
  */
 export function coherentOffsetHz(path: Path, { carrierHz, turnaround }: CoherentCarrier, utcMs: UtcMs): Hz {
   const sentHz = turnaround.uplinkHz === null ? carrierHz : turnedAroundHz(turnaround.uplinkHz, turnaround)
-  if (turnaround.uplinkPrecompensated) return sentHz - carrierHz + sentHz * legOf(path, 'downlink', utcMs).ratioMinusOne
+  if (turnaround.uplinkPrecompensated) return sentHz - carrierHz + sentHz * receivedOverTransmitted(path, 'downlink', utcMs).ratioMinusOne
   const { upMinusOne, downMinusOne } = twoWayOf(path, utcMs)
   return sentHz - carrierHz + sentHz * (upMinusOne + downMinusOne + upMinusOne * downMinusOne)
 }

@@ -52,7 +52,7 @@ describe('a check', () => {
 describe('values from outside', () => {
   it('have a source each, and a function with a card that they hold', () => {
     const cards = sourceFiles('shared/physics').flatMap(({ path, text }) => readCards(path, text))
-    expect(outsideValues.filter(({ source }) => source === '')).toEqual([])
+    expect(outsideValues.filter(({ source }) => source.length < 5)).toEqual([])
     expect(outsideValues.map(({ card }) => card).filter(name => !cards.some(card => card.name === name && cardTags.every(tag => card[tag] !== '')))).toEqual([])
   })
 
