@@ -4,7 +4,6 @@ import type { AgedError } from './pairs'
 const BIN_EDGES_DAYS = [0, 0.5, 1, 1.5, 2, 3, 4, 5, 7, 10, 14] as const
 /** Half of a normal distribution lies within 0.6745 σ of its middle. */
 const SIGMA_OVER_MEDIAN = 1.4826
-const ROUNDS = 20
 
 /** One sigma of timing at an age. */
 export interface AgeBin { readonly ageDays: number, readonly sigmaS: number, readonly pairs: number }
@@ -40,12 +39,12 @@ function median(values: number[]): number {
 }
 
 /**
- * σ(age) = floor + growth·age through the bins, by least squares with weights n/σ² (a scale from n values is known to
- * σ/√n), renewed from the fit until it stands. The floor is at least `leastFloorS`, the growth at least 0: differencing
- * hides what all sets have in common. Seconds and days. Null without a bin.
+ * σ(age) = floor + growth·age through the bins, by least squares with as many weights as pairs: drag bends the spreads
+ * upwards, and a line that were truest to the smallest would promise too much of elements a week old. The floor is at
+ * least `leastFloorS`, the growth at least 0: differencing hides what all sets have in common. Seconds and days. Null without a bin.
  *
  * @card Floor and growth: the line through the spreads.
- * @formula σ(age) = floor + growth·age, least squares with weights n/σ²; floor ≥ the least, growth ≥ 0
+ * @formula σ(age) = floor + growth·age, least squares weighted by pairs; floor ≥ the least, growth ≥ 0
  * @source least squares; common practice
  * @units s, days → s, s/day
  * @frame along the orbit
@@ -54,12 +53,7 @@ function median(values: number[]): number {
  */
 export function fitGrowth(bins: readonly AgeBin[], leastFloorS: number): TimingGrowth | null {
   if (bins.length === 0) return null
-  let fit: TimingGrowth | null = null
-  for (let round = 0; round < ROUNDS; round++) {
-    const expected = (bin: AgeBin): number => Math.max(fit ? fit.floorS + fit.growthSPerDay * bin.ageDays : bin.sigmaS, leastFloorS, 1e-9)
-    fit = weightedLine(bins.map(bin => ({ age: bin.ageDays, sigma: bin.sigmaS, weight: bin.pairs / expected(bin) ** 2 })), leastFloorS)
-  }
-  return fit
+  return weightedLine(bins.map(bin => ({ age: bin.ageDays, sigma: bin.sigmaS, weight: bin.pairs })), leastFloorS)
 }
 
 interface Point { readonly age: number, readonly sigma: number, readonly weight: number }

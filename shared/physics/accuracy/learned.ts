@@ -25,7 +25,7 @@ export interface LearnedAccuracy extends AlongTrackGrowth {
  *
  * Fewer than ten pairs count for pairs/10 and the prior for the rest. The floor is never below the prior's, since
  * differences hide what all sets have in common. Three significant digits: a pair more must not move what rests on it.
- * Method: Osweiler 2006. Of a normal history with 60 sets the growth is good to about a quarter.
+ * Method: Osweiler 2006. With 60 sets the growth is good to about a quarter.
  *
  * @card Learned accuracy: how fast a spacecraft’s own sets go wrong, in place of the prior.
  * @formula floor and growth of σ_t(age) times n·a; pairs/10 of it and the prior for the rest under ten pairs; floor ≥ the prior’s

@@ -27,7 +27,7 @@ describe('accuracy learned from pairs of sets', () => {
     const learned = learnAccuracy(daily(60, i => ({ gainSPerDay: 0.3 * errors[i]! })), prior)
     expect(learned.source).toBe('learned')
     nearly(learned.growthKmPerDay, 0.3 * SPEED_KMPS, 0.1)
-    expect(learned.floorKm).toBeLessThan(0.05)
+    expect(learned.floorKm).toBeLessThan(0.1)
   })
 
   it('recovers a floor alone to 10 %: a difference of two errors of 0.1 s has √2 of it', () => {
@@ -82,10 +82,12 @@ describe('accuracy learned from pairs of sets', () => {
     const alike = learnAccuracy(daily(30, () => ({ aheadS: 1 })), { floorKm: 0.5004, growthKmPerDay: 1.5 })
     expect(alike.floorKm).toBe(0.5004)
     expect(alike.growthKmPerDay).toBeLessThan(0.01)
-    // Where the floor is the prior's, the growth is what is left beside it: 0.3 s a day over a week stays 0.3 s a day.
+    // Where the floor is the prior's, the growth is what is left beside it: at the age that weighs most both lines meet.
     const errors = normalErrors(60, 7)
-    const steep = learnAccuracy(daily(60, i => ({ gainSPerDay: 0.3 * errors[i]! })), { floorKm: 2, growthKmPerDay: 1.5 })
-    nearly(steep.floorKm + steep.growthKmPerDay * 7, 0.3 * 7 * SPEED_KMPS, 0.07)
+    const history = daily(60, i => ({ gainSPerDay: 0.3 * errors[i]! }))
+    const [free, held] = [prior, { floorKm: 2, growthKmPerDay: 1.5 }].map(given => learnAccuracy(history, given))
+    expect(held!.floorKm).toBe(2)
+    nearly(held!.floorKm + held!.growthKmPerDay * 9, free!.floorKm + free!.growthKmPerDay * 9, 0.03)
   })
 
   it('looks at the newest hundred sets, in whatever order they come', () => {
@@ -110,6 +112,12 @@ describe('the line through the spreads', () => {
     const fit = fitGrowth(bins, 0.1)!
     expect(fit.floorS).toBeCloseTo(0.2, 9)
     expect(fit.growthSPerDay).toBeCloseTo(0.3, 9)
+  })
+
+  it('is not led by the small spreads of young sets where drag bends it upwards', () => {
+    // Source: worked by hand. Through (1, 0.1) and (10, 5), ten pairs each, floor 0.1: growth (0 + 10·4.9)/(1 + 100).
+    const fit = fitGrowth([{ ageDays: 1, sigmaS: 0.1, pairs: 10 }, { ageDays: 10, sigmaS: 5, pairs: 10 }], 0.1)!
+    expect(fit.growthSPerDay).toBeCloseTo(49 / 101, 9)
   })
 
   it('keeps to its bounds: no negative growth, no floor under the least', () => {
