@@ -1,11 +1,8 @@
 import type { Asked } from '~/utils/bench/answer'
 import type { BenchQuestion } from '~/utils/bench/question'
-import type { ApiProblem } from '~/utils/api'
+import type { ApiProblem, Fetcher } from '~/utils/api'
 import { bodyOf, problemsOf } from '~/utils/bench/body'
 import type { Errors } from '~/utils/bench/body'
-
-/** Without Nuxt's types for each of its routes, which the compiler loses itself in. */
-const fetchAny = (url: string, options: Record<string, unknown>) => ($fetch as (url: string, options: Record<string, unknown>) => Promise<unknown>)(url, options)
 
 /** What the table is read with, of a link and a radio that may be held. */
 type Figures = Pick<Asked, 'carrierHz' | 'direction' | 'latencyMs'>
@@ -32,7 +29,7 @@ export function useBenchAnswer(question: BenchQuestion, figures: () => Figures) 
     busy.value = true
     said.value = 'Computing.'
     try {
-      const answer = await callApi('POST /api/bench/predict', { body }, (url, options) => fetchAny(url, { ...options, signal: mine.signal }))
+      const answer = await callApi('POST /api/bench/predict', { body }, (url, options) => ($fetch as Fetcher)(url, { ...options, signal: mine.signal }))
       if (running !== mine) return false
       asked.value = { answer, ...of, k, key: asks }
       said.value = `${answer.passes.length} ${answer.passes.length === 1 ? 'pass' : 'passes'} found.`

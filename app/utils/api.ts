@@ -20,7 +20,7 @@ export interface CallOptions<R extends RouteName> {
   headers?: Record<string, string>
 }
 
-type Fetcher = (url: string, options: Record<string, unknown>) => Promise<unknown>
+export type Fetcher = (url: string, options: Record<string, unknown>) => Promise<unknown>
 
 /** The address of a route with its parameters filled in. */
 export function pathOf(route: RouteName, params: unknown): string {

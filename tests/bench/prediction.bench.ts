@@ -1,6 +1,7 @@
 import { spawnSync } from 'node:child_process'
+import { once } from 'node:events'
 import { fileURLToPath } from 'node:url'
-import { isMainThread, parentPort, Worker, workerData } from 'node:worker_threads'
+import { isMainThread, parentPort, Worker } from 'node:worker_threads'
 import type { MeanElements } from '#shared/physics/types'
 import { directPair } from './direct'
 import { budget, fleetOf, FROM_MS, stationsOf } from './fleet'
@@ -20,9 +21,10 @@ const spacecraft = isFull ? 100 : 16
 const stations = 20
 
 if (!isMainThread) {
-  const { fleet } = workerData as { fleet: MeanElements[] }
-  for (const elements of fleet) dayOfOne(elements, stationsOf(stations), toMs, true, () => {})
-  parentPort!.postMessage('done')
+  parentPort!.on('message', (fleet: MeanElements[]) => {
+    for (const elements of fleet) dayOfOne(elements, stationsOf(stations), toMs, true, () => {})
+    parentPort!.postMessage('done')
+  })
 }
 else if (process.argv.includes('--job')) {
   for (const elements of fleetOf(spacecraft)) dayOfOne(elements, stationsOf(stations), toMs, true, () => {})
@@ -63,12 +65,7 @@ async function report(): Promise<void> {
   }
   const agreement = agreementOf(fleet[0]!)
   const rss = Number(spawnSync(process.execPath, [self, '--job', ...(isFull ? ['--full'] : [])], { encoding: 'utf8' }).stdout)
-  // The quickest of several rounds counts: the rest is what else the machine did.
-  const workers = { one: Infinity, two: Infinity }
-  for (let round = 0; round < 3; round++) {
-    workers.one = Math.min(workers.one, await byWorkers(fleet.slice(0, 16), 1))
-    workers.two = Math.min(workers.two, await byWorkers(fleet.slice(0, 16), 2))
-  }
+  const workers = await byWorkers(fleet.slice(0, 10))
   const growth = growthOf()
 
   console.log(`
@@ -122,15 +119,27 @@ function agreementOf(elements: MeanElements): { hz: number, deg: number, m: numb
   return worst
 }
 
-/** Time for a fleet shared out to `count` worker threads, ms. */
-async function byWorkers(fleet: readonly MeanElements[], count: number): Promise<number> {
-  const startedMs = performance.now()
-  await Promise.all(Array.from({ length: count }, (_, k) => new Promise<void>((resolve, reject) => {
-    const worker = new Worker(self, { workerData: { fleet: fleet.filter((_, i) => i % count === k) } })
-    worker.once('message', () => resolve())
-    worker.once('error', reject)
-  })))
-  return performance.now() - startedMs
+/** Time for a fleet in one worker thread, and shared out to two, ms; threads that are warm, as the product's. The quickest of several rounds. */
+async function byWorkers(fleet: readonly MeanElements[]): Promise<{ one: number, two: number }> {
+  const threads = [new Worker(self), new Worker(self)]
+  const timeOf = async (shares: readonly (readonly MeanElements[])[]): Promise<number> => {
+    const startedMs = performance.now()
+    await Promise.all(shares.map((share, k) => {
+      const done = once(threads[k]!, 'message')
+      threads[k]!.postMessage(share)
+      return done
+    }))
+    return performance.now() - startedMs
+  }
+  const halves = [0, 1].map(k => fleet.filter((_, i) => i % 2 === k))
+  const least = { one: Infinity, two: Infinity }
+  await timeOf([fleet.slice(0, 3), fleet.slice(0, 3)])
+  for (let round = 0; round < 4; round++) {
+    least.one = Math.min(least.one, await timeOf([fleet]))
+    least.two = Math.min(least.two, await timeOf(halves))
+  }
+  await Promise.all(threads.map(thread => thread.terminate()))
+  return least
 }
 
 /** Time a spacecraft takes in fleets of 10, 100 and 1,000, over what it takes among 10. */
