@@ -1,9 +1,11 @@
 import type { Corridor } from './corridor'
 import type { SlopeBounds, Slopes } from './lines'
-import { linesOver, roomOver } from './lines'
+import { roomOver, someLineOver } from './lines'
 import type { QuietStretches } from './quiet'
 import { lastFree, nextFree } from './quiet'
 import { firstKnotAt } from './reach'
+import type { Sides } from './sides'
+import { growingSides } from './sides'
 
 /** What rows that ramp are planned in: a corridor, the slopes the radio follows, and what binds from row to row. */
 export interface LineTask {
@@ -17,18 +19,22 @@ export interface LineTask {
   readonly first: number
 }
 
-const served = ({ corridor, slopes, bounds }: LineTask) => (effect: number, to: number) => linesOver(corridor, effect, to, slopes, bounds).length > 0
+type Serves = (effect: number, to: number, sides: Sides) => boolean
+
+const served = ({ corridor, slopes, bounds }: LineTask): Serves => (effect, to, sides) => someLineOver(corridor, effect, to, slopes, bounds, sides)
 
 /** Latest whole instant to which one line of the grid serves that takes effect at `effect`; Infinity when to the end; below it when none. */
-export function lineReach(task: LineTask, effect: number, serves = served(task)): number {
+export function lineReach(task: LineTask, effect: number, servesWith = served(task)): number {
   const { timeMs } = task.corridor
   const last = timeMs.length - 1
-  if (serves(effect, Infinity)) return Infinity
+  const sidesTo = growingSides(task.corridor, effect)
+  const serves = (to: number) => servesWith(effect, to, sidesTo(to))
+  if (serves(Infinity)) return Infinity
   // What serves for long serves for less of it, from the same start.
   let [good, bad] = [firstKnotAt(task.corridor, effect) - 1, last]
   while (bad - good > 1) {
     const middle = (good + bad) >> 1
-    if (serves(effect, timeMs[middle]!)) good = middle
+    if (serves(timeMs[middle]!)) good = middle
     else bad = middle
   }
   if (task.corridor.beginsPart[bad]) return Math.ceil(timeMs[bad]!) - 1
@@ -36,7 +42,7 @@ export function lineReach(task: LineTask, effect: number, serves = served(task))
   let outside = Math.ceil(timeMs[bad]!)
   while (outside - inside > 1) {
     const middle = Math.floor((inside + outside) / 2)
-    if (serves(effect, middle)) inside = middle
+    if (serves(middle)) inside = middle
     else outside = middle
   }
   return inside
@@ -51,11 +57,11 @@ export function furthestLines(task: LineTask, limit: number): number[] | null {
 export function gridlessRows(task: LineTask): number {
   const { corridor, bounds, slopes } = task
   const finest = { stepHzPerS: slopes.stepHzPerS * slopes.most / 2 ** 30, most: slopes.most === 0 ? 0 : 2 ** 30 }
-  const starts = furthest({ ...task, dwell: 1 }, Infinity, (effect, to) => roomOver(corridor, effect, to, finest, bounds) >= 0)
+  const starts = furthest({ ...task, dwell: 1 }, Infinity, (effect, to, sides) => roomOver(corridor, effect, to, finest, bounds, sides) >= 0)
   return starts?.length ?? Infinity
 }
 
-function furthest(task: LineTask, limit: number, serves: (effect: number, to: number) => boolean): number[] | null {
+function furthest(task: LineTask, limit: number, serves: Serves): number[] | null {
   const starts = [task.first]
   for (let effect = task.first; ;) {
     const reached = lineReach(task, effect, serves)

@@ -1,6 +1,7 @@
 import type { Corridor } from './corridor'
 import { SLACK_HZ, gridRange } from './corridor'
-import { between, firstKnotAt, insidePiece } from './reach'
+import type { Sides } from './sides'
+import { sidesOver } from './sides'
 
 /** Slopes that a radio can follow: whole multiples of the step from −most to most; `most` 0 for a radio that only steps. */
 export interface Slopes { readonly stepHzPerS: number, readonly most: number }
@@ -14,38 +15,49 @@ export interface LineChoice { readonly slope: number, readonly least: number, re
 /** Slopes looked at on either side of the one that leaves most room. */
 const MOST_SLOPES = 40
 
-interface Sides { readonly low: readonly Point[], readonly high: readonly Point[] }
-type Point = readonly [seconds: number, hz: number]
-
 /**
  * Lines on the radio's grid that stay in the corridor over the workable instants of [effect, to], which begin at their instant of
  * effect. A line of slope s fits exactly when max(low − s·t) ≤ min(high − s·t), both taken at the corridor's hulls; the room
  * between is concave in s, so the slope that leaves most is found by halving, and its neighbours are asked outwards until
  * nothing is left. Where the corridor narrowed by q/2 + σℓ/4 holds a line, one on the grid is found.
  */
-export function linesOver(c: Corridor, effect: number, to: number, slopes: Slopes, bounds: SlopeBounds | null): LineChoice[] {
-  const sides = sidesOver(c, effect, to)
-  const range = slopeRange(slopes, bounds?.(effect, to))
-  if (range[0] > range[1]) return []
-  const best = roomiest(sides, range, slopes.stepHzPerS)
+export function linesOver(c: Corridor, effect: number, to: number, slopes: Slopes, bounds: SlopeBounds | null, sides = sidesOver(c, effect, to)): LineChoice[] {
   const found: LineChoice[] = []
-  const ask = (slope: number): boolean => {
-    const { lowHz, highHz } = roomAt(sides, slope * slopes.stepHzPerS)
-    if (lowHz > highHz + 2 * SLACK_HZ) return false
-    const [least, most] = gridRange(c.grid, lowHz, highHz)
-    if (least <= most) found.push({ slope, least, most })
-    return true
-  }
-  for (let slope = best; slope <= Math.min(range[1], best + MOST_SLOPES) && ask(slope);) slope++
-  for (let slope = best - 1; slope >= Math.max(range[0], best - MOST_SLOPES) && ask(slope);) slope--
+  seekLines(c, sides, slopeRange(slopes, bounds?.(effect, to)), slopes.stepHzPerS, line => found.push(line) > 2 * MOST_SLOPES)
   return found
 }
 
+/** Whether any line of the grid stays in the corridor over [effect, to]. */
+export function someLineOver(c: Corridor, effect: number, to: number, slopes: Slopes, bounds: SlopeBounds | null, sides = sidesOver(c, effect, to)): boolean {
+  return seekLines(c, sides, slopeRange(slopes, bounds?.(effect, to)), slopes.stepHzPerS, () => true)
+}
+
+/** Tells of the lines that fit, from the roomiest slope outwards, until told to stop. */
+function seekLines(c: Corridor, sides: Sides, range: readonly [number, number], step: number, found: (line: LineChoice) => boolean): boolean {
+  if (range[0] > range[1]) return false
+  const best = roomiest(sides, range, step)
+  let [up, down] = [best, best - 1]
+  let [upMost, downLeast] = [Math.min(range[1], best + MOST_SLOPES), Math.max(range[0], best - MOST_SLOPES)]
+  while (up <= upMost || down >= downLeast) {
+    const isUp = up <= upMost && (down < downLeast || up - best <= best - down)
+    const slope = isUp ? up++ : down--
+    const { lowHz, highHz } = roomAt(sides, slope * step)
+    if (lowHz > highHz + 2 * SLACK_HZ) {
+      // Room is concave in the slope: none further out either.
+      if (isUp) upMost = -Infinity
+      else downLeast = Infinity
+      continue
+    }
+    const [least, most] = gridRange(c.grid, lowHz, highHz)
+    if (least <= most && found({ slope, least, most })) return true
+  }
+  return false
+}
+
 /** Room that the best slope leaves for the setting at the instant of effect, Hz; negative where no line fits, grid or none. */
-export function roomOver(c: Corridor, effect: number, to: number, slopes: Slopes, bounds: SlopeBounds | null): number {
+export function roomOver(c: Corridor, effect: number, to: number, slopes: Slopes, bounds: SlopeBounds | null, sides = sidesOver(c, effect, to)): number {
   const range = slopeRange(slopes, bounds?.(effect, to))
   if (range[0] > range[1]) return -Infinity
-  const sides = sidesOver(c, effect, to)
   const { lowHz, highHz } = roomAt(sides, roomiest(sides, range, slopes.stepHzPerS) * slopes.stepHzPerS)
   return highHz - lowHz
 }
@@ -98,37 +110,13 @@ function growsAt(sides: Sides, slope: number): boolean {
 
 function roomAt({ low, high }: Sides, slope: number): { lowHz: number, highHz: number, lowAt: number, highAt: number } {
   let [lowHz, highHz, lowAt, highAt] = [-Infinity, Infinity, 0, 0]
-  for (const [x, y] of low) {
-    if (y - slope * x > lowHz) [lowHz, lowAt] = [y - slope * x, x]
+  for (let i = 0; i < low.seconds.length; i++) {
+    const hz = low.hz[i]! - slope * low.seconds[i]!
+    if (hz > lowHz) [lowHz, lowAt] = [hz, low.seconds[i]!]
   }
-  for (const [x, y] of high) {
-    if (y - slope * x < highHz) [highHz, highAt] = [y - slope * x, x]
+  for (let i = 0; i < high.seconds.length; i++) {
+    const hz = high.hz[i]! - slope * high.seconds[i]!
+    if (hz < highHz) [highHz, highAt] = [hz, high.seconds[i]!]
   }
   return { lowHz, highHz, lowAt, highAt }
-}
-
-/** Upper hull of the low side and lower hull of the high side over the workable instants of [effect, to]. */
-function sidesOver(c: Corridor, effect: number, to: number): Sides {
-  const low: Point[] = []
-  const high: Point[] = []
-  const include = (time: number, lowHz: number, highHz: number) => {
-    const x = (time - effect) / 1000
-    addToHull(low, [x, lowHz], 1)
-    addToHull(high, [x, highHz], -1)
-  }
-  let knot = firstKnotAt(c, effect)
-  if (insidePiece(c, knot, effect)) include(effect, between(c, c.lowHz, knot, effect), between(c, c.highHz, knot, effect))
-  for (; knot < c.timeMs.length && c.timeMs[knot]! <= to; knot++) include(c.timeMs[knot]!, c.lowHz[knot]!, c.highHz[knot]!)
-  if (insidePiece(c, knot, to)) include(to, between(c, c.lowHz, knot, to), between(c, c.highHz, knot, to))
-  return { low, high }
-}
-
-/** Adds a later point to an upper (`side` 1) or lower (−1) hull; Andrew's monotone chain. */
-function addToHull(hull: Point[], point: Point, side: 1 | -1): void {
-  while (hull.length >= 2) {
-    const [a, b] = [hull[hull.length - 2]!, hull[hull.length - 1]!]
-    if (side * ((b[0] - a[0]) * (point[1] - a[1]) - (b[1] - a[1]) * (point[0] - a[0])) < 0) break
-    hull.pop()
-  }
-  hull.push(point)
 }

@@ -5,7 +5,7 @@ import { chainOf } from './line-chain'
 import type { LineTask } from './line-reach'
 import { furthestLines, gridlessRows, searchedLines } from './line-reach'
 import type { SlopeBounds, Slopes } from './lines'
-import { linesOver } from './lines'
+import { someLineOver } from './lines'
 import type { QuietStretches } from './quiet'
 import { lastFree, nextFree } from './quiet'
 
@@ -28,7 +28,8 @@ export interface RampLimits {
 /** A way of finding starts: searched or not, in a corridor no wider than `narrowHz`, the first row `lead` early. */
 interface Way { readonly searches: boolean, readonly narrowHz: number, readonly lead: number }
 
-const RATIO_PRECISION = 1e-3
+/** To what share of the width the narrowest is found; searches take long. */
+const PRECISION = { furthest: 1e-3, searched: 2e-2 }
 
 /**
  * Rows that ramp, as few as are found: no more than lines of any setting and slope need in a half-width smaller by q/2 + σℓ/4, ℓ the
@@ -39,7 +40,7 @@ const RATIO_PRECISION = 1e-3
 export function rampPath(curve: Curve, grid: Grid, limits: RampLimits, halfWidthHz: readonly number[]): LinePath | null {
   if (halfWidthHz.some(h => h <= 0)) return null
   const corridor = (ratio: number) => corridorOf(curve, grid, j => ratio * halfWidthHz[j]!)
-  const found = firstWay(corridor(1), limits)
+  const found = firstWay(corridor(1), limits, true)
   return found && refined(corridor, 0, 1, limits, found)
 }
 
@@ -50,15 +51,15 @@ export function widenedRampPath(curve: Curve, grid: Grid, given: RampLimits, hal
   const free = { ...unbanded, bounds: null, jumpHz: Infinity }
   for (const limits of [given, { ...given, bounds: null }, { ...given, bounds: null, jumpHz: Infinity }, free, { ...free, quiet: [], notBefore: -Infinity }]) {
     for (let enough = grid.stepHz; enough < 1e12; enough *= 4) {
-      const found = firstWay(corridor(enough), limits)
+      const found = firstWay(corridor(enough), limits, false)
       if (found) return refined(corridor, 0, enough, limits, found)
     }
   }
   throw new RangeError('No row can be planned at all: check the radio\'s step and the workable parts.')
 }
 
-/** Of all ways that lead to rows, the first with the fewest. */
-function firstWay(c: Corridor, limits: RampLimits): { way: Way, path: LinePath } | null {
+/** Of all ways that lead to rows, the first with the fewest; with `searches`, starts are searched where furthest reach is not proven best. */
+function firstWay(c: Corridor, limits: RampLimits, searches: boolean): { way: Way, path: LinePath } | null {
   const widest = c.lowHz.reduce((most, low, j) => Math.max(most, c.highHz[j]! - low), 0)
   const narrows = limits.jumpHz >= widest ? [] : [4, 3, 2, 1.5, 1.25, 1].map(times => times * limits.jumpHz / 2).filter(narrow => narrow < widest / 2)
   let best: { way: Way, path: LinePath } | null = null
@@ -69,9 +70,9 @@ function firstWay(c: Corridor, limits: RampLimits): { way: Way, path: LinePath }
   const leads = limits.lead >= limits.dwell ? [limits.lead] : [limits.lead, limits.dwell]
   for (const lead of leads) consider({ searches: false, narrowHz: Infinity, lead })
   const found = () => best?.path.starts.length ?? Infinity
-  const least = gridlessRows(taskOf(c, limits, limits.lead))
+  const least = searches ? gridlessRows(taskOf(c, limits, limits.lead)) : 0
   if (least === Infinity || found() <= least) return best
-  for (const lead of leads) consider({ searches: true, narrowHz: Infinity, lead })
+  if (searches) for (const lead of leads) consider({ searches: true, narrowHz: Infinity, lead })
   if (found() > least) for (const narrowHz of narrows) for (const lead of leads) consider({ searches: false, narrowHz, lead })
   return best
 }
@@ -89,12 +90,11 @@ function taskOf(c: Corridor, { slopes, bounds, dwell, quiet, notBefore, band }: 
 
 function pathBy({ searches, narrowHz, lead }: Way, wide: Corridor, limits: RampLimits, most: number): LinePath | null {
   if (most < 1) return null
-  const c = narrowHz === Infinity ? wide : {
+  const task = taskOf({
     ...wide,
     lowHz: wide.lowHz.map((low, j) => Math.max(low, (low + wide.highHz[j]!) / 2 - narrowHz)),
     highHz: wide.highHz.map((high, j) => Math.min(high, (wide.lowHz[j]! + high) / 2 + narrowHz)),
-  }
-  const task = taskOf(c, limits, lead)
+  }, limits, lead)
   const furthest = furthestLines(task, most)
   const starts = searches ? searchedLines(task, most, furthest ?? []) : furthest
   return starts && chainOf(task, starts, limits.jumpHz)
@@ -103,7 +103,8 @@ function pathBy({ searches, narrowHz, lead }: Way, wide: Corridor, limits: RampL
 /** The same way in the narrowest corridor that as many rows serve, and there the earliest starts. */
 function refined(corridor: (width: number) => Corridor, fails: number, serves: number, limits: RampLimits, { way, path }: { way: Way, path: LinePath }): LinePath {
   let [low, high, best] = [fails, serves, path]
-  while (high - low > RATIO_PRECISION * serves) {
+  const precision = way.searches ? PRECISION.searched : PRECISION.furthest
+  while (high - low > precision * serves) {
     const middle = (low + high) / 2
     const closer = pathBy(way, corridor(middle), limits, path.starts.length)
     if (closer) [high, best] = [middle, closer]
@@ -119,7 +120,7 @@ function earliest(task: LineTask, starts: readonly number[]): number[] | null {
   const early = [...starts]
   for (let i = starts.length - 1; i >= 1; i--) {
     const end = early[i + 1] ?? Infinity
-    const serves = (start: number) => linesOver(task.corridor, start, end, task.slopes, task.bounds).length > 0
+    const serves = (start: number) => someLineOver(task.corridor, start, end, task.slopes, task.bounds)
     let [bad, good] = [starts[i - 1]! + task.dwell - 1, Math.min(starts[i]!, end - task.dwell)]
     if (!serves(good)) return null
     while (good - bad > 1) {
@@ -131,6 +132,6 @@ function earliest(task: LineTask, starts: readonly number[]): number[] | null {
     if (early[i]! > starts[i]!) early[i] = starts[i]!
   }
   const isApart = early.every((start, i) => i === 0 || start - early[i - 1]! >= task.dwell)
-  const isServed = early.every((start, i) => linesOver(task.corridor, start, early[i + 1] ?? Infinity, task.slopes, task.bounds).length > 0)
+  const isServed = early.every((start, i) => someLineOver(task.corridor, start, early[i + 1] ?? Infinity, task.slopes, task.bounds))
   return isApart && isServed ? early : null
 }
