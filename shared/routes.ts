@@ -6,6 +6,7 @@ import { idParams, listOf, pageQuery } from './schemas/common'
 import * as elements from './schemas/elements'
 import * as links from './schemas/links'
 import * as people from './schemas/people'
+import * as predictions from './schemas/predictions'
 import * as settings from './schemas/settings'
 import * as spacecraft from './schemas/spacecraft'
 import * as feed from './schemas/station-feed'
@@ -97,6 +98,7 @@ export const routes = {
   'GET /api/passes': { access: read, summary: 'Predicted passes by AOS', query: tables.passesQuery, response: listOf(tables.passOut) },
   'GET /api/passes/{id}': { access: read, summary: 'One pass', params: idParams, response: tables.passOut },
   'GET /api/passes/{id}/samples': { access: read, summary: 'Curves of a pass', params: idParams, query: tables.samplesQuery, response: tables.passSamplesOut },
+  'GET /api/predictions/progress': { access: read, summary: 'How much of passes and tables waits to be computed', response: predictions.progressOut },
   'GET /api/tables': { access: read, summary: 'Tuning tables by AOS', query: tables.tablesQuery, response: listOf(tables.tableBrief) },
   'GET /api/tables/{id}': { access: read, summary: 'One tuning table with its retunes', params: idParams, response: tables.tableOut },
   'POST /api/tables/{id}/approve': { access: may('tables:second'), summary: 'Approve; a second person for one that breaks', params: idParams, body: tables.decideBody, response: tables.tableBrief },

@@ -1,9 +1,9 @@
 const DEEPEST = 32
 
 /** PostgreSQL's text holds neither NUL nor half a surrogate pair. */
-export const isStorable = (text: string): boolean => !text.includes('\u0000') && text.isWellFormed()
+const isStorable = (text: string): boolean => !text.includes('\u0000') && text.isWellFormed()
 
-export interface Unstorable { path: string, message: string }
+interface Unstorable { path: string, message: string }
 
 /** Where in a request's JSON or query a text stands that cannot be kept, or where it is nested beyond all use; null when all is well. */
 export function findUnstorable(value: unknown, path: readonly string[] = []): Unstorable | null {

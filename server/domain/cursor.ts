@@ -6,7 +6,7 @@ import { DomainError } from './errors'
 export const cursorInstant = z.iso.datetime({ precision: 3 }).regex(/^[1-9]/)
 
 /** The key of a page's last row, opaque to the caller. */
-export function writeCursor(key: readonly (string | number | null)[]): string {
+function writeCursor(key: readonly (string | number | null)[]): string {
   return Buffer.from(JSON.stringify(key)).toString('base64url')
 }
 

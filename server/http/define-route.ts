@@ -9,6 +9,7 @@ import type { FieldError } from '~~/server/domain/errors'
 import { DomainError } from '~~/server/domain/errors'
 import type { Db } from '~~/server/database/client'
 import { databaseNow, useDatabase } from '~~/server/database/client'
+import { fieldErrors } from './field-errors'
 import { answerOnce } from './idempotency'
 import { authenticate, authorise } from './authenticate'
 import { answerProblem } from './problem'
@@ -64,7 +65,7 @@ function parse(schema: z.ZodType, value: unknown, code: 'not-found' | 'not-valid
   const result = schema.safeParse(value)
   if (result.success) return result.data
   if (code === 'not-found') throw new DomainError('not-found', 'There is nothing under this address.')
-  throw notValid(result.error.issues.map(issue => ({ path: issue.path.map(String).join('.'), message: issue.message })))
+  throw notValid(fieldErrors(result.error.issues))
 }
 
 const notValid = (fields: readonly FieldError[]) =>

@@ -1,3 +1,4 @@
+import { IncomingMessage } from 'node:http'
 import type { H3Event } from 'h3'
 import { getRequestHeader } from 'h3'
 import { DomainError } from '~~/server/domain/errors'
@@ -11,14 +12,24 @@ export async function readLimited(event: H3Event, limit = defaultLimit): Promise
   if (declared > limit) throw tooLarge()
   const held = (event.node.req as { body?: unknown }).body
   if (held !== undefined) return heldBody(held, limit, tooLarge)
-  const chunks: Buffer[] = []
-  let size = 0
-  for await (const chunk of event.node.req) {
-    size += (chunk as Buffer).length
-    if (size > limit) throw tooLarge()
-    chunks.push(chunk as Buffer)
-  }
-  return Buffer.concat(chunks)
+  return event.node.req instanceof IncomingMessage ? collect(event.node.req, limit, tooLarge) : Buffer.alloc(0)
+}
+
+/** What comes beyond the limit is read and dropped: left in the connection it would stand before the next request. */
+function collect(request: IncomingMessage, limit: number, tooLarge: () => DomainError): Promise<Buffer> {
+  return new Promise((resolve, reject) => {
+    let chunks: Buffer[] = []
+    let size = 0
+    request.on('data', (chunk: Buffer) => {
+      size += chunk.length
+      if (size <= limit) return chunks.push(chunk)
+      chunks = []
+      reject(tooLarge())
+    })
+    request.once('end', () => resolve(Buffer.concat(chunks)))
+    request.once('close', () => reject(new DomainError('unreadable', 'The request was broken off before its body was whole.')))
+    request.once('error', reject)
+  })
 }
 
 /** A request made inside the server (page rendering) carries its body ready-made. */

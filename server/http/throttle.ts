@@ -34,19 +34,19 @@ async function throttle<T>(event: H3Event, account: string, isFailure: (error: D
   const { pair, address } = useLimiters()
   const ip = getRequestIP(event, { xForwardedFor: process.env.TRUST_PROXY === '1' }) ?? 'unknown'
   const keys = [{ limiter: pair, key: `${account}|${ip}` }, { limiter: address, key: ip }]
-  for (const { limiter, key } of keys) {
-    const state = await limiter.get(key)
-    if (state && state.consumedPoints >= limiter.points) {
-      throw new DomainError('too-many', 'Too many failed attempts: wait and try again.', [], Math.max(1, state.msBeforeNext / 1000))
-    }
-  }
-  try {
-    const result = await attempt()
-    await pair.delete(keys[0]!.key)
-    return result
-  }
-  catch (error) {
-    if (error instanceof DomainError && isFailure(error)) await Promise.all(keys.map(({ limiter, key }) => limiter.penalty(key)))
-    throw error
-  }
+  for (const { limiter, key } of keys) await count(limiter, key)
+  const outcome = await attempt().then(result => ({ result }), (error: unknown) => ({ error }))
+  if ('error' in outcome && outcome.error instanceof DomainError && isFailure(outcome.error)) throw outcome.error
+  // No failed attempt: what was counted is given back.
+  if ('result' in outcome) await pair.delete(keys[0]!.key)
+  else await pair.reward(keys[0]!.key)
+  await address.reward(ip)
+  if ('error' in outcome) throw outcome.error
+  return outcome.result
+}
+
+/** Counted before it is tried: of a thousand attempts at once no more get through than one after the other. */
+async function count(limiter: RateLimiterDrizzle, key: string): Promise<void> {
+  const { consumedPoints, msBeforeNext } = await limiter.penalty(key)
+  if (consumedPoints > limiter.points) throw new DomainError('too-many', 'Too many failed attempts: wait and try again.', [], Math.max(1, msBeforeNext / 1000))
 }

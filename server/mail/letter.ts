@@ -14,7 +14,7 @@ export interface LetterParts {
 }
 
 const entities: Record<string, string> = { '&': '&amp;', '<': '&lt;', '>': '&gt;', '"': '&quot;', '\'': '&#39;' }
-export const escapeHtml = (text: string) => text.replace(/[&<>"']/g, sign => entities[sign]!)
+const escapeHtml = (text: string) => text.replace(/[&<>"']/g, sign => entities[sign]!)
 
 /** A line break in a subject would begin a new header. */
 // eslint-disable-next-line no-control-regex

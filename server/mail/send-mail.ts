@@ -48,5 +48,6 @@ function isRefusedForGood(error: unknown): boolean {
 }
 
 function describe(error: unknown): string {
-  return (error instanceof Error ? error.message : String(error)).slice(0, 500)
+  // A mail server's words may hold what a database does not.
+  return (error instanceof Error ? error.message : String(error)).replaceAll('\u0000', '').toWellFormed().slice(0, 500)
 }

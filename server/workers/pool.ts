@@ -4,7 +4,9 @@ import { fileURLToPath } from 'node:url'
 import Piscina from 'piscina'
 import type { TaskInput, TaskName, TaskOutput } from './tasks'
 
-let pool: Piscina | null = null
+/** Predictions under way are not to keep people waiting for what they have just asked, nor one long what-if everybody else. */
+const lanes = { 'predict-station': 'jobs', 'read-elements': 'jobs', 'compare-sets': 'asked', 'pass-samples': 'asked', 'bench-predict': 'bench' } as const satisfies Record<TaskName, string>
+const pools = new Map<string, Piscina>()
 
 /** The bundle lies beside the built server; the development server and tests name it by NULLBEAT_WORKER. */
 function workerFile(): string | null {
@@ -20,13 +22,10 @@ export class TaskTooHeavy extends Error {}
  * given `limitMs`; past it its thread is ended and TaskTooHeavy thrown.
  */
 export async function runTask<N extends TaskName>(name: N, input: TaskInput<N>, { limitMs }: { limitMs?: number } = {}): Promise<TaskOutput<N>> {
+  const pool = poolOf(lanes[name])
   if (!pool) {
-    const filename = workerFile()
-    if (!filename) {
-      const { default: run } = await import('./predict')
-      return run({ name, input })
-    }
-    pool = new Piscina({ filename, maxThreads: Math.max(1, availableParallelism()), idleTimeout: 30_000, resourceLimits: { maxOldGenerationSizeMb: 512 } })
+    const { default: run } = await import('./predict')
+    return run({ name, input })
   }
   try {
     return await pool.run({ name, input }, limitMs === undefined ? {} : { signal: AbortSignal.timeout(limitMs) })
@@ -37,7 +36,18 @@ export async function runTask<N extends TaskName>(name: N, input: TaskInput<N>, 
   }
 }
 
+function poolOf(lane: string): Piscina | null {
+  const known = pools.get(lane)
+  if (known) return known
+  const filename = workerFile()
+  if (!filename) return null
+  const pool = new Piscina({ filename, minThreads: 0, maxThreads: Math.max(1, availableParallelism()), idleTimeout: 30_000, resourceLimits: { maxOldGenerationSizeMb: 512 } })
+  pools.set(lane, pool)
+  return pool
+}
+
 export async function closePool(): Promise<void> {
-  await pool?.destroy()
-  pool = null
+  const closing = [...pools.values()]
+  pools.clear()
+  await Promise.all(closing.map(pool => pool.destroy()))
 }

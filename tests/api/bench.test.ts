@@ -1,6 +1,8 @@
+import { eq } from 'drizzle-orm'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import type { Database } from '../../server/database/client'
 import { openDatabase } from '../../server/database/client'
+import { idempotencyKeys } from '../../server/database/schema'
 import { twoLines } from '../domain/elements/support'
 import type { TestDatabase } from '../support/database'
 import { createTestDatabase } from '../support/database'
@@ -92,6 +94,16 @@ describe('uploads over HTTP', () => {
     expect(first).toMatchObject({ status: 201, body: { accepted: 1 } })
     expect(await post(path, headers, twoLines({ anomaly: '111.1111' }))).toEqual(first)
     expect(await post(path, headers, twoLines({ anomaly: '222.2222' }))).toMatchObject({ status: 409 })
+  })
+
+  it('make again under its Idempotency-Key what a server that died has left unanswered', async () => {
+    const headers = { ...writer, 'content-type': 'text/plain', 'idempotency-key': 'morning-1' }
+    expect(await post(path, headers, twoLines({ anomaly: '123.1234' }))).toMatchObject({ status: 201, body: { accepted: 1 } })
+    const leave = (createdAt: Date) => database.db.update(idempotencyKeys).set({ status: null, answer: null, createdAt }).where(eq(idempotencyKeys.key, 'morning-1'))
+    await leave(new Date())
+    expect(await post(path, headers, twoLines({ anomaly: '123.1234' }))).toMatchObject({ status: 409 })
+    await leave(new Date(Date.now() - 240_000))
+    expect(await post(path, headers, twoLines({ anomaly: '123.1234' }))).toMatchObject({ status: 201, body: { alreadyHeld: 1 } })
   })
 
   it('answer at once above 1 MB and read on behind', async () => {

@@ -75,6 +75,7 @@ export const expectedAccess: Record<string, Expected> = {
   'GET /api/passes': reading,
   'GET /api/passes/{id}': reading,
   'GET /api/passes/{id}/samples': reading,
+  'GET /api/predictions/progress': reading,
   'GET /api/tables': reading,
   'GET /api/tables/{id}': reading,
   // The on-call engineer stands as second person; that it is only as second is decided on the table itself.

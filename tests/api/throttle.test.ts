@@ -39,6 +39,12 @@ describe('somebody who tries out passwords', () => {
     expect((await post('/api/auth/sign-in', '198.51.100.9', { email, password })).status).toBe(200)
   })
 
+  it('gets no further with many tries at once', async () => {
+    const statuses = await Promise.all(Array.from({ length: 30 }, async (_, tries) => (await post('/api/auth/sign-in', '192.0.2.40', { email, password: `wrong ${tries} and at once` })).status))
+    expect(statuses.filter(status => status === 401)).toHaveLength(8)
+    expect(statuses.filter(status => status === 429)).toHaveLength(22)
+  })
+
   it('gets one and the same answer for an address that is known and one that is not', async () => {
     const known = await post('/api/auth/sign-in', '192.0.2.20', { email, password: 'wrong and wrong again' })
     const unknown = await post('/api/auth/sign-in', '192.0.2.20', { email: 'nobody@ops.example', password: 'wrong and wrong again' })

@@ -6,7 +6,7 @@ import { oneTimeLinks, people } from '~~/server/database/schema'
 import { DomainError } from '../errors'
 import { hashToken, newToken } from './tokens'
 
-export const invitationDays = 7
+const invitationDays = 7
 /** A first administrator's address works until it is used. */
 const untilUsed = new Date('9999-12-31T00:00:00.000Z')
 

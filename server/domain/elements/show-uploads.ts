@@ -1,4 +1,4 @@
-import { desc, eq, getTableColumns, inArray, sql } from 'drizzle-orm'
+import { desc, eq, inArray, sql } from 'drizzle-orm'
 import { z } from 'zod'
 import type { UploadOut } from '#shared/schemas/elements'
 import type { Db } from '~~/server/database/client'
@@ -6,10 +6,9 @@ import { elementSets, elementUploads, spacecraft } from '~~/server/database/sche
 import type { Deps } from '../context'
 import { cursorInstant, readCursor, toPage } from '../cursor'
 import { DomainError } from '../errors'
-import { readBytesOf, readOriginal } from './read-upload'
+import { briefColumns, readBytesOf, readOriginal } from './read-upload'
 import { contentSha256 } from './store-sets'
 
-const { original: _original, refusals: _refusals, warnings: _warnings, ...briefColumns } = getTableColumns(elementUploads)
 type Brief = Pick<typeof elementUploads.$inferSelect, keyof typeof briefColumns>
 
 function briefOut(row: Brief) {

@@ -39,10 +39,10 @@ export async function uploadElements(deps: Deps, input: UploadInput, onBackgroun
   }).returning({ id: elementUploads.id })
   const { id } = row!
   if (input.bytes.length > readAtOnceBytes) {
-    onBackground(readInBackground(deps, id))
+    onBackground(readInBackground(deps, id, input.bytes))
     return getUpload(deps, id)
   }
-  const outcome = await readUpload(deps, id).catch(async (error: unknown) => {
+  const outcome = await readUpload(deps, id, input.bytes).catch(async (error: unknown) => {
     await markBroken(db, id).catch(() => {})
     throw error
   })
@@ -53,9 +53,9 @@ export async function uploadElements(deps: Deps, input: UploadInput, onBackgroun
   return getUpload(deps, id)
 }
 
-async function readInBackground(deps: Deps, id: string): Promise<void> {
+async function readInBackground(deps: Deps, id: string, bytes: Buffer): Promise<void> {
   try {
-    await readUpload(deps, id)
+    await readUpload(deps, id, bytes)
   }
   catch (error) {
     // Where even this fails the upload stays in `reading` and is resumed at the next boot.

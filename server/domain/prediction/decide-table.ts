@@ -74,14 +74,14 @@ function recompute(given: TableCase, open: KnownRevision, planned: PlannedTable)
     audits.push(stateAudit('table.return-to-draft', { tableId: given.tableId, revisionId: open.id, revision: open.number, from: before, to: kept, reason }))
   }
   else if (before !== 'held' && anew) change.reason = anew
-  if (change.state === 'drafted' && approvedByRule(given.served.link.approveWhatHolds, planned.verdict)) {
+  if (change.state === 'drafted' && !given.known?.takenBack && approvedByRule(given.served.link.approveWhatHolds, planned.verdict)) {
     Object.assign(change, ruleApproval(given), { state: 'approved' })
     audits.push(ruleAudit(given, open.id, open.number))
   }
   return { change, audits }
 }
 
-/** A new revision: the first, or after one that is out and has moved, or after one that lapsed or was withdrawn. */
+/** A new revision: the first, or after one that is out and has moved, or after one that lapsed or was withdrawn. What a person took back waits for a person, whatever the link's rule. */
 function draft(given: TableCase, planned: PlannedTable): TableDecision {
   const { known, tableId, now, predicted } = given
   const last = known?.last ?? null
@@ -91,8 +91,7 @@ function draft(given: TableCase, planned: PlannedTable): TableDecision {
     ? whyAnew(known.out, predicted.recheck!, given.reason)
     : last?.state === 'withdrawn' ? `Revision ${last.number} was withdrawn (${last.reason}); computed anew: ${given.reason}` : null
   const isCarried = known?.out && stateAfterRecomputation('approved', known.out.verdict, planned.verdict) === 'approved'
-  // What a person took back waits for a person, whatever the link's rule.
-  const isByRule = !isCarried && last?.state !== 'withdrawn' && approvedByRule(given.served.link.approveWhatHolds, planned.verdict)
+  const isByRule = !isCarried && !known?.takenBack && approvedByRule(given.served.link.approveWhatHolds, planned.verdict)
   const approval = isCarried ? approvalOf(known.out!) : isByRule ? ruleApproval(given) : noApproval
   const state = isCarried || isByRule ? 'approved' : 'drafted'
   const audits = [stateAudit('table.draft', { tableId, revisionId: id, revision: number, from: null, to: isCarried ? 'approved' : 'drafted', reason })]
@@ -104,7 +103,7 @@ function draft(given: TableCase, planned: PlannedTable): TableDecision {
 const rowsOf = ({ served, elementSetId }: TableCase, planned: PlannedTable) => ({ ...planned, radioId: served.radio.id, elementSetId, inputsDigest: served.digest })
 
 /** By how much the published rows have moved, for whoever reads why there is a newer revision. */
-export function whyAnew(out: Pick<KnownRevision, 'verdict' | 'worstResidualHz'>, recheck: Recheck, reason: string): string {
+function whyAnew(out: Pick<KnownRevision, 'verdict' | 'worstResidualHz'>, recheck: Recheck, reason: string): string {
   const hz = Math.abs(recheck.worstResidualHz - out.worstResidualHz)
   const verdict = recheck.verdict === out.verdict ? '' : `${out.verdict} → ${recheck.verdict}, `
   return `${verdict}moves by ${hz < 10 ? hz.toFixed(1) : Math.round(hz)} Hz: ${reason}`

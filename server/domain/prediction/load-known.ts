@@ -22,6 +22,8 @@ export interface KnownTable {
   readonly open: KnownRevision | null
   readonly out: KnownRevision | null
   readonly last: KnownRevision | null
+  /** The revision before the one that is open was withdrawn: a person took it back. */
+  readonly takenBack: boolean
 }
 
 export interface KnownPass {
@@ -56,6 +58,7 @@ export async function loadKnown({ db }: Pick<Deps, 'db'>, { spacecraftId, statio
         open: own.find(revision => openStates.includes(revision.state)) ?? null,
         out: own.find(revision => outStates.includes(revision.state)) ?? null,
         last: own.at(-1) ?? null,
+        takenBack: own.findLast(revision => !openStates.includes(revision.state))?.state === 'withdrawn',
       }
     }),
   }))

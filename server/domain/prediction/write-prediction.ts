@@ -4,8 +4,9 @@ import { recordAudits } from '../audit'
 import type { Deps } from '../context'
 import type { Merge } from './merge-prediction'
 
-/** Rows of a statement: a revision brings some 20 kB. */
+/** Rows of a statement; and retunes of a statement, some 250 bytes each, so that it stays far within its time limit. */
 const CHUNK = 50
+const MOST_RETUNES = 10_000
 
 /** Writes a prediction in a few statements; inside the caller's transaction. */
 export async function writePrediction(deps: Deps, merge: Merge): Promise<void> {
@@ -27,8 +28,8 @@ export async function writePrediction(deps: Deps, merge: Merge): Promise<void> {
       UPDATE table_revisions SET state = 'lapsed', reason = new.reason, lapsed_at = ${now.toISOString()}, updated_at = ${now.toISOString()}
       FROM jsonb_to_recordset(${JSON.stringify(rows)}::jsonb) AS new(id uuid, reason text) WHERE table_revisions.id = new.id`)
   }
-  for (const rows of chunks(merge.revisionInserts)) await db.insert(tableRevisions).values(rows)
-  for (const rows of chunks(merge.revisionChanges)) await changeRevisions(deps, rows)
+  for (const rows of chunks(merge.revisionInserts, row => row.retunes.length)) await db.insert(tableRevisions).values(rows)
+  for (const rows of chunks(merge.revisionChanges, row => row.rows?.retunes.length ?? 0)) await changeRevisions(deps, rows)
   await recordAudits(deps, merge.audits)
 }
 
@@ -51,6 +52,17 @@ async function changeRevisions({ db, now }: Deps, changes: Merge['revisionChange
     WHERE old.id = new.id`)
 }
 
-function* chunks<T>(rows: readonly T[]): Generator<T[]> {
-  for (let start = 0; start < rows.length; start += CHUNK) yield rows.slice(start, start + CHUNK)
+function* chunks<T>(rows: readonly T[], retunesOf: (row: T) => number = () => 0): Generator<T[]> {
+  let chunk: T[] = []
+  let retunes = 0
+  for (const row of rows) {
+    if (chunk.length === CHUNK || (chunk.length > 0 && retunes + retunesOf(row) > MOST_RETUNES)) {
+      yield chunk
+      chunk = []
+      retunes = 0
+    }
+    chunk.push(row)
+    retunes += retunesOf(row)
+  }
+  if (chunk.length > 0) yield chunk
 }

@@ -39,7 +39,7 @@ export async function getTable({ db, now }: Pick<Deps, 'db' | 'now'>, id: string
 }
 
 /** How many times the spreads were counted, from the budget itself; null where there is no spread to count. */
-export function kOf({ worstResidualHz, budget }: Pick<StoredCheck, 'worstResidualHz' | 'budget'>): number | null {
+function kOf({ worstResidualHz, budget }: Pick<StoredCheck, 'worstResidualHz' | 'budget'>): number | null {
   const spreadHz = Math.hypot(budget.orbitHz, budget.oscillatorHz, budget.trimHz)
   if (spreadHz === 0) return null
   return Math.round((worstResidualHz - Math.abs(budget.stepsHz) - budget.timingHz - budget.ut1Hz) / spreadHz * 1e6) / 1e6

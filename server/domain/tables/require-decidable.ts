@@ -30,7 +30,7 @@ export function requireMove(revision: RevisionRow, move: Move): void {
 }
 
 /** Nobody decides on rows that have changed since they were read. */
-export function requireSeen(table: LockedTable, revision: number | undefined): void {
+function requireSeen(table: LockedTable, revision: number | undefined): void {
   if (revision !== undefined && revision !== table.newest.number) {
     throw new DomainError('conflict', `Revision ${table.newest.number} has taken the place of revision ${revision}: look at it and decide again.`)
   }

@@ -5,6 +5,7 @@ import { createEphemeris } from '#shared/physics/orbit/ephemeris'
 import { findPasses } from '#shared/physics/orbit/passes'
 import { createPropagator } from '#shared/physics/orbit/propagator'
 import type { Direction, Ephemeris, MeanElements, PredictedPass, Propagator, Site, UtcMs } from '#shared/physics/types'
+import { identityToleranceMs, matchPasses } from '~~/server/domain/prediction/match-passes'
 import type { SetWarning } from './set-warnings'
 import { warningsAgainst, warningsOfSet } from './set-warnings'
 
@@ -61,7 +62,7 @@ function compareAt({ id, site }: CompareInput['stations'][number], mine: Ephemer
   const passesOf = (ephemeris: Ephemeris | null) => ephemeris ? findPasses({ ephemeris, site, fromMs: fromMs - padMs, toMs: toMs + padMs, ut1MinusUtcS }).passes : []
   const isComing = (pass: PredictedPass) => pass.losMs > fromMs && pass.aosMs < toMs
   const nothing = { stationId: id, aosShiftS: null, culminationShiftS: null, losShiftS: null, maxElevationShiftDeg: null, links: [] }
-  return matchPasses(passesOf(mine), passesOf(old), padMs / 2).flatMap(([now, before]): ComparedPass[] => {
+  return pairsOf(passesOf(mine), passesOf(old), identityToleranceMs(input.candidate.elements.meanMotionRevPerDay)).flatMap(([now, before]): ComparedPass[] => {
     if (now && before) {
       if (!isComing(now) && !isComing(before)) return []
       const aos = now.aosClipped || before.aosClipped ? null : (now.aosMs - before.aosMs) / 1000
@@ -79,19 +80,12 @@ function compareAt({ id, site }: CompareInput['stations'][number], mine: Ephemer
   })
 }
 
-/** Pairs of passes whose culminations lie nearest, within `withinMs`; each pass in one pair; the rest alone. */
-export function matchPasses(mine: readonly PredictedPass[], old: readonly PredictedPass[], withinMs: number): [PredictedPass | null, PredictedPass | null][] {
-  const near = mine.flatMap(a => old.map(b => ({ a, b, apartMs: Math.abs(a.culminationMs - b.culminationMs) })))
-    .filter(pair => pair.apartMs <= withinMs).sort((p, q) => p.apartMs - q.apartMs)
-  const partner = new Map<PredictedPass, PredictedPass>()
-  for (const { a, b } of near) {
-    if (partner.has(a) || partner.has(b)) continue
-    partner.set(a, b)
-    partner.set(b, a)
-  }
+/** Each pass beside its former self, by the same rule as in predictions; what has none stands alone. */
+function pairsOf(mine: readonly PredictedPass[], old: readonly PredictedPass[], withinMs: number): [PredictedPass | null, PredictedPass | null][] {
+  const former = matchPasses(mine, old, withinMs)
   return [
-    ...mine.map((a): [PredictedPass, PredictedPass | null] => [a, partner.get(a) ?? null]),
-    ...old.filter(b => !partner.has(b)).map((b): [null, PredictedPass] => [null, b]),
+    ...mine.map((pass, i): [PredictedPass, PredictedPass | null] => [pass, former[i] ?? null]),
+    ...old.filter(pass => !former.includes(pass)).map((pass): [null, PredictedPass] => [null, pass]),
   ]
 }
 

@@ -5,7 +5,7 @@ import { dot, minus, norm, plusScaled, type Triple } from '../orbit/vector'
 /** Exact by definition of the metre. */
 export const SPEED_OF_LIGHT_MPS = 299_792_458
 
-const EARTH_GM_M3PS2 = 398_600.8e9
+export const EARTH_GM_M3PS2 = 398_600.8e9
 const LIGHT_TIME_TOLERANCE_S = 1e-12
 const MOST_ROUNDS = 8
 
@@ -59,6 +59,14 @@ function ratioMinusOne(transmitter: Triple, receiver: Triple, direction: Triple)
  *
  * Throws a RangeError where the spacecraft's state is not known. A light time beyond the ephemeris's edge is bridged
  * from the state at the station's instant.
+ *
+ * @card Frequency ratio: what arrives over what was sent, with light time and time dilation.
+ * @formula f_r/f_t = (1 − n·v_r/c)/(1 − n·v_t/c) · √((1 − v_t²/c²)/(1 − v_r²/c²)), n from transmitter to receiver, τ = |r|/c iterated
+ * @source special relativity; e.g. Misra, Enge, Global Positioning System
+ * @units UTC ms of the station → dimensionless, s
+ * @frame TEME axes, taken as not turning
+ * @range within the ephemeris; gravity, ionosphere, troposphere left out
+ * @tolerance 0.05, 0.2, 0.5 Hz at 437.5, 2245, 8200 MHz of an independent program (doppler/reference-doppler.test.ts)
  */
 export function receivedOverTransmitted(path: Path, direction: Direction, utcMs: UtcMs): FrequencyRatio {
   const station = siteStateTeme(path.site, utcMs, path.ut1MinusUtcS)
@@ -97,6 +105,14 @@ export function receivedOverTransmitted(path: Path, direction: Direction, utcMs:
 /**
  * Sky frequency to set at the station, over the carrier, minus one. Downlink: ratio − 1, the receiver at what arrives.
  * Uplink: 1/ratio − 1, transmitted so that the spacecraft hears the carrier. `utcMs` as above.
+ *
+ * @card Fraction to tune by: how far off its carrier a station has to be set.
+ * @formula downlink: ratio − 1; uplink: 1/ratio − 1
+ * @source special relativity
+ * @units UTC ms of the station → dimensionless
+ * @frame TEME axes
+ * @range as the ratio
+ * @tolerance 0.01 Hz at 437 MHz and 7 km/s, both signs (doppler/closed-forms.test.ts)
  */
 export function neededOverCarrierMinusOne(path: Path, direction: Direction, utcMs: UtcMs): number {
   const { ratioMinusOne: offset } = receivedOverTransmitted(path, direction, utcMs)

@@ -10,6 +10,14 @@ import { amplitudeAt, firstNullEpsilon } from './loss'
  *
  * A filter narrower than the signal leaves nothing: the allowance is 0, limited by `filter`, and every table on the link breaks.
  * `epsilon` is allowance·T. Throws RangeError when a figure it needs is missing or not positive.
+ *
+ * @card Allowance: the largest residual that a link bears.
+ * @formula least of Δf at the permitted loss, capture range, B/2 − (1+α)·Rs/2, or the stated limit
+ * @source loss inverted on the main lobe; filter: common practice
+ * @units dB, Hz, symbols/s → Hz
+ * @frame none
+ * @range figures above 0; 0 ≤ α ≤ 1
+ * @tolerance 1e-6 symbol rates of tables (link/allowance.test.ts)
  */
 export function allowanceOf(link: LinkModel): Allowance {
   positive('symbolRateHz', link.symbolRateHz)

@@ -12,6 +12,14 @@ const GAUSS_WEIGHTS = [0.3626837833783620, 0.3137066458778873, 0.222381034453374
  * Amplitude G(f) of the root-raised-cosine spectrum, G² the raised cosine with unit area.
  * @param f frequency in units of the symbol rate
  * @param rolloff α, 0 to 1
+ *
+ * @card Pulse spectrum: amplitude of the root-raised-cosine filter.
+ * @formula 1 to (1−α)/2, cos(π(f − (1−α)/2)/(2α)) to (1+α)/2, 0 beyond
+ * @source Proakis, Digital Communications, Nyquist pulses
+ * @units symbol rates, roll-off → dimensionless
+ * @frame none
+ * @range 0 ≤ α ≤ 1
+ * @tolerance 1e-6 in the overlap (link/loss.test.ts)
  */
 export function rootRaisedCosine(f: number, rolloff: number): number {
   const a = Math.abs(f)
@@ -22,7 +30,17 @@ export function rootRaisedCosine(f: number, rolloff: number): number {
   return Math.cos(Math.PI * (a - flat) / (2 * rolloff))
 }
 
-/** ∫G(f)G(f−ε)df; 1 at ε = 0, 0 from ε = 1 + α on, falling between. Better than 1e-10. */
+/**
+ * ∫G(f)G(f−ε)df; 1 at ε = 0, 0 from ε = 1 + α on, falling between. Better than 1e-10.
+ *
+ * @card Overlap: output of a pair of root-raised-cosine filters of which one is off in frequency.
+ * @formula ∫G(f)·G(f − ε) df
+ * @source matched filter’s output; Proakis, Digital Communications
+ * @units symbol rates, roll-off → dimensionless
+ * @frame none
+ * @range 0 ≤ α ≤ 1; nothing from ε = 1 + α
+ * @tolerance 1e-6 of a plain sum (link/loss.test.ts)
+ */
 export function overlap(epsilon: number, rolloff: number): number {
   return integrate(f => rootRaisedCosine(f, rolloff) * rootRaisedCosine(f - epsilon, rolloff), corners(epsilon, rolloff))
 }
@@ -31,6 +49,14 @@ export function overlap(epsilon: number, rolloff: number): number {
  * Power of the inter-symbol interference beside the wanted symbol, dB below it; −Infinity never: floored at −300 dB.
  * Σ_{m≠0} |y(mT)|² / |y(0)|², with y the response of the offset pair; by Parseval the sum over all m is the power of the
  * spectrum folded at the symbol rate.
+ *
+ * @card Inter-symbol interference: power of the other symbols beside the wanted one.
+ * @formula 10 log10(Σ_{m≠0} |y(mT)|²/|y(0)|²)
+ * @source Parseval over the folded spectrum; mechanics of Nyquist pulses
+ * @units symbol rates, roll-off → dB
+ * @frame none
+ * @range ε below 1 + α; floored at −300 dB
+ * @tolerance 0.5 dB at −27 dB (link/loss.test.ts)
  */
 export function interSymbolInterferenceDb(epsilon: number, rolloff: number): number {
   const product = (f: number) => rootRaisedCosine(f, rolloff) * rootRaisedCosine(f - epsilon, rolloff)

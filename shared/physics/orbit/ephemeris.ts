@@ -1,9 +1,9 @@
 import type { Ephemeris, MeanElements, PropagationError, Propagator, StateTeme, UtcMs } from '../types'
 
 /** Nodes an interpolation uses, and their barycentric weights on an even grid, (−1)^j·C(9, j) (Berrut, Trefethen 2004). */
-const NODES = 10
-const WEIGHTS = [1, -9, 36, -84, 126, -126, 84, -36, 9, -1] as const
-const BEFORE = NODES / 2 - 1
+export const NODES = 10
+export const WEIGHTS = [1, -9, 36, -84, 126, -126, 84, -36, 9, -1] as const
+export const BEFORE = NODES / 2 - 1
 
 /** What the ephemeris covers beyond the span asked for, so that light time and differences reach over its edges. */
 export const EPHEMERIS_PAD_MS = 5_000
@@ -22,6 +22,14 @@ const MOST_SAMPLES_BEFORE_WINDOW = 2_000
  * Step between propagated nodes, ms. Short against the orbit's own motion (0.07 rad of mean anomaly) and against the
  * time in which an eccentric orbit sweeps through perigee: the distance of the nearest complex singularity of Kepler's
  * equation from the real axis, (acosh(1/e) − √(1−e²))/n (Hagihara 1970, from memory), in twentieths.
+ *
+ * @card Grid step: how far apart in time states are propagated before they are interpolated.
+ * @formula least of 0.07/n and (acosh(1/e) − √(1 − e²))/(20·n), in whole seconds, at least 1 s
+ * @source Hagihara 1970, singularities of Kepler’s equation (from memory)
+ * @units rev/day, eccentricity → ms
+ * @frame none
+ * @range e in [0, 1)
+ * @tolerance none of its own: the interpolation that it serves is held (orbit/ephemeris.test.ts)
  */
 export function gridStepMs(elements: MeanElements): number {
   const radPerS = elements.meanMotionRevPerDay * 2 * Math.PI / 86_400
@@ -63,6 +71,14 @@ function validUntil(propagator: Propagator, validMs: UtcMs, failingMs: UtcMs): U
  *
  * `fromMs` and `toMs` of the answer reach 5 s beyond what was asked, where SGP4 does. The first propagation error ends
  * it, named in `endedBy`; nothing later is used, since near decay errors come and go.
+ *
+ * @card Interpolated states: position and velocity between propagated nodes, each by itself.
+ * @formula x(t) = Σ w_j x_j/(t − t_j) / Σ w_j/(t − t_j), ten even nodes, w_j = (−1)^j·C(9, j)
+ * @source Berrut, Trefethen, SIAM Review 46 (2004) 501
+ * @units UTC ms → m, m/s
+ * @frame TEME
+ * @range the span asked for and 5 s beyond, until the first error of SGP4
+ * @tolerance 1 mm and 0.01 mm/s of SGP4 in low orbit, 10 mm and 0.1 mm/s elsewhere (orbit/ephemeris.test.ts)
  */
 export function createEphemeris(propagator: Propagator, fromMs: UtcMs, toMs: UtcMs, options: { readonly stepMs?: number } = {}): Ephemeris {
   if (!(toMs >= fromMs)) throw new RangeError('The span ends before it begins: give fromMs ≤ toMs')
@@ -109,20 +125,41 @@ export function createEphemeris(propagator: Propagator, fromMs: UtcMs, toMs: Utc
     }
     return tried[index] === SMOOTH
   }
+  const isInterpolated = (left: number): boolean => hasStencil(left) && isSmooth(left) && isSmooth(left - 1) && isSmooth(left + 1)
   const stateAt = (utcMs: UtcMs): StateTeme | null => {
     if (!(utcMs >= startMs && utcMs <= endMs)) return null
     const left = Math.floor(utcMs / stepMs)
     const share = (utcMs - left * stepMs) / stepMs
     const isNode = share === 0 && left >= usableFrom && left <= usableTo
     if (isNode) return nodeState(data, left - firstNode)
-    if (hasStencil(left) && isSmooth(left) && isSmooth(left - 1) && isSmooth(left + 1)) {
+    if (isInterpolated(left)) {
       return interpolate(data, left - BEFORE - firstNode, share)
     }
     const direct = propagator.at(utcMs)
     return direct.ok ? direct : null
   }
-  return { fromMs: startMs, toMs: endMs, endedBy, propagator, stateAt }
+  const ephemeris: Ephemeris = { fromMs: startMs, toMs: endMs, endedBy, propagator, stateAt }
+  grids.set(ephemeris, { stepMs, firstNode, usableFrom, usableTo, states: data, isInterpolated })
+  return ephemeris
 }
+
+/** The propagated nodes of an ephemeris, for who interpolates many functions of them at one instant. */
+export interface EphemerisGrid {
+  readonly stepMs: number
+  /** Node n stands at n·stepMs; `states` begins with this one: position (m) and velocity (m/s) in TEME, six numbers a node. */
+  readonly firstNode: number
+  /** Nodes that SGP4 has a state for. */
+  readonly usableFrom: number
+  readonly usableTo: number
+  readonly states: Float64Array
+  /** Whether interpolation between node `left` and the next is good; elsewhere ask the propagator. */
+  readonly isInterpolated: (left: number) => boolean
+}
+
+const grids = new WeakMap<Ephemeris, EphemerisGrid>()
+
+/** Null for an ephemeris that is empty or not made here. */
+export const gridOf = (ephemeris: Ephemeris): EphemerisGrid | null => grids.get(ephemeris) ?? null
 
 function areClose(a: StateTeme, b: StateTeme): boolean {
   const apart = (p: readonly number[], q: readonly number[]): number => Math.hypot(p[0]! - q[0]!, p[1]! - q[1]!, p[2]! - q[2]!)

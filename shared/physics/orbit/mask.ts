@@ -38,6 +38,14 @@ function maskElevation(mask: readonly MaskPoint[], azimuthRad: number): number |
 /**
  * The horizon of a site at an azimuth, rad: the larger of the site's and the link's minimum elevation and the mask
  * there. The mask is linear between its points, across north too; a mask of one point holds all round.
+ *
+ * @card Horizon: the elevation from which a link works at an azimuth.
+ * @formula larger of the least elevations of station and link and of the mask, linear between its points and across north
+ * @source common practice
+ * @units rad → rad
+ * @frame station’s horizon, azimuth from true north clockwise
+ * @range any azimuth; a mask of one point holds all round
+ * @tolerance 1e-9° of values by hand (orbit/mask.test.ts)
  */
 export function horizonRad(site: Site, azimuthRad: number, linkMinElevationRad = -Infinity): number {
   const plain = Math.max(site.minElevationRad, linkMinElevationRad)

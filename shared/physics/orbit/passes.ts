@@ -47,12 +47,12 @@ function passOnArc(sights: Sights, query: PassQuery, window: Span, arc: Span, pl
   if (!first || !last) return null
   const [aosMs, losMs] = [first.fromMs, last.toMs]
   const times = evenTimes(aosMs, losMs, Math.max(FEWEST_STEPS, Math.ceil(2 * (losMs - aosMs) / stepMs)))
-  const culmination = highest(t => sights.exact(t).elevationRad, times)
+  const culminationMs = highest(sights.nearSin, times).ms
   return {
     aosMs,
-    culminationMs: culmination.ms,
+    culminationMs,
     losMs,
-    maxElevationRad: culmination.value,
+    maxElevationRad: sights.exact(culminationMs).elevationRad,
     aosClipped: aosMs === window.fromMs,
     losClipped: losMs === window.toMs,
     workable,
@@ -67,6 +67,15 @@ function passOnArc(sights: Sights, query: PassQuery, window: Span, arc: Span, pl
  * Elevation maxima are bracketed on the ephemeris's grid and refined, so that a pass which peaks 0.01° above is found;
  * crossings are refined by true propagation below 1 ms. Where the elements' validity ends inside the window the search
  * ends with it, and `endedBy` says why; a pass cut there is clipped.
+ *
+ * @card Passes: when a spacecraft is above a station’s horizon, with culmination and workable parts.
+ * @formula elevation(t) − horizon(azimuth(t)) = 0: maxima bracketed on the grid, crossings refined on SGP4 itself
+ * @source mechanics
+ * @units UTC ms, rad → UTC ms, rad
+ * @frame station’s horizon of WGS-84
+ * @range all orbits that SGP4 knows; a set that ends in the window ends the search; no refraction
+ * @tolerance 2 ms in AOS and LOS, 0.0005° of elevation where grazing (orbit/reference-passes.test.ts); none missed against sampling
+ *   (orbit/brute-force.test.ts)
  */
 export function findPasses(query: PassQuery): PassSearch {
   const { ephemeris, site } = query
@@ -79,10 +88,12 @@ export function findPasses(query: PassQuery): PassSearch {
   const sights = sightsFrom(ephemeris, site, query.ut1MinusUtcS)
   const plainRad = Math.max(site.minElevationRad, query.minElevationRad ?? -Infinity)
   const stepMs = gridStepMs(ephemeris.propagator.elements)
+  const sinPlain = Math.sin(plainRad)
   const arcs = positiveSpans(
-    t => sights.near(t).elevationRad - plainRad,
-    t => sights.exact(t).elevationRad - plainRad,
+    t => sights.nearSin(t) - sinPlain,
+    t => sights.exactSin(t) - sinPlain,
     gridTimes(fromMs, toMs, stepMs),
+    { isSmooth: true },
   )
   const window = { fromMs, toMs }
   const passes = arcs.flatMap(arc => passOnArc(sights, query, window, arc, plainRad, stepMs) ?? [])

@@ -79,6 +79,14 @@ function propagate(record: SatRec, minutes: number): Propagation {
  *
  * An error of SGP4 is an outcome with a name, never NaN; elements with which SGP4 fails at their own epoch give no
  * propagator. Throws a RangeError only for elements or instants that are not numbers.
+ *
+ * @card Propagation: position and velocity of a spacecraft from its mean elements.
+ * @formula SGP4 and, from a period of 225 min, SDP4; WGS-72 constants, improved mode
+ * @source Vallado, Crawford, Hujsak, Kelso, AIAA 2006-6753; computed by the package satellite.js
+ * @units elements as published, UTC ms → m, m/s
+ * @frame TEME
+ * @range e in [0, 1), mean motion above 0; the first error of SGP4 ends a set, by name
+ * @tolerance 0.2 mm and 0.02 mm/s of the published run (orbit/propagator.test.ts)
  */
 export function createPropagator(elements: MeanElements): PropagatorResult {
   for (const name of NUMBERS) {

@@ -1,9 +1,10 @@
 import type { Ephemeris, Look, PredictedPass, Site, Span, UtcMs } from '../types'
 import { gridStepMs } from './ephemeris'
-import { lookAt } from './look'
+import { lookOfView } from './look'
 import { horizonRad, sortedMask } from './mask'
 import { evenTimes, positiveSpans } from './positive-spans'
 import { findRoot } from './refine'
+import { createSiteTrack, sinElevation, VIEW_LENGTH } from './site-track'
 
 const FEWEST_SAMPLES = 128
 const WIDEST_TURN_RAD = 0.1
@@ -12,20 +13,32 @@ const MASK_POINT_TOLERANCE_MS = 0.1
 
 const signedTurn = (angleRad: number): number => Math.atan2(Math.sin(angleRad), Math.cos(angleRad))
 
-/** Look angles by interpolation, and by true propagation for refinement. */
-export interface Sights { readonly near: (utcMs: UtcMs) => Look, readonly exact: (utcMs: UtcMs) => Look }
+/** What a site sees by interpolation (`near`), and by true propagation for refinement (`exact`). */
+export interface Sights {
+  readonly near: (utcMs: UtcMs) => Look
+  readonly exact: (utcMs: UtcMs) => Look
+  /** Sine of the elevation: as good as the elevation for signs and extremes, and cheaper. */
+  readonly nearSin: (utcMs: UtcMs) => number
+  readonly exactSin: (utcMs: UtcMs) => number
+}
 
 export function sightsFrom(ephemeris: Ephemeris, site: Site, ut1MinusUtcS: number): Sights {
-  const near = (utcMs: UtcMs): Look => {
-    const state = ephemeris.stateAt(utcMs)
-    if (!state) throw new RangeError(`No state at ${utcMs}: the ephemeris runs from ${ephemeris.fromMs} to ${ephemeris.toMs}`)
-    return lookAt(state, site, utcMs, ut1MinusUtcS)
+  const track = createSiteTrack(ephemeris, site, ut1MinusUtcS)
+  const view = new Float64Array(VIEW_LENGTH)
+  const nearView = (utcMs: UtcMs): Float64Array => {
+    if (!track.viewAt(utcMs, view)) throw new RangeError(`No state at ${utcMs}: the ephemeris runs from ${ephemeris.fromMs} to ${ephemeris.toMs}`)
+    return view
   }
-  const exact = (utcMs: UtcMs): Look => {
-    const state = ephemeris.propagator.at(utcMs)
-    return state.ok ? lookAt(state, site, utcMs, ut1MinusUtcS) : near(utcMs)
+  const exactView = (utcMs: UtcMs): Float64Array => {
+    if (!track.exactViewAt(utcMs, view)) throw new RangeError(`No state at ${utcMs}: the ephemeris runs from ${ephemeris.fromMs} to ${ephemeris.toMs}`)
+    return view
   }
-  return { near, exact }
+  return {
+    near: utcMs => lookOfView(track, nearView(utcMs)),
+    exact: utcMs => lookOfView(track, exactView(utcMs)),
+    nearSin: utcMs => sinElevation(nearView(utcMs)),
+    exactSin: utcMs => sinElevation(exactView(utcMs)),
+  }
 }
 
 /** Samples of an arc, closer where the azimuth runs, with the instants at which it passes a mask point. */
@@ -73,6 +86,14 @@ export function partsAboveHorizon(sights: Sights, site: Site, arc: Span, minElev
 /**
  * The workable parts of a pass for a link with its own minimum elevation (rad): within the station's, those above it.
  * Crossings by true propagation, below 1 ms.
+ *
+ * @card Workable parts: the spans of a pass in which a link has its own least elevation.
+ * @formula elevation(t) ≥ larger of the link’s and the station’s least elevation and the mask
+ * @source mechanics
+ * @units UTC ms, rad → UTC ms
+ * @frame station’s horizon of WGS-84
+ * @range within the pass
+ * @tolerance 2 ms (orbit/passes.test.ts)
  */
 export function workablePartsForLink(
   pass: PredictedPass, ephemeris: Ephemeris, site: Site, linkMinElevationRad: number, ut1MinusUtcS: number,

@@ -4,7 +4,17 @@ import { corridorOf } from './corridor'
 import { chooseRows, fewestRows, isLargeSearch } from './fewest-rows'
 import type { Limits } from './hold-paths'
 
-/** Least rows, then least ratio of residual to half-width, then earliest, then lowest; null where the half-width has no plan. */
+/**
+ * Least rows, then least ratio of residual to half-width, then earliest, then lowest; null where the half-width has no plan.
+ *
+ * @card Best rows: least rows, then the least share of the half-width.
+ * @formula least N, then least x with |f − g_i| ≤ x·h, by bisection
+ * @source mechanics of intervals
+ * @units Hz, ms → ms, steps of the grid
+ * @frame from the radio’s reference step
+ * @range half-widths above 0
+ * @tolerance equal to exhaustive search (plan/best-path.test.ts)
+ */
 export function bestPath(curve: Curve, grid: Grid, limits: Limits, halfWidthHz: readonly number[]): Path | null {
   if (halfWidthHz.some(h => h <= 0)) return null
   const corridor = (ratio: number) => corridorOf(curve, grid, j => ratio * halfWidthHz[j]!)
@@ -14,7 +24,17 @@ export function bestPath(curve: Curve, grid: Grid, limits: Limits, halfWidthHz: 
   return chosenAbove(ratio, limits, rows, corridor)
 }
 
-/** The plan with half-width max(h, x), x the least that has one; then least rows, earliest, lowest. */
+/**
+ * The plan with half-width max(h, x), x the least that has one; then least rows, earliest, lowest.
+ *
+ * @card Nearest rows: what comes closest where no plan fits.
+ * @formula least x with |f − g_i| ≤ max(h, x)
+ * @source mechanics of intervals
+ * @units Hz, ms → ms, steps of the grid
+ * @frame from the radio’s reference step
+ * @range any half-width
+ * @tolerance excess as the checker finds it (plan/plan-retunes.test.ts)
+ */
 export function widenedPath(curve: Curve, grid: Grid, limits: Limits, halfWidthHz: readonly number[]): Path {
   const corridor = (x: number) => corridorOf(curve, grid, j => Math.max(halfWidthHz[j]!, x))
   let enough = grid.stepHz

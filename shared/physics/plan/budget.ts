@@ -22,6 +22,14 @@ export type UncertainParts = Omit<BudgetParts, 'stepsHz'>
  * - orbit, one sigma: σ along-track in seconds·|∂f/∂t_along|.
  * - oscillator, one sigma: f·√(L_spacecraft² + L_station²)/√3. Data sheets state limits; evenly spread within ±L is σ = L/√3
  *   (JCGM 100:2008, 4.3.7).
+ *
+ * @card Error budget: how far off each cause may put the needed frequency at an instant.
+ * @formula timing (clock + latency’s uncertainty)·|ḟ|; UT1 bound·|∂f/∂UT1|; orbit σ_t·|∂f/∂t_along|; oscillator f·√(L_sc² + L_st²)/√3
+ * @source mechanics; L/√3: JCGM 100:2008, 4.3.7
+ * @units ms, s, ppm, Hz/s → Hz
+ * @frame none
+ * @range timing and UT1 are limits, orbit and oscillator one sigma
+ * @tolerance 1e-9 Hz of values by hand (plan/budget.test.ts)
  */
 export function budgetAt(at: Sensitivity, budget: BudgetModel, radio: Pick<RadioModel, 'latencyUncertaintyMs'>): UncertainParts {
   return {
@@ -33,7 +41,17 @@ export function budgetAt(at: Sensitivity, budget: BudgetModel, radio: Pick<Radio
   }
 }
 
-/** Limits add; one-sigma spreads add as root of squares, times k. Hz. */
+/**
+ * Limits add; one-sigma spreads add as root of squares, times k. Hz.
+ *
+ * @card Sum of the budget: what the uncertain parts come to.
+ * @formula timing + UT1 + k·√(orbit² + oscillator² + trim²)
+ * @source common practice: limits add, spreads as the root of squares
+ * @units Hz → Hz
+ * @frame none
+ * @range k ≥ 0, 2 unless set
+ * @tolerance 1e-12 Hz of a value by hand (plan/budget.test.ts)
+ */
 export function uncertaintyHz(parts: UncertainParts, k: number): Hz {
   return parts.timingHz + parts.ut1Hz + k * Math.hypot(parts.orbitHz, parts.oscillatorHz, parts.trimHz)
 }

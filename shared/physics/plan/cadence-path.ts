@@ -21,6 +21,14 @@ export interface CadenceLimits {
 /**
  * A row at every tick, counted from the first workable instant, each midway between the curve's extremes over its span and, where
  * the radio ramps, with the slope that leaves least. A tick in a quiet stretch, or with nothing workable before the next, is left out.
+ *
+ * @card Rows at a cadence: each midway over its span.
+ * @formula e_i = A_1 + i·N; g_i = (max f + min f)/2 over its span, or the closest line
+ * @source mechanics
+ * @units ms, Hz → rows
+ * @frame the radio’s dial
+ * @range ticks in quiet spans or with nothing workable left out
+ * @tolerance 80 Hz at culmination for a second’s hold at 437 MHz and 500 km (plan/cadence.test.ts)
  */
 export function cadencePath(curve: Curve, grid: Grid, limits: CadenceLimits): LinePath {
   const c = corridorOf(curve, grid, () => 0)

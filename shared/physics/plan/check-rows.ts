@@ -8,6 +8,14 @@ export interface AppliedRow { readonly row: RetuneRow, readonly effectMs: UtcMs,
 /**
  * A command takes effect one latency after its instant, in the order of time. A converter adds its oscillator to the dial; one that
  * inverts takes the dial from its oscillator, and a rising dial then falls in the sky.
+ *
+ * @card Rows in effect: when each published row takes effect, and what it sets in the sky.
+ * @formula effect = at + latency; sky = dial, f_LO + dial, or f_LO − dial where the converter inverts, its slope then negated
+ * @source mechanics
+ * @units UTC ms, ms, Hz, Hz/s → UTC ms, Hz, Hz/s
+ * @frame dial → sky frequency
+ * @range any rows, put in order of time
+ * @tolerance exact: late rows and forgotten converters are caught (plan/check-table.test.ts, predict/converter.test.ts)
  */
 export function applyRows(rows: readonly RetuneRow[], radio: RadioModel): AppliedRow[] {
   const { converter, latencyMs } = radio
@@ -17,7 +25,17 @@ export function applyRows(rows: readonly RetuneRow[], radio: RadioModel): Applie
   })).sort((a, b) => a.effectMs - b.effectMs)
 }
 
-/** Sky frequency at an instant while the row is in effect. */
+/**
+ * Sky frequency at an instant while the row is in effect.
+ *
+ * @card Setting in the sky: where a row’s dial puts the radio while it is in effect.
+ * @formula g + s·(t − e)
+ * @source mechanics
+ * @units UTC ms → Hz
+ * @frame sky frequency
+ * @range from the row’s instant of effect on
+ * @tolerance exact: a slope of the wrong sign is caught (predict/ramps.test.ts)
+ */
 export const skyAt = ({ effectMs, skyHz, skySlopeHzPerS }: AppliedRow, utcMs: UtcMs): Hz => skyHz + skySlopeHzPerS * (utcMs - effectMs) / 1000
 
 const instant = (utcMs: UtcMs) => new Date(utcMs).toISOString()
@@ -25,6 +43,14 @@ const instant = (utcMs: UtcMs) => new Date(utcMs).toISOString()
 /**
  * What is wrong with rows whatever the residual: `order`, `late`, `off-grid`, `slope`, `band`, `dwell`, `jump`, `quiet`. Drift needs
  * the curve and is asked beside the residual.
+ *
+ * @card Faults of rows: what breaks a table whatever its residual.
+ * @formula order, first row in time, grid, slope, band, dwell, jump, quiet spans, each against the radio’s and the link’s limits
+ * @source mechanics of the radio
+ * @units Hz, UTC ms, s → named faults
+ * @frame sky frequency
+ * @range grid to 1e-4 of a step, dwell to 1 µs
+ * @tolerance every injected fault is caught (plan/check-table.test.ts, predict/ramps.test.ts, predict/quiet.test.ts)
  */
 export function faultsOfRows(rows: readonly RetuneRow[], applied: readonly AppliedRow[], link: LinkModel, radio: RadioModel, parts: readonly Span[], quiet: readonly Span[] = []): Fault[] {
   const faults: Fault[] = []

@@ -14,10 +14,13 @@ export function everySecond(fromMs: UtcMs, toMs: UtcMs): UtcMs[] {
 /** The instants with, between them, those at which `rate` changes sign, to a microsecond. */
 export function withTurns(instants: readonly UtcMs[], rate: (utcMs: UtcMs) => number): UtcMs[] {
   const all: UtcMs[] = []
+  let rateBefore = 0
   instants.forEach((at, i) => {
-    const before = instants[i - 1]
-    if (before !== undefined && rate(before) * rate(at) < 0) all.push(crossingBetween(before, at, utcMs => rate(utcMs) * rate(before) > 0))
+    const rateNow = rate(at)
+    const side = rateBefore
+    if (i > 0 && side * rateNow < 0) all.push(crossingBetween(instants[i - 1]!, at, utcMs => rate(utcMs) * side > 0))
     all.push(at)
+    rateBefore = rateNow
   })
   return all
 }

@@ -15,7 +15,7 @@ export interface SeriesOptions {
   readonly tolerance: number
 }
 
-interface Panel { readonly middleMs: number, readonly halfMs: number, readonly value: readonly number[], readonly rate: readonly number[] }
+interface Panel { readonly middleMs: number, readonly halfMs: number, readonly value: Float64Array, readonly rate: Float64Array }
 
 const SHORTEST_PANEL_MS = 250
 
@@ -23,21 +23,35 @@ const SHORTEST_PANEL_MS = 250
  * Interpolates `fn` at Chebyshev points, panels halved until the series has died out. Source: Press et al., Numerical Recipes,
  * chapter on Chebyshev approximation (coefficients, Clenshaw's recurrence, derivative). Outside [fromMs, toMs] the nearest
  * panel is continued, which is good for milliseconds only.
+ *
+ * @card Chebyshev series: a smooth curve by few samples.
+ * @formula Σ c_k T_k(x) on each panel, by Clenshaw’s recurrence
+ * @source Press et al., Numerical Recipes §5.8
+ * @units any → any, per s
+ * @frame none
+ * @range smooth functions; panels of 250 ms at least
+ * @tolerance 1e-8 on Runge’s function, 1e-6 per s in its slope (plan/check-series.test.ts)
  */
 export function seriesOf(fn: (utcMs: number) => number, options: SeriesOptions): Series {
   const panels: Panel[] = []
   const count = Math.max(1, Math.ceil((options.toMs - options.fromMs) / options.panelMs))
   const length = (options.toMs - options.fromMs) / count
   for (let i = 0; i < count; i++) addPanels(fn, options, options.fromMs + length * i, options.fromMs + length * (i + 1), panels)
+  const begins = Float64Array.from(panels, panel => panel.middleMs - panel.halfMs)
+  let at = 0
+  // Instants mostly come in order: the panel asked last is tried first.
   const panelAt = (utcMs: number): Panel => {
-    let before = 0
-    let after = panels.length
-    while (after - before > 1) {
-      const middle = (before + after) >> 1
-      if (panels[middle]!.middleMs - panels[middle]!.halfMs <= utcMs) before = middle
-      else after = middle
+    if (!(utcMs >= begins[at]! && (at + 1 === panels.length || utcMs < begins[at + 1]!))) {
+      let before = 0
+      let after = panels.length
+      while (after - before > 1) {
+        const middle = (before + after) >> 1
+        if (begins[middle]! <= utcMs) before = middle
+        else after = middle
+      }
+      at = before
     }
-    return panels[before]!
+    return panels[at]!
   }
   return {
     valueAt: (utcMs) => {
@@ -65,26 +79,44 @@ function addPanels(fn: (utcMs: number) => number, options: SeriesOptions, fromMs
   panels.push({ middleMs, halfMs, value, rate: derivative(value).map(c => c / (halfMs / 1000)) })
 }
 
-/** Coefficients of the series through n Chebyshev points; the first already halved. */
-function coefficients(fn: (x: number) => number, n: number): number[] {
-  const samples = Array.from({ length: n }, (_, j) => fn(Math.cos(Math.PI * (j + 0.5) / n)))
-  return samples.map((_, k) => {
-    let sum = 0
-    for (let j = 0; j < n; j++) sum += samples[j]! * Math.cos(Math.PI * k * (j + 0.5) / n)
-    return sum * (k === 0 ? 1 : 2) / n
-  })
+/** cos(πk(j + ½)/n), row k, for each number of points asked for so far. */
+const cosines = new Map<number, Float64Array>()
+
+function cosinesOf(n: number): Float64Array {
+  let table = cosines.get(n)
+  if (!table) cosines.set(n, table = Float64Array.from({ length: n * n }, (_, i) => Math.cos(Math.PI * Math.floor(i / n) * (i % n + 0.5) / n)))
+  return table
 }
 
-function derivative(c: readonly number[]): number[] {
+/** Coefficients of the series through n Chebyshev points; the first already halved. */
+function coefficients(fn: (x: number) => number, n: number): Float64Array {
+  const table = cosinesOf(n)
+  const samples = new Float64Array(n)
+  for (let j = 0; j < n; j++) samples[j] = fn(table[n + j]!)
+  const c = new Float64Array(n)
+  for (let k = 0; k < n; k++) {
+    let sum = 0
+    for (let j = 0; j < n; j++) sum += samples[j]! * table[k * n + j]!
+    c[k] = sum * (k === 0 ? 1 : 2) / n
+  }
+  return c
+}
+
+function derivative(c: Float64Array): Float64Array {
   const n = c.length
-  const d = new Array<number>(n + 1).fill(0)
+  const d = new Float64Array(n + 1)
   for (let k = n - 2; k >= 0; k--) d[k] = d[k + 2]! + 2 * (k + 1) * c[k + 1]!
   d[0] = d[0]! / 2
   return d.slice(0, n)
 }
 
-function clenshaw(c: readonly number[], x: number): number {
-  let [next, afterNext] = [0, 0]
-  for (let k = c.length - 1; k >= 1; k--) [next, afterNext] = [2 * x * next - afterNext + c[k]!, next]
+function clenshaw(c: Float64Array, x: number): number {
+  let next = 0
+  let afterNext = 0
+  for (let k = c.length - 1; k >= 1; k--) {
+    const own = 2 * x * next - afterNext + c[k]!
+    afterNext = next
+    next = own
+  }
   return x * next - afterNext + c[0]!
 }

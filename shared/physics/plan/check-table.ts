@@ -27,14 +27,22 @@ export const MARGIN_CAP = 1e6
 
 /**
  * Checks rows as published against what is needed. Shares nothing with the planner but the propagator: it propagates for itself,
- * interpolates in its own way, applies the rows as the radio does (one latency after their instant, through its converter, with their slopes) and asks both sides of every
- * retune, every extreme between, and every second.
+ * interpolates in its own way, applies the rows as the radio does (one latency after their instant, through its converter, with their
+ * slopes) and asks both sides of every retune, every extreme between, and every second.
  *
  * Budgeted residual = |needed − set| + timing + UT1 + k·√(orbit² + oscillator²), as in the error budget. Margin = allowance / worst
  * budgeted residual; holds from 1.25, tight from 1, breaks below, and breaks with any fault. Before the first row the radio is
  * taken to stand on the carrier. A row that serves no workable instant has residual 0.
  *
  * Throws RangeError without a workable part, or where the propagator fails within one.
+ *
+ * @card Verdict: what rows leave when they are applied as the radio would, apart from the planner.
+ * @formula budgeted residual = |f − g_i − s_i·(t − e_i)| + timing + UT1 + k·spread; margin = allowance/worst; holds ≥ 1.25, tight ≥ 1, breaks below
+ * @source mechanics; thresholds are the product’s
+ * @units Hz, UTC ms → Hz, margin, verdict
+ * @frame sky frequency
+ * @range 1 Hz, both sides of every retune, every extreme between; a fault breaks
+ * @tolerance 0.05 Hz at 437.5 MHz with one row for the whole pass (plan/check-table.test.ts)
  */
 export function checkTable(query: CheckQuery): TableCheck {
   const { link, radio, budget, parts, rows } = query

@@ -36,6 +36,14 @@ const LEAST_STEP_MS = 3
  * Samples the curve until straight pieces follow it. Each piece is tried at its thirds: a parabola lies 9/8 times closer to its
  * chord there than at worst, and a piece cut at its thirds strays an eighth of what was measured, so a piece is accepted at
  * four times the tolerance with its thirds as knots: twice as close as needed. Thirds, not the middle, since an inflection hides there.
+ *
+ * @card Straight pieces: the needed frequency as the planner follows it.
+ * @formula chords halved in thirds until they stray less than the tolerance; the stray is taken off h
+ * @source mechanics: a parabola strays 9/8 of its thirds
+ * @units Hz, UTC ms → Hz, ms
+ * @frame from the radio’s reference step
+ * @range smooth curves; pieces of 3 ms at least
+ * @tolerance 0.025 % of the allowance: plans hold when checked (predict/build-table.test.ts)
  */
 export function sampleCurve(source: CurveSource): Curve {
   const { anchorMs, referenceHz, toleranceHz } = source
@@ -109,7 +117,17 @@ export interface Corridor {
 /** Whole multiples of `stepHz` from `least` to `most`. */
 export interface Grid { readonly stepHz: Hz, readonly least: number, readonly most: number }
 
-/** The corridor of a curve with a half-width given at each knot. */
+/**
+ * The corridor of a curve with a half-width given at each knot.
+ *
+ * @card Corridor: lowest and highest setting that is good enough at each knot.
+ * @formula f ± h
+ * @source mechanics
+ * @units Hz → Hz
+ * @frame from the radio’s reference step
+ * @range any half-width
+ * @tolerance equal to exhaustive search (plan/best-path.test.ts)
+ */
 export function corridorOf(curve: Curve, grid: Grid, halfWidthHz: (knot: number) => Hz): Corridor {
   const half = curve.timeMs.map((_, j) => halfWidthHz(j))
   return {
@@ -136,7 +154,17 @@ export function mirrored(c: Corridor): Corridor {
 /** Slack on grid comparisons, Hz: below what a gigahertz in a double resolves. */
 export const SLACK_HZ = 1e-6
 
-/** Lowest and highest grid multiple within [lowHz, highHz]; none fits when the first is above the second. */
+/**
+ * Lowest and highest grid multiple within [lowHz, highHz]; none fits when the first is above the second.
+ *
+ * @card Grid points: which settings of a radio lie within a range.
+ * @formula ⌈low/q⌉ ≤ k ≤ ⌊high/q⌋, within the band
+ * @source mechanics of a grid
+ * @units Hz → steps of the grid
+ * @frame from the radio’s reference step
+ * @range steps above 0; slack 1 µHz
+ * @tolerance equal to exhaustive search (plan/best-path.test.ts)
+ */
 export function gridRange(grid: Grid, lowHz: Hz, highHz: Hz): readonly [number, number] {
   return [
     // Adding zero makes −0 plain.

@@ -12,6 +12,14 @@ interface Kept { readonly slope: number, readonly settings: Intervals }
 /**
  * The lowest settings for given starts, each jump at a workable instant within `jumpHz`; null where none do. From the last row back,
  * the settings of every slope from which the rest can be reached; then forwards the lowest, row by row.
+ *
+ * @card Settings in a chain: the lowest whose jumps a loop bears.
+ * @formula |g_{i+1} − g_i − s_i·(e_{i+1} − e_i)| ≤ jump limit at workable instants
+ * @source dynamic programming, last row first
+ * @units ms, Hz, Hz/s → multiples of q and σ
+ * @frame the radio’s dial
+ * @range given starts
+ * @tolerance never a jump beyond the limit (plan/ramp-path.test.ts)
  */
 export function chainOf(task: LineTask, starts: readonly number[], jumpHz: number): LinePath | null {
   const { corridor: c, slopes: { stepHzPerS }, bounds, slopes } = task

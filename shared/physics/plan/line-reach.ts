@@ -23,7 +23,17 @@ type Serves = (effect: number, to: number, sides: Sides) => boolean
 
 const served = ({ corridor, slopes, bounds }: LineTask): Serves => (effect, to, sides) => someLineOver(corridor, effect, to, slopes, bounds, sides)
 
-/** Latest whole instant to which one line of the grid serves that takes effect at `effect`; Infinity when to the end; below it when none. */
+/**
+ * Latest whole instant to which one line of the grid serves that takes effect at `effect`; Infinity when to the end; below it when none.
+ *
+ * @card Reach of a ramp: how long one line of the grid serves.
+ * @formula latest t with a line over [e, t]; sub-stretches from e inherit
+ * @source mechanics
+ * @units ms → ms
+ * @frame the radio’s dial
+ * @range whole milliseconds
+ * @tolerance as trying every line finds (plan/ramp-path.test.ts)
+ */
 export function lineReach(task: LineTask, effect: number, servesWith = served(task)): number {
   const { timeMs } = task.corridor
   const last = timeMs.length - 1
@@ -48,12 +58,32 @@ export function lineReach(task: LineTask, effect: number, servesWith = served(ta
   return inside
 }
 
-/** Starts of rows that are each held as long as a line of the grid serves; null where that leads into a dead end, or past `limit`. */
+/**
+ * Starts of rows that are each held as long as a line of the grid serves; null where that leads into a dead end, or past `limit`.
+ *
+ * @card Ramps by furthest reach: each held as long as it serves.
+ * @formula e_{i+1} = reach(e_i), outside quiet spans, a dwell apart
+ * @source greedy covering
+ * @units ms → ms
+ * @frame the radio’s dial
+ * @range null in a dead end
+ * @tolerance no more rows than gridless lines in h − q/2 − σℓ/4 (predict/ramps.test.ts)
+ */
 export function furthestLines(task: LineTask, limit: number): number[] | null {
   return furthest(task, limit, served(task))
 }
 
-/** How many lines any grid needs at least: furthest reach of lines of any setting and slope, without dwell; Infinity for none. */
+/**
+ * How many lines any grid needs at least: furthest reach of lines of any setting and slope, without dwell; Infinity for none.
+ *
+ * @card Fewest ramps on any grid: a bound from below.
+ * @formula furthest reach of lines of any setting and slope
+ * @source O’Rourke 1981 (from memory): lines through vertical segments
+ * @units ms, Hz → rows
+ * @frame the radio’s dial
+ * @range slopes to 2⁻³⁰ of the largest
+ * @tolerance as an independent count of lines has it (predict/ramps.test.ts)
+ */
 export function gridlessRows(task: LineTask): number {
   const { corridor, bounds, slopes } = task
   const finest = { stepHzPerS: slopes.stepHzPerS * slopes.most / 2 ** 30, most: slopes.most === 0 ? 0 : 2 ** 30 }
@@ -82,6 +112,14 @@ const SHORT = 400
  * Fewest rows over a choice of starts: reachable sets, row by row. On a grid a later start is not always the worse one, and with
  * a dwell furthest reach runs into dead ends. Every whole instant is a start in a short plan; in a long one, evenly spread instants
  * and those in `hints`.
+ *
+ * @card Ramps by search: fewest rows over a choice of starts.
+ * @formula R_{k+1} = ∪[e + dwell, reach(e)]
+ * @source breadth first over reachable starts
+ * @units ms → ms
+ * @frame the radio’s dial
+ * @range every whole instant up to 400 ms, 64 and those of furthest reach beyond
+ * @tolerance as few as trying every plan finds (plan/ramp-path.test.ts)
  */
 export function searchedLines(task: LineTask, limit: number, hints: readonly number[]): number[] | null {
   const end = task.corridor.timeMs[task.corridor.timeMs.length - 1]!

@@ -20,6 +20,14 @@ const MOST_SLOPES = 40
  * effect. A line of slope s fits exactly when max(low − s·t) ≤ min(high − s·t), both taken at the corridor's hulls; the room
  * between is concave in s, so the slope that leaves most is found by halving, and its neighbours are asked outwards until
  * nothing is left. Where the corridor narrowed by q/2 + σℓ/4 holds a line, one on the grid is found.
+ *
+ * @card Lines through a corridor: the ramps on a radio’s grid that serve a stretch.
+ * @formula max(low − s·t) ≤ k·q ≤ min(high − s·t), s = m·σ
+ * @source computational geometry: a line between two convex hulls
+ * @units ms, Hz, Hz/s → multiples of q and σ
+ * @frame the radio’s dial
+ * @range up to 40 slopes either side of the roomiest
+ * @tolerance finds one wherever the corridor less q/2 + σℓ/4 holds a line (predict/ramps.test.ts)
  */
 export function linesOver(c: Corridor, effect: number, to: number, slopes: Slopes, bounds: SlopeBounds | null, sides = sidesOver(c, effect, to)): LineChoice[] {
   const found: LineChoice[] = []
@@ -27,7 +35,17 @@ export function linesOver(c: Corridor, effect: number, to: number, slopes: Slope
   return found
 }
 
-/** Whether any line of the grid stays in the corridor over [effect, to]. */
+/**
+ * Whether any line of the grid stays in the corridor over [effect, to].
+ *
+ * @card Ramp over a stretch: whether any line of the grid serves it.
+ * @formula some m, k with max(low − m·σ·t) ≤ k·q ≤ min(high − m·σ·t)
+ * @source computational geometry: a line between two convex hulls
+ * @units ms, Hz, Hz/s → true or false
+ * @frame the radio’s dial
+ * @range up to 40 slopes either side of the roomiest
+ * @tolerance as trying every line finds (plan/ramp-path.test.ts)
+ */
 export function someLineOver(c: Corridor, effect: number, to: number, slopes: Slopes, bounds: SlopeBounds | null, sides = sidesOver(c, effect, to)): boolean {
   return seekLines(c, sides, slopeRange(slopes, bounds?.(effect, to)), slopes.stepHzPerS, () => true)
 }
@@ -54,7 +72,17 @@ function seekLines(c: Corridor, sides: Sides, range: readonly [number, number], 
   return false
 }
 
-/** Room that the best slope leaves for the setting at the instant of effect, Hz; negative where no line fits, grid or none. */
+/**
+ * Room that the best slope leaves for the setting at the instant of effect, Hz; negative where no line fits, grid or none.
+ *
+ * @card Room for a ramp: what the best slope leaves between the hulls.
+ * @formula max over s of min(high − s·t) − max(low − s·t)
+ * @source computational geometry: concave in s
+ * @units ms, Hz, Hz/s → Hz
+ * @frame the radio’s dial
+ * @range slopes within the radio’s and the loop’s
+ * @tolerance never asks for more rows than needed (predict/ramps.test.ts)
+ */
 export function roomOver(c: Corridor, effect: number, to: number, slopes: Slopes, bounds: SlopeBounds | null, sides = sidesOver(c, effect, to)): number {
   const range = slopeRange(slopes, bounds?.(effect, to))
   if (range[0] > range[1]) return -Infinity
@@ -62,7 +90,17 @@ export function roomOver(c: Corridor, effect: number, to: number, slopes: Slopes
   return highHz - lowHz
 }
 
-/** The line closest to a curve over [effect, to], by its worst miss: its slope is the roomiest, it stands midway. */
+/**
+ * The line closest to a curve over [effect, to], by its worst miss: its slope is the roomiest, it stands midway.
+ *
+ * @card Closest ramp: setting and slope that leave the least worst miss of a curve.
+ * @formula s of least range of f − s·t; g midway, to the grid
+ * @source Chebyshev’s best line
+ * @units ms, Hz, Hz/s → multiples of q and σ
+ * @frame the radio’s dial
+ * @range any stretch
+ * @tolerance 80 Hz at culmination for a second’s hold at 437 MHz and 500 km (plan/cadence.test.ts)
+ */
 export function closestLine(c: Corridor, effect: number, to: number, slopes: Slopes, bounds: SlopeBounds | null): { slope: number, setting: number } {
   const allowed = slopeRange(slopes, bounds?.(effect, to))
   const range = allowed[0] > allowed[1] ? slopeRange(slopes, undefined) : allowed

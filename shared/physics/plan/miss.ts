@@ -3,6 +3,14 @@ import type { LinePath } from './line-chain'
 
 /**
  * Largest |needed − set| + uncertainty of rows on a curve, Hz: at its knots, and on both sides of every retune.
+ *
+ * @card Largest miss: what rows leave of a curve.
+ * @formula max of |f − g_i − s_i·(t − e_i)| + uncertainty at knots and both sides of retunes
+ * @source mechanics
+ * @units Hz, ms → Hz
+ * @frame the radio’s dial
+ * @range the curve’s sampling error added
+ * @tolerance 2 Hz of 30 at a cadence of one second (plan/cadence.test.ts)
  */
 export function largestMiss(curve: Curve, { stepHz, slopeStepHzPerS }: { stepHz: number, slopeStepHzPerS: number }, path: LinePath): number {
   let worst = 0

@@ -60,6 +60,15 @@ const SAMPLING_SHARE = 2.5e-4
  * - A radio with a cadence is retuned at every tick instead: `cadencePath`.
  *
  * The curve is followed by straight pieces; their error, 0.025 % of the allowance where the curve is smooth, is taken off h.
+ *
+ * @card Tuning plan: the fewest settings of a stepped radio that stay within what the link bears.
+ * @formula |f(t) − g_i| ≤ h(t) = κ·allowance − timing − UT1 − k·spread over the workable parts; least N, then least max |f − g|/h, then
+ *   earliest, then lowest
+ * @source reachable starts from hold to hold, optimal; mechanics of intervals
+ * @units Hz, UTC ms → Hz, UTC ms of effect
+ * @frame sky frequency, before any converter
+ * @range κ = 0.8, else 1; where neither has a plan the least widening
+ * @tolerance as exhaustive search finds it (plan/best-path.test.ts); bounds of the swing (plan/plan-retunes.test.ts)
  */
 export function planRetunes(problem: RetuneProblem): RetunePlan {
   const { radio, allowanceHz } = problem

@@ -36,15 +36,33 @@ const PRECISION = { furthest: 1e-3, searched: 2e-2 }
  * longest piece, and fewer where a search finds them. Then least ratio of residual to half-width, then earliest starts, then lowest
  * settings. Where a jump limit binds, rows that come closer to the curve are tried, since rows within half the limit of it jump by no
  * more than the limit. Null where nothing is found.
+ *
+ * @card Rows that ramp: as few as are found, then closest, earliest, lowest.
+ * @formula |f − g_i − s_i·(t − e_i)| ≤ h, both rows at a retune
+ * @source longest lines through a corridor by its hulls
+ * @units Hz, Hz/s, ms → rows
+ * @frame the radio’s dial
+ * @range ratio to 0.1 %; where a jump limit binds, not always the fewest
+ * @tolerance between gridless lines in h and in h − q/2 − σℓ/4 (predict/ramps.test.ts)
  */
 export function rampPath(curve: Curve, grid: Grid, limits: RampLimits, halfWidthHz: readonly number[]): LinePath | null {
   if (halfWidthHz.some(h => h <= 0)) return null
   const corridor = (ratio: number) => corridorOf(curve, grid, j => ratio * halfWidthHz[j]!)
   const found = firstWay(corridor(1), limits, true)
-  return found && refined(corridor, 0, 1, limits, found)
+  return found && refined(corridor, { fails: 0, serves: 1, rows: found.path.starts.length }, limits, found)
 }
 
-/** Rows with half-width max(h, x), x the least that has any. What no x can keep is left to the checker: drift first, then jumps. */
+/**
+ * Rows with half-width max(h, x), x the least that has any. What no x can keep is left to the checker: drift first, then jumps.
+ *
+ * @card Widened ramps: the rows that miss by least, where none serve.
+ * @formula least x with rows in max(h, x)
+ * @source bisection
+ * @units Hz, Hz/s, ms → rows
+ * @frame the radio’s dial
+ * @range x to 0.1 % of the first width that serves
+ * @tolerance keeps to the band and misses by what that costs (predict/converter.test.ts)
+ */
 export function widenedRampPath(curve: Curve, grid: Grid, given: RampLimits, halfWidthHz: readonly number[]): LinePath {
   const corridor = (x: number) => corridorOf(curve, grid, j => Math.max(halfWidthHz[j]!, x))
   const unbanded = { ...given, band: [-Infinity, Infinity] as const }
@@ -52,7 +70,7 @@ export function widenedRampPath(curve: Curve, grid: Grid, given: RampLimits, hal
   for (const limits of [given, { ...given, bounds: null }, { ...given, bounds: null, jumpHz: Infinity }, free, { ...free, quiet: [], notBefore: -Infinity }]) {
     for (let enough = grid.stepHz; enough < 1e12; enough *= 4) {
       const found = firstWay(corridor(enough), limits, false)
-      if (found) return refined(corridor, 0, enough, limits, found)
+      if (found) return refined(corridor, { fails: 0, serves: enough, rows: Infinity }, limits, found)
     }
   }
   throw new RangeError('No row can be planned at all: check the radio\'s step and the workable parts.')
@@ -100,13 +118,13 @@ function pathBy({ searches, narrowHz, lead }: Way, wide: Corridor, limits: RampL
   return starts && chainOf(task, starts, limits.jumpHz)
 }
 
-/** The same way in the narrowest corridor that as many rows serve, and there the earliest starts. */
-function refined(corridor: (width: number) => Corridor, fails: number, serves: number, limits: RampLimits, { way, path }: { way: Way, path: LinePath }): LinePath {
+/** The same way in the narrowest corridor that at most `rows` rows serve, and there the earliest starts. */
+function refined(corridor: (width: number) => Corridor, { fails, serves, rows }: { fails: number, serves: number, rows: number }, limits: RampLimits, { way, path }: { way: Way, path: LinePath }): LinePath {
   let [low, high, best] = [fails, serves, path]
   const precision = way.searches ? PRECISION.searched : PRECISION.furthest
   while (high - low > precision * serves) {
     const middle = (low + high) / 2
-    const closer = pathBy(way, corridor(middle), limits, path.starts.length)
+    const closer = pathBy(way, corridor(middle), limits, rows)
     if (closer) [high, best] = [middle, closer]
     else low = middle
   }

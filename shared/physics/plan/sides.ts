@@ -6,11 +6,29 @@ interface Hull { readonly seconds: number[], readonly hz: number[] }
 /** Upper hull of a corridor's low side and lower hull of its high side, seconds from a row's instant of effect. */
 export interface Sides { readonly low: Hull, readonly high: Hull }
 
-/** The sides over the workable instants of [effect, to]. */
+/**
+ * The sides over the workable instants of [effect, to].
+ *
+ * @card Hulls of a corridor: upper hull of its low side, lower hull of its high side.
+ * @formula points of which no chord passes on the wrong side
+ * @source Andrew’s monotone chain, 1979
+ * @units ms, Hz → s, Hz
+ * @frame the radio’s dial
+ * @range rising instants
+ * @tolerance as trying every line finds (plan/ramp-path.test.ts)
+ */
 export const sidesOver = (c: Corridor, effect: number, to: number): Sides => growingSides(c, effect)(to)
 
 /**
  * The sides from one instant of effect on, to be asked at many ends: what was built to an earlier knot is built on.
+ *
+ * @card Growing hulls: a corridor’s from one start, at many ends.
+ * @formula hulls extended knot by knot
+ * @source Andrew’s monotone chain, 1979
+ * @units ms, Hz → s, Hz
+ * @frame the radio’s dial
+ * @range rising instants
+ * @tolerance as trying every line finds (plan/ramp-path.test.ts)
  */
 export function growingSides(c: Corridor, effect: number): (to: number) => Sides {
   const add = (sides: Sides, time: number, lowHz: number, highHz: number) => {

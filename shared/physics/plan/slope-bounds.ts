@@ -9,6 +9,14 @@ const CURVATURE_SHARE = 1.5 / 8
 /**
  * Slopes within a loop's drift limit: from max ḟ − limit to min ḟ + limit over the workable instants of a stretch. ḟ is asked every
  * 2 s; between two such instants a curve strays from its ends by an eighth of its second difference, and half as much again is allowed.
+ *
+ * @card Slopes that a loop follows: least and greatest over a stretch.
+ * @formula max ḟ − limit ≤ s ≤ min ḟ + limit over a row
+ * @source mechanics
+ * @units UTC ms, Hz/s → Hz/s
+ * @frame the radio’s dial
+ * @range ḟ every 2 s, its bend allowed for
+ * @tolerance the checker finds no drift beyond the limit (predict/ramps.test.ts)
  */
 export function slopeBounds(rateHzPerS: (utcMs: number) => number, parts: readonly Span[], anchorMs: number, limitHzPerS: number): SlopeBounds {
   const pieces: { from: number, to: number, least: number, most: number }[] = []

@@ -2,6 +2,7 @@ import { createEphemeris } from '../orbit/ephemeris'
 import { horizonRad } from '../orbit/mask'
 import { findPasses } from '../orbit/passes'
 import { createPropagator } from '../orbit/propagator'
+import { createSiteTrack } from '../orbit/site-track'
 import type { BudgetModel, LinkModel, MeanElements, PredictedPass, PropagationError, RadioModel, Site, Span, TableCheck, UtcMs } from '../types'
 import { buildTable, exactUncertainty } from './build-table'
 import type { PassSample } from './sample-pass'
@@ -47,6 +48,14 @@ export type BenchAnswer =
  * Passes of one element set over one station, each with its samples and a planned and checked tuning table. The same
  * parts that the product's own tables are made of. SGP4's failure at the epoch, or more samples than `mostSamples`,
  * is an answer of its own; failure inside the window ends the passes there.
+ *
+ * @card What-if: passes with samples and tables of one set over one station.
+ * @formula the cards above, one after the other
+ * @source the cards of each
+ * @units as the cards
+ * @frame as the cards
+ * @range until the set ends; so many samples at most
+ * @tolerance as the tables’ own: the same parts (predict/build-table.test.ts)
  */
 export function benchPredict(problem: BenchProblem): BenchAnswer {
   const { site, link, radio, fromMs, toMs, sampleIntervalS } = problem
@@ -62,7 +71,7 @@ export function benchPredict(problem: BenchProblem): BenchAnswer {
 
   const budget: BudgetModel = { ...problem.budget, alongTrackSigmaS: () => problem.budget.alongTrackSigmaS }
   const { direction, carrierHz } = link
-  const uncertainty = exactUncertainty({ stateAt: ephemeris.stateAt, site, ut1MinusUtcS, direction, carrierHz }, budget, radio)
+  const uncertainty = exactUncertainty(createSiteTrack(ephemeris, site, ut1MinusUtcS), link, budget, radio)
   return {
     kind: 'passes', endedBy, validUntilMs,
     passes: passes.map((exact) => {

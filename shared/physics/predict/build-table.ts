@@ -1,6 +1,7 @@
-import { createNeededFrequency } from '../doppler/needed'
-import type { LinkPath, NeededFrequency } from '../doppler/needed'
-import { partialAlongTrackHzPerS, partialUt1HzPerS } from '../orbit/along-track'
+import { createSeenFrequency, seenPartials } from '../doppler/seen-ratio'
+import { createSiteTrack } from '../orbit/site-track'
+import type { SiteTrack } from '../orbit/site-track'
+import type { NeededFrequency } from '../doppler/needed'
 import { workablePartsForLink } from '../orbit/passes'
 import { allowanceOf } from '../link/allowance'
 import { budgetAt, uncertaintyHz } from '../plan/budget'
@@ -43,17 +44,26 @@ export interface BuiltTable {
 /** The pass has no instant above the link's own minimum elevation. */
 export interface NotWorkable { readonly kind: 'not-workable' }
 
-/** The tuning table of one pass and one link: planned on the ephemeris, then checked as published on true propagation. */
+/**
+ * The tuning table of one pass and one link: planned on the ephemeris, then checked as published on true propagation.
+ *
+ * @card Tuning table: planned, then checked as published.
+ * @formula workable parts, needed frequency, budget, plan, check; row’s instant = effect − latency
+ * @source the cards of each
+ * @units UTC ms, Hz → UTC ms, Hz, verdict
+ * @frame sky frequency, TEME axes
+ * @range a pass above the link’s least elevation
+ * @tolerance a plan within four fifths of the allowance is found to hold (predict/build-table.test.ts)
+ */
 export function buildTable(query: TableQuery): BuiltTable | NotWorkable {
   const { propagator, ephemeris, site, link, radio, budget, pass } = query
   const parts = workablePartsForLink(pass, ephemeris, site, query.linkMinElevationRad, budget.ut1MinusUtcS)
   if (parts.length === 0) return { kind: 'not-workable' }
-  const path: LinkPath = {
-    stateAt: utcMs => ephemeris.stateAt(utcMs), site, ut1MinusUtcS: budget.ut1MinusUtcS, direction: link.direction, carrierHz: link.carrierHz,
-  }
+  const track = createSiteTrack(ephemeris, site, budget.ut1MinusUtcS)
   const { quiet = [], firstRowLeadMs = 0 } = query
   const plan = planRetunes({
-    ...onDial(createNeededFrequency(path), link, radio), uncertaintyHz: uncertaintyOver(path, ephemeris, budget, radio), allowanceHz: allowanceOf(link).allowanceHz,
+    ...onDial(createSeenFrequency(track, link.direction, link.carrierHz), link, radio),
+    uncertaintyHz: uncertaintyOver(track, ephemeris, query), allowanceHz: allowanceOf(link).allowanceHz,
     parts, radio, jumpLimitHz: link.jumpLimitHz, driftLimitHzPerS: link.driftLimitHzPerS, quiet, firstRowLeadMs,
     ...(query.notBeforeMs === undefined ? {} : { notBeforeMs: query.notBeforeMs }),
   })
@@ -82,22 +92,37 @@ function onDial(needed: NeededFrequency, { direction, bandLowHz, bandHighHz }: L
 
 export type ResidualQuery = Omit<TableQuery, 'notBeforeMs' | 'firstRowLeadMs'> & { readonly rows: readonly RetuneRow[] }
 
-/** Rows already published, checked anew: against newer elements, another budget, or the same pass as it now falls. */
+/**
+ * Rows already published, checked anew: against newer elements, another budget, or the same pass as it now falls.
+ *
+ * @card Rows checked anew: what published rows leave against newer elements.
+ * @formula the verdict on rows that stand
+ * @source the card of the verdict
+ * @units UTC ms, Hz → verdict
+ * @frame sky frequency, TEME axes
+ * @range a pass above the link’s least elevation
+ * @tolerance unchanged while nothing changes (predict/build-table.test.ts)
+ */
 export function residualOfRows(query: ResidualQuery): TableCheck | NotWorkable {
   const { pass, ephemeris, site, budget } = query
   const parts = workablePartsForLink(pass, ephemeris, site, query.linkMinElevationRad, budget.ut1MinusUtcS)
   return parts.length === 0 ? { kind: 'not-workable' } : checkTable({ ...query, parts })
 }
 
-/** Uncertainty at an instant, Hz: timing + UT1 + k·spread. Partials of causes that are zero are not asked for. */
-export function exactUncertainty(path: LinkPath, budget: BudgetModel, radio: RadioModel): (utcMs: UtcMs) => Hz {
-  const rate = createNeededFrequency(path).rateHzPerS
-  return utcMs => uncertaintyHz(budgetAt({
-    utcMs, carrierHz: path.carrierHz,
-    rateHzPerS: budget.clockErrorMs + radio.latencyUncertaintyMs > 0 ? rate(utcMs) : 0,
-    alongTrackHzPerS: budget.alongTrackSigmaS(utcMs) > 0 ? partialAlongTrackHzPerS(path, utcMs) : 0,
-    ut1HzPerS: budget.ut1BoundS > 0 ? partialUt1HzPerS(path, utcMs) : 0,
-  }, budget, radio), budget.k)
+/**
+ * Uncertainty at an instant, Hz: timing + UT1 + k·spread.
+ *
+ * @card Uncertainty at an instant: the budget with its partials taken there.
+ * @formula timing + UT1 + k·spread
+ * @source the cards of the budget
+ * @units UTC ms → Hz
+ * @frame the site’s own axes
+ * @range within the ephemeris
+ * @tolerance within 1 % of the checker’s: plans hold (predict/build-table.test.ts)
+ */
+export function exactUncertainty(track: SiteTrack, link: Pick<LinkModel, 'direction' | 'carrierHz'>, budget: BudgetModel, radio: RadioModel): (utcMs: UtcMs) => Hz {
+  const { direction, carrierHz } = link
+  return utcMs => uncertaintyHz(budgetAt({ utcMs, carrierHz, ...seenPartials(track, direction, carrierHz, utcMs) }, budget, radio), budget.k)
 }
 
 /** Spacing of the nodes between which the uncertainty is interpolated, and what is added for it. */
@@ -105,11 +130,11 @@ const NODE_MS = 4000
 const NODE_ROOM = 1.01
 
 /**
- * Uncertainty over time. The partials cost a dozen propagations an instant and change slowly, so they are asked every 4 s and
+ * Uncertainty over time. The partials cost several ratios an instant and change slowly, so they are asked every 4 s and
  * interpolated in straight pieces; one per cent is added, which no low orbit uses up.
  */
-function uncertaintyOver(path: LinkPath, ephemeris: Ephemeris, budget: BudgetModel, radio: RadioModel): (utcMs: UtcMs) => Hz {
-  const exact = exactUncertainty(path, budget, radio)
+function uncertaintyOver(track: SiteTrack, ephemeris: Ephemeris, { link, budget, radio }: TableQuery): (utcMs: UtcMs) => Hz {
+  const exact = exactUncertainty(track, link, budget, radio)
   const nodes = new Map<number, Hz>()
   const node = (n: number): Hz => {
     let value = nodes.get(n)

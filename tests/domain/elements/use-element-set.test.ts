@@ -33,7 +33,7 @@ describe('putting a set into use', () => {
     expect(await inUse()).toBe(second)
     expect(await stateOf(deps, first)).toBe('past')
     expect(await trailOf(deps, second)).toMatchObject([{ action: 'element-set.use', before: { state: 'waiting', inUseSetId: first }, after: { state: 'in-use', inUseSetId: second } }])
-    expect(await jobs()).toMatchObject([{ spacecraftId, reason: expect.stringContaining('2026-11-30T12:17Z') }])
+    expect(await jobs()).toMatchObject([{ spacecraftId, reason: expect.stringContaining('2026-11-30T14:41Z') }])
   })
 
   it('rolls back to a past set', async () => {

@@ -102,6 +102,18 @@ describe('prediction of one spacecraft at one station', () => {
     expect(row).toMatchObject({ before: { state: 'approved' }, after: { state: 'drafted', revision: 1 } })
   })
 
+  it('what a person withdrew comes again as a draft that no rule approves, however often it is recomputed', async () => {
+    await predict()
+    const [first] = (await revisionRows()).filter(row => row.linkId === fleet.downlinkId)
+    const revisions = async () => (await revisionRows()).filter(row => row.revision.tableId === first!.revision.tableId).map(({ revision }) => [revision.number, revision.state, revision.verdict])
+    await database.db.update(tableRevisions).set({ state: 'withdrawn', reason: 'Wrong antenna.', publishedAt: now, canonical: '{}', digest: 'd', signature: 's' }).where(eq(tableRevisions.id, first!.revision.id))
+    for (const symbolRateHz of [9610, 9620]) {
+      await database.db.update(links).set({ symbolRateHz }).where(eq(links.id, fleet.downlinkId))
+      await predict('Another symbol rate.')
+      expect(await revisions()).toEqual([[1, 'withdrawn', 'holds'], [2, 'drafted', 'holds']])
+    }
+  })
+
   it('a pass that vanishes is marked and its tables lapse; when it comes back it is the same pass with a new revision', async () => {
     await predict()
     const before = await passRows()

@@ -77,9 +77,9 @@ describe.each([['stepping', false], ['ramping', true]] as const)('a %s radio beh
       const table = tableOf(query(radio(converter, ramps), { link: up }))
       expect(table.check.faults).toEqual([])
       expect(table.check.verdict).toBe('breaks')
-      // Only the lower edge binds, 40 kHz below the carrier: what is needed at 5° of elevation is some 50 kHz below.
-      expect(table.check.worstResidualHz).toBeGreaterThan(5000)
-      expect(table.check.worstResidualHz).toBeLessThan(13_000)
+      // Only the lower edge binds, 40 kHz below the carrier: what is needed at 5° of elevation is some 50 kHz below; the budget adds up to 4 kHz.
+      expect(table.check.worstResidualHz).toBeGreaterThan(8000)
+      expect(table.check.worstResidualHz).toBeLessThan(14_500)
       const free = tableOf(query(radio(converter, ramps), { link: { ...up, bandLowHz: null, bandHighHz: null } }))
       expect(new Set(check(table, free.rows, radio(converter, ramps), { link: up }).faults.map(fault => fault.code))).toEqual(new Set(['band']))
     }

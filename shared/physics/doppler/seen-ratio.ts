@@ -1,0 +1,151 @@
+import type { Direction, Hz, UtcMs } from '../types'
+import { EARTH_ROTATION_RAD_PER_S } from '../orbit/frames'
+import type { SiteTrack } from '../orbit/site-track'
+import { EAST, EAST_RATE, NORTH, NORTH_RATE, UP, UP_RATE, VIEW_LENGTH } from '../orbit/site-track'
+import { derivativePerS } from './derivative'
+import type { NeededFrequency } from './needed'
+import { EARTH_GM_M3PS2, SPEED_OF_LIGHT_MPS } from './ratio'
+
+const C = SPEED_OF_LIGHT_MPS
+
+/**
+ * Sky frequency to set at the station over the carrier, minus one, from one view of the spacecraft: the same relation as
+ * `neededOverCarrierMinusOne`, worked in the site's own axes as they stand at that instant, where dot products are what they
+ * are in TEME. The light time is bridged by the central attraction from the view itself: what that leaves out (oblateness,
+ * 0.01 m/s² in low orbit, over 10 ms of light) is below 1e-12 of the carrier. Nothing is allocated.
+ *
+ * `alongS` moves the spacecraft along its orbit, the site staying, and `turnS` the site with the Earth, the spacecraft
+ * staying; both s and small, for partial derivatives.
+ *
+ * @card Fraction to tune by, from a view: the same relation in the station’s own axes.
+ * @formula downlink: ratio − 1; uplink: 1/ratio − 1; light time bridged by the central attraction
+ * @source special relativity; mechanics
+ * @units m, m/s → dimensionless
+ * @frame east, north, up of the station, at that instant not turning
+ * @range within the ephemeris; oblateness over the light time left out, 1e-12
+ * @tolerance 0.05 Hz at 437.5 MHz of an independent program (predict/sample-pass.test.ts)
+ */
+export function seenOverCarrierMinusOne(track: SiteTrack, view: Float64Array, direction: Direction, alongS = 0, turnS = 0): number {
+  const { siteEastM, siteNorthM, siteUpM, siteSpeedMps } = track
+  let e = view[EAST]!
+  let n = view[NORTH]!
+  let u = view[UP]!
+  let ve = view[EAST_RATE]!
+  let vn = view[NORTH_RATE]!
+  let vu = view[UP_RATE]!
+  const re = e + siteEastM
+  const rn = n + siteNorthM
+  const ru = u + siteUpM
+  const r2 = re * re + rn * rn + ru * ru
+  const pull = -EARTH_GM_M3PS2 / (r2 * Math.sqrt(r2))
+  const ae = pull * re
+  const an = pull * rn
+  const au = pull * ru
+  if (alongS !== 0) {
+    e += alongS * (ve + alongS / 2 * ae)
+    n += alongS * (vn + alongS / 2 * an)
+    u += alongS * (vu + alongS / 2 * au)
+    ve += alongS * ae
+    vn += alongS * an
+    vu += alongS * au
+  }
+  // The site's velocity is to the east; turning with the Earth it bends towards the axis.
+  let sn = 0
+  let su = 0
+  if (turnS !== 0) {
+    const inward = -EARTH_ROTATION_RAD_PER_S * siteSpeedMps
+    // Away from the axis is up by the cosine and south by the sine of the latitude: the axis's own parts along north and up.
+    sn = -inward * track.axisUp * turnS
+    su = inward * track.axisNorth * turnS
+    e -= turnS * siteSpeedMps
+    n -= turnS / 2 * sn
+    u -= turnS / 2 * su
+  }
+
+  const sign = direction === 'downlink' ? -1 : 1
+  // |p + τv| to the first order in v/c: what is left of the light time is below 0.1 ns.
+  const near = Math.sqrt(e * e + n * n + u * u)
+  const tau = sign * (near + sign * (e * ve + n * vn + u * vu) / C) / C
+  const x = e + tau * (ve + tau / 2 * ae)
+  const y = n + tau * (vn + tau / 2 * an)
+  const z = u + tau * (vu + tau / 2 * au)
+  const range = Math.sqrt(x * x + y * y + z * z)
+  ve += tau * ae
+  vn += tau * an
+  vu += tau * au
+
+  // Along the ray from transmitter to receiver, over c.
+  const toRay = sign / (range * C)
+  const craft = (x * ve + y * vn + z * vu) * toRay
+  const site = (x * siteSpeedMps + y * sn + z * su) * toRay
+  const craft2 = (ve * ve + vn * vn + vu * vu) / (C * C)
+  const site2 = (siteSpeedMps * siteSpeedMps + sn * sn + su * su) / (C * C)
+  if (direction === 'downlink') return shift(craft, site, craft2, site2)
+  const offset = shift(site, craft, site2, craft2)
+  return -offset / (1 + offset)
+}
+
+/** (1 − r)/(1 − t)·sqrt((1 − t²)/(1 − r²)) − 1 without cancellation; speeds over c along the ray, and squared in all. */
+function shift(transmitter: number, receiver: number, transmitter2: number, receiver2: number): number {
+  const motion = (transmitter - receiver) / (1 - transmitter)
+  // sqrt(1 + x) − 1 with x below 1e-9.
+  const dilation = (receiver2 - transmitter2) / 2
+  return motion + dilation + motion * dilation
+}
+
+/** What the needed frequency answers to at one instant, Hz per second of time, signed. */
+export interface SeenPartials {
+  /** ∂f/∂t_along: the spacecraft moved along its orbit, the station staying. */
+  readonly alongTrackHzPerS: number
+  /** ∂f/∂UT1: the station turned with the Earth, the spacecraft staying. */
+  readonly ut1HzPerS: number
+  /** ḟ, both moving: their sum. */
+  readonly rateHzPerS: number
+}
+
+const PARTIAL_STEP_S = 0.5
+
+/**
+ * Partials for the error budget, within 0.2 % (the spacecraft is moved by the central attraction alone). RangeError outside the track.
+ *
+ * @card Answers to timing and UT1, from a view: for the budget, quickly.
+ * @formula (f(+½ s) − f(−½ s))/1 s, spacecraft moved by the central attraction, station turned
+ * @source mechanics
+ * @units Hz, UTC ms → Hz/s
+ * @frame east, north, up of the station
+ * @range within the ephemeris; oblateness left out, 0.2 %
+ * @tolerance plans made with it hold when checked (predict/build-table.test.ts)
+ */
+export function seenPartials(track: SiteTrack, direction: Direction, carrierHz: Hz, utcMs: UtcMs): SeenPartials {
+  const view = new Float64Array(VIEW_LENGTH)
+  if (!track.viewAt(utcMs, view)) throw new RangeError(`The spacecraft's state at ${utcMs} is not known: ask within the ephemeris`)
+  const share = (alongS: number, turnS: number): number => seenOverCarrierMinusOne(track, view, direction, alongS, turnS)
+  const alongTrackHzPerS = carrierHz * (share(PARTIAL_STEP_S, 0) - share(-PARTIAL_STEP_S, 0)) / (2 * PARTIAL_STEP_S)
+  const ut1HzPerS = carrierHz * (share(0, PARTIAL_STEP_S) - share(0, -PARTIAL_STEP_S)) / (2 * PARTIAL_STEP_S)
+  return { alongTrackHzPerS, ut1HzPerS, rateHzPerS: alongTrackHzPerS + ut1HzPerS }
+}
+
+/**
+ * What to set at the station over time, as `createNeededFrequency`, from a track: quicker by an order, within 1e-12 of the
+ * carrier. The rate is the same fourth-order difference. Throws a RangeError outside the track.
+ *
+ * @card Needed frequency and its rate, from a view: as above, quicker.
+ * @formula f0 + Δf; rate by five-point difference, h = 0.25 s
+ * @source special relativity; Abramowitz, Stegun, table 25.2
+ * @units Hz, UTC ms → Hz, Hz/s
+ * @frame east, north, up of the station
+ * @range within the ephemeris; before any converter
+ * @tolerance 0.05 Hz at 437.5 MHz of an independent program (predict/sample-pass.test.ts)
+ */
+export function createSeenFrequency(track: SiteTrack, direction: Direction, carrierHz: Hz): NeededFrequency {
+  const view = new Float64Array(VIEW_LENGTH)
+  const dopplerHz = (utcMs: UtcMs): Hz => {
+    if (!track.viewAt(utcMs, view)) throw new RangeError(`The spacecraft's state at ${utcMs} is not known: ask within the ephemeris`)
+    return carrierHz * seenOverCarrierMinusOne(track, view, direction)
+  }
+  return {
+    frequencyHz: utcMs => carrierHz + dopplerHz(utcMs),
+    dopplerHz,
+    rateHzPerS: utcMs => derivativePerS(seconds => dopplerHz(utcMs + seconds * 1000)),
+  }
+}
