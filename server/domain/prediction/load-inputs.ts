@@ -92,7 +92,7 @@ function serve({ craft, station, link, radio, setupS, elements, settings, ut1, s
 /** Names of objects and the like change nothing in a prediction; raise `version` when the computing itself changes. */
 export function inputsDigest(inputs: { elements: MeanElements, site: Site, model: LinkModel, minElevationRad: number, radioId: string, radioModel: RadioModel, budget: BudgetParameters, firstRowLeadMs: number }): string {
   const { name: _name, designator: _designator, classification: _classification, elementSetNumber: _number, revolutionAtEpoch: _revolution, ...numbers } = inputs.elements
-  return createHash('sha256').update(canonicalJson({ version: 1, ...inputs, elements: numbers })).digest('hex')
+  return createHash('sha256').update(canonicalJson({ version: 2, ...inputs, elements: numbers })).digest('hex')
 }
 
 /** Changes whenever anything that the pair's prediction was made with does; the rules of approval count too. */
