@@ -5,7 +5,7 @@ import { bodyOf, problemsOf } from '~/utils/bench/body'
 import type { Errors } from '~/utils/bench/body'
 
 /** What the table is read with, of a link and a radio that may be held. */
-type Figures = Pick<Asked, 'carrierHz' | 'direction' | 'latencyMs'>
+type Figures = Pick<Asked, 'carrierHz' | 'direction' | 'latencyMs' | 'converter'>
 
 /** Asks the bench. What is wrong stands in `errors` by path, from the schemas before sending and from the server after. */
 export function useBenchAnswer(question: BenchQuestion, figures: () => Figures) {

@@ -57,9 +57,18 @@ const radioFields = {
   converterInverts: z.boolean(),
 }
 interface RadioNumbers {
-  transmits: boolean, receives: boolean, tuneLowHz: number, tuneHighHz: number, minDwellS: number
-  ramps: boolean, slopeStepHzPerS: number | null, maxSlopeHzPerS: number | null
-  planMode: 'fewest' | 'cadence', cadenceS: number | null, converterLoHz: number | null, converterInverts: boolean
+  transmits: boolean
+  receives: boolean
+  tuneLowHz: number
+  tuneHighHz: number
+  minDwellS: number
+  ramps: boolean
+  slopeStepHzPerS: number | null
+  maxSlopeHzPerS: number | null
+  planMode: 'fewest' | 'cadence'
+  cadenceS: number | null
+  converterLoHz: number | null
+  converterInverts: boolean
 }
 
 /** Rules between fields; the server runs them again on the radio as it would stand after a change. */
