@@ -1,3 +1,5 @@
+import { fileURLToPath } from 'node:url'
+import { formulaCards } from './app/build/formula-cards'
 import { bundleWorkers } from './server/workers/bundle'
 
 export default defineNuxtConfig({
@@ -48,7 +50,7 @@ export default defineNuxtConfig({
     },
   },
   runtimeConfig: { session: { name: 'nullbeat-session', password: '' } },
-  vite: { worker: { format: 'es' } },
+  vite: { worker: { format: 'es' }, plugins: [formulaCards(fileURLToPath(new URL('./shared/physics', import.meta.url)))] },
   typescript: {
     strict: true,
     nodeTsConfig: {
@@ -58,6 +60,7 @@ export default defineNuxtConfig({
     tsConfig: { compilerOptions: { noUncheckedIndexedAccess: true } },
   },
   nitro: {
+    compressPublicAssets: { gzip: true, brotli: false },
     // Its inner files are imported by path, which the development server cannot resolve when left outside the bundle.
     externals: { inline: ['satellite.js'] },
     typescript: { strict: true },

@@ -9,7 +9,9 @@ const folder = join(root, 'tests/bench')
 const bundles = mkdtempSync(join(root, 'node_modules/.bench-'))
 process.once('exit', () => rmSync(bundles, { recursive: true, force: true }))
 
-const wanted = process.argv.slice(2)
+// Words choose files, options go to them: `npm run bench -- prediction --full`.
+const options = process.argv.slice(2).filter(word => word.startsWith('--'))
+const wanted = process.argv.slice(2).filter(word => !word.startsWith('--'))
 const files = (existsSync(folder) ? readdirSync(folder, { recursive: true, encoding: 'utf8' }) : [])
   .filter(name => /\.bench\.(mjs|ts)$/.test(name) && (wanted.length === 0 || wanted.some(word => name.includes(word)))).sort()
 if (files.length === 0) {
@@ -19,6 +21,6 @@ if (files.length === 0) {
 for (const name of files) {
   const outfile = join(bundles, `${name.replaceAll('/', '-')}.mjs`)
   await build({ entryPoints: [join(folder, name)], outfile, bundle: true, platform: 'node', format: 'esm', packages: 'external', alias: { '#shared': join(root, 'shared'), '~~': root }, logLevel: 'error' })
-  const { status } = spawnSync(process.execPath, [outfile], { cwd: root, stdio: 'inherit', env: { ...process.env, TZ: 'UTC' } })
+  const { status } = spawnSync(process.execPath, [outfile, ...options], { cwd: root, stdio: 'inherit', env: { ...process.env, TZ: 'UTC' } })
   if (status !== 0) process.exitCode = 1
 }

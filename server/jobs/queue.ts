@@ -19,7 +19,27 @@ const sender = new PgBoss({ db: { executeSql: () => Promise.reject(new Error('A 
 
 /** Gives the job's id; null where one of the same singleton key waits already. */
 export async function enqueue<N extends JobName>(db: Db, name: N, data: Jobs[N], options: PgBoss.SendOptions = {}): Promise<string | null> {
+  wakeSoon(name)
   return sender.send(name, data, { ...options, db: { executeSql: (text, values) => executeIn(db, text, values) } })
+}
+
+/** A transaction of a few statements has mostly ended by then; a job that is not there yet is found when the queue is looked at next. */
+const WAKE_AFTER_MS = 30
+const wakers = new Map<JobName, () => void>()
+const waking = new Set<JobName>()
+
+/** Who takes jobs of a name in this process, told a moment after one was sent, so that nobody waits for the next look. */
+export function onSent(name: JobName, wake: () => void): void {
+  wakers.set(name, wake)
+}
+
+function wakeSoon(name: JobName): void {
+  if (waking.has(name) || !wakers.has(name)) return
+  waking.add(name)
+  setTimeout(() => {
+    waking.delete(name)
+    wakers.get(name)?.()
+  }, WAKE_AFTER_MS).unref()
 }
 
 /**

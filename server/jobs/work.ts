@@ -7,6 +7,7 @@ import { useBoss } from './boss'
 import { runMail } from './mail'
 import { runPredict } from './predict'
 import type { Jobs } from './queue'
+import { onSent } from './queue'
 import { queues } from './queues.mjs'
 
 /** How many of a kind run at once in one process. */
@@ -23,6 +24,8 @@ export async function startWork(db: Db): Promise<void> {
 }
 
 async function work<T>(boss: PgBoss, name: keyof typeof atOnce, run: (job: PgBoss.JobWithMetadata<T>) => Promise<void>): Promise<void> {
+  const ids: string[] = []
+  onSent(name, () => ids.forEach(id => boss.notifyWorker(id)))
   for (let count = 0; count < atOnce[name]; count++) {
     let id = ''
     id = await boss.work<T>(name, { includeMetadata: true, batchSize: 1, pollingIntervalSeconds: pollSeconds[name] }, async ([job]) => {
@@ -30,6 +33,7 @@ async function work<T>(boss: PgBoss, name: keyof typeof atOnce, run: (job: PgBos
       // Where there was one there may be more: look again at once.
       boss.notifyWorker(id)
     })
+    ids.push(id)
   }
 }
 

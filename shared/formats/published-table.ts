@@ -17,7 +17,7 @@ export const publishedRetuneSchema = z.strictObject({
   elevationDeg: z.number(),
   residualMinHz: hz,
   residualMaxHz: hz,
-  lossDb: z.number().nullable().describe('Null for a detector with a stated limit'),
+  lossDb: z.number().nullable().describe('Null for a detector with a limit and no curve'),
 })
 
 /** A published revision of a tuning table: what is digested, signed and served, without digest and signature. */

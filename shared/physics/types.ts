@@ -101,7 +101,7 @@ export interface PredictedPass {
 }
 
 export type Direction = 'uplink' | 'downlink'
-export type Detector = 'quadrature' | 'coherent' | 'stated'
+export type Detector = 'quadrature' | 'coherent' | 'msk' | 'differential' | 'fsk' | 'multicarrier' | 'chirp' | 'stated'
 
 /** What the link's physics needs; null means not stated. */
 export interface LinkModel {
@@ -117,7 +117,14 @@ export interface LinkModel {
   readonly jumpLimitHz: Hz | null
   /** Allowance of detector `stated`. */
   readonly limitHz: Hz | null
+  /** Bit error rate that the link is laid out for; detectors `differential` and `fsk` lose by it. */
   readonly errorRate: number
+  /** Es/N0 of a subcarrier, dB, that a `multicarrier` link works at. */
+  readonly esN0Db: number
+  /** Occupied bandwidth of a `chirp`; of a `multicarrier` where it is stated. */
+  readonly bandwidthHz: Hz | null
+  /** Of a `chirp`: 2^SF chips a symbol. */
+  readonly spreadingFactor: number | null
   /** Licensed band; uplink rows stay inside it. */
   readonly bandLowHz: Hz | null
   readonly bandHighHz: Hz | null
@@ -183,7 +190,7 @@ export interface CheckedRetune extends RetuneRow {
   /** Signed residual (needed minus set) over the row's part of the workable spans, without the budget's uncertainties. */
   readonly residualMinHz: Hz
   readonly residualMaxHz: Hz
-  /** Loss at the row's worst residual, dB; null for `stated`. */
+  /** Loss at the row's worst residual, dB; null for `chirp` and `stated`. */
   readonly lossDb: number | null
   /** At the instant of effect. */
   readonly dopplerHz: Hz

@@ -1,6 +1,7 @@
 import { z } from 'zod'
 import { atLeastZero, idSchema, instantOut, instantSchema, positive } from './common'
-import { detectorSchema, directionSchema } from './links'
+import { detectorProblems, detectorSchema, directionSchema, esN0Db, spreadingFactor } from './links'
+import type { DetectorNumbers } from './links'
 import { rampProblems } from './stations'
 import { budgetOut, retuneOut, verdictSchema } from './tables'
 
@@ -15,19 +16,18 @@ const benchLinkFields = {
   driftLimitHzPerS: orNull(positive()),
   jumpLimitHz: orNull(positive()),
   errorRate: z.number().min(1e-100).lt(0.5).default(1e-5),
-  esN0Db: z.number().min(-50).max(100).default(20),
+  esN0Db: esN0Db.default(20),
   rolloff: orNull(z.number().min(0).max(1)),
   filterBandwidthHz: orNull(positive()),
   bandwidthHz: orNull(positive()),
-  spreadingFactor: orNull(z.number().int().min(5).max(12)),
+  spreadingFactor: orNull(spreadingFactor),
   limitHz: orNull(positive()),
   turnaround: z.null({ error: 'Coherent turnaround is not computed yet: leave it out.' }).default(null),
 }
-interface BenchLinkNumbers { detector: string, limitHz: number | null }
-const needsLimit = (link: BenchLinkNumbers, ctx: z.RefinementCtx) => {
-  if (link.detector === 'stated' && link.limitHz === null) ctx.addIssue({ code: 'custom', path: ['limitHz'], message: 'A stated detector needs limitHz, from the modem’s data sheet.' })
+const needsShape = (link: DetectorNumbers, ctx: z.RefinementCtx) => {
+  for (const problem of detectorProblems(link)) ctx.addIssue({ code: 'custom', path: [problem.path], message: problem.message })
 }
-export const benchLink = z.strictObject(benchLinkFields).superRefine(needsLimit)
+export const benchLink = z.strictObject(benchLinkFields).superRefine(needsShape)
 export const benchRadio = z.strictObject({
   stepHz: z.number().min(1e-3).max(1e9).default(10), offsetHz: z.number().min(-1e12).max(1e12).default(0), minDwellS: atLeastZero().max(3600).default(1),
   latencyMs: atLeastZero().max(60_000).default(50), latencyUncertaintyMs: atLeastZero().max(60_000).default(0),
@@ -88,5 +88,5 @@ export type BenchPredictOut = z.infer<typeof benchPredictOut>
 
 export const benchAllowanceBody = benchLink
 export const benchAllowanceOut = z.object({ symbolTimeS: z.number(), epsilon: z.number(), allowanceHz: z.number(), limitedBy: z.enum(['loss', 'captureRange', 'filter', 'stated']) })
-export const benchLossBody = z.strictObject({ ...benchLinkFields, offsetHz: z.number().min(-1e12).max(1e12) }).superRefine(needsLimit)
+export const benchLossBody = z.strictObject({ ...benchLinkFields, offsetHz: z.number().min(-1e12).max(1e12) }).superRefine(needsShape)
 export const benchLossOut = z.object({ epsilon: z.number(), lossDb: z.number().nullable(), bitErrorRate: z.number().optional() })

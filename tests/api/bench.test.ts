@@ -66,7 +66,7 @@ describe('the bench over HTTP', () => {
     const window = { from: '2026-11-30T00:00:00Z', to: '2026-12-01T00:00:00Z' }
     const good = { elements: { text: twoLines() }, station, ...window }
     expect(await ask('/api/bench/predict', { ...good, extra: 1 })).toMatchObject({ status: 422, type: 'application/problem+json' })
-    expect(await ask('/api/bench/predict', { ...good, link: { detector: 'msk' } })).toMatchObject({ status: 422 })
+    expect(await ask('/api/bench/predict', { ...good, link: { detector: 'magic' } })).toMatchObject({ status: 422 })
     expect(await ask('/api/bench/predict', { ...good, from: '2026-11-30T00:00:00' })).toMatchObject({ status: 422, body: { errors: [{ path: 'from' }] } })
     expect(await ask('/api/bench/predict', { ...good, elements: { text: 'A\nB\nC' } })).toMatchObject({ status: 422, body: { errors: [{ path: 'elements.text', line: 1 }] } })
   })

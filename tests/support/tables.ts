@@ -10,7 +10,7 @@ import { elementsFromLines, siteFromDegrees } from './reference-elements'
 export const uhfLink: LinkModel = {
   direction: 'downlink', carrierHz: 437.5e6, symbolRateHz: 9600, detector: 'quadrature', permittedLossDb: 0.5,
   captureRangeHz: null, filterBandwidthHz: null, rolloff: null, driftLimitHzPerS: null, jumpLimitHz: null, limitHz: null,
-  errorRate: 1e-5, bandLowHz: null, bandHighHz: null,
+  errorRate: 1e-5, esN0Db: 20, bandwidthHz: null, spreadingFactor: null, bandLowHz: null, bandHighHz: null,
 }
 export const steppedRadio: RadioModel = { stepHz: 10, offsetHz: 0, minDwellS: 1, latencyMs: 50, latencyUncertaintyMs: 5 }
 export const smallBudget: BudgetModel = {

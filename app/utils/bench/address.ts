@@ -1,3 +1,4 @@
+import { detectors } from '#shared/schemas/links'
 import { blankQuestion } from './question'
 import type { BenchQuestion } from './question'
 
@@ -12,12 +13,12 @@ const names: { readonly [S in Section]: Readonly<Partial<Record<string, string>>
   elements: { source: 'e', id: 'set', text: 'text' },
   station: { source: 's', id: 'station', latitudeDeg: 'lat', longitudeDeg: 'lon', heightM: 'h', minElevationDeg: 'el', mask: 'mask' },
   window: { from: 'from', to: 'to', sampleIntervalS: 'dt', ut1MinusUtcS: 'dut1' },
-  link: { source: 'l', id: 'link', direction: 'way', carrierHz: 'f', symbolRateHz: 'rs', detector: 'det', permittedLossDb: 'loss', limitHz: 'lim', captureRangeHz: 'cap', filterBandwidthHz: 'bw', rolloff: 'ro', driftLimitHzPerS: 'drift', jumpLimitHz: 'jump', errorRate: 'ber' },
+  link: { source: 'l', id: 'link', direction: 'way', carrierHz: 'f', symbolRateHz: 'rs', detector: 'det', permittedLossDb: 'loss', limitHz: 'lim', captureRangeHz: 'cap', filterBandwidthHz: 'bw', rolloff: 'ro', driftLimitHzPerS: 'drift', jumpLimitHz: 'jump', errorRate: 'ber', esN0Db: 'esn0', bandwidthHz: 'sweep', spreadingFactor: 'sf' },
   radio: { source: 'r', id: 'radio', stepHz: 'step', offsetHz: 'grid', minDwellS: 'dwell', latencyMs: 'late', latencyUncertaintyMs: 'jit', ramp: 'ramp', slopeStepHzPerS: 'sstep', maxSlopeHzPerS: 'smax' },
   budget: { clockErrorMs: 'clock', alongTrackSigmaS: 'along', spacecraftPpm: 'sppm', stationPpm: 'gppm', ut1BoundS: 'but1', k: 'k' },
 }
 /** Fields that hold one of a few words. */
-const words: Readonly<Record<string, readonly string[]>> = { source: ['held', 'given'], direction: ['uplink', 'downlink'], detector: ['quadrature', 'coherent', 'stated'] }
+const words: Readonly<Record<string, readonly string[]>> = { source: ['held', 'given'], direction: ['uplink', 'downlink'], detector: detectors }
 const textual = new Set(['id', 'text', 'from', 'to'])
 
 interface MaskPoint { azimuthDeg: number, elevationDeg: number }

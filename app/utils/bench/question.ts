@@ -6,7 +6,7 @@ import type { MaskDeg } from '../catalogue/horizon-line'
 
 /** Taken from what the product keeps, or written out here. */
 export type Source = 'held' | 'given'
-type LinkFields = Pick<z.output<typeof benchLink>, 'direction' | 'carrierHz' | 'symbolRateHz' | 'detector' | 'permittedLossDb' | 'limitHz' | 'captureRangeHz' | 'filterBandwidthHz' | 'rolloff' | 'driftLimitHzPerS' | 'jumpLimitHz' | 'errorRate'>
+type LinkFields = Pick<z.output<typeof benchLink>, 'direction' | 'carrierHz' | 'symbolRateHz' | 'detector' | 'permittedLossDb' | 'limitHz' | 'captureRangeHz' | 'filterBandwidthHz' | 'rolloff' | 'driftLimitHzPerS' | 'jumpLimitHz' | 'errorRate' | 'esN0Db' | 'bandwidthHz' | 'spreadingFactor'>
 type RadioFields = z.output<typeof benchRadio>
 
 /** What is asked of the bench, as the form holds it: both sources of each part, so that changing over loses nothing typed. */
@@ -32,8 +32,8 @@ export function comingDay(nowMs: number): { from: string, to: string } {
   return { from: minuteText(fromMs), to: minuteText(fromMs + DAY_MS) }
 }
 
-export function pickLink({ direction, carrierHz, symbolRateHz, detector, permittedLossDb, limitHz, captureRangeHz, filterBandwidthHz, rolloff, driftLimitHzPerS, jumpLimitHz, errorRate }: LinkFields | LinkOut): LinkFields {
-  return { direction, carrierHz, symbolRateHz, detector, permittedLossDb, limitHz, captureRangeHz, filterBandwidthHz, rolloff, driftLimitHzPerS, jumpLimitHz, errorRate }
+export function pickLink({ direction, carrierHz, symbolRateHz, detector, permittedLossDb, limitHz, captureRangeHz, filterBandwidthHz, rolloff, driftLimitHzPerS, jumpLimitHz, errorRate, esN0Db, bandwidthHz, spreadingFactor }: LinkFields | LinkOut): LinkFields {
+  return { direction, carrierHz, symbolRateHz, detector, permittedLossDb, limitHz, captureRangeHz, filterBandwidthHz, rolloff, driftLimitHzPerS, jumpLimitHz, errorRate, esN0Db, bandwidthHz, spreadingFactor }
 }
 /** A held radio's cadence and converter stay behind: the bench's own radio plans the fewest retunes, in the sky. */
 export function pickRadio(radio: RadioFields | RadioOut): RadioFields {

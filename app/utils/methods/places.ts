@@ -14,7 +14,7 @@ export const methodPlaces: readonly MethodPlace[] = [
     'The same ratio scales the symbol clock. First order, −f·ρ̇/c, serves as a check only.',
   ] },
   { place: 'link', title: 'What a link bears', text: [
-    'A residual Δf costs a loss at the detector’s output that depends on ε = Δf·T, T the symbol’s length. The allowance is the Δf at which the loss reaches what the link permits, or the loop’s capture range, or what the receiver’s filter leaves beside the signal, or a limit stated for the modem: whichever is smallest. The pass says which.',
+    'A residual Δf costs a loss at the detector’s output that depends on ε = Δf·T, T the symbol’s length. The allowance is the Δf at which the loss reaches what the link permits, or the loop’s capture range, or what the receiver’s filter leaves beside the signal, or a limit stated for the modem (for a chirp a quarter of its bandwidth): whichever is smallest. The pass says which.',
   ] },
   { place: 'budget', title: 'Error budget', text: [
     'At each instant: the steps of the table, known exactly; timing and UT1 as limits, which add; orbit and oscillators as one-sigma spreads, which add as the root of squares, times k. Timing counts the station’s clock and the uncertainty of the command’s latency; a known latency is no error, rows are sent earlier by it. The budgeted residual is |steps| + timing + UT1 + k·spread, and it is what verdicts, margins and alerts mean.',
@@ -50,8 +50,8 @@ export interface LeftOut { readonly what: string, readonly size: string, readonl
 
 /** What is not computed, and how large it is. */
 export const leftOut: readonly LeftOut[] = [
-  { what: 'Polar motion', size: 'moves a station by at most 15 m: below 0.01 Hz at 437 MHz but at the steepest of a low pass', source: 'IERS bulletins' },
-  { what: 'Refraction', size: 'brings AOS at 0° forward by about 8 s and LOS back by as much; nothing to speak of above 10°', source: 'common practice' },
+  { what: 'Polar motion', size: 'moves a station by at most 15 m, as 2 ms of timing would: overhead at 500 km 0.3 Hz at 437 MHz and 6 Hz at 8200 MHz, a tenth of that at 0°', source: 'IERS bulletins; mechanics' },
+  { what: 'Refraction', size: 'brings AOS at 0° forward by about 8 s and puts LOS back by as much; at 10° by about 1 s', source: 'common practice' },
   { what: 'Gravity', size: '+0.5e-10 of the carrier in low orbit (0.02 Hz at 437 MHz, 0.4 Hz at 8200 MHz), up to 7e-10 higher up; reversed on the uplink', source: 'general relativity, first order' },
   { what: 'Ionosphere', size: 'about 0.9, 0.3 and 0.06 Hz at 145, 437 and 2200 MHz', source: 'common practice' },
   { what: 'Troposphere', size: 'about 5e-10 of the carrier at 10° (0.2 Hz at 437 MHz, 4 Hz at 8200 MHz), three times that at 5°, nothing at culmination', source: 'estimate: 2.4 m over sin E, 500 km' },

@@ -8,8 +8,27 @@ const hash = new Hash(new Scrypt({ cost: 32_768, blockSize: 8, parallelization: 
 /** From memory: what people choose most, longer than the least length after repetition. Compared in lower case. */
 const common = ['password', 'passwort', '123456789012', '1234567890', 'qwertyuiop', 'qwerty123456', 'iloveyou', 'letmein', 'administrator', 'welcome', 'nullbeat', 'satellite', 'groundstation', 'abcdefghijkl', 'aaaaaaaaaaaa', 'changeme', 'doppler']
 
-export const hashPassword = (password: string) => hash.make(password)
-export const verifyPassword = (stored: string, password: string) => hash.verify(stored, password)
+/** Of the four threads that Node works with aside; opening a connection to the database needs one, too. */
+const atOnce = 2
+let running = 0
+const waiting: (() => void)[] = []
+
+/** Many passwords tried at once wait here for each other and keep nobody else waiting. */
+async function inTurn<T>(act: () => Promise<T>): Promise<T> {
+  if (running < atOnce) running++
+  else await new Promise<void>(resolve => waiting.push(resolve))
+  try {
+    return await act()
+  }
+  finally {
+    const next = waiting.shift()
+    if (next) next()
+    else running--
+  }
+}
+
+export const hashPassword = (password: string) => inTurn(() => hash.make(password))
+export const verifyPassword = (stored: string, password: string) => inTurn(() => hash.verify(stored, password))
 
 /** Refuses what is easily guessed: a common word with little round it, few different characters, one's own name. */
 export function requireGoodPassword(password: string, about: readonly string[]): void {

@@ -29,8 +29,8 @@ export function siteOf(station: StationRow): Site {
 
 export function linkModelOf(link: LinkRow): LinkModel {
   const { direction, carrierHz, symbolRateHz, detector, permittedLossDb, captureRangeHz, filterBandwidthHz, rolloff } = link
-  const { driftLimitHzPerS, jumpLimitHz, limitHz, errorRate, bandLowHz, bandHighHz } = link
-  return { direction, carrierHz, symbolRateHz, detector, permittedLossDb, captureRangeHz, filterBandwidthHz, rolloff, driftLimitHzPerS, jumpLimitHz, limitHz, errorRate, bandLowHz, bandHighHz }
+  const { driftLimitHzPerS, jumpLimitHz, limitHz, errorRate, esN0Db, bandwidthHz, spreadingFactor, bandLowHz, bandHighHz } = link
+  return { direction, carrierHz, symbolRateHz, detector, permittedLossDb, captureRangeHz, filterBandwidthHz, rolloff, driftLimitHzPerS, jumpLimitHz, limitHz, errorRate, esN0Db, bandwidthHz, spreadingFactor, bandLowHz, bandHighHz }
 }
 
 /** A link's own minimum elevation, rad. */

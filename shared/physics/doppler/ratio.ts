@@ -1,11 +1,11 @@
 import type { Direction, Site, StateTeme, UtcMs } from '../types'
 import { siteStateTeme } from '../orbit/frames'
-import { dot, minus, norm, plusScaled, type Triple } from '../orbit/vector'
 
 /** Exact by definition of the metre. */
 export const SPEED_OF_LIGHT_MPS = 299_792_458
 
 export const EARTH_GM_M3PS2 = 398_600.8e9
+const C = SPEED_OF_LIGHT_MPS
 const LIGHT_TIME_TOLERANCE_S = 1e-12
 const MOST_ROUNDS = 8
 
@@ -21,31 +21,6 @@ export interface Path {
 
 /** `ratioMinusOne` keeps the digits that a ratio of nearly 1 would lose. */
 export interface FrequencyRatio { readonly ratio: number, readonly ratioMinusOne: number, readonly lightTimeS: number }
-
-/**
- * State a small time after another's instant, by the central attraction alone. For steps of light time at most: over
- * 0.3 s what it leaves out (oblateness) is below 1 mm and 3 mm/s.
- */
-function shifted(state: StateTeme, bySeconds: number): { position: Triple, velocity: Triple } {
-  const position = state.positionM as Triple
-  const velocity = state.velocityMps as Triple
-  const pull = -EARTH_GM_M3PS2 / norm(position) ** 3
-  const acceleration: Triple = [pull * position[0], pull * position[1], pull * position[2]]
-  return {
-    position: plusScaled(plusScaled(position, bySeconds, velocity), bySeconds * bySeconds / 2, acceleration),
-    velocity: plusScaled(velocity, bySeconds, acceleration),
-  }
-}
-
-/** sqrt((1−βt²)/(1−βr²)) − 1 and (1−n·βr)/(1−n·βt) − 1, joined without cancellation. */
-function ratioMinusOne(transmitter: Triple, receiver: Triple, direction: Triple): number {
-  const c = SPEED_OF_LIGHT_MPS
-  const motion = dot(direction, minus(transmitter, receiver)) / c / (1 - dot(direction, transmitter) / c)
-  const [bt2, br2] = [dot(transmitter, transmitter) / c / c, dot(receiver, receiver) / c / c]
-  const x = (br2 - bt2) / (1 - br2)
-  const dilation = x / (1 + Math.sqrt(1 + x))
-  return motion + dilation + motion * dilation
-}
 
 /**
  * Frequency received over frequency transmitted, one way, special relativity, in axes that do not rotate (TEME), the
@@ -72,34 +47,55 @@ export function receivedOverTransmitted(path: Path, direction: Direction, utcMs:
   const station = siteStateTeme(path.site, utcMs, path.ut1MinusUtcS)
   const now = path.stateAt(utcMs)
   if (!now) throw new RangeError(`The spacecraft's state at ${utcMs} is not known: ask within the ephemeris`)
-  const place = station.positionM as Triple
+  const [sx, sy, sz] = station.positionM
   const sign = direction === 'downlink' ? -1 : 1
 
-  // An instant in ms resolves 0.24 µs, a spacecraft moves 2 mm in that: the rest is bridged by `shifted`.
-  let lightTimeS = norm(minus(now.positionM as Triple, place)) / SPEED_OF_LIGHT_MPS
+  // An instant in ms resolves 0.24 µs, a spacecraft moves 2 mm in that: the rest is bridged from the nearest state.
+  let lightTimeS = Math.sqrt((now.positionM[0] - sx) ** 2 + (now.positionM[1] - sy) ** 2 + (now.positionM[2] - sz) ** 2) / C
   const baseMs = utcMs + sign * lightTimeS * 1000
   const base = path.stateAt(baseMs)
-  const fromBase = (tau: number) => base
-    ? shifted(base, sign * tau - (baseMs - utcMs) / 1000)
-    : shifted(now, sign * tau)
+  const [px, py, pz] = (base ?? now).positionM
+  const [vx, vy, vz] = (base ?? now).velocityMps
+  const baseAfterS = base ? (baseMs - utcMs) / 1000 : 0
 
-  let spacecraft = fromBase(lightTimeS)
+  // By the central attraction alone. For light time at most: over 0.3 s what it leaves out (oblateness) is below 1 mm and 3 mm/s.
+  const r2 = px * px + py * py + pz * pz
+  const pull = -EARTH_GM_M3PS2 / (r2 * Math.sqrt(r2))
+  let [by, x, y, z, rangeM, change] = [0, 0, 0, 0, 0, Infinity]
+  // The last round is made with the light time that is given back.
   for (let round = 0; round < MOST_ROUNDS; round++) {
-    const next = norm(minus(spacecraft.position, place)) / SPEED_OF_LIGHT_MPS
-    const change = Math.abs(next - lightTimeS)
-    lightTimeS = next
-    spacecraft = fromBase(lightTimeS)
+    by = sign * lightTimeS - baseAfterS
+    const fall = 1 + by * by / 2 * pull
+    x = px * fall + by * vx - sx
+    y = py * fall + by * vy - sy
+    z = pz * fall + by * vz - sz
+    rangeM = Math.sqrt(x * x + y * y + z * z)
     if (change < LIGHT_TIME_TOLERANCE_S) break
+    change = Math.abs(rangeM / C - lightTimeS)
+    lightTimeS = rangeM / C
   }
 
-  const up = minus(spacecraft.position, place)
-  const length = norm(up)
-  const alongRay: Triple = [sign * up[0] / length, sign * up[1] / length, sign * up[2] / length]
-  const velocity = station.velocityMps as Triple
-  const offset = direction === 'downlink'
-    ? ratioMinusOne(spacecraft.velocity, velocity, alongRay)
-    : ratioMinusOne(velocity, spacecraft.velocity, alongRay)
+  // Speeds over c along the ray from transmitter to receiver, and squared in all.
+  const [ux, uy, uz] = [vx + by * pull * px, vy + by * pull * py, vz + by * pull * pz]
+  const [wx, wy] = station.velocityMps
+  const toRay = sign / (rangeM * C)
+  const craft = (x * ux + y * uy + z * uz) * toRay
+  const site = (x * wx + y * wy) * toRay
+  const craft2 = (ux * ux + uy * uy + uz * uz) / (C * C)
+  const site2 = (wx * wx + wy * wy) / (C * C)
+  const offset = direction === 'downlink' ? ratioMinusOne(craft, site, craft2, site2) : ratioMinusOne(site, craft, site2, craft2)
   return { ratio: 1 + offset, ratioMinusOne: offset, lightTimeS }
+}
+
+/**
+ * (1−n·βr)/(1−n·βt) − 1 and sqrt((1−βt²)/(1−βr²)) − 1, joined without cancellation. `transmitter` and `receiver` are speeds over c
+ * along the ray, the others the squares of whole speeds over c.
+ */
+function ratioMinusOne(transmitter: number, receiver: number, transmitter2: number, receiver2: number): number {
+  const motion = (transmitter - receiver) / (1 - transmitter)
+  const x = (receiver2 - transmitter2) / (1 - receiver2)
+  const dilation = x / (1 + Math.sqrt(1 + x))
+  return motion + dilation + motion * dilation
 }
 
 /**

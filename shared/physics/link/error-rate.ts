@@ -1,4 +1,10 @@
+import type { Hz } from '../types'
+import { requiredRatio } from './degradation'
+import { differential } from './differential'
 import { erfc } from './erfc'
+import { fsk } from './fsk'
+import { lossDb } from './loss'
+import type { LossModel } from './loss'
 
 /**
  * Bit error rate of coherent BPSK, and of QPSK with Gray mapping, over white noise: P = ½ erfc √(Eb/N0).
@@ -52,4 +58,35 @@ export function requiredEbN0Db(errorRate: number): number {
  */
 export function bitErrorRateAfterLoss(errorRate: number, lossDb: number): number {
   return bitErrorRate(requiredEbN0Db(errorRate) - lossDb)
+}
+
+/**
+ * The bit error rate that an offset in Hz of either sign makes of the link's own. `quadrature`, `coherent` and `msk`: coherent
+ * bits (BPSK, Gray QPSK, MSK) that lose `lossDb`, ½ erfc √γ. `differential` and `fsk`: their exact error rate at the Eb/N0 that
+ * the link needs without offset; `differential` turns bits over past ε = ¼ and then exceeds ½. Null for `multicarrier`, whose
+ * subcarriers' modulation is not stated, and for `chirp` and `stated`, which have no curve.
+ *
+ * @card Error rate at an offset: what becomes of the link’s own.
+ * @formula ½ erfc √γ with the loss; differential and FSK by their own error rate
+ * @source each detector’s card
+ * @units Hz → share of bits
+ * @frame none
+ * @range no figure for multicarrier, chirp and a stated limit
+ * @tolerance 1e-9 (link/error-rate.test.ts)
+ */
+export function bitErrorRateAtOffset(link: LossModel, offsetHz: Hz): number | null {
+  const { detector, errorRate } = link
+  switch (detector) {
+    case 'quadrature':
+    case 'coherent':
+    case 'msk': return bitErrorRateAfterLoss(errorRate, lossDb(link, offsetHz)!)
+    case 'differential':
+    case 'fsk': {
+      const model = detector === 'fsk' ? fsk : differential
+      return model.errorRate(requiredRatio(model, errorRate), Math.abs(offsetHz / link.symbolRateHz))
+    }
+    case 'multicarrier':
+    case 'chirp':
+    case 'stated': return null
+  }
 }

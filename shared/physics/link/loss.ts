@@ -1,74 +1,69 @@
 import type { Hz, LinkModel } from '../types'
-import { overlap } from './root-raised-cosine'
-import { sinc } from './sinc'
+import { coherentCurve } from './coherent'
+import type { LossCurve } from './curve'
+import { degradationCurve } from './degradation'
+import { differential } from './differential'
+import { fsk } from './fsk'
+import { mskCurve } from './msk'
+import { multicarrierCurve } from './multicarrier'
+import { quadratureCurve } from './quadrature'
 
-/** At a null of the detector nothing comes out; JSON has no Infinity, so the loss is stated as this, dB. */
-export const LOSS_CAP_DB = 300
+export { LOSS_CAP_DB } from './curve'
 
 /** What the loss depends on; every `LinkModel` is one. */
-export type LossModel = Pick<LinkModel, 'detector' | 'symbolRateHz' | 'rolloff'>
+export type LossModel = Pick<LinkModel, 'detector' | 'symbolRateHz' | 'rolloff' | 'errorRate' | 'esN0Db'>
 
 /**
- * Output amplitude of the link's matched filter at ε = Δf·T, relative to no offset; null for `stated`, which has no curve.
- * - quadrature: |sinc ε| (I/Q correlator, rectangular pulses); with roll-off α the overlap of two root-raised-cosine spectra.
- * - coherent: |sinc 2ε| (real correlator, carrier phase zero at each symbol's start).
+ * Loss over offset of the link's detector; null for `chirp` and `stated`, which have a limit and no curve. RangeError as the detectors say.
  *
- * @card Detector’s answer: output of the matched filter at an offset, by detector.
- * @formula |sinc ε| in quadrature, with roll-off ∫G(f)G(f−ε)df; |sinc 2ε| coherently; ε = Δf·T
- * @source correlator’s response; Harris 1978; common practice
- * @units symbol rates → dimensionless
+ * @card Detector’s curve: loss over offset of the link’s detector.
+ * @formula by detector: quadrature, coherent, MSK, differential, FSK, multicarrier
+ * @source each detector’s card
+ * @units symbol rates → dB
  * @frame none
- * @range every offset; no curve for a stated limit
- * @tolerance 0.0005 dB (link/loss.test.ts)
+ * @range no curve for chirp and a stated limit
+ * @tolerance 0.0005 dB of tables (link/loss.test.ts)
  */
-export function amplitudeAt(link: LossModel, epsilon: number): number | null {
-  const e = Math.abs(epsilon)
-  switch (link.detector) {
-    case 'quadrature': return link.rolloff === null ? Math.abs(sinc(e)) : overlap(e, link.rolloff)
-    case 'coherent': return Math.abs(sinc(2 * e))
+export function lossCurveOf({ detector, rolloff, errorRate, esN0Db }: LossModel): LossCurve | null {
+  switch (detector) {
+    case 'quadrature': return quadratureCurve(rolloff)
+    case 'coherent': return coherentCurve
+    case 'msk': return mskCurve
+    case 'differential': return degradationCurve(differential, errorRate)
+    case 'fsk': return degradationCurve(fsk, errorRate)
+    case 'multicarrier': return multicarrierCurve(esN0Db)
+    case 'chirp':
     case 'stated': return null
   }
 }
 
 /**
- * Loss at the matched filter's output, dB, positive, for a frequency offset in Hz of either sign: −20 log10 of `amplitudeAt`.
- * Between 0 and `LOSS_CAP_DB`, the value at a null and beyond the reach of a roll-off filter. Null for detector `stated`.
- * Source: the sinc response of a correlator (Harris 1978 knows its 3.92 dB at half a bin as scalloping loss).
+ * Loss to a frequency offset in Hz of either sign, dB, between 0 and `LOSS_CAP_DB`, the value at a null, beyond the reach of a
+ * roll-off filter and where a detector fails. Null for detectors `chirp` and `stated`. Formula and source: each detector's own file.
  *
- * @card Loss at an offset: what a residual costs at the matched filter’s output.
- * @formula −20 log10 of the detector’s answer
- * @source correlator’s response; 3.92 dB at half a symbol rate: Harris, Proc. IEEE 66 (1978) 51
+ * @card Loss at an offset: what a residual costs the link.
+ * @formula the detector’s curve at ε = |Δf|/Rs
+ * @source each detector’s card
  * @units Hz → dB
  * @frame none
- * @range 0 to 300 dB, at which a null is stated
+ * @range 0 to 300 dB, at which a null or failure is stated
  * @tolerance 0.0005 dB of tables (link/loss.test.ts)
  */
 export function lossDb(link: LossModel, offsetHz: Hz): number | null {
-  const amplitude = amplitudeAt(link, offsetHz / link.symbolRateHz)
-  return amplitude === null ? null : amplitudeToLossDb(amplitude)
-}
-
-/** −20 log10 of an amplitude, between 0 and the cap. A sine at a multiple of π leaves 1e-17: that is a null too. */
-function amplitudeToLossDb(amplitude: number): number {
-  if (amplitude <= 1e-15) return LOSS_CAP_DB
-  return Math.max(0, -20 * Math.log10(amplitude))
+  return lossCurveOf(link)?.lossDb(Math.abs(offsetHz / link.symbolRateHz)) ?? null
 }
 
 /**
- * The offset at which the main lobe ends, in ε: the first null of the detector; null for `stated`.
+ * The offset, ε, at which the main lobe ends: the detector's first null, or where it fails; null where there is no curve.
  *
- * @card First null: the offset at which the main lobe ends.
- * @formula 1 in quadrature, 1 + α with roll-off, ½ coherently
- * @source correlator’s response; common practice
+ * @card End of the main lobe: first null of the detector, or where it fails.
+ * @formula quadrature 1 or 1 + α, coherent ½, MSK 1, differential ¼, FSK ½, multicarrier 1
+ * @source each detector’s card
  * @units roll-off → symbol rates
  * @frame none
- * @range no null for a stated limit
- * @tolerance exact: the loss is 300 dB there (link/loss.test.ts)
+ * @range none for chirp and a stated limit
+ * @tolerance exact: the loss is 300 dB there (link/detectors.test.ts)
  */
-export function firstNullEpsilon(link: LossModel): number | null {
-  switch (link.detector) {
-    case 'quadrature': return link.rolloff === null ? 1 : 1 + link.rolloff
-    case 'coherent': return 0.5
-    case 'stated': return null
-  }
+export function mainLobeEndEpsilon(link: LossModel): number | null {
+  return lossCurveOf(link)?.endEpsilon ?? null
 }

@@ -4,8 +4,6 @@ export type Triple = readonly [number, number, number]
 export const dot = (a: Triple, b: Triple): number => a[0] * b[0] + a[1] * b[1] + a[2] * b[2]
 export const norm = (a: Triple): number => Math.sqrt(dot(a, a))
 export const minus = (a: Triple, b: Triple): Triple => [a[0] - b[0], a[1] - b[1], a[2] - b[2]]
-/** a + k·b */
-export const plusScaled = (a: Triple, k: number, b: Triple): Triple => [a[0] + k * b[0], a[1] + k * b[1], a[2] + k * b[2]]
 
 /** Coordinates of the same arrow in axes turned by `angleRad` about z (counter-clockwise seen from +z). */
 export function inAxesTurnedAboutZ(a: Triple, angleRad: number): Triple {

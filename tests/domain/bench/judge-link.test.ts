@@ -23,10 +23,30 @@ describe('allowance on the bench', () => {
     expect(allowance({ detector: 'stated', limitHz: 1200, symbolRateHz: 2400 })).toEqual({ symbolTimeS: 1 / 2400, epsilon: 0.5, allowanceHz: 1200, limitedBy: 'stated' })
   })
 
-  it('refuses a stated detector without its limit, detectors that are not offered, and fields it does not know', () => {
+  // Sources as in the detectors' own tests: half-sine pulse, exact DBPSK and FSK error rates, Pollet et al. 1995, common practice.
+  it.each([
+    [{ detector: 'msk', permittedLossDb: 6.0206 }, 0.5, 'loss'],
+    [{ detector: 'differential', permittedLossDb: 3.31 }, 0.1, 'loss'],
+    [{ detector: 'fsk', permittedLossDb: 0.592 }, 0.1, 'loss'],
+    [{ detector: 'multicarrier', permittedLossDb: 0.5424 }, 0.02, 'loss'],
+    [{ detector: 'chirp', bandwidthHz: 38_400, spreadingFactor: 7 }, 1, 'stated'],
+  ])('bears %o at epsilon %d by its %s', (link, epsilon, limitedBy) => {
+    const bears = allowance({ ...link, symbolRateHz: 9600 })
+    expect(bears.epsilon).toBeCloseTo(epsilon, 3)
+    expect(bears.limitedBy).toBe(limitedBy)
+  })
+
+  it('takes Es/N0 and the error rate as given', () => {
+    // Ten times the noise a subcarrier may stand is a tenth of the allowance's square (Pollet et al. 1995).
+    expect((allowance({ detector: 'multicarrier', permittedLossDb: 0.05, esN0Db: 40 }).epsilon / allowance({ detector: 'multicarrier', permittedLossDb: 0.05, esN0Db: 30 }).epsilon) ** 2).toBeCloseTo(0.1, 2)
+    expect(allowance({ detector: 'fsk', errorRate: 1e-9 }).epsilon).toBeLessThan(allowance({ detector: 'fsk' }).epsilon)
+  })
+
+  it('refuses a detector without the figures it stands on, detectors that there are not, and fields it does not know', () => {
     const paths = (link: object) => benchAllowanceBody.safeParse(link).error?.issues.map(issue => issue.path.join('.') || issue.code)
     expect(paths({ detector: 'stated' })).toEqual(['limitHz'])
-    expect(paths({ detector: 'chirp' })).toEqual(['detector'])
+    expect(paths({ detector: 'chirp' })).toEqual(['bandwidthHz', 'spreadingFactor'])
+    expect(paths({ detector: 'magic' })).toEqual(['detector'])
     expect(paths({ turnaround: { n: 240, d: 221 } })).toEqual(['turnaround'])
     expect(paths({ symbolRate: 9600 })).toEqual(['unrecognized_keys'])
   })
@@ -52,7 +72,22 @@ describe('loss on the bench', () => {
     expect(loss({ offsetHz: 0.42826 * 9600 }).bitErrorRate! / 1e-3).toBeCloseTo(1, 1)
   })
 
-  it('has neither curve nor error rate for a stated detector', () => {
+  it('is the degradation of differential and FSK detectors, with the error rate that is left', () => {
+    // Exact error rates; ½ is a coin's toss where the phase turns by 90° a symbol.
+    expect(loss({ detector: 'differential', offsetHz: 960 }).lossDb).toBeCloseTo(3.31, 2)
+    expect(loss({ detector: 'differential', offsetHz: 2400 }).bitErrorRate).toBeCloseTo(0.5, 9)
+    expect(loss({ detector: 'fsk', offsetHz: -480 }).lossDb).toBeCloseTo(0.159, 3)
+    expect(loss({ detector: 'fsk', offsetHz: 0 }).bitErrorRate! / 1e-5).toBeCloseTo(1, 6)
+  })
+
+  it('has a curve but no error rate for many subcarriers, whose modulation is not said', () => {
+    const at = loss({ detector: 'multicarrier', offsetHz: 192 })
+    expect(at.lossDb).toBeCloseTo(0.542, 3)
+    expect(at).not.toHaveProperty('bitErrorRate')
+  })
+
+  it('has neither curve nor error rate for a stated detector and a chirp', () => {
+    expect(loss({ detector: 'chirp', bandwidthHz: 125_000, spreadingFactor: 7, offsetHz: 480 })).toEqual({ epsilon: 0.05, lossDb: null })
     expect(loss({ detector: 'stated', limitHz: 1000, offsetHz: 480 })).toEqual({ epsilon: 0.05, lossDb: null })
   })
 })

@@ -40,6 +40,34 @@ describe('creating a link', () => {
     expect(link).toMatchObject({ limitedBy: 'loss', symbolTimeS: 1 / 9600, spacecraftName: craft.name, retiredAt: null })
   })
 
+  it('keeps the figures that each detector goes by, and says what it bears', async () => {
+    // A quarter of the bandwidth (common practice); half-sine pulse 6.02 dB at half the bit rate; Pollet et al. 1995 exactly, 0.542 dB at a fiftieth and Es/N0 20 dB.
+    const chirp = { detector: 'chirp', bandwidthHz: 125_000, spreadingFactor: 10, symbolRateHz: 125_000 / 1024 }
+    expect(await createLink(deps(), body(chirp))).toMatchObject({ ...chirp, allowanceHz: 31_250, limitedBy: 'stated' })
+    expect((await createLink(deps(), body({ detector: 'msk', permittedLossDb: 6.0206 }))).allowanceHz).toBeCloseTo(4800, 1)
+    const many = await createLink(deps(), body({ detector: 'multicarrier', permittedLossDb: 0.5424, symbolRateHz: 15_000 }))
+    expect(many.allowanceHz).toBeCloseTo(300, 0)
+    expect(many.esN0Db).toBe(20)
+  })
+
+  it('refuses a chirp without its bandwidth and spreading factor, and turning a link into one', async () => {
+    const refused = createLinkBody.safeParse({ ...body(), detector: 'chirp' })
+    expect(refused.error?.issues.map(issue => issue.path[0])).toEqual(['bandwidthHz', 'spreadingFactor'])
+    const link = await createLink(deps(), body())
+    expect(await refusalOf(changeLink(deps(), link.id, { detector: 'chirp', bandwidthHz: 125_000 }))).toMatchObject({ code: 'not-valid', paths: ['spreadingFactor'] })
+  })
+
+  it('recomputes the tables and wants a reason where another detector or a lower Es/N0 bears more', async () => {
+    // 0.5 dB: fsk 0.091 symbol rates, quadrature 0.186.
+    const link = await createLink(deps(), body({ detector: 'fsk' }))
+    expect(await refusalOf(changeLink(deps(), link.id, { detector: 'quadrature' }))).toMatchObject({ code: 'not-valid', paths: ['reason'] })
+    const many = await createLink(deps(), body({ detector: 'multicarrier' }))
+    expect(await refusalOf(changeLink(deps(), many.id, { esN0Db: 10 }))).toMatchObject({ code: 'not-valid', paths: ['reason'] })
+    await emptyQueue(test.db)
+    await changeLink(deps(), many.id, { esN0Db: 25 })
+    expect((await queuedJobs(test.db, 'predict')).length).toBe(stationIds.length)
+  })
+
   it('lets a downlink approve what holds and an uplink not, unless it is said', async () => {
     expect((await createLink(deps(), body())).approveWhatHolds).toBe(true)
     expect((await createLink(deps(), body({ direction: 'uplink' }))).approveWhatHolds).toBe(false)

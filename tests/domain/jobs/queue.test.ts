@@ -4,6 +4,7 @@ import type { Database } from '../../../server/database/client'
 import { openDatabase } from '../../../server/database/client'
 import { requestRefresh } from '../../../server/domain/prediction/request-refresh'
 import { openBossDatabase } from '../../../server/jobs/boss-database'
+import { onSent } from '../../../server/jobs/queue'
 import type { TestDatabase } from '../../support/database'
 import { createTestDatabase } from '../../support/database'
 import { addSpacecraft, addStation } from '../../support/fixtures'
@@ -55,6 +56,17 @@ describe('a computation that is asked for', () => {
     await database.db.execute(sql`UPDATE pgboss.job SET state = 'active', started_on = now()`)
     await ask({ spacecraftIds: [spacecraftId], reason: 'second' })
     expect(await waiting()).toEqual(['first', 'second'])
+  })
+
+  it('is told to who takes such jobs in this process, once for many, a moment after it was asked for', async () => {
+    let told = 0
+    onSent('predict', () => told++)
+    await database.db.transaction(async (tx) => {
+      for (const reason of ['one', 'two', 'three']) await ask({ spacecraftIds: [spacecraftId], reason }, tx)
+    })
+    await expect.poll(() => told, { timeout: 2000, interval: 10 }).toBeGreaterThan(0)
+    expect(told).toBeLessThan(4)
+    onSent('predict', () => {})
   })
 })
 

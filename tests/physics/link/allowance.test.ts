@@ -1,11 +1,14 @@
+import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { allowanceOf } from '../../../shared/physics/link/allowance'
-import type { LinkModel } from '../../../shared/physics/types'
+import { chirpDriftPerPacketHz, chirpSymbolRateHz } from '../../../shared/physics/link/chirp'
+import { lossDb } from '../../../shared/physics/link/loss'
+import type { Detector, LinkModel } from '../../../shared/physics/types'
 
 const link: LinkModel = {
   direction: 'downlink', carrierHz: 437.5e6, symbolRateHz: 9600, detector: 'quadrature', permittedLossDb: 0.5,
   captureRangeHz: null, filterBandwidthHz: null, rolloff: null, driftLimitHzPerS: null, jumpLimitHz: null, limitHz: null,
-  errorRate: 1e-5, bandLowHz: null, bandHighHz: null,
+  errorRate: 1e-5, esN0Db: 20, bandwidthHz: null, spreadingFactor: null, bandLowHz: null, bandHighHz: null,
 }
 
 describe('the allowance of a link', () => {
@@ -52,7 +55,57 @@ describe('the allowance of a link', () => {
     expect(allowanceOf({ ...link, detector: 'stated', limitHz: 2500 })).toMatchObject({ allowanceHz: 2500, limitedBy: 'stated' })
   })
 
+  // The degradations and losses of detectors.test.ts, read backwards; sources there.
+  it.each<[Detector, number, number, number]>([
+    ['msk', 6.0206, 0.5, 5], ['differential', 1.068, 0.05, 4], ['differential', 3.31, 0.1, 4],
+    ['fsk', 0.159, 0.05, 4], ['fsk', 2.172, 0.2, 4], ['multicarrier', 0.5424, 0.02, 5],
+  ])('of %s at %f dB is %f symbol rates', (detector, permittedLossDb, epsilon, digits) => {
+    const allowance = allowanceOf({ ...link, detector, permittedLossDb })
+    expect(allowance.epsilon).toBeCloseTo(epsilon, digits)
+    expect(allowance.limitedBy).toBe('loss')
+  })
+
+  it('inverts every curve: the loss there is the permitted one', () => {
+    const curves: Detector[] = ['quadrature', 'coherent', 'msk', 'differential', 'fsk', 'multicarrier']
+    fc.assert(fc.property(fc.constantFrom(...curves), fc.double({ min: 0.01, max: 20, noNaN: true }), fc.double({ min: 1, max: 12, noNaN: true }), fc.double({ min: -5, max: 40, noNaN: true }), (detector, permittedLossDb, power, esN0Db) => {
+      const at = { ...link, detector, permittedLossDb, errorRate: 10 ** -power, esN0Db }
+      expect(lossDb(at, allowanceOf(at).allowanceHz)).toBeCloseTo(permittedLossDb, 8)
+    }), { numRuns: 300 })
+  })
+
+  it('is smaller where fewer errors are borne, by differential and FSK detectors', () => {
+    for (const detector of ['differential', 'fsk'] as const) {
+      expect(allowanceOf({ ...link, detector, errorRate: 1e-9 }).allowanceHz).toBeLessThan(0.9 * allowanceOf({ ...link, detector, errorRate: 1e-3 }).allowanceHz)
+    }
+  })
+
+  it('of a chirp is a quarter of its bandwidth whatever its loss, a limit and no curve', () => {
+    // Common practice: a receiver of chirps bears ±25 % of the bandwidth.
+    const chirp = { ...link, detector: 'chirp', bandwidthHz: 125_000, spreadingFactor: 10, symbolRateHz: 125_000 / 1024 } as const
+    expect(allowanceOf(chirp)).toMatchObject({ allowanceHz: 31_250, limitedBy: 'stated' })
+    expect(allowanceOf({ ...chirp, permittedLossDb: 3 }).allowanceHz).toBe(31_250)
+    expect(allowanceOf({ ...chirp, captureRangeHz: 20_000 })).toMatchObject({ allowanceHz: 20_000, limitedBy: 'captureRange' })
+    // 125 kHz of signal in a 150 kHz filter.
+    expect(allowanceOf({ ...chirp, filterBandwidthHz: 150_000 })).toMatchObject({ allowanceHz: 12_500, limitedBy: 'filter' })
+  })
+
+  it('of a chirp leaves a third of a frequency step for the drift within a packet', () => {
+    // By hand: 125 kHz / 1024 = 122.07 Hz a step and 122.07 symbols a second; a third is 40.69 Hz.
+    const shape = { bandwidthHz: 125_000, spreadingFactor: 10 }
+    expect(chirpSymbolRateHz(shape)).toBeCloseTo(122.07, 2)
+    expect(chirpDriftPerPacketHz(shape)).toBeCloseTo(40.69, 2)
+    expect(() => chirpDriftPerPacketHz({ ...shape, spreadingFactor: null })).toThrow(/spreadingFactor/)
+  })
+
+  it('of many subcarriers has the filter pass their whole bandwidth where it is stated', () => {
+    const many = { ...link, detector: 'multicarrier', permittedLossDb: 3, symbolRateHz: 15_000, bandwidthHz: 1_080_000, filterBandwidthHz: 1_081_000 } as const
+    expect(allowanceOf(many)).toMatchObject({ allowanceHz: 500, limitedBy: 'filter' })
+  })
+
   it('says what is missing or out of range', () => {
+    expect(() => allowanceOf({ ...link, detector: 'chirp' })).toThrow(/bandwidthHz/)
+    expect(() => allowanceOf({ ...link, detector: 'fsk', errorRate: 0.5 })).toThrow(/errorRate/)
+    expect(() => allowanceOf({ ...link, detector: 'multicarrier', esN0Db: Number.NaN })).toThrow(/esN0Db/)
     expect(() => allowanceOf({ ...link, detector: 'stated' })).toThrow(/limitHz/)
     expect(() => allowanceOf({ ...link, permittedLossDb: 0 })).toThrow(/permittedLossDb/)
     expect(() => allowanceOf({ ...link, symbolRateHz: Number.NaN })).toThrow(/symbolRateHz/)

@@ -1,9 +1,10 @@
 import { describe, expect, it } from 'vitest'
 import { interSymbolInterferenceDb, overlap } from '../../../shared/physics/link/root-raised-cosine'
 import { LOSS_CAP_DB, lossDb } from '../../../shared/physics/link/loss'
+import type { Detector } from '../../../shared/physics/types'
 
 const SYMBOL_RATE = 9600
-const link = (detector: 'quadrature' | 'coherent' | 'stated', rolloff: number | null = null) => ({ detector, rolloff, symbolRateHz: SYMBOL_RATE })
+const link = (detector: Detector, rolloff: number | null = null) => ({ detector, rolloff, symbolRateHz: SYMBOL_RATE, errorRate: 1e-5, esN0Db: 20 })
 
 describe('loss of a quadrature detector', () => {
   // Tables of sinc²; 3.92 dB at half a bin is the scalloping loss of Harris 1978.
@@ -65,8 +66,9 @@ describe('loss with root-raised-cosine filters', () => {
   })
 })
 
-it('a stated limit has no loss curve', () => {
+it('a stated limit and a chirp have no loss curve', () => {
   expect(lossDb(link('stated'), 100)).toBeNull()
+  expect(lossDb(link('chirp'), 100)).toBeNull()
 })
 
 /** Raised cosine written out from its usual definition, its square root, and a midpoint sum. */

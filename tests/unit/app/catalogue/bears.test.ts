@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest'
-import { bearsText, detectorSentence, limitsAsTyped, nullHz } from '~/utils/catalogue/bears'
+import { bearsText, limitedByWords, limitsAsTyped } from '~/utils/catalogue/bears'
 
-const link = { symbolRateHz: 9600, detector: 'quadrature', permittedLossDb: 0.5, captureRangeHz: null, filterBandwidthHz: null, rolloff: null, limitHz: null } as const
+const link = { symbolRateHz: 9600, detector: 'quadrature', permittedLossDb: 0.5, captureRangeHz: null, filterBandwidthHz: null, rolloff: null, limitHz: null, errorRate: 1e-5, esN0Db: 20, bandwidthHz: null, spreadingFactor: null } as const
 
 describe('what a link bears, in the form', () => {
   it('says 1 786 Hz by its loss for 9 600 symbols a second, quadrature, 0.5 dB', () => {
@@ -20,14 +20,18 @@ describe('what a link bears, in the form', () => {
 
   it('has no limit while the symbol rate is not typed, and keeps quiet about it', () => {
     expect(limitsAsTyped({ ...link, symbolRateHz: null as unknown as number })).toEqual([])
-    expect(detectorSentence('quadrature', null, null)).toMatch(/at the symbol rate\.$/)
   })
 
-  it('places the null of each detector: 1/T in quadrature, 1/(2T) coherent, none when stated', () => {
-    // First nulls of sinc ε and sinc 2ε (common practice).
-    expect(nullHz(link)).toBe(9600)
-    expect(nullHz({ ...link, detector: 'coherent' })).toBe(4800)
-    expect(nullHz({ ...link, detector: 'stated' })).toBeNull()
-    expect(detectorSentence('coherent', 9600, null)).toContain('half the symbol rate: 4\u202F800 Hz here')
+  it('counts a chirp’s bandwidth against the filter and calls its limit by it', () => {
+    // A quarter of 125 kHz (common practice); (140 kHz − 125 kHz)/2 beside it.
+    const limits = limitsAsTyped({ ...link, detector: 'chirp', bandwidthHz: 125_000, spreadingFactor: 7, filterBandwidthHz: 140_000 })
+    expect(limits.map(limit => [limit.limitedBy, limit.allowanceHz])).toEqual([['filter', 7500], ['stated', 31_250]])
+    expect(limitedByWords('stated', 'chirp')).toBe('by a quarter of its bandwidth')
+    expect(limitedByWords('stated', 'stated')).toBe('by its stated limit')
+  })
+
+  it('waits for a chirp’s bandwidth and for an error rate that a link can have', () => {
+    expect(limitsAsTyped({ ...link, detector: 'chirp' })).toEqual([])
+    expect(limitsAsTyped({ ...link, detector: 'fsk', errorRate: 0.5 })).toEqual([])
   })
 })
