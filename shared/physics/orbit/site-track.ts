@@ -126,15 +126,15 @@ function makeTrack(ephemeris: Ephemeris, site: Site, ut1MinusUtcS: number): Site
   const viewAt = (utcMs: UtcMs, to: Float64Array): boolean => {
     if (!(utcMs >= fromMs && utcMs <= toMs)) return false
     const left = Math.floor(utcMs / stepMs)
-    if (left !== lastLeft) {
-      lastLeft = left
-      lastIsGood = turned !== null && turned.grid.isInterpolated(left)
-    }
     const share = utcMs / stepMs - left
-    // On a node the weights are infinite: the node itself is the answer.
+    // On a node the weights are infinite: the node itself is the answer, whatever its neighbourhood is like.
     if (share === 0 && turned !== null && left >= turned.grid.usableFrom && left <= turned.grid.usableTo) {
       view(states, 6 * (left - firstNode), axes, to)
       return true
+    }
+    if (left !== lastLeft) {
+      lastLeft = left
+      lastIsGood = turned !== null && turned.grid.isInterpolated(left)
     }
     if (!lastIsGood || share < 1e-12) return written(ephemeris.stateAt(utcMs), utcMs, to)
     interpolate(states, 6 * (left - BEFORE - firstNode), share, fixed)
