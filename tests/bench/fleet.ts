@@ -44,7 +44,7 @@ export function stationsOf(count: number): Site[] {
 export const link: LinkModel = {
   direction: 'downlink', carrierHz: 437.5e6, symbolRateHz: 9600, detector: 'quadrature', permittedLossDb: 0.5,
   captureRangeHz: null, filterBandwidthHz: null, rolloff: null, driftLimitHzPerS: null, jumpLimitHz: null, limitHz: null,
-  errorRate: 1e-5, bandLowHz: null, bandHighHz: null,
+  errorRate: 1e-5, esN0Db: 20, bandwidthHz: null, spreadingFactor: null, bandLowHz: null, bandHighHz: null,
 }
 export const radio: RadioModel = { stepHz: 10, offsetHz: 0, minDwellS: 1, latencyMs: 200, latencyUncertaintyMs: 20 }
 export const budget: BudgetModel = {
