@@ -71,6 +71,12 @@ describe.each([['stepping', false], ['ramping', true]] as const)('a %s radio beh
     expect('verdict' in stale && stale.verdict).toBe('breaks')
   })
 
+  it('keeps within what the loop follows where it ramps, whichever way its dial turns', () => {
+    for (const converter of ramps ? [below, above] : []) expect(tableOf(query(radio(converter, true), { link: { ...link, driftLimitHzPerS: 100 } })).check).toMatchObject({ verdict: 'holds', faults: [] })
+    // 802 Hz/s at most at 2200 MHz and 500 km (mechanics), which no constant follows.
+    if (!ramps) expect(tableOf(query(radio(above), { link: { ...link, driftLimitHzPerS: 100 } })).check.faults.map(fault => fault.code)).toEqual(['drift'])
+  })
+
   it('keeps what it radiates in the licensed band, whichever way its dial turns', () => {
     const up: LinkModel = { ...link, direction: 'uplink', bandLowHz: 2_245e6 - 40_000, bandHighHz: 2_245e6 + 60_000 }
     for (const converter of [below, above]) {
