@@ -1,11 +1,14 @@
 import type { Asked } from '~/utils/bench/answer'
 import type { BenchQuestion } from '~/utils/bench/question'
-import type { ApiProblem, Fetcher } from '~/utils/api'
+import type { ApiProblem } from '~/utils/api'
 import { bodyOf, problemsOf } from '~/utils/bench/body'
 import type { Errors } from '~/utils/bench/body'
 
 /** What the table is read with, of a link and a radio that may be held. */
-type Figures = Pick<Asked, 'carrierHz' | 'direction' | 'latencyMs'>
+type Figures = Pick<Asked, 'carrierHz' | 'direction' | 'latencyMs' | 'converter'>
+
+/** Without the framework's own types of routes, which are deeper than the compiler goes: the route table types the answer. */
+const anyFetch = (url: string, options: object) => ($fetch as (url: string, options: object) => Promise<unknown>)(url, options)
 
 /** Asks the bench. What is wrong stands in `errors` by path, from the schemas before sending and from the server after. */
 export function useBenchAnswer(question: BenchQuestion, figures: () => Figures) {
@@ -29,7 +32,7 @@ export function useBenchAnswer(question: BenchQuestion, figures: () => Figures) 
     busy.value = true
     said.value = 'Computing.'
     try {
-      const answer = await callApi('POST /api/bench/predict', { body }, (url, options) => ($fetch as Fetcher)(url, { ...options, signal: mine.signal }))
+      const answer = await callApi('POST /api/bench/predict', { body }, (url, options) => anyFetch(url, { ...options, signal: mine.signal }))
       if (running !== mine) return false
       asked.value = { answer, ...of, k, key: asks }
       said.value = `${answer.passes.length} ${answer.passes.length === 1 ? 'pass' : 'passes'} found.`

@@ -9,8 +9,8 @@ const hz = z.number()
 
 export const publishedRetuneSchema = z.strictObject({
   at: instant.describe('When to command; the radio follows latencyMs later'),
-  frequencyHz: hz.positive(),
-  slopeHzPerS: z.number(),
+  frequencyHz: hz.positive().describe('What to set on the radio’s dial'),
+  slopeHzPerS: z.number().describe('Of the dial, from the instant of effect on'),
   dopplerHz: hz.describe('One-way shift of the carrier; uplink: frequency to transmit minus carrier'),
   rangeRateMps: z.number().describe('Positive when receding'),
   azimuthDeg: z.number(),
@@ -50,6 +50,9 @@ export const publishedTableSchema = z.strictObject({
     offsetHz: hz,
     minDwellS: z.number().nonnegative(),
     latencyMs: z.number(),
+    ramp: z.strictObject({ slopeStepHzPerS: z.number().positive(), maxSlopeHzPerS: z.number().positive() }).optional().describe('Of a radio that ramps'),
+    converter: z.strictObject({ loHz: hz.positive(), inverts: z.boolean() }).optional()
+      .describe('Of a radio behind a converter: sky = loHz + dial, or loHz − dial where it inverts'),
   }),
   verdict: z.enum(['holds', 'tight', 'breaks']),
   allowanceHz: hz.nonnegative(),

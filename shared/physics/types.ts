@@ -145,13 +145,27 @@ export interface LinkModel {
 export type LimitedBy = 'loss' | 'captureRange' | 'filter' | 'stated'
 export interface Allowance { readonly symbolTimeS: number, readonly epsilon: number, readonly allowanceHz: Hz, readonly limitedBy: LimitedBy }
 
-/** A stepped radio: grid {offset + k·step}, in sky frequency. */
+/** A radio that ramps: slopes are whole multiples of the step, up to the largest, either way. */
+export interface RampModel { readonly slopeStepHzPerS: number, readonly maxSlopeHzPerS: number }
+
+/**
+ * What stands between the radio's dial and the sky. Sky frequency = oscillator + dial, or, where it inverts the spectrum,
+ * oscillator − dial: the oscillator lies above the sky then. A dial's slope changes sign with inversion.
+ */
+export interface ConverterModel { readonly loHz: Hz, readonly inverts: boolean }
+
+/** A radio: its settings are {offset + k·step} on its own dial, which is sky frequency where there is no converter. */
 export interface RadioModel {
   readonly stepHz: Hz
   readonly offsetHz: Hz
   readonly minDwellS: number
   readonly latencyMs: number
   readonly latencyUncertaintyMs: number
+  /** Left out or null: it steps only. */
+  readonly ramp?: RampModel | null
+  readonly converter?: ConverterModel | null
+  /** A retune every so many seconds, each at its span's middle; left out or null: as few retunes as serve. */
+  readonly cadenceS?: number | null
 }
 
 /** Uncertainties; limits add, one-sigma spreads add as root of squares times k. */
@@ -176,7 +190,10 @@ export interface BudgetParts {
   readonly trimHz: Hz
 }
 
-/** A row as published: `atMs` is when to command, whole milliseconds; effective `latencyMs` later. */
+/**
+ * A row as published: `atMs` is when to command, whole milliseconds; effective `latencyMs` later. `frequencyHz` is what to set on
+ * the radio's dial, and from the instant of effect the dial moves by `slopeHzPerS`.
+ */
 export interface RetuneRow { readonly atMs: UtcMs, readonly frequencyHz: Hz, readonly slopeHzPerS: number }
 
 export type Verdict = 'holds' | 'tight' | 'breaks'

@@ -2,6 +2,7 @@ import { z } from 'zod'
 import { atLeastZero, idSchema, instantOut, instantSchema, positive } from './common'
 import { detectorProblems, detectorSchema, directionSchema, esN0Db, spreadingFactor, turnaroundTerm } from './links'
 import type { DetectorNumbers } from './links'
+import { rampProblems } from './stations'
 import { budgetOut, retuneOut, verdictSchema } from './tables'
 
 const orNull = <T extends z.ZodType>(schema: T) => schema.nullable().default(null)
@@ -37,8 +38,10 @@ export const benchLink = z.strictObject(benchLinkFields).superRefine(needsShape)
 export const benchRadio = z.strictObject({
   stepHz: z.number().min(1e-3).max(1e9).default(10), offsetHz: z.number().min(-1e12).max(1e12).default(0), minDwellS: atLeastZero().max(3600).default(1),
   latencyMs: atLeastZero().max(60_000).default(50), latencyUncertaintyMs: atLeastZero().max(60_000).default(0),
-  ramp: z.literal(false, { error: 'Ramping radios are not planned for yet: leave ramp out or false.' }).default(false),
-  slopeStepHzPerS: orNull(positive()), maxSlopeHzPerS: orNull(positive()),
+  ramp: z.boolean().default(false),
+  slopeStepHzPerS: orNull(z.number().min(1e-6).max(1e9)), maxSlopeHzPerS: orNull(z.number().min(1e-6).max(1e9)),
+}).superRefine(({ ramp, ...radio }, ctx) => {
+  for (const { path, message } of rampProblems({ ramps: ramp, ...radio })) ctx.addIssue({ code: 'custom', path: [path], message })
 })
 export const benchBudget = z.strictObject({
   clockErrorMs: atLeastZero().max(60_000).default(0), alongTrackSigmaS: atLeastZero().max(3600).default(0),

@@ -33,6 +33,7 @@ const antennaFields = { name: nameSchema, setupS: atLeastZero().max(86_400) }
 export const createAntennaBody = z.strictObject({ stationId: idSchema, ...antennaFields, setupS: antennaFields.setupS.default(120) })
 export const changeAntennaBody = z.strictObject(antennaFields).partial()
 
+const slope = z.number().min(1e-6).max(1e9)
 const radioFields = {
   name: nameSchema,
   transmits: z.boolean(),
@@ -45,12 +46,51 @@ const radioFields = {
   latencyMs: atLeastZero().max(60_000),
   latencyUncertaintyMs: atLeastZero().max(60_000),
   referencePpm: atLeastZero().max(1000),
+  ramps: z.boolean(),
+  slopeStepHzPerS: slope.nullable(),
+  maxSlopeHzPerS: slope.nullable(),
+  planMode: z.enum(['fewest', 'cadence']),
+  /** Of mode `cadence`: a retune every so many seconds. */
+  cadenceS: z.number().min(0.1).max(3600).nullable(),
+  /** Local oscillator of a converter between dial and sky; sky = oscillator + dial, or oscillator − dial where it inverts. */
+  converterLoHz: positive().max(1e12).nullable(),
+  converterInverts: z.boolean(),
 }
-export function radioProblems(radio: { transmits: boolean, receives: boolean, tuneLowHz: number, tuneHighHz: number }): { path: string, message: string }[] {
+interface RadioNumbers {
+  transmits: boolean
+  receives: boolean
+  tuneLowHz: number
+  tuneHighHz: number
+  minDwellS: number
+  ramps: boolean
+  slopeStepHzPerS: number | null
+  maxSlopeHzPerS: number | null
+  planMode: 'fewest' | 'cadence'
+  cadenceS: number | null
+  converterLoHz: number | null
+  converterInverts: boolean
+}
+
+/** Rules between fields; the server runs them again on the radio as it would stand after a change. */
+export function radioProblems(radio: RadioNumbers): { path: string, message: string }[] {
   const problems: { path: string, message: string }[] = []
   if (!radio.transmits && !radio.receives) problems.push({ path: 'receives', message: 'A radio transmits, receives or both.' })
   if (radio.tuneLowHz >= radio.tuneHighHz) problems.push({ path: 'tuneHighHz', message: 'The upper edge of the tuning range lies above the lower.' })
+  problems.push(...rampProblems(radio))
+  if (radio.planMode === 'cadence' && radio.cadenceS === null) problems.push({ path: 'cadenceS', message: 'Give the seconds from retune to retune.' })
+  else if (radio.planMode === 'cadence' && radio.cadenceS! < radio.minDwellS) problems.push({ path: 'cadenceS', message: `The radio needs ${radio.minDwellS} s between retunes: give no less.` })
+  const { converterLoHz, converterInverts } = radio
+  if (converterLoHz === null && converterInverts) problems.push({ path: 'converterLoHz', message: 'Give the oscillator of the converter that inverts, or leave inversion out.' })
+  if (converterLoHz !== null && converterInverts && converterLoHz <= radio.tuneHighHz) problems.push({ path: 'converterLoHz', message: 'A converter inverts where its oscillator lies above the whole tuning range.' })
+  if (converterLoHz !== null && !converterInverts && converterLoHz >= radio.tuneLowHz) problems.push({ path: 'converterLoHz', message: 'Without inversion the oscillator lies below the whole tuning range; one above inverts.' })
   return problems
+}
+/** A radio that ramps states by what steps and how steeply; one of the bench alike. */
+export function rampProblems({ ramps, slopeStepHzPerS, maxSlopeHzPerS }: Pick<RadioNumbers, 'ramps' | 'slopeStepHzPerS' | 'maxSlopeHzPerS'>): { path: string, message: string }[] {
+  if (!ramps) return []
+  if (slopeStepHzPerS === null) return [{ path: 'slopeStepHzPerS', message: 'A radio that ramps needs the step of its slopes, in Hz/s.' }]
+  if (maxSlopeHzPerS === null) return [{ path: 'maxSlopeHzPerS', message: 'A radio that ramps needs its steepest slope, in Hz/s.' }]
+  return maxSlopeHzPerS < slopeStepHzPerS ? [{ path: 'maxSlopeHzPerS', message: 'The steepest slope is one step at least.' }] : []
 }
 export const createRadioBody = z.strictObject({
   antennaId: idSchema,
@@ -60,6 +100,13 @@ export const createRadioBody = z.strictObject({
   latencyMs: radioFields.latencyMs.default(50),
   latencyUncertaintyMs: radioFields.latencyUncertaintyMs.default(0),
   referencePpm: radioFields.referencePpm.default(0),
+  ramps: radioFields.ramps.default(false),
+  slopeStepHzPerS: radioFields.slopeStepHzPerS.default(null),
+  maxSlopeHzPerS: radioFields.maxSlopeHzPerS.default(null),
+  planMode: radioFields.planMode.default('fewest'),
+  cadenceS: radioFields.cadenceS.default(null),
+  converterLoHz: radioFields.converterLoHz.default(null),
+  converterInverts: radioFields.converterInverts.default(false),
 }).superRefine((radio, ctx) => {
   for (const problem of radioProblems(radio)) ctx.addIssue({ code: 'custom', path: [problem.path], message: problem.message })
 })

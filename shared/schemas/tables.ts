@@ -43,7 +43,10 @@ export const tableOut = tableBrief.extend({
   excess: z.array(z.object({ from: instantOut, to: instantOut })),
   faults: z.array(z.object({ code: z.string(), at: instantOut, message: z.string() })),
   workable: z.array(z.object({ from: instantOut, to: instantOut })),
-  radio: z.object({ id: idSchema, name: z.string(), stepHz: z.number(), offsetHz: z.number(), minDwellS: z.number(), latencyMs: z.number() }),
+  radio: z.object({ id: idSchema, name: z.string(), stepHz: z.number(), offsetHz: z.number(), minDwellS: z.number(), latencyMs: z.number(),
+    ramp: z.object({ slopeStepHzPerS: z.number(), maxSlopeHzPerS: z.number() }).nullable(),
+    /** Sky = loHz + dial, or loHz − dial where it inverts; rows are for the dial. */
+    converter: z.object({ loHz: z.number(), inverts: z.boolean() }).nullable() }),
   elementSet: z.object({ id: idSchema, epoch: instantOut, sha256: z.string() }),
   symbolRateHz: z.number(), bandLowHz: z.number(), bandHighHz: z.number(),
   digest: z.string().nullable(),

@@ -14,7 +14,7 @@ const names: { readonly [S in Section]: Readonly<Partial<Record<string, string>>
   station: { source: 's', id: 'station', latitudeDeg: 'lat', longitudeDeg: 'lon', heightM: 'h', minElevationDeg: 'el', mask: 'mask' },
   window: { from: 'from', to: 'to', sampleIntervalS: 'dt', ut1MinusUtcS: 'dut1' },
   link: { source: 'l', id: 'link', direction: 'way', carrierHz: 'f', symbolRateHz: 'rs', detector: 'det', permittedLossDb: 'loss', limitHz: 'lim', captureRangeHz: 'cap', filterBandwidthHz: 'bw', rolloff: 'ro', driftLimitHzPerS: 'drift', jumpLimitHz: 'jump', errorRate: 'ber', esN0Db: 'esn0', bandwidthHz: 'sweep', spreadingFactor: 'sf', turnaround: 'turn' },
-  radio: { source: 'r', id: 'radio', stepHz: 'step', offsetHz: 'grid', minDwellS: 'dwell', latencyMs: 'late', latencyUncertaintyMs: 'jit' },
+  radio: { source: 'r', id: 'radio', stepHz: 'step', offsetHz: 'grid', minDwellS: 'dwell', latencyMs: 'late', latencyUncertaintyMs: 'jit', ramp: 'ramp', slopeStepHzPerS: 'sstep', maxSlopeHzPerS: 'smax' },
   budget: { clockErrorMs: 'clock', alongTrackSigmaS: 'along', spacecraftPpm: 'sppm', stationPpm: 'gppm', ut1BoundS: 'but1', k: 'k' },
 }
 /** Fields that hold one of a few words. */
@@ -79,6 +79,7 @@ export function fromAddress(query: Readonly<Record<string, unknown>>, nowMs: num
 function readField(field: string, written: string, usual: unknown): unknown {
   if (field === 'mask') return readMask(written)
   if (field === 'turnaround') return readTurnaround(written)
+  if (field === 'ramp') return written === 'true'
   if (words[field]) return words[field].includes(written) ? written : usual
   if (textual.has(field)) return written === '' && usual === null ? null : written
   return written === '' ? null : numberOr(written, usual)

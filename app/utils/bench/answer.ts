@@ -12,16 +12,18 @@ export interface Asked {
   readonly carrierHz: number
   readonly direction: 'uplink' | 'downlink'
   readonly latencyMs: number
+  /** Of a held radio; rows are then for its dial. */
+  readonly converter: { readonly loHz: number, readonly inverts: boolean } | null
   readonly k: number
   /** Of the asked question; another one in the form means that the answer is to a former one. */
   readonly key: string
 }
 
 /** A pass of the bench as the strips of a pass draw it; null without a table. */
-export function benchStrips({ samples, table }: BenchPass, { carrierHz, latencyMs }: Pick<Asked, 'carrierHz' | 'latencyMs'>): StripData | null {
+export function benchStrips({ samples, table }: BenchPass, { carrierHz, latencyMs, converter }: Pick<Asked, 'carrierHz' | 'latencyMs' | 'converter'>): StripData | null {
   if (!table) return null
   const curve = { linkId: 'bench', tableId: null, dopplerHz: samples.map(sample => sample.dopplerHz), dopplerRateHzPerS: samples.map(sample => sample.dopplerRateHzPerS), uncertaintyHz: samples.map(sample => sample.uncertaintyHz) }
-  return stripData({ samples, links: [curve] }, { linkId: 'bench', carrierHz, allowanceHz: table.allowanceHz, retunes: table.retunes, workable: table.workable, radio: { latencyMs } })
+  return stripData({ samples, links: [curve] }, { linkId: 'bench', carrierHz, allowanceHz: table.allowanceHz, retunes: table.retunes, workable: table.workable, radio: { latencyMs, converter } })
 }
 
 /** What the window cuts off, in words; empty where it cuts nothing. */
@@ -38,9 +40,28 @@ export function linkWords(link: { direction: string, carrierHz: number, symbolRa
   return `${link.direction} ${hz(link.carrierHz)} Hz, ${hz(link.symbolRateHz)} symbols/s, ${link.detector}`
 }
 
-/** A radio in a line: "10 Hz steps, 1 s between retunes, 50 ms latency". */
-export function radioWords(radio: { stepHz: number, minDwellS: number, latencyMs: number }): string {
-  return `${hz(radio.stepHz)} Hz steps, ${radio.minDwellS} s between retunes, ${radio.latencyMs} ms latency`
+interface RadioFigures {
+  stepHz: number
+  minDwellS: number
+  latencyMs: number
+  maxSlopeHzPerS?: number | null
+  ramp?: boolean
+  ramps?: boolean
+  planMode?: string
+  cadenceS?: number | null
+  converterLoHz?: number | null
+}
+
+/** A radio in a line: "10 Hz steps, 1 s between retunes, 50 ms latency", and what it has beside. */
+export function radioWords(radio: RadioFigures): string {
+  const parts = [
+    `${hz(radio.stepHz)} Hz steps`,
+    radio.planMode === 'cadence' ? `a retune every ${radio.cadenceS} s` : `${radio.minDwellS} s between retunes`,
+    `${radio.latencyMs} ms latency`,
+    (radio.ramp ?? radio.ramps) && `ramps to ${radio.maxSlopeHzPerS} Hz/s`,
+    (radio.converterLoHz ?? null) !== null && `converter at ${hz(radio.converterLoHz!)} Hz`,
+  ]
+  return parts.filter(Boolean).join(', ')
 }
 
 /** The uncertainties in a line: those that are not zero. */

@@ -7,7 +7,7 @@ import type { MaskDeg } from '../catalogue/horizon-line'
 /** Taken from what the product keeps, or written out here. */
 export type Source = 'held' | 'given'
 type LinkFields = Pick<z.output<typeof benchLink>, 'direction' | 'carrierHz' | 'symbolRateHz' | 'detector' | 'permittedLossDb' | 'limitHz' | 'captureRangeHz' | 'filterBandwidthHz' | 'rolloff' | 'driftLimitHzPerS' | 'jumpLimitHz' | 'errorRate' | 'esN0Db' | 'bandwidthHz' | 'spreadingFactor' | 'turnaround'>
-type RadioFields = Pick<z.output<typeof benchRadio>, 'stepHz' | 'offsetHz' | 'minDwellS' | 'latencyMs' | 'latencyUncertaintyMs'>
+type RadioFields = z.output<typeof benchRadio>
 
 /** What is asked of the bench, as the form holds it: both sources of each part, so that changing over loses nothing typed. */
 export interface BenchQuestion {
@@ -39,8 +39,10 @@ export function pickLink({ direction, carrierHz, symbolRateHz, detector, permitt
 function turnaroundOf({ turnaroundNumerator: numerator, turnaroundDenominator: denominator, uplinkPrecompensated }: Pick<LinkOut, 'turnaroundNumerator' | 'turnaroundDenominator' | 'uplinkPrecompensated'>): LinkFields['turnaround'] {
   return numerator === null || denominator === null ? null : { numerator, denominator, uplinkPrecompensated, uplinkHz: null }
 }
-export function pickRadio({ stepHz, offsetHz, minDwellS, latencyMs, latencyUncertaintyMs }: RadioFields | RadioOut): RadioFields {
-  return { stepHz, offsetHz, minDwellS, latencyMs, latencyUncertaintyMs }
+/** A held radio's cadence and converter stay behind: the bench's own radio plans the fewest retunes, in the sky. */
+export function pickRadio(radio: RadioFields | RadioOut): RadioFields {
+  const { stepHz, offsetHz, minDwellS, latencyMs, latencyUncertaintyMs, slopeStepHzPerS, maxSlopeHzPerS } = radio
+  return { stepHz, offsetHz, minDwellS, latencyMs, latencyUncertaintyMs, ramp: 'ramp' in radio ? radio.ramp : radio.ramps, slopeStepHzPerS, maxSlopeHzPerS }
 }
 export function pickSite({ latitudeDeg, longitudeDeg, heightM, minElevationDeg, mask }: Pick<StationOut, 'latitudeDeg' | 'longitudeDeg' | 'heightM' | 'minElevationDeg' | 'mask'>) {
   return { latitudeDeg, longitudeDeg, heightM, minElevationDeg, mask: mask.map(point => ({ ...point })) }

@@ -27,7 +27,7 @@ export interface StripData {
 /** Signed residual and the budget beyond the steps at an instant. */
 export interface ResidualPoint { readonly t: number, readonly y: number, readonly u: number }
 
-type TableParts = Pick<TableOut, 'linkId' | 'carrierHz' | 'allowanceHz' | 'retunes' | 'workable'> & { radio: Pick<TableOut['radio'], 'latencyMs'> }
+type TableParts = Pick<TableOut, 'linkId' | 'carrierHz' | 'allowanceHz' | 'retunes' | 'workable'> & { radio: Pick<TableOut['radio'], 'latencyMs'> & Partial<Pick<TableOut['radio'], 'converter'>> }
 
 /** Curves and table of one link brought to one scale: milliseconds, and hertz from the carrier; null without samples of that link. */
 export function stripData({ samples, links }: Pick<PassSamplesOut, 'samples' | 'links'>, table: TableParts): StripData | null {
@@ -35,7 +35,14 @@ export function stripData({ samples, links }: Pick<PassSamplesOut, 'samples' | '
   if (!curves || samples.length < 2) return null
   const atMs = samples.map(sample => Date.parse(sample.at))
   // A row is commanded at `at` and takes effect one latency later.
-  const settings = table.retunes.map(row => ({ effectMs: Date.parse(row.at) + table.radio.latencyMs, setHz: row.frequencyHz - table.carrierHz, slopeHzPerS: row.slopeHzPerS }))
+  const { latencyMs, converter } = table.radio
+  const sign = converter?.inverts ? -1 : 1
+  const settings = table.retunes.map(row => ({
+    effectMs: Date.parse(row.at) + latencyMs,
+    // The dial in the sky: what a converter adds, or takes the dial from. The large figures first, so that nothing is rounded.
+    setHz: sign * row.frequencyHz + ((converter?.loHz ?? 0) - table.carrierHz),
+    slopeHzPerS: sign * row.slopeHzPerS,
+  }))
   return {
     fromMs: atMs[0]!,
     toMs: atMs.at(-1)!,
@@ -57,7 +64,7 @@ export function neededLine({ needed }: StripData): Point[] {
   return needed.atMs.map((t, i) => ({ t, y: needed.value[i]! }))
 }
 
-/** The retunes as steps, from the first that counts to the end of the view. */
+/** The retunes as steps, slanted where a row ramps, from the first that counts to the end of the view. */
 export function setLine({ settings, fromMs, toMs }: StripData): Point[] {
   return settings.flatMap((setting, i) => {
     const start = Math.max(fromMs, setting.effectMs)

@@ -46,6 +46,7 @@ export const radios = pgTable('radios', {
   name: text('name').notNull(),
   transmits: boolean('transmits').notNull(),
   receives: boolean('receives').notNull(),
+  /** Sky frequencies: behind a converter, what comes out of or goes into it. */
   tuneLowHz: real('tune_low_hz').notNull(),
   tuneHighHz: real('tune_high_hz').notNull(),
   stepHz: real('step_hz').notNull(),
@@ -54,6 +55,14 @@ export const radios = pgTable('radios', {
   latencyMs: real('latency_ms').notNull().default(50),
   latencyUncertaintyMs: real('latency_uncertainty_ms').notNull().default(0),
   referencePpm: real('reference_ppm').notNull().default(0),
+  ramps: boolean('ramps').notNull().default(false),
+  slopeStepHzPerS: real('slope_step_hz_per_s'),
+  maxSlopeHzPerS: real('max_slope_hz_per_s'),
+  planMode: text('plan_mode').$type<'fewest' | 'cadence'>().notNull().default('fewest'),
+  cadenceS: real('cadence_s'),
+  /** Local oscillator of a converter between dial and sky; null for none. */
+  converterLoHz: real('converter_lo_hz'),
+  converterInverts: boolean('converter_inverts').notNull().default(false),
   retiredAt: instant('retired_at'),
   createdAt: createdAt(),
 }, t => [
@@ -62,4 +71,9 @@ export const radios = pgTable('radios', {
   check('radios_range', sql`${t.tuneLowHz} > 0 AND ${t.tuneLowHz} < ${t.tuneHighHz}`),
   check('radios_step_positive', sql`${t.stepHz} > 0 AND ${t.minDwellS} >= 0 AND ${t.latencyMs} >= 0 AND ${t.latencyUncertaintyMs} >= 0 AND ${t.referencePpm} >= 0`),
   check('radios_does_something', sql`${t.transmits} OR ${t.receives}`),
+  check('radios_ramp_stated', sql`(${t.slopeStepHzPerS} IS NULL OR ${t.slopeStepHzPerS} > 0) AND (${t.maxSlopeHzPerS} IS NULL OR ${t.maxSlopeHzPerS} > 0)
+    AND (NOT ${t.ramps} OR (${t.slopeStepHzPerS} IS NOT NULL AND ${t.maxSlopeHzPerS} IS NOT NULL AND ${t.slopeStepHzPerS} <= ${t.maxSlopeHzPerS}))`),
+  check('radios_plan_mode_stated', sql`${t.planMode} IN ('fewest', 'cadence') AND (${t.cadenceS} IS NULL OR ${t.cadenceS} > 0) AND (${t.planMode} = 'fewest' OR ${t.cadenceS} IS NOT NULL)`),
+  check('radios_converter_side', sql`CASE WHEN ${t.converterLoHz} IS NULL THEN NOT ${t.converterInverts}
+    WHEN ${t.converterInverts} THEN ${t.converterLoHz} > ${t.tuneHighHz} ELSE ${t.converterLoHz} > 0 AND ${t.converterLoHz} < ${t.tuneLowHz} END`),
 ])

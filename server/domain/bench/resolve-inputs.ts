@@ -6,7 +6,7 @@ import { benchLink, benchRadio } from '#shared/schemas/bench'
 import { elementSets, links, radios, stations } from '~~/server/database/schema'
 import type { Deps } from '../context'
 import { DomainError } from '../errors'
-import { linkMinElevationRad, linkModelOf, radioModelOf, siteOf } from '../prediction/models'
+import { linkMinElevationRad, linkModelOf, radioModelOf, rampOf, siteOf } from '../prediction/models'
 import { linkModelFrom } from './link-model-from'
 
 const RAD_PER_DEG = Math.PI / 180
@@ -75,6 +75,6 @@ export async function resolveRadio(deps: Deps, given: BenchPredictBody['radio'])
     if (!row) throw problem('radio.radioId', 'There is no such radio.')
     return radioModelOf(row)
   }
-  const { stepHz, offsetHz, minDwellS, latencyMs, latencyUncertaintyMs } = given ?? benchRadio.parse({})
-  return { stepHz, offsetHz, minDwellS, latencyMs, latencyUncertaintyMs }
+  const { ramp, slopeStepHzPerS, maxSlopeHzPerS, ...radio } = given ?? benchRadio.parse({})
+  return { ...radio, ramp: rampOf({ ramps: ramp, slopeStepHzPerS, maxSlopeHzPerS }) }
 }

@@ -1,7 +1,7 @@
 import type { AlongTrackGrowth, AlongTrackModel } from '#shared/physics/accuracy/prior'
 import { meanSpeedMps, perigeeSpeedMps } from '#shared/physics/accuracy/prior'
 import { SPEED_OF_LIGHT_MPS } from '#shared/physics/doppler/ratio'
-import type { BudgetModel, LinkModel, MeanElements, RadioModel, Site } from '#shared/physics/types'
+import type { BudgetModel, ConverterModel, LinkModel, MeanElements, RadioModel, RampModel, Site } from '#shared/physics/types'
 import type { Settings } from '#shared/schemas/settings'
 import type { links, radios, spacecraft, stations } from '~~/server/database/schema'
 
@@ -41,8 +41,18 @@ function turnaroundOf({ turnaroundNumerator: numerator, turnaroundDenominator: d
 /** A link's own minimum elevation, rad. */
 export const linkMinElevationRad = (link: LinkRow): number => link.minElevationDeg * RAD_PER_DEG
 
-export function radioModelOf({ stepHz, offsetHz, minDwellS, latencyMs, latencyUncertaintyMs }: RadioRow): RadioModel {
-  return { stepHz, offsetHz, minDwellS, latencyMs, latencyUncertaintyMs }
+export function radioModelOf(radio: RadioRow): RadioModel {
+  const { stepHz, offsetHz, minDwellS, latencyMs, latencyUncertaintyMs, planMode, cadenceS } = radio
+  return { stepHz, offsetHz, minDwellS, latencyMs, latencyUncertaintyMs, ramp: rampOf(radio), converter: converterOf(radio), cadenceS: planMode === 'cadence' ? cadenceS : null }
+}
+
+/** Slopes of a radio that ramps; null for one that steps. */
+export function rampOf({ ramps, slopeStepHzPerS, maxSlopeHzPerS }: Pick<RadioRow, 'ramps' | 'slopeStepHzPerS' | 'maxSlopeHzPerS'>): RampModel | null {
+  return ramps && slopeStepHzPerS !== null && maxSlopeHzPerS !== null ? { slopeStepHzPerS, maxSlopeHzPerS } : null
+}
+
+export function converterOf({ converterLoHz, converterInverts }: Pick<RadioRow, 'converterLoHz' | 'converterInverts'>): ConverterModel | null {
+  return converterLoHz === null ? null : { loHz: converterLoHz, inverts: converterInverts }
 }
 
 /** The spacecraft's own along-track accuracy where it is stated, else what its sets have taught, which is the prior where they are few. */

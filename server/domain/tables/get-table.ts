@@ -5,7 +5,7 @@ import type { StoredCheck } from '~~/server/database/schema'
 import { audit, elementSets, links, radios, tableRevisions, tables } from '~~/server/database/schema'
 import type { Deps } from '../context'
 import { readSettings } from '../settings/read-settings'
-import { isoMicroseconds } from './published-table-of'
+import { isoMicroseconds, publishedRadio } from './published-table-of'
 import { getBrief } from './table-brief'
 
 /** A tuning table with its newest revision whole, its other revisions in brief, and its history from the trail. */
@@ -21,12 +21,12 @@ export async function getTable({ db, now }: Pick<Deps, 'db' | 'now'>, id: string
   const { limitedBy, budget, symbolClockPpm, excess, faults, workable } = revision.check
   // What has gone out stays as it went out, whatever has become of radio and link since.
   const published = revision.canonical === null ? null : JSON.parse(revision.canonical) as PublishedTable
-  const { id: radioId, name, stepHz, offsetHz, minDwellS, latencyMs } = published?.radio ?? radio
+  const { ramp = null, converter = null, ...facts } = published?.radio ?? publishedRadio(radio)
   return {
     ...brief,
     limitedBy, budget, symbolClockPpm, excess, faults, workable,
     k: kOf(revision.check) ?? (await readSettings(db)).k,
-    radio: { id: radioId, name, stepHz, offsetHz, minDwellS, latencyMs },
+    radio: { ...facts, ramp, converter },
     elementSet: { id: set.id, epoch: isoMicroseconds(set.epochUtcUs), sha256: set.sha256 },
     symbolRateHz: published?.link.symbolRateHz ?? link.symbolRateHz,
     bandLowHz: published?.link.bandLowHz ?? link.bandLowHz,

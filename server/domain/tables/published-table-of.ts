@@ -3,6 +3,8 @@ import type { PublishedTable } from '#shared/formats/published-table'
 import { cautionFor, publishedTableSchema } from '#shared/formats/published-table'
 import { elementSets, radios } from '~~/server/database/schema'
 import type { Deps } from '../context'
+import type { RadioRow } from '../prediction/models'
+import { converterOf, rampOf } from '../prediction/models'
 import type { LockedTable, RevisionRow } from './lock-table'
 
 /** Everything that goes out with a revision: what is digested, signed, and served for as long as it is the newest. */
@@ -21,7 +23,7 @@ export async function publishedTableOf({ db, now }: Pick<Deps, 'db' | 'now'>, { 
       aos: pass.aos.toISOString(), culmination: pass.culmination.toISOString(), los: pass.los.toISOString(), maxElevationDeg: pass.maxElevationDeg,
     },
     link: { id: link.id, name: link.name, direction: link.direction, carrierHz: link.carrierHz, symbolRateHz: link.symbolRateHz, bandLowHz: link.bandLowHz, bandHighHz: link.bandHighHz },
-    radio: { id: radio!.id, name: radio!.name, stepHz: radio!.stepHz, offsetHz: radio!.offsetHz, minDwellS: radio!.minDwellS, latencyMs: radio!.latencyMs },
+    radio: publishedRadio(radio!),
     verdict: revision.verdict,
     allowanceHz, limitedBy, worstResidualHz, worstAt, margin, budget, symbolClockPpm,
     elementSet: { id: set!.id, epoch: isoMicroseconds(set!.epochUtcUs), sha256: set!.sha256 },
@@ -29,6 +31,13 @@ export async function publishedTableOf({ db, now }: Pick<Deps, 'db' | 'now'>, { 
     retunes: revision.retunes,
     caution: cautionFor(link.direction),
   })
+}
+
+/** The facts of a radio that its rows are read with; ramp and converter where it has them. */
+export function publishedRadio(radio: RadioRow): PublishedTable['radio'] {
+  const { id, name, stepHz, offsetHz, minDwellS, latencyMs } = radio
+  const [ramp, converter] = [rampOf(radio), converterOf(radio)]
+  return { id, name, stepHz, offsetHz, minDwellS, latencyMs, ...(ramp ? { ramp } : {}), ...(converter ? { converter } : {}) }
 }
 
 /** Milliseconds, or microseconds where the set gives them. */

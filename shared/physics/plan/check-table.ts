@@ -7,7 +7,7 @@ import type { BudgetModel, BudgetParts, CheckedRetune, Hz, LinkModel, Propagator
 import type { CheckCurve } from './check-curve'
 import { checkCurveOf, directOffsetHz } from './check-curve'
 import type { AppliedRow, Fault } from './check-rows'
-import { applyRows, faultsOfRows } from './check-rows'
+import { applyRows, faultsOfRows, skyAt } from './check-rows'
 import { crossingBetween, everySecond, withPeaks, withTurns } from './check-scan'
 
 export interface CheckQuery {
@@ -20,6 +20,8 @@ export interface CheckQuery {
   readonly parts: readonly Span[]
   /** As published. */
   readonly rows: readonly RetuneRow[]
+  /** No row may take effect inside. */
+  readonly quiet?: readonly Span[]
 }
 
 /** Margin of a table without any residual. */
@@ -27,8 +29,8 @@ export const MARGIN_CAP = 1e6
 
 /**
  * Checks rows as published against what is needed. Shares nothing with the planner but the propagator: it propagates for itself,
- * interpolates in its own way, applies the rows as the radio does (one latency after their instant) and asks both sides of every
- * retune, every extreme between, and every second.
+ * interpolates in its own way, applies the rows as the radio does (one latency after their instant, through its converter, with their
+ * slopes) and asks both sides of every retune, every extreme between, and every second.
  *
  * Budgeted residual = |needed − set| + timing + UT1 + k·√(orbit² + oscillator²), as in the error budget. Margin = allowance / worst
  * budgeted residual; holds from 1.25, tight from 1, breaks below, and breaks with any fault. Before the first row the radio is
@@ -37,7 +39,7 @@ export const MARGIN_CAP = 1e6
  * Throws RangeError without a workable part, or where the propagator fails within one.
  *
  * @card Verdict: what rows leave when they are applied as the radio would, apart from the planner.
- * @formula budgeted residual = |f − g_i| + timing + UT1 + k·spread; margin = allowance/worst; holds ≥ 1.25, tight ≥ 1, breaks below
+ * @formula budgeted residual = |f − g_i − s_i·(t − e_i)| + timing + UT1 + k·spread; margin = allowance/worst; holds ≥ 1.25, tight ≥ 1, breaks below
  * @source mechanics; thresholds are the product’s
  * @units Hz, UTC ms → Hz, margin, verdict
  * @frame sky frequency
@@ -49,7 +51,7 @@ export function checkTable(query: CheckQuery): TableCheck {
   if (parts.length === 0) throw new RangeError('There is no workable part to check a table over: give at least one span.')
   const allowance = allowanceOf(link)
   const applied = applyRows(rows, radio)
-  const faults = faultsOfRows(rows, applied, link, radio, parts)
+  const faults = faultsOfRows(rows, applied, link, radio, parts, query.quiet)
   const spans = applied.map(() => ({ min: Infinity, max: -Infinity }))
   let worst: { residualHz: Hz, atMs: UtcMs, parts: BudgetParts } | null = null
   let [slowest, fastest] = [Infinity, -Infinity]
@@ -57,13 +59,15 @@ export function checkTable(query: CheckQuery): TableCheck {
 
   for (const part of parts) {
     const curve = checkCurveOf({ ...query, ut1MinusUtcS: budget.ut1MinusUtcS, span: part })
-    const drift = driftFault(curve, part, link)
+    const drift = driftFault(curve, part, link, applied)
     if (drift) faults.push(drift)
     for (const piece of piecesOf(part, applied)) {
-      const setHz = piece.row < 0 ? 0 : applied[piece.row]!.row.frequencyHz - link.carrierHz
-      const partsAt = (utcMs: UtcMs): BudgetParts => ({ stepsHz: curve.offsetHz(utcMs) - setHz, ...uncertainAt(curve, utcMs, query) })
+      const row = applied[piece.row]
+      const setHz = (utcMs: UtcMs): Hz => row ? skyAt(row, utcMs) - link.carrierHz : 0
+      const slope = row?.skySlopeHzPerS ?? 0
+      const partsAt = (utcMs: UtcMs): BudgetParts => ({ stepsHz: curve.offsetHz(utcMs) - setHz(utcMs), ...uncertainAt(curve, utcMs, query) })
       const budgeted = (utcMs: UtcMs) => budgetedHz(partsAt(utcMs), budget.k)
-      const instants = withPeaks(withTurns(everySecond(piece.fromMs, piece.toMs), curve.rateHzPerS), budgeted)
+      const instants = withPeaks(withTurns(everySecond(piece.fromMs, piece.toMs), utcMs => curve.rateHzPerS(utcMs) - slope), budgeted)
       let before: { atMs: UtcMs, isOver: boolean } | null = null
       for (const atMs of instants) {
         const at = partsAt(atMs)
@@ -145,14 +149,19 @@ function addExcess(excess: { fromMs: UtcMs, toMs: UtcMs }[], before: { atMs: Utc
   else if (now.isOver) add(crossingBetween(before.atMs, now.atMs, utcMs => !isOver(utcMs)), now.atMs)
 }
 
-function driftFault(curve: CheckCurve, part: Span, link: LinkModel): Fault | null {
-  if (link.driftLimitHzPerS === null) return null
-  const drift = (utcMs: UtcMs) => Math.abs(curve.rateHzPerS(utcMs))
-  const atMs = withPeaks(everySecond(part.fromMs, part.toMs), drift).reduce((most, next) => drift(next) > drift(most) ? next : most)
-  if (drift(atMs) <= link.driftLimitHzPerS) return null
+/** Largest |ḟ − slope| over a part, both rows asked at a retune, where it is beyond what the loop follows. */
+function driftFault(curve: CheckCurve, part: Span, { driftLimitHzPerS }: LinkModel, applied: readonly AppliedRow[]): Fault | null {
+  if (driftLimitHzPerS === null) return null
+  let [worst, atMs] = [0, part.fromMs]
+  for (const { row, fromMs, toMs } of piecesOf(part, applied)) {
+    const slope = applied[row]?.skySlopeHzPerS ?? 0
+    const drift = (utcMs: UtcMs) => Math.abs(curve.rateHzPerS(utcMs) - slope)
+    for (const at of withPeaks(everySecond(fromMs, toMs), drift)) if (drift(at) > worst) [worst, atMs] = [drift(at), at]
+  }
+  if (worst <= driftLimitHzPerS) return null
   return {
     code: 'drift', atMs,
-    message: `The frequency drifts by ${drift(atMs).toFixed(1)} Hz/s at ${new Date(atMs).toISOString()}; the link's loop follows ${link.driftLimitHzPerS} Hz/s.`,
+    message: `What is set drifts from what is needed by ${worst.toFixed(1)} Hz/s at ${new Date(atMs).toISOString()}; the link's loop follows ${driftLimitHzPerS} Hz/s.`,
   }
 }
 

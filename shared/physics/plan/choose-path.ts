@@ -2,6 +2,7 @@ import type { Limits } from './hold-paths'
 import { earliestStarts } from './hold-paths'
 import type { Holds } from './holds'
 import { mirroredHolds } from './holds'
+import { lastFree, mirroredQuiet, nextFree } from './quiet'
 
 /** Rows of a plan: whole instants and grid multiples. */
 export interface Path { readonly starts: readonly number[], readonly settings: readonly number[] }
@@ -15,7 +16,8 @@ export interface Path { readonly starts: readonly number[], readonly settings: r
  */
 export function choosePath(holds: Holds, limits: Limits, rows: number): Path | null {
   const { setting, from, to, first, last } = holds
-  const back = earliestStarts(mirroredHolds(holds), { ...limits, notBefore: -Infinity }, rows)
+  const { quiet = [] } = limits
+  const back = earliestStarts(mirroredHolds(holds), { ...limits, notBefore: -Infinity, quiet: mirroredQuiet(quiet) }, rows)
   if (!back.complete) return null
 
   /** Latest start of hold u as first of the last `left` rows. Mirrored, a start is the end of the row. */
@@ -36,13 +38,13 @@ export function choosePath(holds: Holds, limits: Limits, rows: number): Path | n
   for (let row = 2; row <= rows; row++) {
     const left = rows - row + 1
     const candidates = all.filter(u => latestStart(u, left) >= Math.max(leave, from[u]!))
-    const start = earliestOf(holds, choices[row - 2]!, candidates, leave, u => latestStart(u, left), limits.jump)
+    const start = earliestOf(holds, choices[row - 2]!, candidates, leave, u => latestStart(u, left), limits)
     if (start === Infinity) return null
     choices.push(candidates.filter(u => choices[row - 2]!.some(v => mayChange(v, u, start, left))))
     starts.push(start)
     leave = start + limits.dwell
   }
-  if (rows > 1) starts[0] = Math.min(first, starts[1]! - limits.dwell)
+  starts[0] = lastFree(quiet, rows > 1 ? Math.min(first, starts[1]! - limits.dwell) : first)
   if (rows === 1) choices[0] = choices[0]!.filter(v => to[v]! >= last)
 
   for (let row = rows - 1; row >= 1; row--) {
@@ -57,10 +59,10 @@ export function choosePath(holds: Holds, limits: Limits, rows: number): Path | n
   return { starts, settings: path.map(v => setting[v]!) }
 }
 
-function earliestOf(holds: Holds, some: readonly number[], candidates: readonly number[], leave: number, latest: (u: number) => number, jump: number): number {
+function earliestOf(holds: Holds, some: readonly number[], candidates: readonly number[], leave: number, latest: (u: number) => number, { jump, quiet = [] }: Limits): number {
   let best = Infinity
   for (const u of candidates) {
-    const least = Math.max(leave, holds.from[u]!)
+    const least = nextFree(quiet, Math.max(leave, holds.from[u]!))
     if (least >= best) continue
     const most = latest(u)
     for (const v of some) {
@@ -70,7 +72,10 @@ function earliestOf(holds: Holds, some: readonly number[], candidates: readonly 
         best = Math.min(best, least)
         continue
       }
-      for (const [a, b] of holds.gaps) if (Math.max(a, least) <= Math.min(b, end)) best = Math.min(best, Math.max(a, least))
+      for (const [a, b] of holds.gaps) {
+        const inGap = nextFree(quiet, Math.max(a, least))
+        if (inGap <= Math.min(b, end)) best = Math.min(best, inGap)
+      }
     }
   }
   return best

@@ -6,6 +6,7 @@ import type { Limits } from './hold-paths'
 import { earliestStarts } from './hold-paths'
 import type { Holds } from './holds'
 import { holdsOf } from './holds'
+import { lastFree, mirroredQuiet } from './quiet'
 import { furthestReach, isWorkable, settingsOver } from './reach'
 
 /**
@@ -14,7 +15,7 @@ import { furthestReach, isWorkable, settingsOver } from './reach'
  * the paths from hold to hold searched, which `onSearch` is told.
  */
 export function fewestRows(c: Corridor, limits: Limits, limit = Infinity, onSearch?: () => void): number | null {
-  const starts = furthestReach(c, firstInstant(c), limit)
+  const starts = furthestReach(c, firstInstant(c), limit, limits.quiet)
   if (starts === null) return null
   if (keepsDwell(starts, limits) && settingsFor(c, starts, limits.jump) !== null) return starts.length
   onSearch?.()
@@ -25,13 +26,13 @@ export function fewestRows(c: Corridor, limits: Limits, limit = Infinity, onSear
 
 /** Of all plans with `rows` rows, where fewer do not suffice: the earliest starts, in order, then the lowest settings, in order. */
 export function chooseRows(c: Corridor, limits: Limits, rows: number): Path | null {
-  const back = furthestReach(mirrored(c), -lastInstant(c), rows)
+  const back = furthestReach(mirrored(c), -lastInstant(c), rows, mirroredQuiet(limits.quiet ?? []))
   if (back === null) return null
   const starts = [firstInstant(c), ...back.slice(1).map(time => -time).reverse()]
   if (keepsDwell(starts, limits)) {
     const settings = settingsFor(c, starts, limits.jump)
     if (settings !== null) {
-      if (rows > 1) starts[0] = Math.min(starts[0]!, starts[1]! - limits.dwell)
+      starts[0] = lastFree(limits.quiet ?? [], rows > 1 ? Math.min(starts[0]!, starts[1]! - limits.dwell) : starts[0]!)
       return { starts, settings }
     }
   }

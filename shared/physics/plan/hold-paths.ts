@@ -1,4 +1,6 @@
 import type { Holds } from './holds'
+import type { QuietStretches } from './quiet'
+import { nextFree } from './quiet'
 
 /** What binds from one row to the next, whole milliseconds and grid multiples. */
 export interface Limits {
@@ -7,6 +9,8 @@ export interface Limits {
   readonly jump: number
   /** The first row may not take effect before this; −Infinity for no such bound. */
   readonly notBefore: number
+  /** No row takes effect inside; left out for none. */
+  readonly quiet?: QuietStretches
 }
 
 /**
@@ -39,7 +43,7 @@ export function earliestStarts(holds: Holds, limits: Limits, limit: number): { l
       for (let u = begin; u < end; u++) {
         const known = next[u]!
         if (from[u]! >= known || from[u]! > until || to[u]! < leave) continue
-        const start = earliestChange(holds, v, u, leave, limits.jump)
+        const start = earliestChange(holds, v, u, leave, limits)
         if (start >= known) continue
         if (known === layer[u]) improved.push(u)
         next[u] = start
@@ -54,13 +58,16 @@ export function earliestStarts(holds: Holds, limits: Limits, limit: number): { l
 }
 
 /** Earliest change from hold v to hold u at or after `leave`; Infinity where none keeps to the holds and the jump limit. */
-export function earliestChange(holds: Holds, v: number, u: number, leave: number, jump: number): number {
-  const start = Math.max(leave, holds.from[u]!)
+export function earliestChange(holds: Holds, v: number, u: number, leave: number, { jump, quiet = [] }: Limits): number {
+  const start = nextFree(quiet, Math.max(leave, holds.from[u]!))
   const end = Math.min(holds.to[v]!, holds.to[u]!)
   if (start > end) return Infinity
   if (Math.abs(holds.setting[u]! - holds.setting[v]!) <= jump) return start
   // Between workable parts nothing listens, so no jump is too large there.
-  for (const [a, b] of holds.gaps) if (Math.max(a, start) <= Math.min(b, end)) return Math.max(a, start)
+  for (const [a, b] of holds.gaps) {
+    const inGap = nextFree(quiet, Math.max(a, start))
+    if (inGap <= Math.min(b, end)) return inGap
+  }
   return Infinity
 }
 

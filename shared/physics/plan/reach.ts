@@ -1,5 +1,7 @@
 import type { Corridor } from './corridor'
 import { gridRange } from './corridor'
+import type { QuietStretches } from './quiet'
+import { lastFree } from './quiet'
 
 /**
  * How far one constant setting serves. A constant fits [a, b] exactly when a grid point lies between the greatest low side and
@@ -42,12 +44,16 @@ export function settingsOver(c: Corridor, from: number, to: number): readonly [n
   return gridRange(c.grid, low, high)
 }
 
-/** Starts of the fewest settings that serve from `first` to the end, each held as long as it serves; null where none does, or past `limit`. */
-export function furthestReach(c: Corridor, first: number, limit: number): number[] | null {
+/**
+ * Starts of the fewest settings that serve from `first` to the end, each held as long as it serves and a change may take effect;
+ * null where none does, or past `limit`.
+ */
+export function furthestReach(c: Corridor, first: number, limit: number, quiet: QuietStretches = []): number[] | null {
   const starts = [first]
   for (let from = first; ;) {
-    const to = reachFrom(c, from)
-    if (to === Infinity) return starts
+    const reached = reachFrom(c, from)
+    if (reached === Infinity) return starts
+    const to = lastFree(quiet, reached)
     if (to <= from || starts.length >= limit) return null
     starts.push(to)
     from = to
@@ -80,7 +86,7 @@ function lastBefore(c: Corridor, knot: number, from: number, low: number, high: 
 }
 
 /** Index of the first knot at or after `time`. */
-function firstKnotAt(c: Corridor, time: number): number {
+export function firstKnotAt(c: Corridor, time: number): number {
   let before = -1
   let after = c.timeMs.length
   while (after - before > 1) {
@@ -91,7 +97,7 @@ function firstKnotAt(c: Corridor, time: number): number {
   return after
 }
 
-function insidePiece(c: Corridor, knot: number, time: number): boolean {
+export function insidePiece(c: Corridor, knot: number, time: number): boolean {
   return knot > 0 && knot < c.timeMs.length && !c.beginsPart[knot]! && c.timeMs[knot]! > time && c.timeMs[knot - 1]! <= time
 }
 

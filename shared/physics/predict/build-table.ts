@@ -8,6 +8,7 @@ import { workablePartsForLink } from '../orbit/passes'
 import { allowanceOf } from '../link/allowance'
 import { budgetAt, uncertaintyHz } from '../plan/budget'
 import { checkTable } from '../plan/check-table'
+import type { RetuneProblem } from '../plan/plan-retunes'
 import { planRetunes } from '../plan/plan-retunes'
 import type { BudgetModel, Ephemeris, Hz, LinkModel, PredictedPass, Propagator, RadioModel, RetuneRow, Site, Span, TableCheck, UtcMs } from '../types'
 
@@ -29,6 +30,8 @@ export interface TableQuery {
    * are out stay good when newer elements bring AOS forward.
    */
   readonly firstRowLeadMs?: number
+  /** No row takes effect inside. */
+  readonly quiet?: readonly Span[]
 }
 
 export interface BuiltTable {
@@ -59,18 +62,18 @@ export function buildTable(query: TableQuery): BuiltTable | NotWorkable {
   const parts = workablePartsForLink(pass, ephemeris, site, query.linkMinElevationRad, budget.ut1MinusUtcS)
   if (parts.length === 0) return { kind: 'not-workable' }
   const track = createSiteTrack(ephemeris, site, budget.ut1MinusUtcS)
-  const isUplink = link.direction === 'uplink'
+  const { quiet = [], firstRowLeadMs = 0 } = query
   const plan = planRetunes({
-    needed: neededOn(track, query), uncertaintyHz: uncertaintyOver(track, ephemeris, query), allowanceHz: allowanceOf(link).allowanceHz,
-    parts, radio, jumpLimitHz: link.jumpLimitHz,
-    bandLowHz: isUplink ? link.bandLowHz : null, bandHighHz: isUplink ? link.bandHighHz : null,
+    ...onDial(neededOn(track, query), link, radio),
+    uncertaintyHz: uncertaintyOver(track, ephemeris, query), allowanceHz: allowanceOf(link).allowanceHz,
+    parts, radio, jumpLimitHz: link.jumpLimitHz, driftLimitHzPerS: link.driftLimitHzPerS, quiet, firstRowLeadMs,
     ...(query.notBeforeMs === undefined ? {} : { notBeforeMs: query.notBeforeMs }),
   })
-  const rows = plan.rows.map(({ effectMs, frequencyHz }): RetuneRow => ({
+  const rows = plan.rows.map(({ effectMs, frequencyHz, slopeHzPerS }): RetuneRow => ({
     // Exact: planned rows take effect one latency after a whole millisecond.
-    atMs: Math.round(effectMs - radio.latencyMs), frequencyHz, slopeHzPerS: 0,
-  })).map((row, i) => i === 0 ? earlier(row, query) : row)
-  return { kind: 'table', rows, check: checkTable({ propagator, site, link, radio, budget, parts, rows }), parts, kappa: plan.kappa }
+    atMs: Math.round(effectMs - radio.latencyMs), frequencyHz, slopeHzPerS,
+  }))
+  return { kind: 'table', rows, check: checkTable({ propagator, site, link, radio, budget, parts, rows, quiet }), parts, kappa: plan.kappa }
 }
 
 /** What a table is planned along. Two legs, or a carrier that is not what the uplink makes, are asked of the ephemeris itself. */
@@ -80,10 +83,20 @@ function neededOn(track: SiteTrack, { ephemeris, site, link, budget }: TableQuer
   return createNeededFrequency({ stateAt: ephemeris.stateAt, site, ut1MinusUtcS: budget.ut1MinusUtcS, direction, carrierHz, turnaround })
 }
 
-/** The first row with its lead, no earlier than the radio is free. */
-function earlier(row: RetuneRow, { firstRowLeadMs = 0, notBeforeMs = -Infinity, radio }: TableQuery): RetuneRow {
-  const atMs = Math.max(row.atMs - Math.round(firstRowLeadMs), Math.ceil(notBeforeMs - radio.latencyMs))
-  return { ...row, atMs: Math.min(atMs, row.atMs) }
+/**
+ * What is needed and what is licensed, as the radio's dial shows it: |sky − oscillator|, mirrored where the converter inverts. Nothing
+ * licenses a downlink's rows.
+ */
+function onDial(needed: NeededFrequency, { direction, bandLowHz, bandHighHz }: LinkModel, { converter }: RadioModel): Pick<RetuneProblem, 'needed' | 'bandLowHz' | 'bandHighHz'> {
+  const [low, high] = direction === 'uplink' ? [bandLowHz, bandHighHz] : [null, null]
+  if (!converter) return { needed, bandLowHz: low, bandHighHz: high }
+  const { loHz, inverts } = converter
+  const dialOf = (skyHz: Hz): Hz => inverts ? loHz - skyHz : skyHz - loHz
+  const edge = (skyHz: Hz | null) => skyHz === null ? null : dialOf(skyHz)
+  return {
+    needed: { frequencyHz: utcMs => dialOf(needed.frequencyHz(utcMs)), rateHzPerS: utcMs => (inverts ? -1 : 1) * needed.rateHzPerS(utcMs) },
+    bandLowHz: edge(inverts ? high : low), bandHighHz: edge(inverts ? low : high),
+  }
 }
 
 export type ResidualQuery = Omit<TableQuery, 'notBeforeMs' | 'firstRowLeadMs'> & { readonly rows: readonly RetuneRow[] }

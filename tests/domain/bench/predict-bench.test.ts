@@ -1,5 +1,6 @@
 import { randomUUID } from 'node:crypto'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
+import { benchRadio } from '#shared/schemas/bench'
 import { elementSets, radios, antennas } from '~~/server/database/schema'
 import type { Deps } from '~~/server/domain/context'
 import type { World } from '../elements/support'
@@ -42,6 +43,30 @@ describe('a what-if', () => {
         }
       }
     }
+  })
+
+  it('gives rows that ramp and keep what the independent program needs, fewer than steps do, and asks for what a ramp needs', async () => {
+    const pass = referenceDoppler().passes[0]!
+    const startMs = Date.parse(pass.windowStart) + pass.startS * 1000
+    const { latitudeDeg, longitudeDeg, heightM } = pass.station
+    const question = (radio: object) => bench({
+      elements: { text: `${pass.line1}\n${pass.line2}` }, station: { latitudeDeg, longitudeDeg, heightM, minElevationDeg: 0 }, from: new Date(startMs).toISOString(),
+      to: new Date(startMs + (pass.lightTimeDownS.length - 1) * pass.stepS * 1000).toISOString(), link: { carrierHz: 437.5e6 }, radio,
+    } as Parameters<typeof bench>[0])
+    const [stepped] = (await question({})).passes
+    const [ramped] = (await question({ ramp: true, slopeStepHzPerS: 0.5, maxSlopeHzPerS: 500 })).passes
+    const { retunes, allowanceHz, verdict, faults } = ramped!.table!
+    expect({ verdict, faults }).toEqual({ verdict: 'holds', faults: [] })
+    expect(retunes.length).toBeLessThan(stepped!.table!.retunes.length / 1.5)
+    pass.receivedMinusCarrierHz['437500000.0']!.forEach((hz, k) => {
+      const atMs = startMs + k * pass.stepS * 1000
+      if (atMs < Date.parse(ramped!.aos) || atMs > Date.parse(ramped!.los)) return
+      const row = retunes.findLast(retune => Date.parse(retune.at) + 50 <= atMs)!
+      expect(Math.abs(437.5e6 + hz - row.frequencyHz - row.slopeHzPerS * (atMs - Date.parse(row.at) - 50) / 1000)).toBeLessThanOrEqual(0.8 * allowanceHz + 0.05)
+    })
+    expect(benchRadio.safeParse({ ramp: true, maxSlopeHzPerS: 500 }).error?.issues).toMatchObject([{ path: ['slopeStepHzPerS'] }])
+    expect(benchRadio.safeParse({ ramp: true, slopeStepHzPerS: 1 }).error?.issues).toMatchObject([{ path: ['maxSlopeHzPerS'] }])
+    expect(benchRadio.safeParse({ ramp: true, slopeStepHzPerS: 2, maxSlopeHzPerS: 1 }).error?.issues).toMatchObject([{ path: ['maxSlopeHzPerS'] }])
   })
 
   it('has no budget but the steps where none is given, and every part where it is', async () => {
@@ -165,6 +190,24 @@ describe('a what-if with stored things', () => {
       if (!table) continue
       expect(table.allowanceHz).toBeCloseTo(0.185991 * 4800, 1)
       expect(table.retunes.every(row => row.frequencyHz % 25 === 0)).toBe(true)
+    }
+  })
+
+  it('answers for the dial of a held radio behind a converter, at its cadence', async () => {
+    const [antenna] = await world.deps.db.insert(antennas).values({ stationId: stored.stationId, name: 'Second dish' }).returning()
+    const [radio] = await world.deps.db.insert(radios).values({
+      antennaId: antenna!.id, name: 'Behind', transmits: false, receives: true, tuneLowHz: 430e6, tuneHighHz: 440e6, stepHz: 25,
+      converterLoHz: 465.5e6, converterInverts: true, planMode: 'cadence', cadenceS: 5,
+    }).returning()
+    const { passes } = await askStored({ ...world.deps, actor: reader }, { ...stored, radioId: radio!.id })
+    const tables = passes.flatMap(({ table }) => table ? [table] : [])
+    expect(tables.length).toBeGreaterThan(0)
+    for (const { retunes, faults } of tables) {
+      expect(faults).toEqual([])
+      // 465.5 − 437.5 MHz; a downlink's fall is a rise on this dial.
+      for (const row of retunes) expect(Math.abs(row.frequencyHz - 28e6)).toBeLessThan(12e3)
+      expect(retunes.at(-1)!.frequencyHz).toBeGreaterThan(retunes[0]!.frequencyHz)
+      retunes.slice(1).forEach((row, i) => expect(Date.parse(row.at) - Date.parse(retunes[i]!.at)).toBe(5000))
     }
   })
 

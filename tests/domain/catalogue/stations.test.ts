@@ -1,5 +1,7 @@
 import { beforeAll, beforeEach, describe, expect, it } from 'vitest'
+import { eq } from 'drizzle-orm'
 import { createAntennaBody, createRadioBody, createStationBody } from '#shared/schemas/stations'
+import { radios } from '~~/server/database/schema'
 import { changeAntenna } from '~~/server/domain/catalogue/change-antenna'
 import { changeRadio } from '~~/server/domain/catalogue/change-radio'
 import { changeStation } from '~~/server/domain/catalogue/change-station'
@@ -96,9 +98,33 @@ describe('antennas and radios', () => {
     const { id, radio } = await addStation(test.db, {}, { tuneLowHz: 430e6, tuneHighHz: 440e6, transmits: false })
     expect(await refusalOf(changeRadio(deps(), radio.id, { tuneLowHz: 450e6 }))).toMatchObject({ code: 'not-valid', paths: ['tuneHighHz'] })
     expect(await refusalOf(changeRadio(deps(), radio.id, { receives: false }))).toMatchObject({ code: 'not-valid', paths: ['receives'] })
+    expect(await refusalOf(changeRadio(deps(), radio.id, { ramps: true }))).toMatchObject({ code: 'not-valid', paths: ['slopeStepHzPerS'] })
+    expect(await refusalOf(changeRadio(deps(), radio.id, { ramps: true, slopeStepHzPerS: 2, maxSlopeHzPerS: 1 }))).toMatchObject({ code: 'not-valid', paths: ['maxSlopeHzPerS'] })
+    expect(await refusalOf(changeRadio(deps(), radio.id, { planMode: 'cadence' }))).toMatchObject({ code: 'not-valid', paths: ['cadenceS'] })
+    expect(await refusalOf(changeRadio(deps(), radio.id, { planMode: 'cadence', cadenceS: 0.5 }))).toMatchObject({ code: 'not-valid', paths: ['cadenceS'] })
+    expect(await refusalOf(changeRadio(deps(), radio.id, { converterInverts: true }))).toMatchObject({ code: 'not-valid', paths: ['converterLoHz'] })
+    expect(await refusalOf(changeRadio(deps(), radio.id, { converterLoHz: 465e6 }))).toMatchObject({ code: 'not-valid', paths: ['converterLoHz'] })
+    expect(await refusalOf(changeRadio(deps(), radio.id, { converterLoHz: 400e6, converterInverts: true }))).toMatchObject({ code: 'not-valid', paths: ['converterLoHz'] })
     await changeRadio(deps(), radio.id, { name: 'Renamed' })
     expect(await askedStations()).toEqual([])
     expect(await changeRadio(deps(), radio.id, { stepHz: 1 })).toMatchObject({ stepHz: 1, name: 'Renamed' })
     expect(await askedStations()).toEqual([id])
+  })
+
+  it('ramp, keep a cadence and stand behind a converter as they are said to, and have their tables made anew', async () => {
+    const { id, radio } = await addStation(test.db, {}, { tuneLowHz: 430e6, tuneHighHz: 440e6, transmits: false })
+    const modes = { ramps: true, slopeStepHzPerS: 0.5, maxSlopeHzPerS: 400, planMode: 'cadence', cadenceS: 2, converterLoHz: 465.5e6, converterInverts: true } as const
+    expect(await changeRadio(deps(), radio.id, modes)).toMatchObject(modes)
+    expect(await askedStations()).toEqual([id])
+  })
+
+  it('are kept from what contradicts itself by the database too', async () => {
+    const { radio } = await addStation(test.db, {}, { tuneLowHz: 430e6, tuneHighHz: 440e6, transmits: false })
+    const keep = (change: Partial<typeof radios.$inferInsert>) => test.db.update(radios).set(change).where(eq(radios.id, radio.id))
+    const broken = (constraint: string) => ({ cause: { constraint } })
+    await expect(keep({ ramps: true, slopeStepHzPerS: 1 })).rejects.toMatchObject(broken('radios_ramp_stated'))
+    await expect(keep({ planMode: 'cadence' })).rejects.toMatchObject(broken('radios_plan_mode_stated'))
+    await expect(keep({ converterLoHz: 400e6, converterInverts: true })).rejects.toMatchObject(broken('radios_converter_side'))
+    await expect(keep({ converterInverts: true })).rejects.toMatchObject(broken('radios_converter_side'))
   })
 })

@@ -1,11 +1,28 @@
 import { describe, expect, it } from 'vitest'
 import type { LinkRow, RadioRow } from '~~/server/domain/prediction/models'
-import { dopplerRoomHz, radioFor } from '~~/server/domain/prediction/models'
+import { dopplerRoomHz, radioFor, radioModelOf } from '~~/server/domain/prediction/models'
+import { publishedRadio } from '~~/server/domain/tables/published-table-of'
 import { referenceElements } from './fleet'
 
 const elements = referenceElements('SSO500')
 const link = { direction: 'downlink', carrierHz: 437.5e6, turnaroundNumerator: null, turnaroundDenominator: null } as LinkRow
 const radio = (id: string, fields: Partial<RadioRow> = {}) => ({ id, name: id, transmits: false, receives: true, tuneLowHz: 430e6, tuneHighHz: 440e6, stepHz: 10, retiredAt: null, ...fields }) as RadioRow
+
+describe('a radio as its tables are planned on it', () => {
+  const stepping = { ramps: false, slopeStepHzPerS: 1, maxSlopeHzPerS: 500, planMode: 'fewest', cadenceS: 5, converterLoHz: null, converterInverts: false } as const
+
+  it('has a ramp, a cadence and a converter only where it is said to', () => {
+    expect(radioModelOf(radio('a', stepping))).toMatchObject({ ramp: null, cadenceS: null, converter: null })
+    expect(radioModelOf(radio('a', { ...stepping, ramps: true, planMode: 'cadence', converterLoHz: 465e6, converterInverts: true })))
+      .toMatchObject({ ramp: { slopeStepHzPerS: 1, maxSlopeHzPerS: 500 }, cadenceS: 5, converter: { loHz: 465e6, inverts: true } })
+  })
+
+  it('is published with ramp and converter where it has them, and as before where not', () => {
+    expect(publishedRadio(radio('a', { ...stepping, offsetHz: 0, minDwellS: 1, latencyMs: 50 }))).toEqual({ id: 'a', name: 'a', stepHz: 10, offsetHz: 0, minDwellS: 1, latencyMs: 50 })
+    expect(publishedRadio(radio('a', { ...stepping, ramps: true, converterLoHz: 400e6 })))
+      .toMatchObject({ ramp: { slopeStepHzPerS: 1, maxSlopeHzPerS: 500 }, converter: { loHz: 400e6, inverts: false } })
+  })
+})
 
 describe('the radio that serves a link', () => {
   it('leaves room for the Doppler shift of the orbit', () => {

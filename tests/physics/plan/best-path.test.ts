@@ -11,7 +11,7 @@ function planned(p: SmallProblem) {
     anchorMs: 0, referenceHz: 0, timeMs: p.timeMs, offsetHz: p.offsetHz, uncertaintyHz: p.timeMs.map(() => 0),
     beginsPart: p.beginsPart, samplingErrorHz: 0,
   }
-  const path = bestPath(curve, { stepHz: p.stepHz, least: p.least, most: p.most }, { dwell: p.dwell, jump: p.jump, notBefore: p.notBefore }, p.halfWidthHz)
+  const path = bestPath(curve, { stepHz: p.stepHz, least: p.least, most: p.most }, { dwell: p.dwell, jump: p.jump, notBefore: p.notBefore, quiet: p.quiet }, p.halfWidthHz)
   if (path === null) return null
   const ratio = Math.max(...path.starts.map((start, i) =>
     worstRatio(p, start, path.starts[i + 1] ?? Infinity, path.settings[i]!)))
@@ -31,7 +31,8 @@ const problems: fc.Arbitrary<SmallProblem> = fc.record({
   shifts: fc.array(fc.constantFrom(0, 0, 0.25, 0.5, 0.75), { minLength: 7, maxLength: 7 }),
   least: fc.constantFrom(-6, -3, 1),
   most: fc.constantFrom(6, 8, 10),
-}).map(({ lengths, slopes, trend, halves, gapAt, shifts, ...rest }) => {
+  quietFrom: fc.integer({ min: 0, max: 16 }), quietFor: fc.constantFrom(-1, -1, 0, 1, 3),
+}).map(({ lengths, slopes, trend, halves, gapAt, shifts, quietFrom, quietFor, ...rest }) => {
   const timeMs = [0]
   const offsetHz = [30.37]
   for (const [i, length] of lengths.entries()) {
@@ -39,7 +40,7 @@ const problems: fc.Arbitrary<SmallProblem> = fc.record({
     offsetHz.push(offsetHz[i]! + (slopes[i]! + trend) * length)
   }
   return {
-    ...rest, timeMs: timeMs.map((time, j) => time + shifts[j]!), stepHz: 10,
+    ...rest, timeMs: timeMs.map((time, j) => time + shifts[j]!), stepHz: 10, quiet: quietFor < 0 ? [] : [[quietFrom, quietFrom + quietFor]] as const,
     offsetHz, halfWidthHz: halves.slice(0, timeMs.length),
     // A gap leaves two knots or more on either side.
     beginsPart: timeMs.map((_, j) => j === 0 || (j === gapAt && j >= 2 && j <= timeMs.length - 2)),
@@ -51,7 +52,7 @@ describe('the best plan', () => {
     // Worked by hand: 30 Hz of fall on a 10 Hz grid, half-width 10: settings 20 and 10 serve 30…10 and 20…0.
     const p: SmallProblem = {
       timeMs: [0, 30], offsetHz: [30, 0], halfWidthHz: [10, 10], beginsPart: [true, false], stepHz: 10, least: -9, most: 9,
-      dwell: 1, jump: Infinity, notBefore: -Infinity,
+      dwell: 1, jump: Infinity, notBefore: -Infinity, quiet: [],
     }
     const path = planned(p)
     expect(path).toMatchObject({ starts: [0, 10], settings: [2, 1] })
@@ -68,7 +69,7 @@ describe('the best plan', () => {
         return
       }
       if (best.starts.length > 1) retuned++
-      const unbound = bestByTryingAll({ ...p, dwell: 1, jump: Infinity, notBefore: -Infinity }, MOST_ROWS)!
+      const unbound = bestByTryingAll({ ...p, dwell: 1, jump: Infinity, notBefore: -Infinity, quiet: [] }, MOST_ROWS)!
       if (unbound.starts.join() !== best.starts.join() || unbound.settings.join() !== best.settings.join()) bound++
       expect(path).not.toBeNull()
       expect(path!.starts.length).toBe(best.starts.length)

@@ -10,6 +10,8 @@ export interface SmallProblem {
   readonly dwell: number
   readonly jump: number
   readonly notBefore: number
+  /** Closed stretches in which no row begins. */
+  readonly quiet: readonly (readonly [number, number])[]
 }
 export interface SmallPlan { readonly starts: number[], readonly settings: number[], readonly ratio: number }
 
@@ -34,7 +36,7 @@ export function bestByTryingAll(problem: SmallProblem, mostRows: number): SmallP
         const worst = Math.max(ratio, worstRatio(problem, start, next, setting))
         if (worst > 1 + 1e-9) break
         const free = starts.length === 1 ? problem.notBefore : start
-        if (next - free < problem.dwell) continue
+        if (next - free < problem.dwell || isQuiet(problem, next)) continue
         for (let other = problem.least; other <= problem.most; other++) {
           if (workable(problem, next) && Math.abs(other - setting) > problem.jump) continue
           visit([...starts, next], [...settings, other], worst)
@@ -45,6 +47,7 @@ export function bestByTryingAll(problem: SmallProblem, mostRows: number): SmallP
     if (best !== null) {
       const found = best as SmallPlan
       if (rows > 1) found.starts[0] = Math.min(found.starts[0]!, found.starts[1]! - problem.dwell)
+      while (isQuiet(problem, found.starts[0]!)) found.starts[0]!--
       return found
     }
   }
@@ -64,6 +67,8 @@ export function worstRatio(p: SmallProblem, from: number, to: number, setting: n
   }
   return worst
 }
+
+const isQuiet = (p: SmallProblem, time: number) => p.quiet.some(([from, to]) => time >= from && time <= to)
 
 function workable(p: SmallProblem, time: number): boolean {
   return valueAt(p, time) !== null

@@ -24,7 +24,7 @@ describe('a question in the address', () => {
       station: { source: 'given', id: 's', latitudeDeg: -12.5, longitudeDeg: 200, heightM: 3, minElevationDeg: 0, mask: [{ azimuthDeg: 10.5, elevationDeg: -1 }, { azimuthDeg: 350, elevationDeg: 7 }] },
       window: { from: '2026-12-01 00:00', to: '2026-12-02T00:00:00+01:00', sampleIntervalS: 0.5, ut1MinusUtcS: -0.1 },
       link: { source: 'held', id: 'l', direction: 'uplink', carrierHz: 2.1e9, symbolRateHz: 1200.5, detector: 'stated', permittedLossDb: 1, limitHz: 900, captureRangeHz: 1, filterBandwidthHz: 2, rolloff: 0.35, driftLimitHzPerS: 3, jumpLimitHz: 4, errorRate: 1e-6, esN0Db: 12.5, bandwidthHz: 125_000, spreadingFactor: 9, turnaround: { numerator: 880, denominator: 749, uplinkPrecompensated: true, uplinkHz: 7.2e9 } },
-      radio: { source: 'held', id: 'r', stepHz: 0.001, offsetHz: -5, minDwellS: 0, latencyMs: 0, latencyUncertaintyMs: 2 },
+      radio: { source: 'held', id: 'r', stepHz: 0.001, offsetHz: -5, minDwellS: 0, latencyMs: 0, latencyUncertaintyMs: 2, ramp: true, slopeStepHzPerS: 0.5, maxSlopeHzPerS: 400 },
       budget: { clockErrorMs: 1, alongTrackSigmaS: 2, spacecraftPpm: 3, stationPpm: 4, ut1BoundS: 0.5, k: 0 },
       offsetHz: -250,
     }

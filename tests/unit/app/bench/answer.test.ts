@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { benchStrips, budgetWords, clippedWords, linkWords, underHeadings } from '~/utils/bench/answer'
+import { benchStrips, budgetWords, clippedWords, linkWords, radioWords, underHeadings } from '~/utils/bench/answer'
 import type { BenchPass } from '~/utils/bench/answer'
 import { readingAt } from '~/utils/passes/strips'
 
@@ -17,7 +17,7 @@ const pass: BenchPass = {
 describe('an answer of the bench', () => {
   it('reads in the strips of a pass: needed minus set, with its uncertainty, in the workable part', () => {
     // By hand: a straight fall of 10 Hz/s from +100 Hz against one row on the carrier.
-    const strips = benchStrips(pass, { carrierHz: 1_000_000, latencyMs: 50 })!
+    const strips = benchStrips(pass, { carrierHz: 1_000_000, latencyMs: 50, converter: null })!
     const reading = readingAt(strips, Date.parse(at(5)))
     expect(reading.residualHz).toBeCloseTo(50, 9)
     expect(reading).toMatchObject({ setHz: 0, uncertaintyHz: 4, workable: true, row: 0 })
@@ -26,7 +26,7 @@ describe('an answer of the bench', () => {
   })
 
   it('has no strips where the link is nowhere workable', () => {
-    expect(benchStrips({ ...pass, table: null }, { carrierHz: 1_000_000, latencyMs: 50 })).toBeNull()
+    expect(benchStrips({ ...pass, table: null }, { carrierHz: 1_000_000, latencyMs: 50, converter: null })).toBeNull()
   })
 
   it('says which end the window cuts off', () => {
@@ -36,6 +36,10 @@ describe('an answer of the bench', () => {
 
   it('puts a closed part of the form in a line', () => {
     expect(linkWords({ direction: 'uplink', carrierHz: 437_500_000, symbolRateHz: 1200.5, detector: 'coherent' }).replaceAll('\u202F', ' ')).toBe('uplink 437 500 000 Hz, 1 200.5 symbols/s, coherent')
+    const radio = { stepHz: 10, minDwellS: 1, latencyMs: 50 }
+    expect(radioWords({ ...radio, ramp: false, maxSlopeHzPerS: 400 })).toBe('10 Hz steps, 1 s between retunes, 50 ms latency')
+    expect(radioWords({ ...radio, ramps: true, maxSlopeHzPerS: 400, planMode: 'cadence', cadenceS: 5, converterLoHz: 1e6 }).replaceAll('\u202F', ' '))
+      .toBe('10 Hz steps, a retune every 5 s, 50 ms latency, ramps to 400 Hz/s, converter at 1 000 000 Hz')
     expect(budgetWords({ clockErrorMs: 0, alongTrackSigmaS: 0.1, spacecraftPpm: 0, stationPpm: 0.2, ut1BoundS: 0 })).toBe('orbit 0.1 s, oscillators 0 and 0.2 ppm')
     expect(budgetWords({ clockErrorMs: 0, alongTrackSigmaS: 0, spacecraftPpm: 0, stationPpm: 0, ut1BoundS: 0 })).toBe('every uncertainty 0')
   })

@@ -30,6 +30,15 @@ describe('the strips of a pass', () => {
     expect(setLine(ramped)).toEqual([{ t: t(0), y: 50 }, { t: t(20), y: -150 }])
   })
 
+  it('draw a radio behind a converter in the sky, where its dial and its slope come to', () => {
+    // By hand: 1.5 MHz − 499 950 Hz is 50 Hz above the carrier, and a rising dial falls there; 0.4 MHz + 600 050 Hz as well.
+    const dial = (loHz: number, inverts: boolean, frequencyHz: number, slopeHzPerS: number) => setLine(stripData(samples, {
+      ...table, retunes: [{ ...table.retunes[0]!, frequencyHz, slopeHzPerS }], radio: { latencyMs: 500, converter: { loHz, inverts } },
+    })!)
+    expect(dial(1_500_000, true, 499_950, 10)).toEqual([{ t: t(0), y: 50 }, { t: t(20), y: -150 }])
+    expect(dial(400_000, false, 600_050, -10)).toEqual([{ t: t(0), y: 50 }, { t: t(20), y: -150 }])
+  })
+
   it('draw the residual as needed minus set with both sides of a retune, inside the workable part only', () => {
     // At 2 s 80 − 50; at 10 s 0 − 50 and 0 + 50; at 18 s −80 + 50.
     expect(residualLines(data)).toEqual([[
