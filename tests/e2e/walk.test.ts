@@ -176,10 +176,10 @@ it('a link made too strict raises one alert; its e-mail arrives, and the page it
   await onCall.goto(`${server.url}/alerts`, { waitUntil: 'networkidle' })
   await eventually(onCall, () => onCall.getByRole('link', { name: new RegExp(`^${craft}.*UHF command`) }))
   await onCall.goto(`${server.url}/demo/mail`, { waitUntil: 'networkidle' })
-  const mail = await eventually(onCall, () => onCall.getByRole('listitem').filter({ hasText: `${craft}` }).filter({ hasText: 'oncall@tern-bay.example' }))
+  const mail = await eventually(onCall, () => onCall.getByRole('listitem').filter({ hasText: `${craft}: the residual on UHF command` }).filter({ hasText: 'oncall@tern-bay.example' }))
   await mail.locator('summary').click()
   await mail.getByRole('link', { name: /\/alerts\// }).click()
-  await onCall.getByRole('heading', { name: new RegExp(craft) }).waitFor()
+  await onCall.getByRole('heading', { name: new RegExp(`^${craft}: the residual`) }).waitFor()
   await onCall.getByRole('button', { name: 'I have it' }).click()
   await onCall.getByText('Mira Anand has it').waitFor()
 
