@@ -1,6 +1,7 @@
 import type PgBoss from 'pg-boss'
 import type { Db } from '~~/server/database/client'
 import { databaseNow } from '~~/server/database/client'
+import { StillChanging } from '~~/server/domain/prediction/predict-station'
 import { describeError } from '~~/server/http/describe-error'
 import { log } from '~~/server/http/log'
 import { useBoss } from './boss'
@@ -39,8 +40,8 @@ async function work<T>(boss: PgBoss, name: keyof typeof atOnce, run: (job: PgBos
 
 /** The queue keeps an error with its job, whole: the values of a statement do not belong there, and it holds no NUL. */
 function told(name: string, error: unknown): Error {
-  // A mail that waits for its server is shown where mails are shown.
-  log[name === 'mail' ? 'info' : 'warn']({ job: name, error: describeError(error) }, 'a job did not succeed; the queue tries it again')
+  // A mail that waits for its server is shown where mails are shown; inputs that still change are everyday.
+  log[name === 'mail' || error instanceof StillChanging ? 'info' : 'warn']({ job: name, error: describeError(error) }, 'a job did not succeed; the queue tries it again')
   const message = error instanceof Error ? error.message.split('\nparams:', 1)[0]! : String(error)
   return new Error(message.replaceAll('\u0000', '').toWellFormed().slice(0, 1000))
 }

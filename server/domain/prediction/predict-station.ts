@@ -45,8 +45,11 @@ export async function predictStation({ db, now }: Pick<Deps, 'db' | 'now'>, requ
     }))
     if (outcome) return outcome
   }
-  throw new Error('What the prediction is made with kept changing: try again when the changes are done.')
+  throw new StillChanging('What the prediction is made with kept changing: try again when the changes are done.')
 }
+
+/** Nothing is wrong: whoever changes things asks anew, and the queue tries again. */
+export class StillChanging extends Error {}
 
 /** Tries again what could not get its locks in time; what has been computed stays good meanwhile, or is found not to be. */
 async function givingWay<T>(act: () => Promise<T>): Promise<T> {
