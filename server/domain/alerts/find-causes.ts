@@ -8,7 +8,10 @@ import { findPublishedTableBreaks } from './published-table-breaks'
 import { findResidualAhead } from './residual-ahead'
 import { findStationRefused } from './station-refused'
 
-const finders: Record<AlertKind, (deps: Pick<Deps, 'db' | 'now'>, scope: CauseScope) => Promise<Cause[]>> = {
+type Finder = (deps: Pick<Deps, 'db' | 'now'>, scope: CauseScope) => Promise<Cause[]>
+
+/** Kinds that are not here are raised where they happen. */
+const finders: Partial<Record<AlertKind, Finder>> = {
   'residual-ahead': findResidualAhead,
   'published-table-breaks': findPublishedTableBreaks,
   'not-collected': findNotCollected,
@@ -22,6 +25,6 @@ export const allKinds = Object.keys(finders) as AlertKind[]
 /** What calls for a person at this moment, in a fixed order: two servers that write alerts at once never wait for each other in a ring. */
 export async function findCauses(deps: Pick<Deps, 'db' | 'now'>, scope: CauseScope = {}): Promise<Cause[]> {
   const found: Cause[] = []
-  for (const kind of scope.kinds ?? allKinds) found.push(...await finders[kind](deps, scope))
+  for (const kind of scope.kinds ?? allKinds) found.push(...await finders[kind]?.(deps, scope) ?? [])
   return found.sort((one, other) => one.cause < other.cause ? -1 : one.cause > other.cause ? 1 : 0)
 }
