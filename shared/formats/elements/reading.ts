@@ -22,7 +22,7 @@ export interface ReadSet {
   readonly warnings: readonly LineNote[]
 }
 
-export type ElementFormat = 'tle' | 'omm-json'
+export type ElementFormat = 'tle' | 'omm-kvn' | 'omm-xml' | 'omm-json' | 'omm-csv'
 
 export type ElementReading =
   | {
@@ -42,6 +42,14 @@ export class SetRefusal extends Error {
   constructor(readonly line: number, readonly code: string, message: string) {
     super(message)
     this.name = 'SetRefusal'
+  }
+}
+
+/** Thrown by a reader when the file as a whole is not what it looks like; `message` says how to mend it. */
+export class FileRefusal extends Error {
+  constructor(readonly line: number, readonly code: string, message: string) {
+    super(message)
+    this.name = 'FileRefusal'
   }
 }
 

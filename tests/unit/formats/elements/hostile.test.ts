@@ -95,7 +95,8 @@ describe('hostile uploads', () => {
   it('are refused with what they look like', () => {
     const whole: [string, Uint8Array, RegExp][] = [
       ['binary', Uint8Array.of(0x50, 0x4B, 3, 4, 9, 9), /ZIP/], ['binary', Uint8Array.of(0x1F, 0x8B, 8, 0), /gzip/], ['binary', ascii('%PDF-1.7'), /PDF/], ['binary', Uint8Array.of(0x31, 0, 0x20, 0), /UTF-16 without a byte-order mark/],
-      ['html', ascii('\n <HTML lang="en">'), /web page/], ['xml', ascii('<omm/>'), /XML/], ['kvn', ascii('CCSDS_TDM_VERS = 2.0\n'), /CCSDS TDM in KVN/], ['kvn', ascii('OBJECT_NAME = A\n'), /KVN/], ['csv', ascii('a,b,c,d,e,f,g,h,i,j\n'), /CSV/], ['csv', ascii('EPOCH;MEAN_MOTION;X\n'), /CSV/],
+      ['html', ascii('\n <HTML lang="en">'), /web page/], ['missing', ascii('<omm/>'), /CENTER_NAME is missing/], ['xml-root', ascii('<?xml version="1.0"?><svg/>'), /<svg>, which is neither an OMM/], ['kvn', ascii('CCSDS_TDM_VERS = 2.0\n'), /CCSDS TDM in KVN/], ['missing', ascii('OBJECT_NAME = A\n'), /CENTER_NAME is missing/],
+      ['csv-header', ascii('a,b,c,d,e,f,g,h,i,j\n'), /does not name the columns/], ['missing', ascii('EPOCH;MEAN_MOTION;X\n'), /header row lacks ECCENTRICITY/],
       ['unknown-format', ascii('Dear all,\nplease find attached'), /begins with "Dear all,"/], ['empty', new Uint8Array(), /empty/],
     ]
     for (const [code, bytes, naming] of whole) {
