@@ -12,6 +12,7 @@ export const demoPassword = 'only-for-the-tests-7'
 export interface TestServer {
   /** Without a slash at its end. */
   url: string
+  pid: number
   /** All that it has printed. */
   log: () => string
   /** Asks it to finish, and forces it after ten seconds. */
@@ -55,7 +56,7 @@ export async function startServer({ databaseUrl, env = {}, demo = false }: Optio
   let log = ''
   for (const stream of [child.stdout, child.stderr]) stream.setEncoding('utf8').on('data', (text: string) => { log += text })
 
-  const server = { url, log: () => log, stop: async () => void await stopChild(child, 'SIGTERM', 10_000), kill: () => void child.kill('SIGKILL') }
+  const server = { url, pid: child.pid!, log: () => log, stop: async () => void await stopChild(child, 'SIGTERM', 10_000), kill: () => void child.kill('SIGKILL') }
   const deadline = Date.now() + 90_000
   for (let last = 'no answer'; ; await wait(100)) {
     try {
