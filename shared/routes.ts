@@ -130,7 +130,7 @@ export const routes = {
   'GET /api/clock': { access: person, summary: 'The server’s time', response: z.object({ now: z.string() }) },
 
   'GET /api/station/v1/tables': { access: station, summary: 'Published tables of the key’s station', query: feed.feedQuery, response: feed.feedListOut },
-  'GET /api/station/v1/tables/{id}': { access: station, summary: 'The newest published revision, as JSON or CSV', params: idParams },
+  'GET /api/station/v1/tables/{id}': { access: station, summary: 'The newest published revision, as JSON, CSV or CCSDS TDM', params: idParams },
   'POST /api/station/v1/tables/{id}/report': { access: station, summary: 'What the station did with a revision', params: idParams, body: feed.reportBody, status: 204 },
   'GET /api/station/v1/keys': { access: station, summary: 'Public keys that signatures verify with', response: feed.jwkSetOut },
 

@@ -1,6 +1,7 @@
 import { and, desc, eq, isNotNull } from 'drizzle-orm'
 import type { ServedTable } from '#shared/formats/published-table'
 import { tableCsv } from '#shared/formats/table-csv'
+import { tableTdm } from '#shared/formats/table-tdm'
 import { passes, tableRevisions, tables } from '~~/server/database/schema'
 import type { Deps } from '../context'
 import { DomainError } from '../errors'
@@ -21,8 +22,10 @@ export async function readFeedTable({ db }: Pick<Deps, 'db'>, { stationId, table
   return { revisionId: id, tableId, revision: number, isCollected: state !== 'published', canonical: canonical!, digest: digest!, signature: signature! }
 }
 
-/** What is sent: the canonical JSON as it was signed, with digest and signature added; or the same as CSV. */
+/** What is sent: the canonical JSON as it was signed, with digest and signature added; or the same as CSV or CCSDS TDM. */
 export function writeFeedTable({ canonical, digest, signature }: FeedTable, notation: Notation): string {
   const json = `${canonical.slice(0, -1)},"digest":${JSON.stringify(digest)},"signature":${JSON.stringify(signature)}}`
-  return notation === 'json' ? json : tableCsv(JSON.parse(json) as ServedTable)
+  if (notation === 'json') return json
+  const table = JSON.parse(json) as ServedTable
+  return notation === 'csv' ? tableCsv(table) : tableTdm(table)
 }

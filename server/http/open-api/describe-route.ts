@@ -70,7 +70,7 @@ const stationTableAnswers = {
   200: {
     description: 'The newest published revision; sent whole, it counts as collected',
     headers: { ETag: { description: 'Digest and notation', ...text }, Vary: text },
-    content: { 'application/json': { schema: { type: 'object' } }, 'text/csv': text },
+    content: { 'application/json': { schema: { type: 'object' } }, 'text/csv': text, 'text/plain': text },
   },
   304: { description: 'Nothing newer than what If-None-Match names; counts as collected' },
 }

@@ -19,6 +19,7 @@ import { publishRevision } from '../../../server/domain/tables/publish-revision'
 import type { TestDatabase } from '../../support/database'
 import { createTestDatabase } from '../../support/database'
 import type { SpacecraftFixture, StationFixture } from '../../support/fixtures'
+import { readTdm } from '../../unit/formats/tdm-reader'
 import { addPass, addPerson, addRevision, addSpacecraft, addStation, addTable, presentDigest } from '../../support/fixtures'
 
 // The feed over a real connection. Conditional requests and negotiation: RFC 9110, sections 12.5.1, 13.1.2 and 15.4.5.
@@ -117,6 +118,16 @@ describe('fetching a table', () => {
     expect([cell('at'), Number(cell('frequencyHz')), Number(cell('lossDb')), cell('digest')]).toEqual([json.retunes[0]!.at, json.retunes[0]!.frequencyHz, json.retunes[0]!.lossDb, json.digest])
   })
 
+  it('gives a Tracking Data Message with the same rows, marked as a plan, with digest and signature in it and beside it', async () => {
+    const json = await (await get(`/tables/${table.id}`)).json() as { retunes: { frequencyHz: number }[], digest: string, signature: string }
+    const response = await get(`/tables/${table.id}`, { accept: 'text/plain' })
+    expect([response.headers.get('content-type'), response.headers.get('etag'), response.headers.get('table-signature'), response.headers.get('table-digest')])
+      .toEqual(['text/plain; charset=utf-8', `"${json.digest}-tdm"`, json.signature, `sha-256=${json.digest}`])
+    const message = readTdm(await response.text())
+    expect(message.comments.header).toEqual(expect.arrayContaining([expect.stringMatching(/^PLAN, NOT A MEASUREMENT/), `Digest ${json.digest}`, `Signature ${json.signature}`]))
+    expect(message.records.map(({ value }) => value)).toEqual(json.retunes.map(({ frequencyHz }) => frequencyHz))
+  })
+
   it('answers 304 to the tag of the same notation, which collects; * and other tags do not', async () => {
     const { digest } = await revisionOf(table.id)
     for (const [headers, status] of [[{ 'if-none-match': '*' }, 304], [{ 'accept': 'text/csv', 'if-none-match': '"something-else"' }, 200]] as const) {
@@ -138,6 +149,7 @@ describe('fetching a table', () => {
     expect(await typeFor('*/*')).toBe('application/json')
     expect(await typeFor('text/csv;q=0.9, application/json;q=0.5')).toBe('text/csv')
     expect(await typeFor('application/json;q=0, */*;q=0.1')).toBe('text/csv')
+    expect(await typeFor('text/plain')).toBe('text/plain')
     expect((await get(`/tables/${table.id}`, { accept: 'image/png' })).status).toBe(406)
     expect(await typeFor('image/png')).toBe('application/problem+json')
   })
