@@ -123,6 +123,8 @@ export const routes = {
   'GET /api/keys': { access: may('keys:manage'), summary: 'Keys', query: pageQuery, response: listOf(people.keyOut) },
   'POST /api/keys': { access: may('keys:manage'), summary: 'Make a key; shown once', body: people.createKeyBody, response: people.keyCreated, status: 201 },
   'DELETE /api/keys/{id}': { access: may('keys:manage'), summary: 'Revoke a key', params: idParams, status: 204 },
+  'GET /api/signing-keys': { access: may('keys:manage'), summary: 'Keys that sign tables', response: listOf(feed.signingKeyOut) },
+  'POST /api/signing-keys': { access: may('keys:manage'), summary: 'Make a new signing key; the one before signs no more', response: feed.signingKeyOut, status: 201 },
   'GET /api/settings': { access: read, summary: 'Settings', response: settings.settingsOut },
   'PATCH /api/settings': { access: may('settings:edit'), summary: 'Change settings', body: settings.changeSettingsBody, response: settings.settingsOut },
   'GET /api/slots': { access: read, summary: 'What the schedule did and will do', response: settings.slotsOut },

@@ -102,6 +102,8 @@ export const expectedAccess: Record<string, Expected> = {
   'GET /api/keys': administrator,
   'POST /api/keys': administrator,
   'DELETE /api/keys/{id}': administrator,
+  'GET /api/signing-keys': administrator,
+  'POST /api/signing-keys': administrator,
   'GET /api/settings': reading,
   'PATCH /api/settings': administrator,
   'GET /api/slots': reading,
