@@ -38,11 +38,12 @@ const kids = async (days: number) => (await readKeys(at(days))).keys.map(({ kid 
 
 /** By Node's own crypto (RFC 8037), with the key that the signature's header names. */
 async function verifies(tableId: string, days: number): Promise<boolean> {
-  const { canonical, digest, signature } = await readFeedTable({ db: test.db }, { stationId: station.id, tableId }) as { canonical: string, digest: string, signature: string }
+  const { revisionId, digest, signature } = await readFeedTable({ db: test.db }, { stationId: station.id, tableId })
+  const [row] = await test.db.select({ canonical: tableRevisions.canonical }).from(tableRevisions).where(eq(tableRevisions.id, revisionId))
   const [header, , mark] = signature.split('.') as [string, string, string]
   const { kid } = JSON.parse(Buffer.from(header, 'base64url').toString()) as { kid: string }
   const jwk = (await readKeys(at(days))).keys.find(key => key.kid === kid)
-  const bytes = Buffer.from(canonical)
+  const bytes = Buffer.from(row!.canonical!)
   return jwk !== undefined && createHash('sha256').update(bytes).digest('hex') === digest
     && verify(null, Buffer.from(`${header}.${bytes.toString('base64url')}`), createPublicKey({ key: jwk, format: 'jwk' }), Buffer.from(mark, 'base64url'))
 }
