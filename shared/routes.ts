@@ -7,6 +7,7 @@ import * as elements from './schemas/elements'
 import * as links from './schemas/links'
 import * as people from './schemas/people'
 import * as predictions from './schemas/predictions'
+import * as quiet from './schemas/quiet-spans'
 import * as settings from './schemas/settings'
 import * as spacecraft from './schemas/spacecraft'
 import * as feed from './schemas/station-feed'
@@ -107,6 +108,10 @@ export const routes = {
   'POST /api/tables/{id}/release': { access: may('tables:decide'), summary: 'Release a held table', params: idParams, body: tables.decideBody, response: tables.tableBrief },
   'POST /api/tables/{id}/publish': { access: may('tables:decide'), summary: 'Publish now', params: idParams, body: tables.decideBody, response: tables.tableBrief },
   'POST /api/tables/{id}/withdraw': { access: may('tables:decide'), summary: 'Withdraw what is published, with a reason', params: idParams, body: tables.withdrawBody, response: tables.tableBrief },
+
+  'GET /api/quiet-spans': { access: read, summary: 'Spans in which no retune takes effect, the latest first', query: quiet.quietSpansQuery, response: listOf(quiet.quietSpanOut) },
+  'POST /api/quiet-spans': { access: may('tables:decide'), summary: 'Enter a quiet span; the tables it concerns are planned around it', body: quiet.createQuietSpanBody, response: quiet.quietSpanOut, status: 201, creates: true },
+  'POST /api/quiet-spans/{id}/cancel': { access: may('tables:decide'), summary: 'Cancel a quiet span that has not ended', params: idParams, body: quiet.cancelQuietSpanBody, response: quiet.quietSpanOut },
 
   'GET /api/alerts': { access: read, summary: 'Alerts', query: alerts.alertsQuery, response: listOf(alerts.alertOut) },
   'GET /api/alerts/{id}': { access: read, summary: 'One alert', params: idParams, response: alerts.alertOut },

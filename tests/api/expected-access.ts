@@ -86,6 +86,11 @@ export const expectedAccess: Record<string, Expected> = {
   'POST /api/tables/{id}/publish': decidingOnTables,
   'POST /api/tables/{id}/withdraw': decidingOnTables,
 
+  // Operators decide when a radio is left alone.
+  'GET /api/quiet-spans': reading,
+  'POST /api/quiet-spans': decidingOnTables,
+  'POST /api/quiet-spans/{id}/cancel': decidingOnTables,
+
   'GET /api/alerts': reading,
   'GET /api/alerts/{id}': reading,
   // The operator for decisions due only; which alert it is, is decided on the alert itself.

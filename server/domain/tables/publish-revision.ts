@@ -4,6 +4,7 @@ import { tableRevisions } from '~~/server/database/schema'
 import { recordAudits } from '../audit'
 import type { Deps } from '../context'
 import { loadInputs } from '../prediction/load-inputs'
+import { tableDigest } from '../prediction/quiet-spans'
 import { requestRefresh } from '../prediction/request-refresh'
 import type { LockedTable, RevisionRow } from './lock-table'
 import { lockTable } from './lock-table'
@@ -69,9 +70,10 @@ function refusalOf({ open, newest, pass, station }: LockedTable, { mover, revisi
 }
 
 /** Whether the rows are still what the present inputs lead to: a change asks for a computation, which may not have run yet. */
-async function isCurrent(deps: Deps, { craft, station, link }: LockedTable, open: RevisionRow): Promise<boolean> {
+async function isCurrent(deps: Deps, { craft, station, link, pass }: LockedTable, open: RevisionRow): Promise<boolean> {
   const { stopped, served } = await loadInputs(deps, { spacecraftId: craft.id, stationId: station.id })
-  return stopped === null && served.some(candidate => candidate.link.id === link.id && candidate.digest === open.inputsDigest)
+  const times = { aosMs: pass.aos.getTime(), losMs: pass.los.getTime() }
+  return stopped === null && served.some(candidate => candidate.link.id === link.id && tableDigest(candidate, times) === open.inputsDigest)
 }
 
 async function publish(deps: Deps, table: LockedTable, open: RevisionRow): Promise<PublishOutcome> {

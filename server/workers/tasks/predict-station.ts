@@ -2,15 +2,16 @@ import { createEphemeris } from '#shared/physics/orbit/ephemeris'
 import { findPasses } from '#shared/physics/orbit/passes'
 import { createPropagator } from '#shared/physics/orbit/propagator'
 import { buildTable, residualOfRows } from '#shared/physics/predict/build-table'
-import type { Ephemeris, LinkModel, MeanElements, PredictedPass, PropagationError, RadioModel, RetuneRow, Site, UtcMs, Verdict } from '#shared/physics/types'
+import type { Ephemeris, LinkModel, MeanElements, PredictedPass, PropagationError, RadioModel, RetuneRow, Site, Span, UtcMs, Verdict } from '#shared/physics/types'
 import { needsNewRevision } from '#shared/table-life'
 import type { StoredCheck, StoredRetune } from '~~/server/database/schema'
 import { identityToleranceMs, matchPasses } from '~~/server/domain/prediction/match-passes'
 import type { BudgetParameters } from '~~/server/domain/prediction/models'
+import { quietDuring } from '~~/server/domain/prediction/quiet-during'
 import { budgetModelOf } from './budget-model'
 import { isoOf, storedCheck, storedRetune } from './stored-table'
 
-export interface LinkTask { linkId: string, model: LinkModel, minElevationRad: number, radioModel: RadioModel, budget: BudgetParameters, firstRowLeadMs: number }
+export interface LinkTask { linkId: string, model: LinkModel, minElevationRad: number, radioModel: RadioModel, budget: BudgetParameters, firstRowLeadMs: number, quiet: Span[] }
 
 /** What is to be done for a table that exists: rows that are out are rechecked, a plan is made or not. */
 export interface KnownTableTask {
@@ -80,7 +81,8 @@ export function predictStation(input: PredictStationInput): PredictStationOutput
 
 function predictTable(task: LinkTask, known: KnownTableTask | undefined, { ephemeris, site, pass }: { ephemeris: Ephemeris, site: Site, pass: PredictedPass }): PredictedTable {
   const { linkId, model: link, minElevationRad: linkMinElevationRad, radioModel: radio } = task
-  const query = { propagator: ephemeris.propagator, ephemeris, site, link, linkMinElevationRad, radio, budget: budgetModelOf(task.budget), pass }
+  const quiet = quietDuring(task.quiet, pass, task.firstRowLeadMs)
+  const query = { propagator: ephemeris.propagator, ephemeris, site, link, linkMinElevationRad, radio, budget: budgetModelOf(task.budget), pass, quiet }
 
   let recheck: Recheck | null = null
   if (known?.out) {
