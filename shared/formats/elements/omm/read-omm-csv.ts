@@ -9,8 +9,8 @@ import { spellKeyword } from './keywords'
 import { nameOf, parseOmm } from './parse-omm'
 
 const MARKS = { ',': 'commas', ';': 'semicolons', '\t': 'tabs' } as const
-/** What writers of CSV put before a text that a spreadsheet would run. */
-const GUARDED = /^'[=+\-@\t]/
+/** Writers of CSV put an apostrophe before a text that a spreadsheet would run. */
+const GUARDED = /^'+[=+\-@\t]/
 
 function entriesOf(header: CsvHeader, fields: readonly string[], line: number): OmmEntry[] {
   const entries: OmmEntry[] = []

@@ -9,7 +9,7 @@ import { nameOf, parseOmm } from './parse-omm'
 
 /** More than any message of the standard has, user-defined keywords included. */
 const MOST_LINES = 1000
-const LONGEST_KEY = 60
+const LONGEST_KEY = 200
 const VERSION = /^CCSDS_([A-Z]{2,8})_VERS$/
 
 interface Message {
