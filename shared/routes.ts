@@ -66,6 +66,8 @@ export const routes = {
   'GET /api/element-sets/uploads/{id}': { access: may('read', 'read', 'elements:write'), summary: 'One upload and its report', params: idParams, response: elements.uploadOut },
   'GET /api/element-sets': { access: read, summary: 'Element sets, newest epoch first', query: elements.elementSetsQuery, response: listOf(elements.elementSetOut) },
   'GET /api/element-sets/{id}': { access: read, summary: 'One element set', params: idParams, response: elements.elementSetOut },
+  'GET /api/element-sets/download': { access: read, summary: 'Up to 100 element sets as one file, in the order asked for', query: elements.downloadSetsQuery },
+  'GET /api/element-sets/{id}/download': { access: read, summary: 'One element set as a file: TLE, or OMM as KVN, XML, JSON or CSV', params: idParams, query: elements.downloadQuery },
   'GET /api/element-sets/{id}/comparison': { access: read, summary: 'Shift of prediction against the set in use', params: idParams, response: elements.comparisonOut },
   'POST /api/element-sets/{id}/use': { access: may('elements:decide'), summary: 'Put into use; a past set: roll back', params: idParams, response: elements.elementSetOut },
   'POST /api/element-sets/{id}/refuse': { access: may('elements:decide'), summary: 'Refuse a waiting set', params: idParams, body: elements.refuseSetBody, response: elements.elementSetOut },

@@ -1,4 +1,5 @@
 import { z } from 'zod'
+import { ELEMENT_NOTATIONS } from '../formats/elements/write/written'
 import { idSchema, instantOut, pageQuery, reasonSchema } from './common'
 
 export const noteOut = z.object({ line: z.number().int(), name: z.string().optional(), code: z.string(), message: z.string() })
@@ -23,6 +24,13 @@ export type UploadOut = z.infer<typeof uploadOut>
 
 export const elementSetState = z.enum(['waiting', 'in-use', 'past', 'refused'])
 export const elementSetsQuery = pageQuery.extend({ spacecraftId: idSchema.optional(), state: elementSetState.optional(), unassigned: z.enum(['true', 'false']).optional() })
+const elementNotation = z.enum(ELEMENT_NOTATIONS, { error: `Name a notation: ${ELEMENT_NOTATIONS.join(', ')}.` })
+export const downloadQuery = z.strictObject({ notation: elementNotation })
+export const downloadSetsQuery = z.strictObject({
+  notation: elementNotation,
+  /** Parted by commas. */
+  ids: z.string().max(4000).transform(text => [...new Set(text.split(','))]).pipe(z.array(idSchema).min(1).max(100)).meta({ type: 'string' }),
+})
 export const elementSetOut = z.object({
   id: idSchema,
   uploadId: idSchema,

@@ -42,6 +42,8 @@ export const expectedAccess: Record<string, Expected> = {
   'GET /api/element-sets/uploads': reading,
   'GET /api/element-sets': reading,
   'GET /api/element-sets/{id}': reading,
+  'GET /api/element-sets/{id}/download': reading,
+  'GET /api/element-sets/download': reading,
   'GET /api/element-sets/{id}/comparison': reading,
   'POST /api/element-sets/{id}/use': flightDynamics,
   'POST /api/element-sets/{id}/refuse': flightDynamics,

@@ -57,6 +57,7 @@ const uploadBody = {
 
 function describeAnswers(path: string, spec: RouteSpec): Record<string, object> {
   if (path === '/api/station/v1/tables/{id}') return stationTableAnswers
+  if (path.startsWith('/api/element-sets/') && path.endsWith('/download')) return elementFileAnswers
   const status = String(spec.status ?? 200)
   const content = spec.response ? { content: { 'application/json': { schema: toSchema(spec.response, 'output') } } } : {}
   const answers: Record<string, object> = { [status]: { description: status === '204' ? 'Done' : status === '201' ? 'Created' : 'As asked', ...content } }
@@ -75,9 +76,17 @@ const stationTableAnswers = {
   304: { description: 'Nothing newer than what If-None-Match names; counts as collected' },
 }
 
+const elementFileAnswers = {
+  200: {
+    description: 'A file in the notation asked for',
+    headers: { 'Content-Disposition': { description: 'Names the file', ...text }, 'Rounded-Values': { description: 'Keywords whose values a TLE rounds; absent where none is', ...text } },
+    content: { 'text/plain': text, 'application/xml': text, 'application/json': { schema: { type: 'array', items: { type: 'object' } } }, 'text/csv': text },
+  },
+}
+
 function errorsOf(method: string, path: string, spec: RouteSpec): ErrorCode[] {
   const errors: ErrorCode[] = spec.access.kind === 'public' ? [] : ['not-signed-in', 'not-allowed']
-  if (spec.params || path.startsWith('/api/auth/links/')) errors.push('not-found')
+  if (spec.params || path.startsWith('/api/auth/links/') || path === '/api/element-sets/download') errors.push('not-found')
   if (spec.query || spec.body || spec.rawBody) errors.push('not-valid')
   if (spec.body || spec.rawBody) errors.push('unreadable', 'too-large', 'wrong-type')
   if (method !== 'GET') errors.push('conflict')
