@@ -13,6 +13,7 @@ import * as spacecraft from './schemas/spacecraft'
 import * as feed from './schemas/station-feed'
 import * as stations from './schemas/stations'
 import * as tables from './schemas/tables'
+import * as webHooks from './schemas/web-hooks'
 
 /**
  * Every route of the HTTP interface: who may, what comes in, what goes out. Handlers are written against a line of
@@ -122,6 +123,14 @@ export const routes = {
   'GET /api/mails': { access: may('settings:edit'), summary: 'Mail sent, waiting and failed', query: pageQuery, response: listOf(alerts.mailOut) },
   'POST /api/mails/{id}/retry': { access: may('settings:edit'), summary: 'Try a failed mail again', params: idParams, response: alerts.mailOut },
   'GET /api/demo/mail': { access: read, summary: 'What the local SMTP server received', query: pageQuery, response: listOf(alerts.receivedMailOut) },
+
+  'GET /api/web-hooks': { access: may('settings:edit'), summary: 'Web hooks, newest first', query: pageQuery, response: listOf(webHooks.webHookOut) },
+  'POST /api/web-hooks': { access: may('settings:edit'), summary: 'Make a web hook; its secret is shown once', body: webHooks.createWebHookBody, response: webHooks.webHookCreated, status: 201 },
+  'PATCH /api/web-hooks/{id}': { access: may('settings:edit'), summary: 'Change a web hook; switch it off or on', params: idParams, body: webHooks.changeWebHookBody, response: webHooks.webHookOut },
+  'DELETE /api/web-hooks/{id}': { access: may('settings:edit'), summary: 'Retire a web hook', params: idParams, status: 204 },
+  'POST /api/web-hooks/{id}/test': { access: may('settings:edit'), summary: 'Send a message that is only a test', params: idParams, response: webHooks.deliveryOut },
+  'GET /api/web-hooks/{id}/deliveries': { access: may('settings:edit'), summary: 'What a web hook was told, newest first', params: idParams, query: pageQuery, response: listOf(webHooks.deliveryOut) },
+  'POST /api/web-hook-deliveries/{id}/repeat': { access: may('settings:edit'), summary: 'Send a message once more', params: idParams, response: webHooks.deliveryOut },
 
   'GET /api/people': { access: may('people:manage'), summary: 'People', query: pageQuery, response: listOf(people.personListed) },
   'POST /api/people': { access: may('people:manage'), summary: 'Invite a person', body: people.invitePersonBody, response: people.personListed, status: 201, creates: true },

@@ -7,6 +7,7 @@ export interface Jobs {
   /** Recompute passes and tables of one spacecraft at one station. */
   'predict': { spacecraftId: string, stationId: string, reason: string }
   'mail': { mailId: string }
+  'web-hook': { deliveryId: string }
 }
 export type JobName = keyof Jobs
 

@@ -102,6 +102,14 @@ export const expectedAccess: Record<string, Expected> = {
   'POST /api/mails/{id}/retry': administrator,
   'GET /api/demo/mail': reading,
 
+  'GET /api/web-hooks': administrator,
+  'POST /api/web-hooks': administrator,
+  'PATCH /api/web-hooks/{id}': administrator,
+  'DELETE /api/web-hooks/{id}': administrator,
+  'POST /api/web-hooks/{id}/test': administrator,
+  'GET /api/web-hooks/{id}/deliveries': administrator,
+  'POST /api/web-hook-deliveries/{id}/repeat': administrator,
+
   'GET /api/people': administrator,
   'POST /api/people': administrator,
   'PATCH /api/people/{id}': administrator,

@@ -7,6 +7,7 @@ import { findPublicationFailed } from './publication-failed'
 import { findPublishedTableBreaks } from './published-table-breaks'
 import { findResidualAhead } from './residual-ahead'
 import { findStationRefused } from './station-refused'
+import { findWebHookFailing } from './web-hook-failing'
 
 type Finder = (deps: Pick<Deps, 'db' | 'now'>, scope: CauseScope) => Promise<Cause[]>
 
@@ -19,6 +20,7 @@ const finders: Partial<Record<AlertKind, Finder>> = {
   'publication-failed': findPublicationFailed,
   'decision-due': findDecisionDue,
   'station-refused': findStationRefused,
+  'web-hook-failing': findWebHookFailing,
 }
 export const allKinds = Object.keys(finders) as AlertKind[]
 

@@ -10,6 +10,7 @@ import type { AlertKind, Severity } from './cause'
 /** A call goes to on-call; a notice to those whose work it is. */
 function rolesFor(kind: AlertKind, severity: Severity): Role[] {
   if (severity === 'call') return ['on-call']
+  if (kind === 'web-hook-failing') return ['administrator']
   return kind === 'decision-due' ? ['operator'] : ['flight-dynamics', 'on-call']
 }
 

@@ -6,6 +6,8 @@ import type { Deps } from '../context'
 import { loadInputs } from '../prediction/load-inputs'
 import { tableDigest } from '../prediction/quiet-spans'
 import { requestRefresh } from '../prediction/request-refresh'
+import { tableEvent } from '../web-hooks/table-event'
+import { tellHooks } from '../web-hooks/tell-hooks'
 import type { LockedTable, RevisionRow } from './lock-table'
 import { lockTable } from './lock-table'
 import { publishedTableOf } from './published-table-of'
@@ -90,5 +92,7 @@ async function publish(deps: Deps, table: LockedTable, open: RevisionRow): Promi
   await db.update(tableRevisions).set({ state: 'published', publishedAt: now, publishedBy: actor.name, updatedAt: now, ...signed }).where(eq(tableRevisions.id, open.id))
   audits.push(stateAudit('table.publish', { tableId: table.id, revisionId: open.id, revision: open.number, from: open.state, to: 'published', reason: open.reason }))
   await recordAudits(deps, audits)
+  if (out) await tellHooks(deps, 'table.superseded', tableEvent(table, out, { by: open.number, reason }))
+  await tellHooks(deps, 'table.published', tableEvent(table, open, { digest: signed.digest, supersedes: out?.number ?? null, publishedBy: actor.name }))
   return { outcome: 'published', revisionId: open.id, revision: open.number, supersedes: out?.number ?? null }
 }
