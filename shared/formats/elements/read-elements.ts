@@ -5,14 +5,14 @@ import { readOmmCsv } from './omm/read-omm-csv'
 import { readOmmJson } from './omm/read-omm-json'
 import { readOmmKvn } from './omm/read-omm-kvn'
 import { readOmmXml } from './omm/read-omm-xml'
-import type { ElementFormat, ElementReading } from './reading'
+import type { ElementFormat, ElementReading, LineNote, ReadSet, ReadingEnd, SetSink } from './reading'
 import { FileRefusal, refusedWhole } from './reading'
 import { recogniseFormat } from './recognise-format'
 import { SetCollector, TooManySets } from './set-collector'
 import { readTle } from './tle/read-tle'
 import { XmlError } from './xml/xml-error'
 
-export type { ElementFormat, ElementReading, LineNote, ReadSet } from './reading'
+export type { ElementFormat, ElementReading, LineNote, ReadSet, ReadingEnd, SetSink } from './reading'
 
 /** The most sets that one upload may bring, unless the caller says less. */
 export const MOST_SETS = 200_000
@@ -50,12 +50,20 @@ const MENDS: Record<JsonError['code'] | XmlError['code'], string> = {
  * Refused whole: what is no such file, broken JSON or XML, more sets than the limit, and a file of which no set can be taken.
  * Never throws, whatever the bytes.
  */
-export function readElements(bytes: Uint8Array, { nowMs, limit = MOST_SETS, fileName = null }: ReadElementsOptions): ElementReading {
+export function readElements(bytes: Uint8Array, options: ReadElementsOptions): ElementReading {
+  const [sets, refusals, warnings]: [ReadSet[], LineNote[], LineNote[]] = [[], [], []]
+  const end = readElementsInto(bytes, options, { set: (set) => { sets.push(set) }, refusal: (note) => { refusals.push(note) }, warning: (note) => { warnings.push(note) } })
+  if (end.kind === 'refused') return { ...end, errors: end.errors ?? refusals }
+  return { kind: 'read', format: end.format, sets, refusals, warnings, repeated: end.repeated }
+}
+
+/** The same, handing each finding to a sink as soon as it is made, so that a large file is never held as sets. */
+export function readElementsInto(bytes: Uint8Array, { nowMs, limit = MOST_SETS, fileName = null }: ReadElementsOptions, sink: SetSink): ReadingEnd {
   const decoded = decodeText(bytes)
   if (!decoded.ok) return refusedWhole(1, decoded.code, decoded.message)
   const recognised = recogniseFormat(decoded.text)
   if (!recognised.ok) return refusedWhole(recognised.line, recognised.code, recognised.message)
-  const collector = new SetCollector(nowMs, limit)
+  const collector = new SetCollector(nowMs, limit, sink)
   const misnamed = fileName === null ? null : checkFileName(fileName, recognised.format)
   if (misnamed) collector.warn(1, 'file-name', misnamed)
   try {
