@@ -45,6 +45,8 @@ const open = (why: string): Access => ({ kind: 'public', why })
 const person: Access = { kind: 'person' }
 const may = (permission: Permission, ...keys: KeyScope[]): Access => ({ kind: 'permission', permission, keys })
 const read = may('read', 'read')
+/** Keys made for uploading may read what became of an upload. */
+const sent = may('read', 'read', 'elements:write')
 const station: Access = { kind: 'station-key' }
 
 export const uploadLimitBytes = 50 * 1024 * 1024
@@ -63,8 +65,12 @@ export const routes = {
   'POST /api/bench/loss': { access: may('read', 'read', 'elements:write', 'station', 'metrics'), summary: 'Loss at an offset', body: bench.benchLossBody, response: bench.benchLossOut },
 
   'POST /api/element-sets/uploads': { access: may('elements:upload', 'elements:write'), summary: 'Upload element sets', rawBody: true, creates: true, response: elements.uploadOut, status: 201, bodyLimit: uploadLimitBytes },
-  'GET /api/element-sets/uploads': { access: read, summary: 'Uploads, newest first', query: pageQuery, response: listOf(elements.uploadOut.omit({ sets: true, refusals: true, warnings: true })) },
-  'GET /api/element-sets/uploads/{id}': { access: may('read', 'read', 'elements:write'), summary: 'One upload and its report', params: idParams, response: elements.uploadOut },
+  'GET /api/element-sets/uploads': { access: read, summary: 'Uploads, newest first', query: elements.uploadsQuery, response: listOf(elements.uploadBrief) },
+  'GET /api/element-sets/uploads/{id}': { access: sent, summary: 'One upload and its report', params: idParams, response: elements.uploadOut },
+  'GET /api/element-sets/uploads/{id}/notes': { access: sent, summary: 'Refusals or warnings of an upload, by line', params: idParams, query: elements.uploadNotesQuery, response: listOf(elements.noteOut) },
+  'GET /api/element-sets/uploads/{id}/report.csv': { access: sent, summary: 'The whole report of an upload, line by line, as CSV', params: idParams },
+  'GET /api/element-sets/uploads/{id}/events': { access: sent, summary: 'State and counts of an upload as they change, as server-sent events of the name upload, until it has ended', params: idParams },
+  'POST /api/element-sets/uploads/{id}/cancel': { access: may('elements:upload', 'elements:write'), summary: 'Give an upload up that is not finished; nothing of it is stored', params: idParams, response: elements.uploadOut },
   'GET /api/element-sets': { access: read, summary: 'Element sets, newest epoch first', query: elements.elementSetsQuery, response: listOf(elements.elementSetOut) },
   'GET /api/element-sets/{id}': { access: read, summary: 'One element set', params: idParams, response: elements.elementSetOut },
   'GET /api/element-sets/download': { access: read, summary: 'Up to 100 element sets as one file, in the order asked for', query: elements.downloadSetsQuery },

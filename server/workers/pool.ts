@@ -1,11 +1,12 @@
 import { existsSync } from 'node:fs'
 import { availableParallelism } from 'node:os'
 import { fileURLToPath } from 'node:url'
+import type { MessagePort } from 'node:worker_threads'
 import Piscina from 'piscina'
 import type { TaskInput, TaskName, TaskOutput } from './tasks'
 
-/** Predictions under way are not to keep people waiting for what they have just asked, nor one long what-if everybody else. */
-const lanes = { 'predict-station': 'jobs', 'read-elements': 'jobs', 'compare-sets': 'asked', 'pass-samples': 'asked', 'learn-accuracy': 'asked', 'bench-predict': 'bench' } as const satisfies Record<TaskName, string>
+/** Predictions under way are not to keep people waiting for what they have just asked, nor one long what-if everybody else, nor anything an upload. */
+const lanes = { 'predict-station': 'jobs', 'read-upload': 'uploads', 'compare-sets': 'asked', 'pass-samples': 'asked', 'learn-accuracy': 'asked', 'bench-predict': 'bench' } as const satisfies Record<TaskName, string>
 const pools = new Map<string, Piscina>()
 
 /** The bundle lies beside the built server; the development server and tests name it by NULLBEAT_WORKER. */
@@ -14,6 +15,9 @@ function workerFile(): string | null {
   return candidates.find((file): file is string => !!file && existsSync(file)) ?? null
 }
 
+/** Whether there is a bundle to run in threads; without one (unit tests) tasks run here. */
+export const hasThreads = (): boolean => workerFile() !== null
+
 /** Thrown when a task is stopped at its time limit, or outgrows its thread's memory. */
 export class TaskTooHeavy extends Error {}
 
@@ -21,14 +25,14 @@ export class TaskTooHeavy extends Error {}
  * Runs a task in a worker thread. Without a bundle (unit tests) it runs here. A task that others' input makes heavy is
  * given `limitMs`; past it its thread is ended and TaskTooHeavy thrown.
  */
-export async function runTask<N extends TaskName>(name: N, input: TaskInput<N>, { limitMs }: { limitMs?: number } = {}): Promise<TaskOutput<N>> {
+export async function runTask<N extends TaskName>(name: N, input: TaskInput<N>, { limitMs, transferList }: { limitMs?: number, transferList?: readonly MessagePort[] } = {}): Promise<TaskOutput<N>> {
   const pool = poolOf(lanes[name])
   if (!pool) {
     const { default: run } = await import('./predict')
     return run({ name, input })
   }
   try {
-    return await pool.run({ name, input }, limitMs === undefined ? {} : { signal: AbortSignal.timeout(limitMs) })
+    return await pool.run({ name, input }, { ...(limitMs === undefined ? {} : { signal: AbortSignal.timeout(limitMs) }), ...(transferList ? { transferList } : {}) })
   }
   catch (error) {
     if (error instanceof Error && (error.name === 'AbortError' || (error as { code?: unknown }).code === 'ERR_WORKER_OUT_OF_MEMORY')) throw new TaskTooHeavy(`${name} was stopped`)

@@ -3,24 +3,41 @@ import { ELEMENT_NOTATIONS } from '../formats/elements/write/written'
 import { idSchema, instantOut, pageQuery, reasonSchema } from './common'
 
 export const noteOut = z.object({ line: z.number().int(), name: z.string().optional(), code: z.string(), message: z.string() })
-export const uploadOut = z.object({
+export type NoteOut = z.infer<typeof noteOut>
+
+export const uploadState = z.enum(['receiving', 'reading', 'finished', 'cancelled', 'failed'])
+export const uploadSource = z.enum(['file', 'paste', 'api', 'folder', 'demo'])
+export const uploadBrief = z.object({
   id: idSchema,
-  state: z.enum(['receiving', 'reading', 'finished', 'cancelled', 'failed']),
+  state: uploadState,
   format: z.string().nullable(),
   fileName: z.string().nullable(),
   by: z.string(),
+  source: uploadSource,
   at: instantOut,
+  finishedAt: instantOut.nullable(),
   readBytes: z.number().int(),
   totalBytes: z.number().int(),
   accepted: z.number().int(),
   alreadyHeld: z.number().int(),
   refused: z.number().int(),
+  /** Why nothing was taken, where nothing was. */
+  detail: z.string().nullable(),
+  /** Somebody has asked for it to be given up. */
+  cancelling: z.boolean(),
+})
+export type UploadBrief = z.infer<typeof uploadBrief>
+export const uploadOut = uploadBrief.extend({
+  warned: z.number().int(),
+  /** The first thousand by line; the rest is paged under `notes`. */
   refusals: z.array(noteOut),
   warnings: z.array(noteOut),
-  /** Sets this upload brought, and those it brought again. */
+  /** Sets this upload brought, and those it brought again: the first thousand by line. */
   sets: z.array(z.object({ id: idSchema, line: z.number().int(), name: z.string().nullable(), catalogueNumber: z.string().nullable(), epoch: instantOut, spacecraftId: idSchema.nullable(), spacecraftName: z.string().nullable(), state: z.string() })),
 })
 export type UploadOut = z.infer<typeof uploadOut>
+export const uploadsQuery = pageQuery.extend({ inHand: z.enum(['true', 'false']).optional(), source: uploadSource.optional() })
+export const uploadNotesQuery = pageQuery.extend({ kind: z.enum(['refusal', 'warning']).default('refusal') })
 
 export const elementSetState = z.enum(['waiting', 'in-use', 'past', 'refused'])
 export const elementSetsQuery = pageQuery.extend({ spacecraftId: idSchema.optional(), state: elementSetState.optional(), unassigned: z.enum(['true', 'false']).optional() })

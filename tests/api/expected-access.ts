@@ -38,7 +38,11 @@ export const expectedAccess: Record<string, Expected> = {
 
   // Uploading: everybody but readers, and keys made for it, which may also read the report of what they sent.
   'POST /api/element-sets/uploads': to('FOCA', 'elements:write'),
+  'POST /api/element-sets/uploads/{id}/cancel': to('FOCA', 'elements:write'),
   'GET /api/element-sets/uploads/{id}': to('FOCAR', 'read', 'elements:write'),
+  'GET /api/element-sets/uploads/{id}/notes': to('FOCAR', 'read', 'elements:write'),
+  'GET /api/element-sets/uploads/{id}/report.csv': to('FOCAR', 'read', 'elements:write'),
+  'GET /api/element-sets/uploads/{id}/events': to('FOCAR', 'read', 'elements:write'),
   'GET /api/element-sets/uploads': reading,
   'GET /api/element-sets': reading,
   'GET /api/element-sets/{id}': reading,

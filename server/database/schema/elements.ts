@@ -22,20 +22,22 @@ export const elementUploads = pgTable('element_uploads', {
   fileName: text('file_name'),
   source: text('source', { enum: ['file', 'paste', 'api', 'folder', 'demo'] }).notNull(),
   format: text('format'),
-  /** What was sent, byte for byte, kept for ever. */
-  original: bytea('original').notNull(),
-  sha256: text('sha256').notNull(),
+  /** Of what was sent; null until all of it is there. */
+  sha256: text('sha256'),
   totalBytes: integer('total_bytes').notNull(),
   accepted: integer('accepted').notNull().default(0),
   alreadyHeld: integer('already_held').notNull().default(0),
   refused: integer('refused').notNull().default(0),
-  refusals: jsonb('refusals').$type<UploadNote[]>().notNull().default([]),
-  warnings: jsonb('warnings').$type<UploadNote[]>().notNull().default([]),
   detail: text('detail'),
   createdAt: createdAt(),
-}, t => [index('element_uploads_person').on(t.personId), index('element_uploads_created').on(t.createdAt)])
+}, t => [
+  index('element_uploads_person').on(t.personId),
+  index('element_uploads_created').on(t.createdAt),
+  index('element_uploads_open').on(t.createdAt).where(sql`${t.state} IN ('receiving','reading')`),
+  index('element_uploads_sha256').on(t.sha256),
+])
 
-/** What was sent, byte for byte, in the order of its parts. */
+/** What was sent, byte for byte, in the order of its parts; kept for ever. */
 export const elementUploadParts = pgTable('element_upload_parts', {
   uploadId: uuid('upload_id').notNull().references(() => elementUploads.id, { onDelete: 'cascade' }),
   number: integer('number').notNull(),
@@ -52,6 +54,13 @@ export const elementUploadNotes = pgTable('element_upload_notes', {
   code: text('code').notNull(),
   message: text('message').notNull(),
 }, t => [index('element_upload_notes_upload').on(t.uploadId, t.kind, t.line, t.id)])
+
+/** Sets that an upload brought again; a set itself belongs to the upload that brought it first. */
+export const elementUploadHeld = pgTable('element_upload_held', {
+  uploadId: uuid('upload_id').notNull().references(() => elementUploads.id, { onDelete: 'cascade' }),
+  line: integer('line').notNull(),
+  elementSetId: uuid('element_set_id').notNull().references(() => elementSets.id, { onDelete: 'cascade' }),
+}, t => [primaryKey({ columns: [t.uploadId, t.line, t.elementSetId] }), index('element_upload_held_set').on(t.elementSetId)])
 
 export const elementSets = pgTable('element_sets', {
   id: id(),
@@ -86,7 +95,7 @@ export const elementSets = pgTable('element_sets', {
   uniqueIndex('element_sets_content_unique').on(t.contentSha256),
   uniqueIndex('element_sets_one_in_use').on(t.spacecraftId).where(sql`${t.state} = 'in-use'`),
   index('element_sets_spacecraft').on(t.spacecraftId, t.epoch),
-  index('element_sets_upload').on(t.uploadId, t.lineNumber),
+  index('element_sets_upload').on(t.uploadId, t.lineNumber, t.id),
   index('element_sets_use_at').on(t.useAt).where(sql`${t.useAt} IS NOT NULL`),
   index('element_sets_use_scheduled_by').on(t.useScheduledById),
   index('element_sets_unassigned').on(t.state, t.epoch).where(sql`${t.spacecraftId} IS NULL`),
