@@ -1,18 +1,14 @@
 import { MessageChannel } from 'node:worker_threads'
 import type { ReadingEnd } from '#shared/formats/elements/read-elements'
-import type { Named } from '~~/server/domain/elements/match-spacecraft'
 import { hasThreads, runTask } from './pool'
-import type { Batch } from './tasks/batch'
+import type { Batch, BatchOptions } from './tasks/batch'
 import { makeBatches } from './tasks/batch'
 import type { FromReading } from './tasks/read-upload'
 
-export interface BatchReading {
+export interface BatchReading extends BatchOptions {
   /** The original, part by part. */
   readonly parts: AsyncIterable<Uint8Array>
   readonly totalBytes: number
-  /** For the warning about epochs ahead. */
-  readonly nowMs: number
-  readonly fleet: readonly Named[]
 }
 
 /**
@@ -20,8 +16,8 @@ export interface BatchReading {
  * one is read in a thread, which waits when it is some batches ahead: neither side ever holds the whole as sets. Left
  * before its end, it stops the thread's reading.
  */
-export async function* readInBatches({ parts, totalBytes, nowMs, fleet }: BatchReading, inThread: boolean): AsyncGenerator<Batch, ReadingEnd> {
-  if (!inThread || !hasThreads()) return yield* readHere(parts, totalBytes, nowMs, fleet)
+export async function* readInBatches({ parts, totalBytes, ...options }: BatchReading, inThread: boolean): AsyncGenerator<Batch, ReadingEnd> {
+  if (!inThread || !hasThreads()) return yield* readHere(parts, totalBytes, options)
   const { port1: port, port2 } = new MessageChannel()
   const ahead = new Int32Array(new SharedArrayBuffer(8))
   const waiting: FromReading[] = []
@@ -31,7 +27,7 @@ export async function* readInBatches({ parts, totalBytes, nowMs, fleet }: BatchR
     waiting.push(message)
     wake()
   })
-  const task = runTask('read-upload', { port: port2, ahead, totalBytes, nowMs, fleet }, { transferList: [port2] }).catch((error: unknown) => {
+  const task = runTask('read-upload', { port: port2, ahead, totalBytes, ...options }, { transferList: [port2] }).catch((error: unknown) => {
     failure.push({ error })
     wake()
   })
@@ -65,7 +61,7 @@ export async function* readInBatches({ parts, totalBytes, nowMs, fleet }: BatchR
   }
 }
 
-async function* readHere(parts: AsyncIterable<Uint8Array>, totalBytes: number, nowMs: number, fleet: readonly Named[]): AsyncGenerator<Batch, ReadingEnd> {
+async function* readHere(parts: AsyncIterable<Uint8Array>, totalBytes: number, options: BatchOptions): AsyncGenerator<Batch, ReadingEnd> {
   const bytes = new Uint8Array(totalBytes)
   let at = 0
   for await (const part of parts) {
@@ -73,7 +69,7 @@ async function* readHere(parts: AsyncIterable<Uint8Array>, totalBytes: number, n
     at += part.length
   }
   const batches: Batch[] = []
-  const end = makeBatches(bytes, { nowMs, fleet }, (batch) => { batches.push(batch) })
+  const end = makeBatches(bytes, options, (batch) => { batches.push(batch) })
   yield* batches
   return end
 }

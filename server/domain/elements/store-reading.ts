@@ -29,9 +29,9 @@ export class RefusedWhole extends Error {
  * @throws Cancelled; RefusedWhole where the file breaks off or is too much. Where each set was refused by itself it does
  *   not: the reasons are stored then.
  */
-export async function storeReading(deps: Deps, outside: Db, { id, totalBytes, createdAt }: UploadRow): Promise<Stored & { end: ReadingEnd }> {
+export async function storeReading(deps: Deps, outside: Db, { id, totalBytes, createdAt, fileName }: UploadRow): Promise<Stored & { end: ReadingEnd }> {
   const fleet = await namedSpacecraft(deps.db)
-  const reading = readInBatches({ parts: originalOf(deps.db, id), totalBytes, nowMs: createdAt.getTime(), fleet }, totalBytes > readAtOnceBytes)
+  const reading = readInBatches({ parts: originalOf(deps.db, id), totalBytes, nowMs: createdAt.getTime(), fileName, fleet }, totalBytes > readAtOnceBytes)
   const stored = { accepted: 0, alreadyHeld: 0 }
   let tickedAt = performance.now()
   for (;;) {

@@ -26,8 +26,16 @@ const sha256 = (text: string) => createHash('sha256').update(text).digest('hex')
 /** What makes a set the same set, in whatever notation it comes again. */
 export const contentSha256 = (set: Pick<ReadSet, 'contentKey'>) => sha256(set.contentKey)
 
+export interface BatchOptions {
+  /** For the warning about epochs ahead. */
+  readonly nowMs: number
+  /** Only to warn where it says another notation than the content is in. */
+  readonly fileName: string | null
+  readonly fleet: readonly Named[]
+}
+
 /** Reads an upload and gathers what comes out into batches of a thousand. */
-export function makeBatches(bytes: Uint8Array, { nowMs, fleet }: { nowMs: number, fleet: readonly Named[] }, hand: (batch: Batch) => void): ReadingEnd {
+export function makeBatches(bytes: Uint8Array, { nowMs, fileName, fleet }: BatchOptions, hand: (batch: Batch) => void): ReadingEnd {
   const match = createMatcher(fleet)
   const lines = countLines(bytes)
   const size = Math.max(1, bytes.length)
@@ -46,7 +54,7 @@ export function makeBatches(bytes: Uint8Array, { nowMs, fleet }: { nowMs: number
     line = Math.max(line, found.line)
     if (notes.length >= rowsAtOnce) flush()
   }
-  const end = readElementsInto(bytes, { nowMs }, {
+  const end = readElementsInto(bytes, { nowMs, fileName }, {
     refusal: note('refusal'),
     warning: note('warning'),
     set: (set) => {

@@ -1,17 +1,14 @@
 import type { MessagePort } from 'node:worker_threads'
 import type { ReadingEnd } from '#shared/formats/elements/read-elements'
-import type { Named } from '~~/server/domain/elements/match-spacecraft'
-import type { Batch } from './batch'
+import type { Batch, BatchOptions } from './batch'
 import { makeBatches } from './batch'
 
-export interface ReadUploadInput {
+export interface ReadUploadInput extends BatchOptions {
   /** Parts come in by it, then null; batches go out. */
   readonly port: MessagePort
   /** [how many batches are handed over and not yet taken, 1 to stop] */
   readonly ahead: Int32Array<SharedArrayBuffer>
   readonly totalBytes: number
-  readonly nowMs: number
-  readonly fleet: readonly Named[]
 }
 
 /** What comes out of the port: batches in order, and last of all how it ended. */
@@ -21,10 +18,10 @@ export type FromReading = { readonly kind: 'batch', readonly batch: Batch } | { 
 const aheadAtMost = 4
 
 /** Reads a large upload in a worker thread, never more than a few batches ahead of the one that stores them. */
-export async function readUpload({ port, ahead, totalBytes, nowMs, fleet }: ReadUploadInput): Promise<void> {
+export async function readUpload({ port, ahead, totalBytes, ...options }: ReadUploadInput): Promise<void> {
   try {
     const bytes = await collect(port, totalBytes)
-    const end = makeBatches(bytes, { nowMs, fleet }, (batch) => {
+    const end = makeBatches(bytes, options, (batch) => {
       for (let count = Atomics.load(ahead, 0); count >= aheadAtMost; count = Atomics.load(ahead, 0)) Atomics.wait(ahead, 0, count)
       if (Atomics.load(ahead, 1) === 1) throw new Error('The reading was stopped.')
       Atomics.add(ahead, 0, 1)
