@@ -1,3 +1,4 @@
+import { manoeuvreSpreadM } from '../physics/accuracy/manoeuvre-spread'
 import { alongTrackSigmaS, perigeeHeightKm } from '../physics/accuracy/prior'
 import { createNeededFrequency, dopplerHz, statesOf, symbolClockPpmAt } from '../physics/doppler/needed'
 import { neededOverCarrierMinusOne, receivedOverTransmitted } from '../physics/doppler/ratio'
@@ -10,10 +11,11 @@ import { createEphemeris } from '../physics/orbit/ephemeris'
 import { gmstRad, sitePosition, siteStateTeme } from '../physics/orbit/frames'
 import { lookAt } from '../physics/orbit/look'
 import { findPasses } from '../physics/orbit/passes'
+import { trackDifference } from '../physics/orbit/track-difference'
 import { budgetAt, uncertaintyHz } from '../physics/plan/budget'
 import type { Detector, Direction, LinkModel } from '../physics/types'
 import { closedFormDeviationPercent, planOf } from './compute-longer'
-import { circular, DAY_MS, invented500, northern, object00005, overhead, pole, propagatorFor, RADIUS_500_M, siteAt, southern, T0, toHorizonS } from './examples'
+import { circular, DAY_MS, invented500, northern, object00005, overhead, pole, propagatorFor, RADIUS_500_M, siteAt, southern, T0, TILT, toHorizonS } from './examples'
 import type { outsideValues } from './values'
 
 export type CheckId = typeof outsideValues[number]['id']
@@ -27,6 +29,9 @@ const plain = {
 }
 const link = (detector: Detector, more: Partial<LinkModel> = {}): LinkModel => ({ ...plain, detector, ...more })
 const loss = (model: LinkModel, epsilon: number): number => lossDb(model, epsilon * model.symbolRateHz) ?? NaN
+
+/** An orbit at 30° from its node against another, tilted and ahead by so many degrees. */
+const offTrack = (tiltDeg: number, aheadDeg: number) => trackDifference(circular(TILT, 0, 30 / DEG)(T0), circular(TILT + tiltDeg / DEG, 0, (30 + aheadDeg) / DEG)(T0))
 
 function lookOfInvented() {
   const utcMs = DAY_MS + 890_000
@@ -127,6 +132,8 @@ export const computations: Record<CheckId, (at: number) => number> = {
   'sum': k => uncertaintyHz({ timingHz: 1, ut1Hz: 2, orbitHz: 2, oscillatorHz: 3, trimHz: 6 }, k),
   'split': equatorialShare,
   'age': days => alongTrackSigmaS({ floorKm: 0.5, growthKmPerDay: 1.5, epochMs: T0, speedMps: 7000 })(T0 + days * 86_400_000),
+  'burn': days => manoeuvreSpreadM({ startMs: T0, speedSigmaMps: 0.01 }, T0 + days * 86_400_000) / 1000,
+  'track': which => which === 0 ? offTrack(0, 0.1).alongM : offTrack(0.1, 0).crossM,
   'height': meanMotionRevPerDay => perigeeHeightKm({ meanMotionRevPerDay, eccentricity: 0 }),
   'rows': slope => planOf(slope).rows,
   'corridor': slope => planOf(slope).furthestPercent,

@@ -70,6 +70,8 @@ export const outsideValues = [
   { id: 'sum', place: 'budget', card: 'uncertaintyHz', what: 'Limits 1 and 2 Hz, spreads 2, 3 and 6 Hz, k = {at}', unit: 'Hz', decimals: 3, tolerance: 1e-9, source: 'by hand', values: [[3, 24], [2, 17]] },
   { id: 'split', place: 'budget', card: 'partialUt1HzPerS', what: 'Equatorial orbit at 500 km: {at} over the Doppler rate', unit: '', decimals: 5, tolerance: 5e-4, source: 'n/(n − ω) and ω/(n − ω), mechanics, worked out', values: [[0, 1.07052, 'timing’s share'], [1, 0.07052, 'UT1’s share']] },
   { id: 'age', place: 'budget', card: 'alongTrackSigmaS', what: '0.5 km and 1.5 km/day at 7 km/s, two days old', unit: 's, 1 σ', decimals: 4, tolerance: 1e-9, source: 'by hand', values: [[2, 0.5]] },
+  { id: 'burn', place: 'budget', card: 'manoeuvreSpreadM', what: 'A day after a burn of 1 cm/s along the track', unit: 'km', decimals: 3, tolerance: 1e-3, source: `3·Δv·t, ${MECHANICS}`, values: [[1, 2.592]] },
+  { id: 'track', place: 'budget', card: 'trackDifference', what: 'Two circles at 500 km: {at}', unit: 'm', decimals: 1, tolerance: 0.1, source: 'a·ΔM and r·Δi·sin u, mechanics, worked out', values: [[0, 12_004.6, '0.1° of anomaly ahead, along'], [1, 6002.3, '0.1° of inclination at u = 30°, across']] },
   { id: 'height', place: 'budget', card: 'perigeeHeightKm', what: 'Height of a geostationary orbit', unit: 'km', decimals: 0, tolerance: 5, source: 'handbook value', values: [[1.00273791, 35_786]] },
 
   { id: 'rows', place: 'plan', card: 'planRetunes', what: 'Straight fall of {at} Hz/s for 60 s, allowance 1000 Hz: rows', unit: '', decimals: 0, tolerance: 0, source: '⌈swing/(2·0.8·allowance)⌉, by hand', values: [[100, 4], [50, 2], [20, 1]] },
