@@ -5,6 +5,7 @@ import * as bench from './schemas/bench'
 import { idParams, listOf, pageQuery } from './schemas/common'
 import * as elements from './schemas/elements'
 import * as links from './schemas/links'
+import * as manoeuvres from './schemas/manoeuvres'
 import * as people from './schemas/people'
 import * as predictions from './schemas/predictions'
 import * as quiet from './schemas/quiet-spans'
@@ -82,7 +83,10 @@ export const routes = {
   'GET /api/spacecraft': { access: read, summary: 'Spacecraft', query: pageQuery, response: listOf(spacecraft.spacecraftOut) },
   'POST /api/spacecraft': { access: may('spacecraft:edit'), summary: 'Create a spacecraft', body: spacecraft.createSpacecraftBody, response: spacecraft.spacecraftOut, status: 201, creates: true },
   'GET /api/spacecraft/{id}': { access: read, summary: 'One spacecraft', params: idParams, response: spacecraft.spacecraftOut },
-  'GET /api/spacecraft/{id}/accuracy': { access: read, summary: 'How fast its element sets go wrong, and from what that is known', params: idParams, response: spacecraft.accuracyOut },
+  'GET /api/spacecraft/{id}/accuracy': { access: read, summary: 'How fast its element sets go wrong, and from what that is known', params: idParams, query: spacecraft.accuracyQuery, response: spacecraft.accuracyOut },
+  'GET /api/spacecraft/{id}/manoeuvres': { access: read, summary: 'Manoeuvres entered by hand, the latest first', params: idParams, query: pageQuery, response: listOf(manoeuvres.manoeuvreOut) },
+  'POST /api/spacecraft/{id}/manoeuvres': { access: may('spacecraft:edit'), summary: 'Enter a manoeuvre: budgets are wider until a set from after it is in use', params: idParams, body: manoeuvres.addManoeuvreBody, response: manoeuvres.manoeuvreOut, status: 201, creates: true },
+  'POST /api/manoeuvres/{id}/cancel': { access: may('spacecraft:edit'), summary: 'Cancel a manoeuvre; it stays on record', params: idParams, response: manoeuvres.manoeuvreOut },
   'PATCH /api/spacecraft/{id}': { access: may('spacecraft:edit'), summary: 'Change a spacecraft', params: idParams, body: spacecraft.changeSpacecraftBody, response: spacecraft.spacecraftOut },
   'DELETE /api/spacecraft/{id}': { access: may('spacecraft:edit'), summary: 'Retire a spacecraft with its links; its coming passes are taken back', params: idParams, status: 204 },
 

@@ -79,16 +79,29 @@ export type ElementSetOut = z.infer<typeof elementSetOut>
 
 export const refuseSetBody = z.strictObject({ reason: reasonSchema.optional() }).optional()
 
+export const setWarning = z.object({ code: z.string(), message: z.string(), /** What to do about it. */ action: z.string() })
+const linkShift = z.object({ linkId: idSchema, linkName: z.string(), worstShiftHz: z.number(), allowanceHz: z.number() })
+
 /** Shift of prediction of the coming passes against the set in use. */
 export const comparisonOut = z.object({
   setId: idSchema,
   inUseSetId: idSchema.nullable(),
-  warnings: z.array(z.object({ code: z.string(), message: z.string() })),
+  warnings: z.array(setWarning),
   passes: z.array(z.object({
     stationId: idSchema, stationName: z.string(),
     aos: instantOut, aosShiftS: z.number().nullable(), culminationShiftS: z.number().nullable(), losShiftS: z.number().nullable(), maxElevationShiftDeg: z.number().nullable(),
     presence: z.enum(['both', 'new', 'gone']),
-    links: z.array(z.object({ linkId: idSchema, linkName: z.string(), worstShiftHz: z.number(), allowanceHz: z.number() })),
+    links: z.array(linkShift),
   })),
+  /** Of each link the pass that moves it most. */
+  worstByLink: z.array(linkShift.extend({ share: z.number(), stationName: z.string(), aos: instantOut })),
+  /** Largest move of any rise, culmination or set; largest change of Doppler as a share of an allowance. */
+  largest: z.object({ shiftS: z.number(), allowanceShare: z.number() }),
+  /** Along-track jump at the newer epoch over what the sets' age explains. */
+  jumpSigmas: z.number().nullable(),
+  /** New minus old over a day, in the frame of the set in use: up, ahead, and to the left of the track. */
+  difference: z.array(z.object({ at: instantOut, radialM: z.number(), alongM: z.number(), crossM: z.number() })),
+  /** Doppler of the pass and link that move most, by both sets. */
+  curve: z.object({ stationName: z.string(), aos: instantOut, linkName: z.string(), allowanceHz: z.number(), samples: z.array(z.object({ at: instantOut, oldHz: z.number(), newHz: z.number() })) }).nullable(),
 })
 export type ComparisonOut = z.infer<typeof comparisonOut>

@@ -47,6 +47,9 @@ export const accuracyOut = z.object({
   ...growth,
   bins: z.array(z.object({ ageDays: z.number(), sigmaKm: z.number(), pairs: z.number().int() })),
   prior: z.object(growth),
+  /** Where pairs=true asks for them: one set carried to the epoch of a later one, at most 600, positive where it ran ahead. */
+  errors: z.array(z.object({ ageDays: z.number(), alongKm: z.number() })).optional(),
 })
+export const accuracyQuery = z.strictObject({ pairs: z.enum(['true', 'false']).optional() })
 export type AccuracyOut = z.infer<typeof accuracyOut>
 export type SpacecraftOut = z.infer<typeof spacecraftOut>

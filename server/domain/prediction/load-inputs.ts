@@ -6,6 +6,7 @@ import type { Settings } from '#shared/schemas/settings'
 import { antennas, elementSets, links, radios, spacecraft, stations } from '~~/server/database/schema'
 import type { Deps } from '../context'
 import { DomainError } from '../errors'
+import { manoeuvresOf } from '../manoeuvres/manoeuvres-of'
 import { readSettings } from '../settings/read-settings'
 import { ut1InForce } from '../settings/ut1-in-force'
 import { learnedAccuracy } from './learned-accuracy'
@@ -62,7 +63,7 @@ export async function loadInputs({ db, now }: Pick<Deps, 'db' | 'now'>, { spacec
   const ut1 = ut1InForce(settings, now)
   const site = siteOf(station)
   const learned = set && await learnedAccuracy({ db }, { spacecraftId, elements: set.elements, settings })
-
+  const manoeuvres = await manoeuvresOf({ db }, spacecraftId)
   const quiet = await loadQuiet({ db, now }, { stationId, spacecraftId, linkIds: linkRows.map(link => link.id) })
 
   const served: ServedLink[] = []
@@ -71,7 +72,7 @@ export async function loadInputs({ db, now }: Pick<Deps, 'db' | 'now'>, { spacec
     const radio = set && radioFor(link, set.elements, radioRows.map(row => row.radio))
     const setupS = radioRows.find(row => row.radio === radio)?.setupS ?? 0
     if (link.retiredAt) unserved.set(link.id, 'The link has been retired.')
-    else if (set && learned && radio) served.push(serve({ craft, station, link, radio, setupS, elements: set.elements, settings, learned, ut1, site, quiet: quiet.get(link.id) ?? [] }))
+    else if (set && learned && radio) served.push(serve({ craft, station, link, radio, setupS, elements: set.elements, settings, learned, manoeuvres, ut1, site, quiet: quiet.get(link.id) ?? [] }))
     else unserved.set(link.id, `No radio at ${station.name} covers this link any more.`)
   }
   return { craft, station, settings, set: set ?? null, stopped: whyStopped(craft, station, set !== undefined), site, ut1, served, unserved }
@@ -85,11 +86,11 @@ function whyStopped(craft: SpacecraftRow, station: StationRow, hasSet: boolean):
 
 type Sources = Parameters<typeof budgetParametersOf>[0] & { link: LinkRow, site: Site, setupS: number, quiet: readonly Span[] }
 
-function serve({ craft, station, link, radio, setupS, elements, settings, learned, ut1, site, quiet }: Sources): ServedLink {
+function serve({ craft, station, link, radio, setupS, elements, settings, learned, manoeuvres, ut1, site, quiet }: Sources): ServedLink {
   const model = linkModelOf(link)
   const minElevationRad = linkMinElevationRad(link)
   const radioModel = radioModelOf(radio)
-  const budget = budgetParametersOf({ craft, station, radio, elements, settings, learned, ut1 })
+  const budget = budgetParametersOf({ craft, station, radio, elements, settings, learned, manoeuvres, ut1 })
   // The antenna is free for its set-up time before a pass, so the radio may be, too.
   const firstRowLeadMs = Math.min(LARGEST_LEAD_MS, setupS * 1000)
   const inputs = { elements, site, model, minElevationRad, radioId: radio.id, radioModel, budget, firstRowLeadMs }
