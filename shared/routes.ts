@@ -78,6 +78,8 @@ export const routes = {
   'GET /api/element-sets/{id}/download': { access: read, summary: 'One element set as a file: TLE, or OMM as KVN, XML, JSON or CSV', params: idParams, query: elements.downloadQuery },
   'GET /api/element-sets/{id}/comparison': { access: read, summary: 'Shift of prediction against the set in use', params: idParams, response: elements.comparisonOut },
   'POST /api/element-sets/{id}/use': { access: may('elements:decide'), summary: 'Put into use; a past set: roll back', params: idParams, response: elements.elementSetOut },
+  'POST /api/element-sets/{id}/schedule-use': { access: may('elements:decide'), summary: 'Put into use at an instant', params: idParams, body: elements.scheduleUseBody, response: elements.elementSetOut },
+  'POST /api/element-sets/{id}/cancel-use': { access: may('elements:decide'), summary: 'Take back what was scheduled', params: idParams, response: elements.elementSetOut },
   'POST /api/element-sets/{id}/refuse': { access: may('elements:decide'), summary: 'Refuse a waiting set', params: idParams, body: elements.refuseSetBody, response: elements.elementSetOut },
 
   'GET /api/spacecraft': { access: read, summary: 'Spacecraft', query: pageQuery, response: listOf(spacecraft.spacecraftOut) },

@@ -8,6 +8,8 @@ export interface Jobs {
   'predict': { spacecraftId: string, stationId: string, reason: string }
   'mail': { mailId: string }
   'web-hook': { deliveryId: string }
+  /** Let the rule of one spacecraft judge what waits for it. */
+  'auto-use': { spacecraftId: string }
 }
 export type JobName = keyof Jobs
 

@@ -1,9 +1,10 @@
 /**
  * The queues and their habits: read by the server and by the migration, which makes them.
  *
- * @type {Record<'predict' | 'mail' | 'web-hook', import('pg-boss').Queue>}
+ * @type {Record<'predict' | 'mail' | 'web-hook' | 'auto-use', import('pg-boss').Queue>}
  */
 export const queues = {
+  'auto-use': { name: 'auto-use', policy: 'short', retryLimit: 3, retryDelay: 5, retryBackoff: true, expireInSeconds: 120 },
   // `short` keeps one waiting job per singleton key: many causes in a row lead to one computation.
   predict: { name: 'predict', policy: 'short', retryLimit: 3, retryDelay: 2, retryBackoff: true, expireInSeconds: 300 },
   // A mail server may be down for a night: a try a minute, for a day, before a mail counts as failed.

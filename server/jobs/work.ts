@@ -4,6 +4,7 @@ import { databaseNow } from '~~/server/database/client'
 import { StillChanging } from '~~/server/domain/prediction/predict-station'
 import { describeError } from '~~/server/http/describe-error'
 import { log } from '~~/server/http/log'
+import { runAutoUse } from './auto-use'
 import { useBoss } from './boss'
 import { runMail } from './mail'
 import { runPredict } from './predict'
@@ -13,8 +14,8 @@ import { queues } from './queues.mjs'
 import { runWebHook } from './web-hook'
 
 /** How many of a kind run at once in one process. */
-const atOnce = { 'predict': 2, 'mail': 2, 'web-hook': 4 }
-const pollSeconds = { 'predict': 0.5, 'mail': 1, 'web-hook': 1 }
+const atOnce = { 'predict': 2, 'mail': 2, 'web-hook': 4, 'auto-use': 1 }
+const pollSeconds = { 'predict': 0.5, 'mail': 1, 'web-hook': 1, 'auto-use': 2 }
 
 /** Takes jobs from the queue until it is stopped. */
 export async function startWork(db: Db): Promise<void> {
@@ -24,6 +25,7 @@ export async function startWork(db: Db): Promise<void> {
   await work<Jobs['predict']>(boss, 'predict', async ({ data }) => runPredict({ db, now: await databaseNow(db) }, data))
   await work<Jobs['mail']>(boss, 'mail', job => runMail(db, job))
   await work<Jobs['web-hook']>(boss, 'web-hook', job => runWebHook(db, job))
+  await work<Jobs['auto-use']>(boss, 'auto-use', async ({ data }) => runAutoUse({ db, now: await databaseNow(db) }, data))
 }
 
 async function work<T>(boss: PgBoss, name: keyof typeof atOnce, run: (job: PgBoss.JobWithMetadata<T>) => Promise<void>): Promise<void> {

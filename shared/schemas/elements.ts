@@ -1,6 +1,6 @@
 import { z } from 'zod'
 import { ELEMENT_NOTATIONS } from '../formats/elements/write/written'
-import { idSchema, instantOut, pageQuery, reasonSchema } from './common'
+import { idSchema, instantOut, instantSchema, pageQuery, reasonSchema } from './common'
 
 export const noteOut = z.object({ line: z.number().int(), name: z.string().optional(), code: z.string(), message: z.string() })
 export type NoteOut = z.infer<typeof noteOut>
@@ -74,9 +74,15 @@ export const elementSetOut = z.object({
   decidedAt: instantOut.nullable(),
   decidedBy: z.string().nullable(),
   reason: z.string().nullable(),
+  /** It is put into use at this instant, as this person has asked for. */
+  useAt: instantOut.nullable(),
+  useScheduledBy: z.string().nullable(),
+  /** Why the spacecraft's rule has not taken this waiting set into use. */
+  ruleDeclined: z.string().nullable(),
 })
 export type ElementSetOut = z.infer<typeof elementSetOut>
 
+export const scheduleUseBody = z.strictObject({ at: instantSchema })
 export const refuseSetBody = z.strictObject({ reason: reasonSchema.optional() }).optional()
 
 export const setWarning = z.object({ code: z.string(), message: z.string(), /** What to do about it. */ action: z.string() })

@@ -51,6 +51,8 @@ export const expectedAccess: Record<string, Expected> = {
   'GET /api/element-sets/{id}/comparison': reading,
   'POST /api/element-sets/{id}/use': flightDynamics,
   'POST /api/element-sets/{id}/refuse': flightDynamics,
+  'POST /api/element-sets/{id}/schedule-use': flightDynamics,
+  'POST /api/element-sets/{id}/cancel-use': flightDynamics,
 
   'GET /api/spacecraft': reading,
   'GET /api/spacecraft/{id}': reading,

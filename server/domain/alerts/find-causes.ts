@@ -1,5 +1,6 @@
 import type { Deps } from '../context'
 import type { AlertKind, Cause, CauseScope } from './cause'
+import { findAutoUseDeclined } from './auto-use-declined'
 import { findDecisionDue } from './decision-due'
 import { findElementsOld } from './elements-old'
 import { findNotCollected } from './not-collected'
@@ -21,6 +22,7 @@ const finders: Partial<Record<AlertKind, Finder>> = {
   'decision-due': findDecisionDue,
   'station-refused': findStationRefused,
   'web-hook-failing': findWebHookFailing,
+  'auto-use-declined': findAutoUseDeclined,
 }
 export const allKinds = Object.keys(finders) as AlertKind[]
 

@@ -2,20 +2,27 @@ import { and, desc, eq, isNull, isNotNull, sql } from 'drizzle-orm'
 import { z } from 'zod'
 import type { ElementSetOut, elementSetsQuery } from '#shared/schemas/elements'
 import type { Db } from '~~/server/database/client'
-import { elementSets, elementUploads, spacecraft } from '~~/server/database/schema'
+import { audit, elementSets, elementUploads, spacecraft } from '~~/server/database/schema'
 import type { Deps } from '../context'
 import { cursorInstant, readCursor, toPage } from '../cursor'
 import { DomainError } from '../errors'
 import { apsidesKm } from './apsides'
+import { ruleDeclines } from './trail-words'
 
-const select = (db: Pick<Db, 'select'>) => db.select({ set: elementSets, spacecraftName: spacecraft.name, uploadedAt: elementUploads.createdAt, uploadedBy: elementUploads.by })
+/** Why the rule of its spacecraft, as it stands, has left a waiting set to people. */
+const ruleDeclined = sql<string | null>`CASE WHEN ${elementSets.state} = 'waiting' AND ${spacecraft.autoUse} IS NOT NULL THEN (
+  SELECT declined.reason FROM ${audit} AS declined
+  WHERE declined.entity_kind = 'element-set' AND declined.entity_id = ${elementSets.id}::text AND declined.action = ${ruleDeclines} AND declined.after -> 'rule' = ${spacecraft.autoUse}
+  ORDER BY declined.id DESC LIMIT 1) END`
+
+const select = (db: Pick<Db, 'select'>) => db.select({ set: elementSets, spacecraftName: spacecraft.name, uploadedAt: elementUploads.createdAt, uploadedBy: elementUploads.by, ruleDeclined })
   .from(elementSets)
   .innerJoin(elementUploads, eq(elementUploads.id, elementSets.uploadId))
   .leftJoin(spacecraft, eq(spacecraft.id, elementSets.spacecraftId))
   .$dynamic()
 type Row = Awaited<ReturnType<typeof select>>[number]
 
-function toOut({ set, spacecraftName, uploadedAt, uploadedBy }: Row, now: Date): ElementSetOut {
+function toOut({ set, spacecraftName, uploadedAt, uploadedBy, ruleDeclined }: Row, now: Date): ElementSetOut {
   const { id, uploadId, spacecraftId, state, name, catalogueNumber, designator, epochUtcUs, sha256, originalText, warnings, decidedBy, reason } = set
   const { inclinationDeg, eccentricity, meanMotionRevPerDay, bstar } = set.elements
   return {
@@ -27,6 +34,7 @@ function toOut({ set, spacecraftName, uploadedAt, uploadedBy }: Row, now: Date):
     sha256, originalText, warnings,
     uploadedAt: uploadedAt.toISOString(), uploadedBy,
     decidedAt: set.decidedAt?.toISOString() ?? null, decidedBy, reason,
+    useAt: set.useAt?.toISOString() ?? null, useScheduledBy: set.useScheduledBy, ruleDeclined,
   }
 }
 

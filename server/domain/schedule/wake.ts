@@ -1,6 +1,8 @@
 import type { Deps } from '../context'
 import { scheduleActor } from '../context'
 import { reconcileAlerts } from '../alerts/reconcile-alerts'
+import { requestAutoUse } from '../elements/auto-use'
+import { findDueUses, runScheduledUse } from '../elements/run-scheduled-uses'
 import { lapseDue } from '../tables/lapse-due'
 import { findDueLeads, publishLead } from './publish-lead'
 import { findDueNights, publishNight } from './publish-night'
@@ -25,6 +27,10 @@ export async function wake({ db, now }: Pick<Deps, 'db' | 'now'>, { withAlerts, 
       onError(part, error)
     }
   }
+  await attempt('element sets scheduled for use', async () => {
+    for (const due of await findDueUses(deps)) await attempt(`put set ${due.id} into use`, () => runScheduledUse(deps, due))
+  })
+  await attempt('rules for plausible sets', () => requestAutoUse(deps))
   await attempt('publish before passes', async () => {
     for (const lead of await findDueLeads(deps)) await attempt(`publish table ${lead.tableId}`, () => publishLead(deps, lead))
   })
