@@ -118,7 +118,7 @@ const timeTag = (utcMs: number) => new Date(utcMs).toISOString().slice(0, -1)
 
 /** Fixed point, within the sixteen digits of section 4: the sixth decimal of a hertz is beyond any radio's step. */
 function decimal(value: number): string {
-  const text = value.toFixed(6).replace(/\.?0+$/, '')
+  const text = value.toFixed(6).replace(/\.?0{1,6}$/, '')
   return text === '-0' ? '0' : text
 }
 

@@ -12,6 +12,8 @@ export type Recognised =
 const READABLE = 'Element sets can be read as TLE (two or three lines) and as OMM in KVN, XML, JSON or CSV.'
 /** Enough of a file to know its kind by. */
 const HEAD = 4000
+/** Lines that may stand before the first message of a file in KVN. */
+const PREAMBLE = 50
 
 function markupKind(head: string): 'html' | 'xml' | null {
   const lower = head.toLowerCase()
@@ -44,15 +46,18 @@ export function recogniseFormat(text: string): Recognised {
   if (markup === 'xml') return known('omm-xml')
 
   const likelyJson = head.startsWith('{') || head.startsWith('[')
+  let count = 0
   let first: { number: number, text: string, kvn: ReturnType<typeof kvnKind>, table: ReturnType<typeof tableKind> } | null = null
   for (const line of contentLines(text)) {
     // A name may begin with a bracket or be a keyword, so all else gives way to lines that are element sets beyond doubt.
     if (likelyJson ? isWholeLine1(line.text) : whichDataLine(line.text) !== null) return known('tle')
-    if (first || COMMENT.test(line.text.slice(0, 40))) continue
+    if (++count > PREAMBLE || likelyJson || COMMENT.test(line.text.slice(0, 40))) continue
     const begin = line.text.slice(0, HEAD)
-    first = { number: line.number, text: begin, kvn: kvnKind(begin), table: tableKind(begin) }
-    if (!likelyJson && first.kvn?.isSure && first.kvn.other === null) return known('omm-kvn')
-    if (!likelyJson && first.table === 'header') return known('omm-csv')
+    const kvn = kvnKind(begin)
+    if (kvn?.isSure && kvn.other === null) return known('omm-kvn')
+    if (first) continue
+    first = { number: line.number, text: begin, kvn, table: tableKind(begin) }
+    if (first.table === 'header') return known('omm-csv')
   }
   if (likelyJson) return known('omm-json')
   if (!first) return refuse(1, 'empty', 'is empty')

@@ -22,6 +22,8 @@ function entriesOf(header: CsvHeader, fields: readonly string[], line: number): 
   return entries
 }
 
+const isBlankRow = (row: string) => /^[,;\s]*$/.test(row)
+
 /** Blank fields at the end that a spreadsheet adds are no fault. */
 function fitFields(fields: string[], columns: number): string[] {
   let used = fields.length
@@ -45,8 +47,8 @@ export function readOmmCsv(text: string, collector: SetCollector): void {
       if (header.delimiter !== ',') collector.warn(line.number, 'delimiter', `The fields are parted by ${MARKS[header.delimiter]} where commas belong; they are read so. Nothing needs to be done.`)
       continue
     }
-    // Files that were put one after the other bring their header again.
-    if (line.text === headerLine.text) continue
+    // Files that were put one after the other bring their header again; spreadsheets add rows of nothing but commas.
+    if (line.text === headerLine.text || isBlankRow(line.text)) continue
     const split = splitCsvRow(line.text, header.delimiter)
     if (!split) {
       collector.refuse(line.number, null, 'quotes', 'A quotation mark of this row is not closed on its line, or stands in the midst of a field, so the fields cannot be told apart. Quote whole fields only, and double a mark inside one.')

@@ -67,7 +67,8 @@ class OmmXmlReader {
     }
     else if (value.trim() !== '') {
       if (!this.isClosed) this.scanner.fail(`Text stands before the first tag: ${quote(value.trim())}`)
-      this.collector.warn(line, 'trailing-text', `Text after the end of the XML, ${quote(value.trim())}, was left out. Remove it if it means nothing.`)
+      const blank = value.length - value.trimStart().length
+      this.collector.warn(line + (value.slice(0, blank).match(/\r\n|[\r\n]/g)?.length ?? 0), 'trailing-text', `Text after the end of the XML, ${quote(value.trim())}, was left out. Remove it if it means nothing.`)
       return false
     }
     return true
