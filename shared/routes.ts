@@ -9,6 +9,7 @@ import * as manoeuvres from './schemas/manoeuvres'
 import * as people from './schemas/people'
 import * as predictions from './schemas/predictions'
 import * as quiet from './schemas/quiet-spans'
+import * as servers from './schemas/servers'
 import * as settings from './schemas/settings'
 import * as spacecraft from './schemas/spacecraft'
 import * as feed from './schemas/station-feed'
@@ -25,6 +26,7 @@ export type Access =
   | { readonly kind: 'person' }
   | { readonly kind: 'permission', readonly permission: Permission, readonly keys: readonly KeyScope[] }
   | { readonly kind: 'station-key' }
+  | { readonly kind: 'metrics-key' }
 
 export interface RouteSpec {
   readonly access: Access
@@ -136,6 +138,9 @@ export const routes = {
   'POST /api/mails/{id}/retry': { access: may('settings:edit'), summary: 'Try a failed mail again', params: idParams, response: alerts.mailOut },
   'GET /api/demo/mail': { access: read, summary: 'What the local SMTP server received', query: pageQuery, response: listOf(alerts.receivedMailOut) },
 
+  'GET /api/servers': { access: may('settings:edit'), summary: 'Servers and workers on this database', response: servers.serversOut },
+  'POST /api/servers/{id}/forget': { access: may('settings:edit'), summary: 'Count a silent process as stopped', params: idParams, status: 204 },
+
   'GET /api/web-hooks': { access: may('settings:edit'), summary: 'Web hooks, newest first', query: pageQuery, response: listOf(webHooks.webHookOut) },
   'POST /api/web-hooks': { access: may('settings:edit'), summary: 'Make a web hook; its secret is shown once', body: webHooks.createWebHookBody, response: webHooks.webHookCreated, status: 201 },
   'PATCH /api/web-hooks/{id}': { access: may('settings:edit'), summary: 'Change a web hook; switch it off or on', params: idParams, body: webHooks.changeWebHookBody, response: webHooks.webHookOut },
@@ -165,6 +170,7 @@ export const routes = {
   'GET /api/station/v1/keys': { access: station, summary: 'Public keys that signatures verify with', response: feed.jwkSetOut },
 
   'GET /api/openapi.json': { access: open('The description holds no data.'), summary: 'This description', response: z.looseObject({ openapi: z.string() }) },
+  'GET /metrics': { access: { kind: 'metrics-key' }, summary: 'Measurements of the server as Prometheus text' },
   'GET /api/health/live': { access: open('Asked by process supervisors.'), summary: 'The process answers', response: z.object({ status: z.literal('live') }) },
   'GET /api/health/ready': { access: open('Asked by process supervisors.'), summary: 'Database, migrations, scheduler', response: z.object({ status: z.enum(['ready', 'not-ready']), checks: z.record(z.string(), z.string()) }) },
 } as const satisfies Record<string, RouteSpec>

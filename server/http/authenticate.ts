@@ -37,6 +37,7 @@ export function authorise(access: Access, actor: Actor | null): void {
 function allowed(access: Exclude<Access, { kind: 'public' }>, actor: Actor): boolean {
   if (actor.kind === 'key') {
     if (access.kind === 'station-key') return actor.scope === 'station' && actor.stationId !== null
+    if (access.kind === 'metrics-key') return actor.scope === 'metrics'
     return access.kind === 'permission' && access.keys.includes(actor.scope)
   }
   if (actor.kind !== 'person') return false

@@ -36,6 +36,7 @@ export function defineRoute<R extends RouteName>(name: R, act: (context: RouteCo
   const spec: RouteSpec = routes[name]
   return defineEventHandler(async (event) => {
     try {
+      event.context.routeName = name
       setResponseHeader(event, 'cache-control', 'private, no-store')
       // Health must answer without a database.
       if (spec.access.kind === 'public' && event.method === 'GET') return await act({ event } as RouteContext<R>)

@@ -17,12 +17,13 @@ import { runWebHook } from './web-hook'
 const atOnce = { 'predict': 2, 'mail': 2, 'web-hook': 4, 'auto-use': 1 }
 const pollSeconds = { 'predict': 0.5, 'mail': 1, 'web-hook': 1, 'auto-use': 2 }
 
-/** Takes jobs from the queue until it is stopped. */
-export async function startWork(db: Db): Promise<void> {
+/** Takes jobs from the queue until it is stopped; `heavyOnly`: those that compute, and no messages. */
+export async function startWork(db: Db, { heavyOnly = false } = {}): Promise<void> {
   const boss = useBoss()
   await boss.start()
   for (const queue of Object.values(queues)) await boss.createQueue(queue.name, queue)
   await work<Jobs['predict']>(boss, 'predict', async ({ data }) => runPredict({ db, now: await databaseNow(db) }, data))
+  if (heavyOnly) return
   await work<Jobs['mail']>(boss, 'mail', job => runMail(db, job))
   await work<Jobs['web-hook']>(boss, 'web-hook', job => runWebHook(db, job))
   await work<Jobs['auto-use']>(boss, 'auto-use', async ({ data }) => runAutoUse({ db, now: await databaseNow(db) }, data))

@@ -2,7 +2,7 @@ import { defineNitroPlugin } from 'nitropack/runtime'
 import { useDatabase } from '~~/server/database/client'
 import { lifecycle } from '~~/server/domain/schedule/lifecycle'
 import { log } from '~~/server/http/log'
-import { bootStep, serves } from '~~/server/jobs/boot'
+import { bootStep, isWorker, serves } from '~~/server/jobs/boot'
 import { stopBoss } from '~~/server/jobs/boss'
 import { startWork } from '~~/server/jobs/work'
 import type { LocalMailServer } from '~~/server/mail/local-server'
@@ -21,11 +21,11 @@ export default defineNitroPlugin((nitroApp) => {
 
   bootStep('work', async () => {
     const { db } = useDatabase()
-    if (!process.env.SMTP_URL && !mailServer) {
+    if (!isWorker() && !process.env.SMTP_URL && !mailServer) {
       mailServer = await startLocalMailServer(db)
       useLocalMailServer(mailServer.port)
     }
-    await startWork(db)
+    await startWork(db, { heavyOnly: isWorker() })
   })
 
   // Requests under way finish meanwhile; the pool of connections closes behind both.

@@ -27,6 +27,9 @@ export const expectedAccess: Record<string, Expected> = {
   'GET /api/health/live': 'anybody',
   'GET /api/health/ready': 'anybody',
 
+  // For a key of scope metrics only.
+  'GET /metrics': to('', 'metrics'),
+
   'GET /api/auth/me': oneself,
   'PATCH /api/auth/me': oneself,
   'POST /api/auth/password': oneself,
@@ -111,6 +114,8 @@ export const expectedAccess: Record<string, Expected> = {
   'POST /api/mails/{id}/retry': administrator,
   'GET /api/demo/mail': reading,
 
+  'GET /api/servers': administrator,
+  'POST /api/servers/{id}/forget': administrator,
   'GET /api/web-hooks': administrator,
   'POST /api/web-hooks': administrator,
   'PATCH /api/web-hooks/{id}': administrator,

@@ -7,6 +7,7 @@ import { findNotCollected } from './not-collected'
 import { findPublicationFailed } from './publication-failed'
 import { findPublishedTableBreaks } from './published-table-breaks'
 import { findResidualAhead } from './residual-ahead'
+import { findServerSilent } from './server-silent'
 import { findStationRefused } from './station-refused'
 import { findWebHookFailing } from './web-hook-failing'
 
@@ -21,6 +22,7 @@ const finders: Partial<Record<AlertKind, Finder>> = {
   'publication-failed': findPublicationFailed,
   'decision-due': findDecisionDue,
   'station-refused': findStationRefused,
+  'server-silent': findServerSilent,
   'web-hook-failing': findWebHookFailing,
   'auto-use-declined': findAutoUseDeclined,
 }

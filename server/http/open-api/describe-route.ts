@@ -17,7 +17,7 @@ export function describeRoute(method: string, path: string, spec: RouteSpec): Re
     operationId: operationId(method, path),
     summary: spec.summary,
     description: describeAccess(spec.access),
-    tags: [path.split('/')[2]!.replace('.json', '')],
+    tags: [path.split('/').slice(1).at(path.startsWith('/api/') ? 1 : 0)!.replace('.json', '')],
     security: securityOf(spec.access),
     ...(parameters.length > 0 ? { parameters } : {}),
     ...(spec.rawBody ? { requestBody: uploadBody } : spec.body ? { requestBody: describeBody(spec.body) } : {}),
@@ -57,6 +57,7 @@ const uploadBody = {
 
 function describeAnswers(path: string, spec: RouteSpec): Record<string, object> {
   if (path === '/api/station/v1/tables/{id}') return stationTableAnswers
+  if (path === '/metrics') return { 200: { description: 'Prometheus text exposition format 0.0.4', content: { 'text/plain': text } } }
   if (path.startsWith('/api/element-sets/') && path.endsWith('/download')) return elementFileAnswers
   const status = String(spec.status ?? 200)
   const content = spec.response ? { content: { 'application/json': { schema: toSchema(spec.response, 'output') } } } : {}
@@ -102,13 +103,14 @@ function securityOf(access: Access): object[] {
   const key = { key: [] }
   if (access.kind === 'public') return []
   if (access.kind === 'person') return [session]
-  if (access.kind === 'station-key') return [key]
+  if (access.kind === 'station-key' || access.kind === 'metrics-key') return [key]
   return access.keys.length > 0 ? [session, key] : [session]
 }
 
 function describeAccess(access: Access): string {
   if (access.kind === 'public') return `Anybody. ${access.why}`
   if (access.kind === 'person') return 'Any signed-in person.'
+  if (access.kind === 'metrics-key') return 'A key of scope metrics.'
   if (access.kind === 'station-key') return 'A station’s key, for its own station.'
   const roles = `People of the roles ${permissions[access.permission].map(role => roleNames[role].toLowerCase()).join(', ')}`
   return access.keys.length > 0 ? `${roles}; keys of scope ${access.keys.join(', ')}.` : `${roles}.`
