@@ -1,5 +1,6 @@
 import { z } from 'zod'
 import { ELEMENT_NOTATIONS } from '../formats/elements/write/written'
+import { verdictSchema } from './tables'
 import { idSchema, instantOut, instantSchema, pageQuery, reasonSchema } from './common'
 
 export const noteOut = z.object({ line: z.number().int(), name: z.string().optional(), code: z.string(), message: z.string() })
@@ -87,6 +88,29 @@ export const refuseSetBody = z.strictObject({ reason: reasonSchema.optional() })
 
 export const setWarning = z.object({ code: z.string(), message: z.string(), /** What to do about it. */ action: z.string() })
 const linkShift = z.object({ linkId: idSchema, linkName: z.string(), worstShiftHz: z.number(), allowanceHz: z.number() })
+
+const tableChange = z.object({
+  tableId: idSchema, passId: idSchema, stationName: z.string(), linkName: z.string(), aos: instantOut, revision: z.number().int(),
+  verdictBefore: verdictSchema,
+  /** Null: no table would be made any more, and `gone` says why. */
+  verdictAfter: verdictSchema.nullable(),
+  gone: z.string().nullable(),
+})
+/**
+ * What putting a set into use does to tables. Before: computed, nothing written. After: what is on record as its doing,
+ * for a set that is or was in use.
+ */
+export const previewOut = z.object({
+  setId: idSchema,
+  asOf: z.enum(['before', 'after']),
+  /** With the stations now. A revision is superseded where its rows' residual moves by more than `limitHz`, a fifth of the allowance, or its verdict changes. */
+  published: z.array(tableChange.extend({ supersedes: z.boolean(), movesByHz: z.number().nullable(), limitHz: z.number().nullable(), reason: z.string().nullable() })),
+  /** Not out yet, and with another verdict; computed anew in place. */
+  drafts: z.array(tableChange.extend({ state: z.string(), returnsToDraft: z.boolean() })),
+  /** How many tables were looked at, and passes that come or go. */
+  looked: z.object({ published: z.number().int(), drafts: z.number().int(), passesGone: z.number().int(), passesNew: z.number().int() }),
+})
+export type PreviewOut = z.infer<typeof previewOut>
 
 /** Shift of prediction of the coming passes against the set in use. */
 export const comparisonOut = z.object({

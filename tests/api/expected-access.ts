@@ -52,6 +52,7 @@ export const expectedAccess: Record<string, Expected> = {
   'GET /api/element-sets/{id}/download': reading,
   'GET /api/element-sets/download': reading,
   'GET /api/element-sets/{id}/comparison': reading,
+  'GET /api/element-sets/{id}/preview': reading,
   'POST /api/element-sets/{id}/use': flightDynamics,
   'POST /api/element-sets/{id}/refuse': flightDynamics,
   'POST /api/element-sets/{id}/schedule-use': flightDynamics,

@@ -3,6 +3,7 @@ import { compareSets } from './compare-sets'
 import { learnAccuracyTask } from './learn-accuracy'
 import { passSamples } from './pass-samples'
 import { predictStation } from './predict-station'
+import { previewStation } from './preview-station'
 import { readUpload } from './read-upload'
 
 /** Heavy computing, off the thread that answers requests. Each task is a pure function of plain data. */
@@ -12,6 +13,7 @@ export const tasks = {
   'learn-accuracy': learnAccuracyTask,
   'read-upload': readUpload,
   'predict-station': predictStation,
+  'preview-station': previewStation,
   'pass-samples': passSamples,
 }
 

@@ -31,6 +31,8 @@ export interface PredictStationInput {
   toMs: UtcMs
   links: LinkTask[]
   known: KnownPassTask[]
+  /** What tables exist is looked at; none is made where there is none. */
+  onlyKnown?: boolean
 }
 
 export interface Recheck { verdict: Verdict, worstResidualHz: number, worstAt: string, allowanceHz: number, moved: boolean }
@@ -73,10 +75,16 @@ export function predictStation(input: PredictStationInput): PredictStationOutput
         culminationMs: Math.round(pass.culminationMs),
         losMs: Math.round(pass.losMs),
         maxElevationDeg: pass.maxElevationRad * 180 / Math.PI,
-        tables: untouched ? [] : input.links.map(link => predictTable(link, known?.tables.find(table => table.linkId === link.linkId), { ephemeris, site, pass })),
+        tables: untouched ? [] : linksFor(input, known).map(link => predictTable(link, tableOf(known, link), { ephemeris, site, pass })),
       }
     }),
   }
+}
+
+const tableOf = (pass: KnownPassTask | null, { linkId }: LinkTask): KnownTableTask | undefined => pass?.tables.find(table => table.linkId === linkId)
+
+function linksFor({ links, onlyKnown }: PredictStationInput, pass: KnownPassTask | null): LinkTask[] {
+  return onlyKnown ? links.filter(link => tableOf(pass, link)) : links
 }
 
 function predictTable(task: LinkTask, known: KnownTableTask | undefined, { ephemeris, site, pass }: { ephemeris: Ephemeris, site: Site, pass: PredictedPass }): PredictedTable {
