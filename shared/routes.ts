@@ -106,6 +106,9 @@ export const routes = {
   'GET /api/stations/{id}': { access: read, summary: 'One station', params: idParams, response: stations.stationOut },
   'PATCH /api/stations/{id}': { access: may('stations:edit'), summary: 'Change a station', params: idParams, body: stations.changeStationBody, response: stations.stationOut },
   'DELETE /api/stations/{id}': { access: may('stations:edit'), summary: 'Retire a station with its antennas and radios; its coming passes are taken back and its keys stop working', params: idParams, status: 204 },
+  'GET /api/publication-rules': { access: read, summary: 'Links with publication times of their own at a station', query: stations.publicationRulesQuery, response: z.object({ items: z.array(stations.publicationRuleOut) }) },
+  'POST /api/publication-rules': { access: may('stations:edit'), summary: 'Give a link its own times at a station, in place of those it had', body: stations.setPublicationRuleBody, response: stations.publicationRuleOut },
+  'DELETE /api/publication-rules/{id}': { access: may('stations:edit'), summary: 'Let a link follow its station’s times again', params: idParams, status: 204 },
   'POST /api/antennas': { access: may('stations:edit'), summary: 'Create an antenna', body: stations.createAntennaBody, response: stations.antennaOut, status: 201, creates: true },
   'PATCH /api/antennas/{id}': { access: may('stations:edit'), summary: 'Change an antenna', params: idParams, body: stations.changeAntennaBody, response: stations.antennaOut },
   'DELETE /api/antennas/{id}': { access: may('stations:edit'), summary: 'Retire an antenna with its radios; the station’s tables are computed anew', params: idParams, status: 204 },
@@ -162,6 +165,7 @@ export const routes = {
   'GET /api/settings': { access: read, summary: 'Settings', response: settings.settingsOut },
   'PATCH /api/settings': { access: may('settings:edit'), summary: 'Change settings', body: settings.changeSettingsBody, response: settings.settingsOut },
   'GET /api/slots': { access: read, summary: 'What the schedule did and will do', response: settings.slotsOut },
+  'GET /api/slots/preview': { access: read, summary: 'What times of a station or of a link there would lead to', query: settings.previewSlotsQuery, response: settings.previewSlotsOut },
   'GET /api/audit': { access: may('audit:read'), summary: 'The trail', query: pageQuery.extend({ entityKind: z.string().max(40).optional(), entityId: z.string().max(80).optional() }), response: listOf(people.auditOut) },
   'GET /api/clock': { access: person, summary: 'The server’s time', response: z.object({ now: z.string() }) },
 

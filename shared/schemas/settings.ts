@@ -1,5 +1,5 @@
 import { z } from 'zod'
-import { instantOut, instantSchema, nameSchema, zoneSchema } from './common'
+import { idSchema, instantOut, instantSchema, nameSchema, zoneSchema } from './common'
 
 const fields = {
   organisation: nameSchema,
@@ -37,7 +37,23 @@ export const settingsOut = z.object({
   demo: z.boolean(),
   mail: z.object({ local: z.boolean(), queued: z.number().int(), failed: z.number().int() }),
 })
+/** What a slot would publish if it came now; null for a slot that publishes nothing. */
+const wouldPublish = { approved: z.number().int().nullable(), undecided: z.number().int().nullable() }
+const comingSlot = z.object({ kind: z.string(), entity: z.string(), name: z.string(), at: instantOut, local: z.string(), ...wouldPublish })
+export type ComingSlot = z.infer<typeof comingSlot>
 export const slotsOut = z.object({
-  coming: z.array(z.object({ kind: z.string(), entity: z.string(), name: z.string(), at: instantOut, local: z.string() })),
+  coming: z.array(comingSlot),
   done: z.array(z.object({ kind: z.string(), entity: z.string(), name: z.string(), at: instantOut, doneAt: instantOut, outcome: z.string() })),
 })
+
+export const previewSlotsQuery = z.strictObject({
+  stationId: idSchema,
+  /** The times would be this link's own; left out: the station's. */
+  linkId: idSchema.optional(),
+  zone: zoneSchema.optional(),
+  publishAt: fields.digestAt.optional(),
+  leadMinutes: z.coerce.number().int().min(1).max(1440).optional(),
+})
+/** The slots of the next seven days: every evening, and the passes' own, some hundreds at most. */
+export const previewSlotsOut = z.object({ evenings: z.array(comingSlot), leads: z.array(comingSlot), leadCount: z.number().int() })
+export type PreviewSlots = z.infer<typeof previewSlotsOut>

@@ -84,6 +84,9 @@ export const expectedAccess: Record<string, Expected> = {
   'POST /api/stations': administrator,
   'PATCH /api/stations/{id}': administrator,
   'DELETE /api/stations/{id}': administrator,
+  'GET /api/publication-rules': reading,
+  'POST /api/publication-rules': administrator,
+  'DELETE /api/publication-rules/{id}': administrator,
   'POST /api/antennas': administrator,
   'PATCH /api/antennas/{id}': administrator,
   'DELETE /api/antennas/{id}': administrator,
@@ -137,6 +140,7 @@ export const expectedAccess: Record<string, Expected> = {
   'GET /api/settings': reading,
   'PATCH /api/settings': administrator,
   'GET /api/slots': reading,
+  'GET /api/slots/preview': reading,
   'GET /api/audit': administrator,
 
   'GET /api/station/v1/tables': feed,

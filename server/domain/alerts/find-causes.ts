@@ -8,6 +8,7 @@ import { findPublicationFailed } from './publication-failed'
 import { findPublishedTableBreaks } from './published-table-breaks'
 import { findResidualAhead } from './residual-ahead'
 import { findServerSilent } from './server-silent'
+import { findSlotsMissed } from './slots-missed'
 import { findStationRefused } from './station-refused'
 import { findWebHookFailing } from './web-hook-failing'
 
@@ -25,6 +26,7 @@ const finders: Partial<Record<AlertKind, Finder>> = {
   'server-silent': findServerSilent,
   'web-hook-failing': findWebHookFailing,
   'auto-use-declined': findAutoUseDeclined,
+  'slots-missed': findSlotsMissed,
 }
 export const allKinds = Object.keys(finders) as AlertKind[]
 

@@ -5,7 +5,10 @@ import { requestAutoUse } from '../elements/auto-use'
 import { findDueUses, runScheduledUse } from '../elements/run-scheduled-uses'
 import { lapseDue } from '../tables/lapse-due'
 import { findDueLeads, publishLead } from './publish-lead'
-import { findDueNights, publishNight } from './publish-night'
+import { findDueEvenings } from './evenings'
+import { beginWake, reportOutage } from './outage'
+import { publishNight } from './publish-night'
+import { recordMissedLeads } from './missed-leads'
 import { rollForward } from './roll-forward'
 import { sendDigest } from './send-digest'
 
@@ -27,6 +30,7 @@ export async function wake({ db, now }: Pick<Deps, 'db' | 'now'>, { withAlerts, 
       onError(part, error)
     }
   }
+  await attempt('note the wake', () => beginWake(deps))
   await attempt('element sets scheduled for use', async () => {
     for (const due of await findDueUses(deps)) await attempt(`put set ${due.id} into use`, () => runScheduledUse(deps, due))
   })
@@ -35,10 +39,12 @@ export async function wake({ db, now }: Pick<Deps, 'db' | 'now'>, { withAlerts, 
     for (const lead of await findDueLeads(deps)) await attempt(`publish table ${lead.tableId}`, () => publishLead(deps, lead))
   })
   await attempt('publish evenings', async () => {
-    for (const night of await findDueNights(deps)) await attempt(`publish the evening of ${night.station.name}`, () => publishNight(deps, night))
+    for (const evening of await findDueEvenings(deps)) await attempt(`publish the evening of ${evening.station.name}`, () => publishNight(deps, evening))
   })
+  await attempt('record slots before passes that were missed', () => recordMissedLeads(deps))
   await attempt('lapse', () => lapseDue(deps))
   await attempt('digest', () => sendDigest(deps))
   await attempt('roll forward', () => rollForward(deps))
+  await attempt('report an outage', () => reportOutage(deps))
   if (withAlerts) await attempt('alerts', () => reconcileAlerts(deps))
 }
