@@ -40,12 +40,15 @@ export async function runTask<N extends TaskName>(name: N, input: TaskInput<N>, 
   }
 }
 
+/** A thread that reads an upload is not to hold garbage while there is room for it: the whole server stays within its figure. */
+const memoryOf = (lane: string) => lane === 'uploads' ? { maxOldGenerationSizeMb: 384, maxYoungGenerationSizeMb: 16 } : { maxOldGenerationSizeMb: 512 }
+
 function poolOf(lane: string): Piscina | null {
   const known = pools.get(lane)
   if (known) return known
   const filename = workerFile()
   if (!filename) return null
-  const pool = new Piscina({ filename, minThreads: 0, maxThreads: Math.max(1, availableParallelism()), idleTimeout: 30_000, resourceLimits: { maxOldGenerationSizeMb: 512 } })
+  const pool = new Piscina({ filename, minThreads: 0, maxThreads: Math.max(1, availableParallelism()), idleTimeout: 30_000, resourceLimits: memoryOf(lane) })
   pools.set(lane, pool)
   return pool
 }

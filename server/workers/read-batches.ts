@@ -1,4 +1,5 @@
 import { MessageChannel } from 'node:worker_threads'
+import { decodeText } from '#shared/formats/elements/decode-text'
 import type { ReadingEnd } from '#shared/formats/elements/read-elements'
 import { hasThreads, runTask } from './pool'
 import type { Batch, BatchOptions } from './tasks/batch'
@@ -69,7 +70,7 @@ async function* readHere(parts: AsyncIterable<Uint8Array>, totalBytes: number, o
     at += part.length
   }
   const batches: Batch[] = []
-  const end = makeBatches(bytes, options, (batch) => { batches.push(batch) })
+  const end = makeBatches(decodeText(bytes), options, (batch) => { batches.push(batch) })
   yield* batches
   return end
 }

@@ -3,6 +3,7 @@ import type { LineNote } from '#shared/formats/elements/read-elements'
 import type { Db } from '~~/server/database/client'
 import { databaseNow } from '~~/server/database/client'
 import { elementUploadNotes, elementUploads } from '~~/server/database/schema'
+import { jsonBytes } from '~~/server/workers/tasks/batch'
 import { recordAudit } from '../audit'
 import type { Deps } from '../context'
 import { storableNote, storableText } from './storable-text'
@@ -55,7 +56,7 @@ async function readAndFinish(deps: Deps, outside: Db, row: UploadRow): Promise<U
   }
   catch (error) {
     if (!(error instanceof RefusedWhole)) throw error
-    await storeNotes(deps, row.id, JSON.stringify(error.end.errors!.map(note => ({ kind: 'refusal', ...storableNote(note) }))))
+    await storeNotes(deps, row.id, jsonBytes(error.end.errors!.map(note => ({ kind: 'refusal', ...storableNote(note) }))))
     return refuse(deps, row.id, error.end.detail)
   }
 

@@ -1,6 +1,6 @@
 import type { Hash } from 'node:crypto'
 import { createHash } from 'node:crypto'
-import { and, eq } from 'drizzle-orm'
+import { and, eq, sql } from 'drizzle-orm'
 import { elementUploadParts, elementUploads } from '~~/server/database/schema'
 import type { Deps } from '../context'
 import { personId } from '../context'
@@ -73,12 +73,13 @@ async function openUpload(deps: Deps, origin: UploadOrigin): Promise<string> {
 async function keepParts({ db }: Deps, id: string, hash: Hash, opening: Buffer, second: Buffer, others: AsyncIterable<Buffer>): Promise<number> {
   let totalBytes = 0
   let number = 0
-  const keep = (bytes: Buffer) => db.transaction(async (tx) => {
+  const keep = async (bytes: Buffer) => {
     totalBytes += bytes.length
-    const [open] = await tx.update(elementUploads).set({ totalBytes }).where(and(eq(elementUploads.id, id), eq(elementUploads.state, 'receiving'))).returning({ id: elementUploads.id })
-    if (!open) throw cancelled()
-    await tx.insert(elementUploadParts).values({ uploadId: id, number: number++, bytes })
-  })
+    const { rows } = await db.execute(sql`
+      WITH open AS (UPDATE element_uploads SET total_bytes = ${totalBytes} WHERE id = ${id}::uuid AND state = 'receiving' RETURNING id)
+      INSERT INTO element_upload_parts (upload_id, number, bytes) SELECT id, ${number++}, ${bytes} FROM open RETURNING number`)
+    if (rows.length === 0) throw cancelled()
+  }
   await keep(opening)
   hash.update(second)
   await keep(second)

@@ -1,7 +1,10 @@
 import { sql } from 'drizzle-orm'
-import type { Batch } from '~~/server/workers/tasks/batch'
+import type { Batch, JsonBytes } from '~~/server/workers/tasks/batch'
 import { recordAudits } from '../audit'
 import type { Deps } from '../context'
+
+/** The driver sends a buffer as it is, which is how the database itself writes JSON. */
+const jsonParameter = (json: JsonBytes): Buffer => Buffer.from(json.buffer, json.byteOffset, json.byteLength)
 
 export interface Stored { accepted: number, alreadyHeld: number }
 
@@ -18,7 +21,7 @@ export async function storeBatch(deps: Deps, uploadId: string, batch: Batch): Pr
     ? { rows: [] }
     : await db.execute<{ accepted: number, again: number }>(sql`
         WITH given AS MATERIALIZED (
-          SELECT * FROM json_to_recordset(${batch.sets}::json) AS r("spacecraftId" uuid, name text, "catalogueNumber" text, designator text, epoch timestamptz,
+          SELECT * FROM json_to_recordset(${jsonParameter(batch.sets)}::json) AS r("spacecraftId" uuid, name text, "catalogueNumber" text, designator text, epoch timestamptz,
             "epochUtcUs" bigint, elements jsonb, "originalText" text, line integer, sha256 text, "contentSha256" text, warnings jsonb, "matchWarning" jsonb)
         ), fresh AS (
           INSERT INTO element_sets (upload_id, spacecraft_id, name, catalogue_number, designator, epoch, epoch_utc_us, elements, original_text, line_number, sha256, content_sha256, warnings, created_at)
@@ -42,17 +45,17 @@ export async function storeBatch(deps: Deps, uploadId: string, batch: Batch): Pr
   return { accepted, alreadyHeld }
 }
 
-/** Stores lines of a report: a JSON text of `{ kind, line, name?, code, message }`. */
-export async function storeNotes({ db }: Pick<Deps, 'db'>, uploadId: string, notes: string): Promise<void> {
+/** Stores lines of a report: JSON of `{ kind, line, name?, code, message }`. */
+export async function storeNotes({ db }: Pick<Deps, 'db'>, uploadId: string, notes: JsonBytes): Promise<void> {
   await db.execute(sql`
     INSERT INTO element_upload_notes (upload_id, kind, line, name, code, message)
-    SELECT ${uploadId}::uuid, kind, line, name, code, message FROM json_to_recordset(${notes}::json) AS r(kind text, line integer, name text, code text, message text)`)
+    SELECT ${uploadId}::uuid, kind, line, name, code, message FROM json_to_recordset(${jsonParameter(notes)}::json) AS r(kind text, line integer, name text, code text, message text)`)
 }
 
-async function claimHeld(deps: Deps, matched: string): Promise<void> {
+async function claimHeld(deps: Deps, matched: JsonBytes): Promise<void> {
   const { rows } = await deps.db.execute<{ id: string, spacecraftId: string }>(sql`
     WITH wanted AS (
-      SELECT held.id, r."spacecraftId" FROM json_to_recordset(${matched}::json) AS r("contentSha256" text, "spacecraftId" uuid)
+      SELECT held.id, r."spacecraftId" FROM json_to_recordset(${jsonParameter(matched)}::json) AS r("contentSha256" text, "spacecraftId" uuid)
       JOIN element_sets AS held ON held.content_sha256 = r."contentSha256"
       WHERE held.spacecraft_id IS NULL AND (held.state = 'waiting' OR (held.state = 'refused' AND held.reason = ${droppedReason}))
       ORDER BY held.id FOR UPDATE OF held

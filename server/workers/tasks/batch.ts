@@ -1,26 +1,31 @@
 import { createHash } from 'node:crypto'
 import type { LineNote, ReadSet, ReadingEnd } from '#shared/formats/elements/read-elements'
-import { readElementsInto } from '#shared/formats/elements/read-elements'
+import type { DecodedText } from '#shared/formats/elements/decode-text'
+import { readDecodedInto } from '#shared/formats/elements/read-elements'
 import type { Named } from '~~/server/domain/elements/match-spacecraft'
 import { createMatcher } from '~~/server/domain/elements/match-spacecraft'
 import { storableNote, storableText } from '~~/server/domain/elements/storable-text'
 
-/** Some findings of a reading, as JSON texts that the database takes apart itself: nothing else has to look at each set. */
+/** JSON as UTF-8: as a string it would fill the heap of the thread that only passes it on. */
+export type JsonBytes = Uint8Array<ArrayBuffer>
+
+/** Some findings of a reading, as JSON that the database takes apart itself: nothing else has to look at each set. */
 export interface Batch {
   /** Rows of `element_sets`, in the order of the file. */
-  readonly sets: string
+  readonly sets: JsonBytes
   /** Rows of `element_upload_notes`. */
-  readonly notes: string
+  readonly notes: JsonBytes
   readonly setCount: number
   readonly noteCount: number
   /** Of the sets, those that match a spacecraft: `{ contentSha256, spacecraftId }`. */
-  readonly matched: string
+  readonly matched: JsonBytes
   readonly matchedCount: number
   /** How far the reading has come, 0 to 1. */
   readonly share: number
 }
 
 export const rowsAtOnce = 1000
+export const jsonBytes = (rows: readonly unknown[]): JsonBytes => new TextEncoder().encode(JSON.stringify(rows))
 const sha256 = (text: string) => createHash('sha256').update(text).digest('hex')
 
 /** What makes a set the same set, in whatever notation it comes again. */
@@ -35,10 +40,11 @@ export interface BatchOptions {
 }
 
 /** Reads an upload and gathers what comes out into batches of a thousand. */
-export function makeBatches(bytes: Uint8Array, { nowMs, fileName, fleet }: BatchOptions, hand: (batch: Batch) => void): ReadingEnd {
+export function makeBatches(decoded: DecodedText, { nowMs, fileName, fleet }: BatchOptions, hand: (batch: Batch) => void): ReadingEnd {
   const match = createMatcher(fleet)
-  const lines = countLines(bytes)
-  const size = Math.max(1, bytes.length)
+  const text = decoded.ok ? decoded.text : ''
+  const lines = countLines(text)
+  const size = Math.max(1, text.length)
   let [sets, notes, matched]: [unknown[], unknown[], unknown[]] = [[], [], []]
   let characters = 0
   let line = 0
@@ -46,7 +52,7 @@ export function makeBatches(bytes: Uint8Array, { nowMs, fileName, fleet }: Batch
     if (sets.length + notes.length === 0) return
     // A text of one line moves on by what its sets have taken of it.
     const share = Math.min(1, Math.max(lines > 1 ? line / lines : 0, characters / size))
-    hand({ sets: JSON.stringify(sets), notes: JSON.stringify(notes), matched: JSON.stringify(matched), setCount: sets.length, noteCount: notes.length, matchedCount: matched.length, share })
+    hand({ sets: jsonBytes(sets), notes: jsonBytes(notes), matched: jsonBytes(matched), setCount: sets.length, noteCount: notes.length, matchedCount: matched.length, share })
     ;[sets, notes, matched] = [[], [], []]
   }
   const note = (kind: 'refusal' | 'warning') => (found: LineNote) => {
@@ -54,7 +60,7 @@ export function makeBatches(bytes: Uint8Array, { nowMs, fileName, fleet }: Batch
     line = Math.max(line, found.line)
     if (notes.length >= rowsAtOnce) flush()
   }
-  const end = readElementsInto(bytes, { nowMs, fileName }, {
+  const end = readDecodedInto(decoded, { nowMs, fileName }, {
     refusal: note('refusal'),
     warning: note('warning'),
     set: (set) => {
@@ -89,11 +95,11 @@ function rowOf({ line, elements, text, contentKey, warnings }: ReadSet, spacecra
 }
 
 /** Line feeds, or carriage returns where there are none; close enough to tell how far a reading has come. */
-function countLines(bytes: Uint8Array): number {
-  let [feeds, returns] = [0, 0]
-  for (const byte of bytes) {
-    if (byte === 0x0A) feeds++
-    else if (byte === 0x0D) returns++
+function countLines(text: string): number {
+  const count = (mark: string) => {
+    let found = 0
+    for (let at = text.indexOf(mark); at >= 0; at = text.indexOf(mark, at + 1)) found++
+    return found
   }
-  return Math.max(feeds, returns)
+  return count('\n') || count('\r')
 }

@@ -1,4 +1,5 @@
 import type { MessagePort } from 'node:worker_threads'
+import { decodeText } from '#shared/formats/elements/decode-text'
 import type { ReadingEnd } from '#shared/formats/elements/read-elements'
 import type { Batch, BatchOptions } from './batch'
 import { makeBatches } from './batch'
@@ -20,12 +21,12 @@ const aheadAtMost = 4
 /** Reads a large upload in a worker thread, never more than a few batches ahead of the one that stores them. */
 export async function readUpload({ port, ahead, totalBytes, ...options }: ReadUploadInput): Promise<void> {
   try {
-    const bytes = await collect(port, totalBytes)
-    const end = makeBatches(bytes, options, (batch) => {
+    // The bytes are not kept beside the text.
+    const end = makeBatches(decodeText(await collect(port, totalBytes)), options, (batch) => {
       for (let count = Atomics.load(ahead, 0); count >= aheadAtMost; count = Atomics.load(ahead, 0)) Atomics.wait(ahead, 0, count)
       if (Atomics.load(ahead, 1) === 1) throw new Error('The reading was stopped.')
       Atomics.add(ahead, 0, 1)
-      port.postMessage({ kind: 'batch', batch } satisfies FromReading)
+      port.postMessage({ kind: 'batch', batch } satisfies FromReading, [batch.sets.buffer, batch.notes.buffer, batch.matched.buffer])
     })
     port.postMessage({ kind: 'end', end } satisfies FromReading)
   }

@@ -1,4 +1,5 @@
 import { checkFileName } from './check-file-name'
+import type { DecodedText } from './decode-text'
 import { decodeText } from './decode-text'
 import { JsonError } from './json/json-value'
 import { readOmmCsv } from './omm/read-omm-csv'
@@ -58,8 +59,12 @@ export function readElements(bytes: Uint8Array, options: ReadElementsOptions): E
 }
 
 /** The same, handing each finding to a sink as soon as it is made, so that a large file is never held as sets. */
-export function readElementsInto(bytes: Uint8Array, { nowMs, limit = MOST_SETS, fileName = null }: ReadElementsOptions, sink: SetSink): ReadingEnd {
-  const decoded = decodeText(bytes)
+export function readElementsInto(bytes: Uint8Array, options: ReadElementsOptions, sink: SetSink): ReadingEnd {
+  return readDecodedInto(decodeText(bytes), options, sink)
+}
+
+/** The same from text: who has decoded a large file need not keep its bytes. */
+export function readDecodedInto(decoded: DecodedText, { nowMs, limit = MOST_SETS, fileName = null }: ReadElementsOptions, sink: SetSink): ReadingEnd {
   if (!decoded.ok) return refusedWhole(1, decoded.code, decoded.message)
   const recognised = recogniseFormat(decoded.text)
   if (!recognised.ok) return refusedWhole(recognised.line, recognised.code, recognised.message)
