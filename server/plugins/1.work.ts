@@ -10,8 +10,9 @@ import { startLocalMailServer } from '~~/server/mail/local-server'
 import { useLocalMailServer } from '~~/server/mail/transport'
 import { closePool } from '~~/server/workers/pool'
 
-/** Jobs have this long to finish after a signal; the whole process has ten seconds. */
-const drainMs = 7000
+/** Jobs have this long to finish after a signal, and what a request waits for at least this long; the whole process has ten seconds. */
+const drainMs = 6000
+const answerMs = 2000
 
 /** The queue, the mail server that stands in while there is none, and an orderly end of both. */
 export default defineNitroPlugin((nitroApp) => {
@@ -31,7 +32,7 @@ export default defineNitroPlugin((nitroApp) => {
   // Requests under way finish meanwhile; the pool of connections closes behind both.
   const drain = () => ending ??= (async () => {
     lifecycle.stopping = true
-    const steps = [() => stopBoss(drainMs), () => closePool(), () => mailServer?.close()]
+    const steps = [() => stopBoss(drainMs), () => closePool(answerMs), () => mailServer?.close()]
     for (const step of steps) await Promise.resolve(step()).catch(error => log.warn({ error: String(error) }, 'a part did not end by itself'))
   })()
   process.once('SIGTERM', () => void drain())

@@ -1,5 +1,6 @@
 import { existsSync } from 'node:fs'
 import { availableParallelism } from 'node:os'
+import { setTimeout as wait } from 'node:timers/promises'
 import { fileURLToPath } from 'node:url'
 import type { MessagePort } from 'node:worker_threads'
 import Piscina from 'piscina'
@@ -53,8 +54,12 @@ function poolOf(lane: string): Piscina | null {
   return pool
 }
 
-export async function closePool(): Promise<void> {
+/** Tasks under way, which somebody waits for, have `patienceMs` to finish; then their threads end. */
+export async function closePool(patienceMs = 0): Promise<void> {
   const closing = [...pools.values()]
   pools.clear()
+  const finished = Promise.all(closing.map(pool => pool.close()))
+  // A thread that is ended makes its close fail, after nobody waits for it any more.
+  await Promise.race([finished.catch(() => {}), wait(patienceMs, undefined, { ref: false })])
   await Promise.all(closing.map(pool => pool.destroy()))
 }
