@@ -15,8 +15,6 @@ import { heartbeatPolicy } from '~~/server/outward/policy'
 const heartbeatEveryMs = 60_000
 /** A beat later than this was cut off from the database, or the whole process stood still. */
 const gapMs = 3 * beatMs
-/** How often the others are looked at, in beats. */
-const lookEvery = 3
 
 /** Says every ten seconds that this process lives, looks whether the others do, and calls outward while all is well. */
 export default defineNitroPlugin((nitroApp) => {
@@ -24,7 +22,6 @@ export default defineNitroPlugin((nitroApp) => {
   const me = { host: hostname(), pid: process.pid, role: isWorker() ? 'worker' as const : 'server' as const }
   let id: string | null = null
   let seenAt = Date.now()
-  let beats = 0
   let heartbeatAt = 0
   let busy = false
   lifecycle.steadySince = Date.now()
@@ -36,10 +33,11 @@ export default defineNitroPlugin((nitroApp) => {
     if (now - seenAt > gapMs) lifecycle.steadySince = now
     seenAt = now
     if (isWorker()) return
-    if (++beats % lookEvery === 0) await reconcileAlerts({ db, actor: scheduleActor, now: await databaseNow(db) }, { kinds: ['server-silent'] })
+    await reconcileAlerts({ db, actor: scheduleActor, now: await databaseNow(db) }, { kinds: ['server-silent'] })
     if (performance.now() - heartbeatAt < heartbeatEveryMs && heartbeatAt !== 0) return
-    heartbeatAt = performance.now()
     const ok = await sendHeartbeat({ db, now: await databaseNow(db) }, { wokeMsAgo: Date.now() - lifecycle.schedulerBeatAt, outward: { policy: heartbeatPolicy() } })
+    // Not called because not all was well, or for want of an address: that is looked at with every beat.
+    if (ok !== null) heartbeatAt = performance.now()
     if (ok === false) log.warn('the address of the heartbeat did not answer as it should')
   }
   const tick = async () => {

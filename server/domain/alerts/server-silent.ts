@@ -2,7 +2,7 @@ import { sql } from 'drizzle-orm'
 import { formatUtc } from '#shared/utils/format'
 import type { Deps } from '../context'
 import { lifecycle } from '../schedule/lifecycle'
-import { forgottenAfterMs, silentAfterMs } from '../servers/server-times'
+import { forgottenAfterMs, silentAfterMs, steadyAfterMs } from '../servers/server-times'
 import type { Cause } from './cause'
 import { standing } from './publication-failed'
 
@@ -13,7 +13,7 @@ interface Row extends Record<string, unknown> { id: string, host: string, pid: n
  * as all are when the database is away, waits until the others have had time to be seen again.
  */
 export async function findServerSilent({ db }: Pick<Deps, 'db' | 'now'>): Promise<Cause[]> {
-  if (Date.now() - lifecycle.steadySince < silentAfterMs) {
+  if (Date.now() - lifecycle.steadySince < steadyAfterMs) {
     const { rows } = await db.execute<{ cause: string }>(sql`SELECT cause FROM alerts WHERE kind = 'server-silent' AND state <> 'closed'`)
     return rows.map(({ cause }) => standing('server-silent', cause))
   }

@@ -74,7 +74,7 @@ describe('a process on the database', () => {
     lifecycle.steadySince = Date.now() - 5000
     await look()
     expect(await standing()).toEqual([])
-    lifecycle.steadySince = Date.now() - 61_000
+    lifecycle.steadySince = Date.now() - 31_000
     await look()
     expect(await standing()).toHaveLength(1)
     lifecycle.steadySince = Date.now()
