@@ -1,3 +1,4 @@
+import { setTimeout as wait } from 'node:timers/promises'
 import { defineNitroPlugin } from 'nitropack/runtime'
 import { useDatabase } from '~~/server/database/client'
 import { lifecycle } from '~~/server/domain/schedule/lifecycle'
@@ -13,6 +14,7 @@ import { closePool } from '~~/server/workers/pool'
 /** Jobs have this long to finish after a signal, and what a request waits for at least this long; the whole process has ten seconds. */
 const drainMs = 6000
 const answerMs = 2000
+const wakeMs = 1500
 
 /** The queue, the mail server that stands in while there is none, and an orderly end of both. */
 export default defineNitroPlugin((nitroApp) => {
@@ -39,6 +41,8 @@ export default defineNitroPlugin((nitroApp) => {
   process.once('SIGINT', () => void drain())
   nitroApp.hooks.hook('close', async () => {
     await drain()
+    // The schedule finishes what it is at and begins nothing more.
+    await Promise.race([lifecycle.wake, wait(wakeMs)])
     await useDatabase().close()
   })
 })

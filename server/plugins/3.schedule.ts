@@ -13,7 +13,6 @@ const alertsEveryMs = 60_000
 /** Wakes the schedule every five seconds. What is due is rows compared with the database's clock: a wake lost is made up by the next. */
 export default defineNitroPlugin((nitroApp) => {
   if (!serves() || isWorker()) return
-  let busy: Promise<void> | null = null
   let alertsAt = 0
 
   const onError = (part: string, error: unknown) => {
@@ -36,8 +35,8 @@ export default defineNitroPlugin((nitroApp) => {
     lifecycle.schedulerBeatAt = Date.now()
   }
   const wakeUp = () => {
-    if (lifecycle.stopping || busy) return
-    busy = beat().finally(() => { busy = null })
+    if (lifecycle.stopping || lifecycle.wake) return
+    lifecycle.wake = beat().finally(() => { lifecycle.wake = null })
   }
 
   bootStep('schedule', async () => {

@@ -23,7 +23,7 @@ export async function killWhilePublishing(kills: number, perKill: number): Promi
       beforeEach: async () => scene.addApproved(perKill, new Date((await databaseNow(db)).getTime() + 55 * 60_000)),
     })
     try {
-      await waitUntilPublished(db, 60_000)
+      await waitUntilPublished(db, 300_000)
       await expectEachPublishedOnce(db, scene.added())
       const messages = await db.select().from(webHookDeliveries)
       expect(messages).toHaveLength(scene.added())

@@ -4,6 +4,7 @@ import { reconcileAlerts } from '../alerts/reconcile-alerts'
 import { requestAutoUse } from '../elements/auto-use'
 import { findDueUses, runScheduledUse } from '../elements/run-scheduled-uses'
 import { lapseDue } from '../tables/lapse-due'
+import { lifecycle } from './lifecycle'
 import { findDueLeads, publishLead } from './publish-lead'
 import { findDueEvenings } from './evenings'
 import { beginWake, reportOutage } from './outage'
@@ -23,12 +24,16 @@ export interface WakeOptions {
 export async function wake({ db, now }: Pick<Deps, 'db' | 'now'>, { withAlerts, onError }: WakeOptions): Promise<void> {
   const deps: Deps = { db, now, actor: scheduleActor }
   const attempt = async (part: string, act: () => Promise<unknown>) => {
+    // What is due stays due: the next server, or the next start, does it.
+    if (lifecycle.stopping) return
     try {
       await act()
     }
     catch (error) {
       onError(part, error)
     }
+    // Much to catch up is no standstill.
+    lifecycle.schedulerBeatAt = Date.now()
   }
   await attempt('note the wake', () => beginWake(deps))
   await attempt('element sets scheduled for use', async () => {
