@@ -41,7 +41,7 @@ afterAll(async () => {
 const call = async (server: TestServer, method: string, path: string, headers: Headers, body?: object) => {
   const response = await fetch(`${server.url}${path}`, { method, headers: { ...headers, ...(body ? { 'content-type': 'application/json' } : {}) }, ...(body ? { body: JSON.stringify(body) } : {}) })
   const text = await response.text()
-  return { status: response.status, type: response.headers.get('content-type'), text, json: () => JSON.parse(text) as Record<string, never> }
+  return { status: response.status, type: response.headers.get('content-type'), text, json: <T>() => JSON.parse(text) as T }
 }
 
 describe('two servers on one database', () => {
@@ -60,11 +60,11 @@ describe('two servers on one database', () => {
 
   it('deliver for each other, signed; and say on either what was delivered', async () => {
     const session = await signIn(one.url, email)
-    const hook = (await call(one, 'POST', '/api/web-hooks', session, { name: 'Desk', url: receiver.url, events: ['alert.opened', 'alert.closed'] })).json() as { id: string, secret: string }
+    const hook = (await call(one, 'POST', '/api/web-hooks', session, { name: 'Desk', url: receiver.url, events: ['alert.opened', 'alert.closed'] })).json<{ id: string, secret: string }>()
     expect(hook.secret).toMatch(/^whsec_/)
     expect((await call(other, 'POST', `/api/web-hooks/${hook.id}/test`, session)).status).toBe(200)
     await expect.poll(() => receiver.received.filter(({ method }) => method === 'POST').length, { timeout: 10_000 }).toBe(1)
-    await expect.poll(async () => (await call(other, 'GET', `/api/web-hooks/${hook.id}/deliveries`, session)).json().items, { timeout: 5000 }).toMatchObject([{ event: 'hook.test', state: 'delivered', attempts: 1 }])
+    await expect.poll(async () => (await call(other, 'GET', `/api/web-hooks/${hook.id}/deliveries`, session)).json<{ items: object[] }>().items, { timeout: 5000 }).toMatchObject([{ event: 'hook.test', state: 'delivered', attempts: 1 }])
   })
 
   it('are measured as one: by a key of scope metrics, in the text format, with what stands in the database', async () => {
@@ -90,9 +90,9 @@ describe('two servers on one database', () => {
 
   it('notice when one of them stands still: it is called silent, and no longer once it goes on', { timeout: 120_000 }, async () => {
     const session = await signIn(one.url, email)
-    const states = async () => ((await call(one, 'GET', '/api/servers', session)).json().items as { pid: number, state: string }[]).map(({ pid, state }) => [pid, state])
+    const states = async () => (await call(one, 'GET', '/api/servers', session)).json<{ items: { pid: number, state: string }[] }>().items.map(({ pid, state }) => [pid, state])
     expect(await states()).toEqual(expect.arrayContaining([[one.pid, 'alive'], [other.pid, 'alive']]))
-    const alarms = async () => ((await call(one, 'GET', '/api/alerts?state=standing', session)).json().items as { kind: string, title: string }[]).filter(({ kind }) => kind === 'server-silent').map(({ title }) => title)
+    const alarms = async () => (await call(one, 'GET', '/api/alerts?state=standing', session)).json<{ items: { kind: string, title: string }[] }>().items.filter(({ kind }) => kind === 'server-silent').map(({ title }) => title)
     process.kill(other.pid, 'SIGSTOP')
     // The minute that it has not been seen for, without waiting for it.
     await database.db.execute(sql`UPDATE servers SET seen_at = seen_at - interval '61 seconds' WHERE pid = ${other.pid}`)
