@@ -15,12 +15,6 @@ const MOST_DENSE = 20_000
 
 export interface Failure { readonly ms: UtcMs, readonly error: PropagationError }
 
-/** Radius, m; 0 where SGP4 fails, so that the lowest place of a spacecraft that has sunk into the Earth is there. */
-function radiusM(propagator: Propagator, utcMs: UtcMs): number {
-  const result = propagator.at(utcMs)
-  return result.ok ? norm(result.positionM as Triple) : 0
-}
-
 /** Radii at three instants in a row, m. */
 export type Radii = readonly [before: number, here: number, after: number]
 
@@ -39,9 +33,15 @@ export type Radii = readonly [before: number, here: number, after: number]
  */
 export function failureAtPerigee(propagator: Propagator, [before, here, after]: Radii, fromMs: UtcMs, toMs: UtcMs): Failure | null {
   if (here >= LOW_M || here > before || here > after) return null
-  const ms = findMaximum(t => -radiusM(propagator, t), fromMs, toMs, PERIGEE_TOLERANCE_MS)
-  const result = propagator.at(ms)
-  return result.ok ? null : { ms, error: result.error }
+  const failures: Failure[] = []
+  findMaximum((ms) => {
+    const result = propagator.at(ms)
+    if (result.ok) return -norm(result.positionM as Triple)
+    failures.push({ ms, error: result.error })
+    // Nowhere is lower than where it has sunk into the Earth.
+    return 0
+  }, fromMs, toMs, PERIGEE_TOLERANCE_MS)
+  return failures[0] ?? null
 }
 
 /**
@@ -61,15 +61,14 @@ export function errorBefore(propagator: Propagator, fromMs: UtcMs, atStart: Stat
   const revolutionMs = 86_400_000 / propagator.elements.meanMotionRevPerDay
   const isLow = atStart === null || perigeeRadiusM(atStart) < LOW_M
   const stepMs = Math.max((isLow ? DENSE_REVOLUTIONS : SPARSE_REVOLUTIONS) * revolutionMs, (fromMs - epochMs) / (isLow ? MOST_DENSE : MOST_SPARSE))
-  const count = Math.ceil((fromMs - epochMs) / stepMs)
   let [before, here] = [Infinity, Infinity]
-  for (let i = 0; i <= count; i++) {
-    const ms = Math.min(epochMs + i * stepMs, fromMs)
+  // One sample beyond the window's start, for a perigee just before it.
+  for (let ms = epochMs; ms < fromMs + 2 * stepMs && fromMs > epochMs; ms += stepMs) {
     const result = propagator.at(ms)
-    if (!result.ok) return result.error
+    if (!result.ok) return ms <= fromMs ? result.error : null
     const after = norm(result.positionM as Triple)
-    const failure = isLow ? failureAtPerigee(propagator, [before, here, after], epochMs + Math.max(0, i - 2) * stepMs, ms) : null
-    if (failure) return failure.error
+    const failure = isLow ? failureAtPerigee(propagator, [before, here, after], Math.max(epochMs, ms - 2 * stepMs), ms) : null
+    if (failure && failure.ms < fromMs) return failure.error
     before = here
     here = after
   }

@@ -38,8 +38,11 @@ export const kinds = {
 /** Perigees beneath any sky: good for nothing but the end of a set, since SGP4 fails there for seconds in each revolution. */
 export const sinking: Kind = { perigee: [1, 30], above: [50, 900], inclination: anyTilt, bstar: [0, 1e-6], epochBefore: [-1, 8], window: 3 }
 
+/** The same a little higher, from where a test lowers them until SGP4 only just fails. */
+export const skimming: Kind = { ...sinking, perigee: [20, 60], above: [300, 900], bstar: [0, 0], epochBefore: [0, 0.2] }
+
 /** km and km³/s² of WGS-72, as SGP4 has them. */
-const [EARTH_KM, GM] = [6378.135, 398_600.8]
+export const [EARTH_KM, GM] = [6378.135, 398_600.8]
 
 export function orbits({ perigee, above, inclination, pericentre = [0, 360], bstar, epochBefore }: Kind): fc.Arbitrary<MeanElements> {
   return fc.record({
