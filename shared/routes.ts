@@ -2,6 +2,7 @@ import { z } from 'zod'
 import type { KeyScope, Permission } from './permissions'
 import * as alerts from './schemas/alerts'
 import * as bench from './schemas/bench'
+import * as calendars from './schemas/calendars'
 import { idParams, listOf, pageQuery } from './schemas/common'
 import * as elements from './schemas/elements'
 import * as links from './schemas/links'
@@ -60,6 +61,9 @@ export const routes = {
   'GET /api/auth/me': { access: person, summary: 'The signed-in person', response: people.personOut },
   'PATCH /api/auth/me': { access: person, summary: 'Change one’s own name or zone', body: people.changeMeBody, response: people.personOut },
   'POST /api/auth/password': { access: person, summary: 'Change one’s own password; ends every other session', body: people.changePasswordBody, status: 204 },
+  'GET /api/auth/calendars': { access: person, summary: 'One’s own calendar addresses', response: listOf(calendars.calendarAddressOut) },
+  'POST /api/auth/calendars': { access: person, summary: 'Make a calendar address of all stations; shown once', response: calendars.calendarAddressMade, status: 201 },
+  'DELETE /api/auth/calendars/{id}': { access: person, summary: 'Revoke one’s own calendar address', params: idParams, status: 204 },
   'POST /api/auth/links/look': { access: open('The address itself is the secret.'), summary: 'What a one-time address is for', body: z.strictObject({ token: z.string().min(20).max(100) }), response: people.linkInfo },
   'POST /api/auth/links/take-up': { access: open('The address itself is the secret.'), summary: 'Set the password of a first administrator or an invited person and sign in', body: people.takeUpLinkBody, response: z.object({ user: people.personOut }) },
 
@@ -109,6 +113,9 @@ export const routes = {
   'GET /api/publication-rules': { access: read, summary: 'Links with publication times of their own at a station', query: stations.publicationRulesQuery, response: z.object({ items: z.array(stations.publicationRuleOut) }) },
   'POST /api/publication-rules': { access: may('stations:edit'), summary: 'Give a link its own times at a station, in place of those it had', body: stations.setPublicationRuleBody, response: stations.publicationRuleOut },
   'DELETE /api/publication-rules/{id}': { access: may('stations:edit'), summary: 'Let a link follow its station’s times again', params: idParams, status: 204 },
+  'GET /api/stations/{id}/calendars': { access: may('stations:edit'), summary: 'Calendar addresses of a station', params: idParams, response: listOf(calendars.calendarAddressOut) },
+  'POST /api/stations/{id}/calendars': { access: may('stations:edit'), summary: 'Make a calendar address of a station; shown once', params: idParams, response: calendars.calendarAddressMade, status: 201 },
+  'DELETE /api/stations/{id}/calendars/{calendarId}': { access: may('stations:edit'), summary: 'Revoke a station’s calendar address', params: calendars.stationCalendarParams, status: 204 },
   'POST /api/antennas': { access: may('stations:edit'), summary: 'Create an antenna', body: stations.createAntennaBody, response: stations.antennaOut, status: 201, creates: true },
   'PATCH /api/antennas/{id}': { access: may('stations:edit'), summary: 'Change an antenna', params: idParams, body: stations.changeAntennaBody, response: stations.antennaOut },
   'DELETE /api/antennas/{id}': { access: may('stations:edit'), summary: 'Retire an antenna with its radios; the station’s tables are computed anew', params: idParams, status: 204 },
@@ -173,6 +180,9 @@ export const routes = {
   'GET /api/station/v1/tables/{id}': { access: station, summary: 'The newest published revision, as JSON, CSV or CCSDS TDM', params: idParams },
   'POST /api/station/v1/tables/{id}/report': { access: station, summary: 'What the station did with a revision', params: idParams, body: feed.reportBody, status: 204 },
   'GET /api/station/v1/keys': { access: station, summary: 'Public keys that signatures verify with', response: feed.jwkSetOut },
+
+  'GET /api/station/v1/calendar.ics': { access: station, summary: 'The station’s passes as a calendar (RFC 5545)' },
+  'GET /api/calendars/{token}': { access: open('The address itself is the secret.'), summary: 'Passes as a calendar (RFC 5545), by private address', params: calendars.calendarTokenParams },
 
   'GET /api/openapi.json': { access: open('The description holds no data.'), summary: 'This description', response: z.looseObject({ openapi: z.string() }) },
   'GET /metrics': { access: { kind: 'metrics-key' }, summary: 'Measurements of the server as Prometheus text' },

@@ -59,13 +59,17 @@ export function useDatabase(): Database {
 }
 
 /**
- * The one clock that decides what is due: the database's. Tests may shift it, by a row that only a server
- * started with NULLBEAT_TEST=1 looks at.
+ * The one clock that decides what is due, as a column: the database's, UTC milliseconds. Tests may shift it, by a row that
+ * only a server started with NULLBEAT_TEST=1 looks at.
  */
-export async function databaseNow(db: Db): Promise<Date> {
+export function clockMs() {
   const shift = process.env.NULLBEAT_TEST === '1'
     ? sql`coalesce((SELECT (value #>> '{}')::double precision FROM settings WHERE key = 'testClockShiftMs'), 0)`
     : sql`0::double precision`
-  const result = await db.execute<{ ms: string }>(sql`SELECT floor(extract(epoch FROM clock_timestamp()) * 1000 + ${shift}) AS ms`)
+  return sql<string>`floor(extract(epoch FROM clock_timestamp()) * 1000 + ${shift})`
+}
+
+export async function databaseNow(db: Db): Promise<Date> {
+  const result = await db.execute<{ ms: string }>(sql`SELECT ${clockMs()} AS ms`)
   return new Date(Number(result.rows[0]!.ms))
 }

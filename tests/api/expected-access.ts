@@ -24,6 +24,8 @@ export const expectedAccess: Record<string, Expected> = {
   'POST /api/auth/links/look': 'anybody',
   'POST /api/auth/links/take-up': 'anybody',
   'GET /api/openapi.json': 'anybody',
+  // Who has the address has the calendar.
+  'GET /api/calendars/{token}': 'anybody',
   'GET /api/health/live': 'anybody',
   'GET /api/health/ready': 'anybody',
 
@@ -34,6 +36,9 @@ export const expectedAccess: Record<string, Expected> = {
   'PATCH /api/auth/me': oneself,
   'POST /api/auth/password': oneself,
   'GET /api/clock': oneself,
+  'GET /api/auth/calendars': oneself,
+  'POST /api/auth/calendars': oneself,
+  'DELETE /api/auth/calendars/{id}': oneself,
 
   'POST /api/bench/predict': bench,
   'POST /api/bench/allowance': bench,
@@ -87,6 +92,9 @@ export const expectedAccess: Record<string, Expected> = {
   'GET /api/publication-rules': reading,
   'POST /api/publication-rules': administrator,
   'DELETE /api/publication-rules/{id}': administrator,
+  'GET /api/stations/{id}/calendars': administrator,
+  'POST /api/stations/{id}/calendars': administrator,
+  'DELETE /api/stations/{id}/calendars/{calendarId}': administrator,
   'POST /api/antennas': administrator,
   'PATCH /api/antennas/{id}': administrator,
   'DELETE /api/antennas/{id}': administrator,
@@ -147,4 +155,5 @@ export const expectedAccess: Record<string, Expected> = {
   'GET /api/station/v1/tables/{id}': feed,
   'POST /api/station/v1/tables/{id}/report': feed,
   'GET /api/station/v1/keys': feed,
+  'GET /api/station/v1/calendar.ics': feed,
 }

@@ -40,6 +40,7 @@ describe('the route table', () => {
       'POST /api/auth/sign-out': 'a session that has died on the server must still be able to drop its cookie',
       'POST /api/auth/links/look': 'who holds a one-time address has no account yet; the token is 256 random bits; throttled',
       'POST /api/auth/links/take-up': 'the same, and the token works once',
+      'GET /api/calendars/{token}': 'calendar programs send neither cookie nor key; the address holds 256 random bits and can be revoked',
       'GET /api/openapi.json': 'describes the interface and holds no data',
       'GET /api/health/live': 'process supervisors have no account; says nothing but that the process answers',
       'GET /api/health/ready': 'the same; says which part fails, in fixed words',

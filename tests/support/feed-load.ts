@@ -25,7 +25,14 @@ export interface FeedLoad {
   broken: number
 }
 
-interface Controller { station: StationFixture, key: string, tables: { id: string, number: number, tag: string | null }[], listTag: string | null }
+interface Controller {
+  station: StationFixture
+  key: string
+  tables: { id: string, number: number, tag: string | null }[]
+  listTag: string | null
+  /** One poll after the other. */
+  last: Promise<void>
+}
 
 const stationCount = 20
 const tablesEach = 20
@@ -33,8 +40,8 @@ const retuneCount = 60
 
 /**
  * Station controllers poll the built server at a steady rate, whether it keeps up or not: half of the polls ask for the
- * station's list, half for one of its tables, each with the tag of what the controller has. Meanwhile tables are
- * published anew, one a second; each that is fetched is verified.
+ * station's list, half for one of its tables, each with the tag of what the controller has. A poll's time counts from when it
+ * was due. Meanwhile tables are published anew, one a second; each that is fetched is verified.
  */
 export async function runFeedLoad({ pollsPerS, seconds }: { pollsPerS: number, seconds: number }): Promise<FeedLoad> {
   const made = await createTestDatabase()
@@ -49,18 +56,17 @@ export async function runFeedLoad({ pollsPerS, seconds }: { pollsPerS: number, s
     const run: FeedLoad = { polls: 0, statuses: {}, notModifiedShare: 0, p50Ms: 0, p99Ms: 0, longestMs: 0, publications: 0, broken: 0 }
     const times: number[] = []
     const keys = JSON.parse((await poll('/keys', controllers[0]!.key, null)).text) as object
-    const pending = new Set<Promise<void>>()
     const until = performance.now() + seconds * 1000
     const publishing = publishAnew(database, craft, controllers, () => performance.now() < until, () => { run.publications += 1 })
     const began = performance.now()
     while (performance.now() < until) {
       for (const due = (performance.now() - began) / 1000 * pollsPerS; run.polls < due; run.polls++) {
-        const one = pollOnce(controllers, run.polls, poll, keys, run, times).finally(() => pending.delete(one))
-        pending.add(one)
+        const [controller, n, dueAt] = [controllers[run.polls % controllers.length]!, Math.floor(run.polls / controllers.length), performance.now()]
+        controller.last = controller.last.then(() => pollOnce(controller, n, { dueAt, poll, keys, run, times }))
       }
       await wait(2)
     }
-    await Promise.all([...pending, publishing])
+    await Promise.all([...controllers.map(({ last }) => last), publishing])
     times.sort((a, b) => a - b)
     const at = (share: number) => Math.round(times[Math.min(times.length - 1, Math.floor(share * times.length))]! * 10) / 10
     return { ...run, notModifiedShare: Math.round((run.statuses['304'] ?? 0) / run.polls * 1e4) / 1e4, p50Ms: at(0.5), p99Ms: at(0.99), longestMs: at(1) }
@@ -85,7 +91,7 @@ async function addController({ db }: Database, craft: SpacecraftFixture, n: numb
     await publishRevision({ db, now, actor: scheduleActor }, { tableId: id, mover: 'schedule' })
     tables.push({ id, number: 1, tag: null })
   }
-  return { station, key, tables, listTag: null }
+  return { station, key, tables, listTag: null, last: Promise.resolve() }
 }
 
 const retunesFrom = (aos: Date, shiftHz: number) => Array.from({ length: retuneCount }, (_, i) => ({
@@ -132,13 +138,13 @@ async function warmUp(controllers: Controller[], poll: Poll): Promise<void> {
   for (const controller of controllers) controller.listTag = (await poll('/tables', controller.key, null)).tag
 }
 
-async function pollOnce(controllers: Controller[], n: number, poll: Poll, keys: object, run: FeedLoad, times: number[]): Promise<void> {
-  const controller = controllers[n % controllers.length]!
-  const round = Math.floor(n / controllers.length)
-  const table = round % 2 === 0 ? null : controller.tables[Math.floor(round / 2) % controller.tables.length]!
-  const began = performance.now()
+interface PollRun { dueAt: number, poll: Poll, keys: object, run: FeedLoad, times: number[] }
+
+/** The list, then a table, the list again, the next table, and so on. */
+async function pollOnce(controller: Controller, n: number, { dueAt, poll, keys, run, times }: PollRun): Promise<void> {
+  const table = n % 2 === 0 ? null : controller.tables[Math.floor(n / 2) % controller.tables.length]!
   const { status, tag, text, digest } = await poll(table ? `/tables/${table.id}` : '/tables', controller.key, table ? table.tag : controller.listTag)
-  times.push(performance.now() - began)
+  times.push(performance.now() - dueAt)
   run.statuses[status] = (run.statuses[status] ?? 0) + 1
   if (status !== 200) return
   if (!table) controller.listTag = tag

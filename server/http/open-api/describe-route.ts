@@ -58,6 +58,7 @@ const uploadBody = {
 function describeAnswers(path: string, spec: RouteSpec): Record<string, object> {
   if (path === '/api/station/v1/tables/{id}') return stationTableAnswers
   if (path === '/metrics') return { 200: { description: 'Prometheus text exposition format 0.0.4', content: { 'text/plain': text } } }
+  if (path === '/api/station/v1/calendar.ics' || path === '/api/calendars/{token}') return calendarAnswers
   if (path.startsWith('/api/element-sets/') && path.endsWith('/download')) return elementFileAnswers
   const status = String(spec.status ?? 200)
   const content = spec.response ? { content: { 'application/json': { schema: toSchema(spec.response, 'output') } } } : {}
@@ -83,6 +84,11 @@ const elementFileAnswers = {
     headers: { 'Content-Disposition': { description: 'Names the file', ...text }, 'Rounded-Values': { description: 'Keywords whose values a TLE rounds; absent where none is', ...text } },
     content: { 'text/plain': text, 'application/xml': text, 'application/json': { schema: { type: 'array', items: { type: 'object' } } }, 'text/csv': text },
   },
+}
+
+const calendarAnswers = {
+  200: { description: 'An event a pass; what is no longer predicted has status CANCELLED', headers: { ETag: { description: 'Of the content', ...text } }, content: { 'text/calendar': text } },
+  304: { description: 'Nothing has changed since' },
 }
 
 function errorsOf(method: string, path: string, spec: RouteSpec): ErrorCode[] {
