@@ -19,12 +19,15 @@ export interface CalendarPass {
 
 const refreshS = 15 * 60
 
+/** Section 3.3.11: the package writes a calendar's own name as it is given. */
+const escapeText = (text: string) => text.replace(/[\\;,]/g, '\\$&')
+
 /**
  * Passes as a calendar (RFC 5545, published as RFC 5546 section 3.2.1 has it): one event a pass from AOS to LOS in UTC, to the second
  * before; a pass that has gone stays with status CANCELLED. `stamp` is the instant of this very calendar.
  */
 export function passCalendar({ name, passes, stamp }: { name: string, passes: readonly CalendarPass[], stamp: Date }): string {
-  const calendar = ical({ prodId: { company: 'Nullbeat', product: 'Passes', language: 'EN' }, name, method: ICalCalendarMethod.PUBLISH, ttl: refreshS })
+  const calendar = ical({ prodId: { company: 'Nullbeat', product: 'Passes', language: 'EN' }, name: escapeText(name), method: ICalCalendarMethod.PUBLISH, ttl: refreshS })
   for (const pass of passes) {
     calendar.createEvent({
       id: pass.id,

@@ -3,6 +3,8 @@ import { createServer } from 'node:http'
 import type { AddressInfo } from 'node:net'
 import { createApp, createRouter, toNodeListener } from 'h3'
 import { expect } from 'vitest'
+import calendarHandler from '../../server/api/calendars/[token].get'
+import stationCalendarHandler from '../../server/api/station/v1/calendar.ics.get'
 import keysHandler from '../../server/api/station/v1/keys.get'
 import tableHandler from '../../server/api/station/v1/tables/[id]/index.get'
 import reportHandler from '../../server/api/station/v1/tables/[id]/report.post'
@@ -39,6 +41,7 @@ export async function startFeed(stationGiven: Parameters<typeof addStation>[1] =
   const router = createRouter()
     .get('/api/station/v1/tables', listHandler).get('/api/station/v1/tables/:id', tableHandler).head('/api/station/v1/tables/:id', tableHandler)
     .post('/api/station/v1/tables/:id/report', reportHandler).get('/api/station/v1/keys', keysHandler)
+    .get('/api/station/v1/calendar.ics', stationCalendarHandler).get('/api/calendars/:token', calendarHandler)
   const server = createServer(toNodeListener(createApp().use(router)))
   await new Promise<void>(resolve => server.listen(0, '127.0.0.1', resolve))
   const { db } = useDatabase()
