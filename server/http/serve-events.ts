@@ -1,7 +1,7 @@
 import type { H3Event } from 'h3'
 import { setResponseHeaders } from 'h3'
 import type { Access } from '#shared/routes'
-import { databaseNow, useDatabase } from '~~/server/database/client'
+import { useDatabase } from '~~/server/database/client'
 import { lifecycle } from '~~/server/domain/schedule/lifecycle'
 import { authenticate, authorise } from './authenticate'
 import { describeError } from './describe-error'
@@ -47,6 +47,6 @@ export async function serveEvents<T>(event: H3Event, { name, access, source }: {
 }
 
 async function stillMay(event: H3Event, access: Access): Promise<void> {
-  const { db } = useDatabase()
-  authorise(access, await authenticate(event, db, await databaseNow(db)))
+  const { actor } = await authenticate(event, useDatabase().db)
+  authorise(access, actor)
 }

@@ -20,14 +20,14 @@ const columns = {
   revision: {
     number: tableRevisions.number, state: tableRevisions.state, verdict: tableRevisions.verdict, reason: tableRevisions.reason,
     approvedBy: tableRevisions.approvedBy, approvedById: tableRevisions.approvedById, secondedBy: tableRevisions.secondedBy,
-    publishedAt: tableRevisions.publishedAt, collectedAt: tableRevisions.collectedAt,
+    publishedAt: tableRevisions.publishedAt, collectedAt: tableRevisions.collectedAt, digest: tableRevisions.digest,
   },
   margin: figure('margin'),
   worstResidualHz: figure('worstResidualHz'),
   allowanceHz: figure('allowanceHz'),
   worstAt: sql<string>`${tableRevisions.check} ->> 'worstAt'`,
   retuneCount: sql<number>`jsonb_array_length(${tableRevisions.retunes})`,
-  out: { number: out.number, state: out.state, publishedAt: out.publishedAt, collectedAt: out.collectedAt, verdict: out.verdict },
+  out: { number: out.number, state: out.state, publishedAt: out.publishedAt, collectedAt: out.collectedAt, verdict: out.verdict, digest: out.digest },
   report: sql<{ outcome: 'loaded' | 'refused', reason: string | null, at: string } | null>`(
     SELECT json_build_object('outcome', report.outcome, 'reason', report.reason, 'at', report.at) FROM station_reports AS report
     WHERE report.revision_id = coalesce(${out.id}, ${tableRevisions.id}) ORDER BY report.at DESC LIMIT 1)`,
@@ -54,8 +54,8 @@ export function briefOf(row: BriefRow, now: Date): TableBrief {
     revision: revision.number,
     state: revision.state, verdict: revision.verdict, reason: revision.reason,
     approvedBy: revision.approvedBy, approvedById: revision.approvedById, secondedBy: revision.secondedBy,
-    publishedAt: revision.publishedAt?.toISOString() ?? null, collectedAt: revision.collectedAt?.toISOString() ?? null,
-    out: out && { revision: out.number, state: out.state, publishedAt: out.publishedAt!.toISOString(), collectedAt: out.collectedAt?.toISOString() ?? null, verdict: out.verdict },
+    publishedAt: revision.publishedAt?.toISOString() ?? null, collectedAt: revision.collectedAt?.toISOString() ?? null, digest: revision.digest,
+    out: out && { revision: out.number, state: out.state, publishedAt: out.publishedAt!.toISOString(), collectedAt: out.collectedAt?.toISOString() ?? null, verdict: out.verdict, digest: out.digest! },
     publishesAt: goneAt === null ? publishesAt(row, now) : null,
     stationReport: report && { ...report, at: new Date(report.at).toISOString() },
   }
