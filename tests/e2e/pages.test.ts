@@ -28,6 +28,7 @@ const addresses: Record<string, string | null | (() => Promise<string>)> = {
   'alerts/[id].vue': () => first('SELECT \'/alerts/\' || id AS path FROM alerts ORDER BY opened_at LIMIT 1'),
   'bench/index.vue': '/bench',
   'demo/mail.vue': '/demo/mail',
+  'developers.vue': '/developers',
   'elements/index.vue': '/elements',
   'elements/[spacecraftId].vue': () => first('SELECT \'/elements/\' || spacecraft_id AS path FROM element_sets WHERE state = \'in-use\' LIMIT 1'),
   'fleet/index.vue': '/fleet',
@@ -36,6 +37,8 @@ const addresses: Record<string, string | null | (() => Promise<string>)> = {
   'fleet/[id]/links/new.vue': () => first('SELECT \'/fleet/\' || id || \'/links/new\' AS path FROM spacecraft ORDER BY name LIMIT 1'),
   'passes/index.vue': '/passes',
   'passes/[id].vue': () => first('SELECT \'/passes/\' || p.id AS path FROM passes p JOIN tables t ON t.pass_id = p.id WHERE p.gone_at IS NULL AND p.aos > now() ORDER BY p.aos LIMIT 1'),
+  'print/shift.vue': '/print/shift',
+  'print/table/[id].vue': () => first('SELECT \'/print/table/\' || t.id AS path FROM passes p JOIN tables t ON t.pass_id = p.id WHERE p.gone_at IS NULL AND p.aos > now() ORDER BY p.aos LIMIT 1'),
   'settings.vue': null, // The frame around the pages below.
   'settings/index.vue': '/settings',
   'settings/audit.vue': '/settings/audit',

@@ -81,7 +81,11 @@ export class StationClient {
     return next
   }
 
-  /** Polls and applies until the signal says stop. Errors are waited out, longer each time; rows go on from what is held. */
+  /**
+   * Polls and applies until the signal says stop. Errors are waited out, longer each time; rows go on from what is held.
+   *
+   * @param {{ pollS?: number, signal?: AbortSignal }} [options]
+   */
   async run({ pollS = 15, signal } = {}) {
     const stopped = () => signal?.aborted ?? false
     const pause = ms => wait(Math.max(0, ms), undefined, { signal }).catch(() => {})

@@ -55,7 +55,7 @@ export async function runFeedLoad({ pollsPerS, seconds }: { pollsPerS: number, s
     await warmUp(controllers, poll)
     const run: FeedLoad = { polls: 0, statuses: {}, notModifiedShare: 0, p50Ms: 0, p99Ms: 0, longestMs: 0, publications: 0, broken: 0 }
     const times: number[] = []
-    const keys = JSON.parse((await poll('/keys', controllers[0]!.key, null)).text) as object
+    const keys = JSON.parse((await poll('/keys', controllers[0]!.key, null)).text) as { keys: object[] }
     const until = performance.now() + seconds * 1000
     const publishing = publishAnew(database, craft, controllers, () => performance.now() < until, () => { run.publications += 1 })
     const began = performance.now()
@@ -138,7 +138,7 @@ async function warmUp(controllers: Controller[], poll: Poll): Promise<void> {
   for (const controller of controllers) controller.listTag = (await poll('/tables', controller.key, null)).tag
 }
 
-interface PollRun { dueAt: number, poll: Poll, keys: object, run: FeedLoad, times: number[] }
+interface PollRun { dueAt: number, poll: Poll, keys: { keys: object[] }, run: FeedLoad, times: number[] }
 
 /** The list, then a table, the list again, the next table, and so on. */
 async function pollOnce(controller: Controller, n: number, { dueAt, poll, keys, run, times }: PollRun): Promise<void> {
@@ -155,7 +155,7 @@ async function pollOnce(controller: Controller, n: number, { dueAt, poll, keys, 
 }
 
 /** Body, tag and headers are of one revision, and it is signed. */
-function holds(text: string, keys: object, tag: string | null, digest: string | null): boolean {
+function holds(text: string, keys: { keys: object[] }, tag: string | null, digest: string | null): boolean {
   try {
     verifyTable(text, keys)
     const own = (JSON.parse(text) as { digest: string }).digest
