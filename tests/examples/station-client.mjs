@@ -21,6 +21,13 @@ import { verifyTable } from './verify-table.mjs'
 const longestWaitS = 300
 const dayMs = 86_400_000
 
+/**
+ * What of a served table is used here.
+ *
+ * @typedef {{ at: string, frequencyHz: number, slopeHzPerS: number }} Row
+ * @typedef {{ id: string, revision: number, retunes: Row[], pass: { los: string, spacecraft: { name: string } }, link: { name: string, direction: 'uplink' | 'downlink' }, radio: { name: string } }} Table
+ */
+
 export class StationClient {
   /** What is held, by table: `{ text, table, appliedRow }`. */
   held = new Map()
@@ -35,8 +42,8 @@ export class StationClient {
    * @param {string} options.url of the server, without a slash at its end
    * @param {string} options.key of scope `station`
    * @param {string} options.folder where tables are kept
-   * @param {(row: object, table: object) => unknown} options.apply sets the radio; your interlocks belong in it
-   * @param {(table: object) => string | null} [options.accept] a reason to refuse a table, such as a frequency the radio cannot make
+   * @param {(row: Row, table: Table) => unknown} options.apply sets the radio; your interlocks belong in it
+   * @param {(table: Table) => string | null} [options.accept] a reason to refuse a table, such as a frequency the radio cannot make
    * @param {(text: string) => void} [options.log]
    * @param {() => number} [options.now] UTC, milliseconds
    */

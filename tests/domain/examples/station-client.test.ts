@@ -25,7 +25,7 @@ let administrator: PersonActor
 let spoil: ((path: string, body: string) => { status?: number, body?: string, headers?: Record<string, string> } | null) | null
 let asked: { path: string, status: number }[]
 const key = `nb_${'a'.repeat(40)}`
-interface Row { at: string, frequencyHz: number }
+interface Row { frequencyHz: number }
 interface Table { id: string, revision: number }
 let applied: [number, number][]
 let said: string[]
