@@ -7,7 +7,7 @@ import Piscina from 'piscina'
 import type { TaskInput, TaskName, TaskOutput } from './tasks'
 
 /** Predictions under way are not to keep people waiting for what they have just asked, nor one long what-if everybody else, nor anything an upload. */
-const lanes = { 'predict-station': 'jobs', 'read-upload': 'uploads', 'compare-sets': 'asked', 'preview-station': 'asked', 'pass-samples': 'asked', 'learn-accuracy': 'asked', 'bench-predict': 'bench' } as const satisfies Record<TaskName, string>
+const lanes = { 'predict-station': 'jobs', 'read-upload': 'uploads', 'fit-sets': 'uploads', 'compare-sets': 'asked', 'preview-station': 'asked', 'pass-samples': 'asked', 'learn-accuracy': 'asked', 'bench-predict': 'bench' } as const satisfies Record<TaskName, string>
 const pools = new Map<string, Piscina>()
 
 /** The bundle lies beside the built server; the development server and tests name it by NULLBEAT_WORKER. */

@@ -41,7 +41,21 @@ export const uploadsQuery = pageQuery.extend({ inHand: z.enum(['true', 'false'])
 export const uploadNotesQuery = pageQuery.extend({ kind: z.enum(['refusal', 'warning']).default('refusal') })
 
 export const elementSetState = z.enum(['waiting', 'in-use', 'past', 'refused'])
-export const elementSetsQuery = pageQuery.extend({ spacecraftId: idSchema.optional(), state: elementSetState.optional(), unassigned: z.enum(['true', 'false']).optional() })
+/** Where a set of no spacecraft stands: to be decided on, kept on purpose, dropped. */
+export const handlingSchema = z.enum(['open', 'kept', 'dropped'])
+const searchSchema = z.string().trim().min(1, 'Write a part of a name, or the beginning of a number.').max(80)
+export const elementSetsQuery = pageQuery.extend({
+  spacecraftId: idSchema.optional(), state: elementSetState.optional(), unassigned: z.enum(['true', 'false']).optional(),
+  handling: handlingSchema.optional(), uploadId: idSchema.optional(), q: searchSchema.optional(),
+})
+export const setCounts = z.object({ waiting: z.number().int(), open: z.number().int(), kept: z.number().int(), dropped: z.number().int() })
+const setIds = z.array(idSchema).min(1).max(1000)
+/** Sets of no spacecraft: named one by one, or all of an upload or a search that stand at `handling`. */
+export const whichUnassigned = z.strictObject({ ids: setIds.optional(), uploadId: idSchema.optional(), q: searchSchema.optional(), handling: handlingSchema.optional() })
+  .refine(({ ids, uploadId, q }) => ids !== undefined || uploadId !== undefined || q !== undefined, 'Say which: ids, uploadId or q.')
+export const assignSetBody = z.strictObject({ spacecraftId: idSchema })
+export const assignSetsBody = assignSetBody.extend({ ids: setIds })
+export const changedOut = z.object({ changed: z.number().int() })
 const elementNotation = z.enum(ELEMENT_NOTATIONS, { error: `Name a notation: ${ELEMENT_NOTATIONS.join(', ')}.` })
 export const downloadQuery = z.strictObject({ notation: elementNotation })
 export const downloadSetsQuery = z.strictObject({

@@ -8,6 +8,7 @@ import { cursorInstant, readCursor, toPage } from '../cursor'
 import { DomainError } from '../errors'
 import { apsidesKm } from './apsides'
 import { ruleDeclines } from './trail-words'
+import { isFound, isHandled, isOfUpload } from './unassigned-sets'
 
 /** Why the rule of its spacecraft, as it stands, has left a waiting set to people. */
 const ruleDeclined = sql<string | null>`CASE WHEN ${elementSets.state} = 'waiting' AND ${spacecraft.autoUse} IS NOT NULL THEN (
@@ -46,6 +47,9 @@ export async function listElementSets({ db, now }: Pick<Deps, 'db' | 'now'>, que
       query.spacecraftId ? eq(elementSets.spacecraftId, query.spacecraftId) : undefined,
       query.state ? eq(elementSets.state, query.state) : undefined,
       query.unassigned === 'true' ? isNull(elementSets.spacecraftId) : query.unassigned === 'false' ? isNotNull(elementSets.spacecraftId) : undefined,
+      query.handling ? isHandled(query.handling) : undefined,
+      query.uploadId ? isOfUpload(db, query.uploadId) : undefined,
+      query.q ? isFound(query.q) : undefined,
       after ? sql`(${elementSets.epoch}, ${elementSets.id}) < (${after[0]}::timestamptz, ${after[1]}::uuid)` : undefined,
     ))
     .orderBy(desc(elementSets.epoch), desc(elementSets.id)).limit(query.limit + 1)

@@ -6,6 +6,7 @@ import { elementUploadNotes, elementUploads } from '~~/server/database/schema'
 import { jsonBytes } from '~~/server/workers/tasks/batch'
 import { recordAudit } from '../audit'
 import type { Deps } from '../context'
+import { pointOutMisfits } from './point-out-misfits'
 import { storableNote, storableText } from './storable-text'
 import { storeNotes } from './store-batch'
 import { Cancelled, RefusedWhole, storeReading } from './store-reading'
@@ -51,6 +52,7 @@ async function readAndFinish(deps: Deps, outside: Db, row: UploadRow): Promise<U
     // What is stored before the file turns out to be none is taken back, and only that.
     const { end, accepted, alreadyHeld } = await deps.db.transaction(tx => storeReading({ ...deps, db: tx }, outside, row))
     if (end.kind === 'refused') return refuse(deps, row.id, end.detail)
+    await pointOutMisfits(deps, row.id)
     await finish(deps, row, { state: 'finished', format: end.format, accepted, alreadyHeld, refused: end.refusals })
     return { kind: 'finished' }
   }

@@ -1,5 +1,6 @@
 import { benchPredict } from './bench-predict'
 import { compareSets } from './compare-sets'
+import { fitSets } from './fit-sets'
 import { learnAccuracyTask } from './learn-accuracy'
 import { passSamples } from './pass-samples'
 import { predictStation } from './predict-station'
@@ -10,6 +11,7 @@ import { readUpload } from './read-upload'
 export const tasks = {
   'bench-predict': benchPredict,
   'compare-sets': compareSets,
+  'fit-sets': fitSets,
   'learn-accuracy': learnAccuracyTask,
   'read-upload': readUpload,
   'predict-station': predictStation,
