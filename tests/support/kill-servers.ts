@@ -11,10 +11,12 @@ interface Given {
   /** How many servers there are. */
   servers?: number
   beforeEach?: (index: number) => Promise<void>
+  /** While the killed one is gone. */
+  afterKill?: () => Promise<void>
 }
 
 /** Kills one of some servers after the other at random moments and starts another in its place; ends with all of them ready. */
-export async function killServers({ kills, random, withinMs, options, servers = 2, beforeEach }: Given): Promise<TestServer[]> {
+export async function killServers({ kills, random, withinMs, options, servers = 2, beforeEach, afterKill }: Given): Promise<TestServer[]> {
   const running: TestServer[] = []
   try {
     for (let index = 0; index < servers; index++) running.push(await spawnServer(options))
@@ -24,6 +26,7 @@ export async function killServers({ kills, random, withinMs, options, servers = 
       const victim = Math.floor(random() * servers)
       running[victim]!.kill()
       await running[victim]!.ended
+      await afterKill?.()
       running[victim] = await spawnServer(options)
     }
     await Promise.all(running.map(server => server.ready()))
