@@ -1,6 +1,7 @@
 import { z } from 'zod'
 import type { KeyScope, Permission } from './permissions'
 import * as alerts from './schemas/alerts'
+import * as antennaConflicts from './schemas/antenna-conflicts'
 import * as bench from './schemas/bench'
 import * as calendars from './schemas/calendars'
 import { idParams, listOf, pageQuery } from './schemas/common'
@@ -144,6 +145,9 @@ export const routes = {
   'POST /api/tables/{id}/release': { access: may('tables:decide'), summary: 'Release a held table', params: idParams, body: tables.decideBody, response: tables.tableBrief },
   'POST /api/tables/{id}/publish': { access: may('tables:decide'), summary: 'Publish now', params: idParams, body: tables.decideBody, response: tables.tableBrief },
   'POST /api/tables/{id}/withdraw': { access: may('tables:decide'), summary: 'Withdraw what is published, with a reason', params: idParams, body: tables.withdrawBody, response: tables.tableBrief },
+
+  'GET /api/antenna-conflicts': { access: read, summary: 'Pairs of passes that want one antenna at one time, set-up included', query: antennaConflicts.antennaConflictsQuery, response: z.object({ items: z.array(antennaConflicts.antennaConflictOut) }) },
+  'POST /api/antenna-conflicts/give': { access: may('tables:decide'), summary: 'Give the antenna to one of two passes; the other’s tables stand down', body: antennaConflicts.giveAntennaBody, response: antennaConflicts.antennaConflictOut },
 
   'GET /api/quiet-spans': { access: read, summary: 'Spans in which no retune takes effect, the latest first', query: quiet.quietSpansQuery, response: listOf(quiet.quietSpanOut) },
   'POST /api/quiet-spans': { access: may('tables:decide'), summary: 'Enter a quiet span; the tables it concerns are planned around it', body: quiet.createQuietSpanBody, response: quiet.quietSpanOut, status: 201, creates: true },

@@ -8,7 +8,7 @@ import type { Verdict } from './physics/types'
 export const revisionStates = ['drafted', 'approved', 'held', 'published', 'collected', 'superseded', 'withdrawn', 'lapsed'] as const
 export type RevisionState = typeof revisionStates[number]
 
-export type Move = 'approve' | 'hold' | 'release' | 'publish' | 'collect' | 'supersede' | 'withdraw' | 'lapse' | 'return-to-draft'
+export type Move = 'approve' | 'hold' | 'stand-down' | 'release' | 'publish' | 'collect' | 'supersede' | 'withdraw' | 'lapse' | 'return-to-draft'
 export type Mover = 'person' | 'rule' | 'schedule' | 'station' | 'server'
 
 export interface MoveRule {
@@ -23,6 +23,8 @@ export interface MoveRule {
 export const moves: Record<Move, MoveRule> = {
   'approve': { from: ['drafted'], to: 'approved', by: ['person', 'rule'], needsReason: false, stationSees: 'nothing new' },
   'hold': { from: ['drafted', 'approved'], to: 'held', by: ['person'], needsReason: true, stationSees: 'nothing new; a published revision stays' },
+  // For another pass that has the antenna; given back, the table is what it was.
+  'stand-down': { from: ['drafted', 'approved'], to: 'held', by: ['person', 'schedule'], needsReason: true, stationSees: 'nothing new' },
   'release': { from: ['held'], to: 'drafted', by: ['person'], needsReason: false, stationSees: 'nothing new' },
   'return-to-draft': { from: ['approved'], to: 'drafted', by: ['server'], needsReason: true, stationSees: 'nothing new' },
   'publish': { from: ['approved'], to: 'published', by: ['person', 'schedule'], needsReason: false, stationSees: 'this revision' },

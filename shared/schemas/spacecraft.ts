@@ -23,6 +23,8 @@ const fields = {
   elementAgeLimitHours: positive().max(2400),
   alongTrackFloorKm: positive().max(1000).nullable(),
   alongTrackGrowthKmPerDay: atLeastZero().max(1000).nullable(),
+  /** Of two passes that want one antenna, the higher has it unless somebody decides otherwise. */
+  priority: z.number().int().min(0).max(100),
   /** Null: a person decides on every set. */
   autoUse: autoUseRule.nullable(),
 }
@@ -36,6 +38,7 @@ export const createSpacecraftBody = z.strictObject({
   elementAgeLimitHours: fields.elementAgeLimitHours.default(72),
   alongTrackFloorKm: fields.alongTrackFloorKm.default(null),
   alongTrackGrowthKmPerDay: fields.alongTrackGrowthKmPerDay.default(null),
+  priority: fields.priority.default(0),
   autoUse: fields.autoUse.default(null),
   /** Made from this held set in one step; the set then waits for it. */
   fromElementSetId: idSchema.optional(),

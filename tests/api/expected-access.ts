@@ -120,6 +120,9 @@ export const expectedAccess: Record<string, Expected> = {
   'POST /api/tables/{id}/publish': decidingOnTables,
   'POST /api/tables/{id}/withdraw': decidingOnTables,
 
+  'GET /api/antenna-conflicts': reading,
+  'POST /api/antenna-conflicts/give': decidingOnTables,
+
   // Operators decide when a radio is left alone.
   'GET /api/quiet-spans': reading,
   'POST /api/quiet-spans': decidingOnTables,

@@ -13,6 +13,9 @@ const life: [RevisionState, Move, RevisionState, Mover[]][] = [
   ['drafted', 'approve', 'approved', ['person', 'rule']],
   ['drafted', 'hold', 'held', ['person']],
   ['approved', 'hold', 'held', ['person']],
+  // Of two passes that want one antenna: the operator decides, by default the schedule does.
+  ['drafted', 'stand-down', 'held', ['person', 'schedule']],
+  ['approved', 'stand-down', 'held', ['person', 'schedule']],
   ['held', 'release', 'drafted', ['person']],
   ['approved', 'return-to-draft', 'drafted', ['server']],
   ['approved', 'publish', 'published', ['person', 'schedule']],
@@ -40,7 +43,7 @@ describe('the life of a table', () => {
   })
 
   it('asks for a reason where a person keeps something back or takes it away', () => {
-    expect(allMoves.filter(move => moves[move].needsReason).sort()).toEqual(['hold', 'return-to-draft', 'supersede', 'withdraw'])
+    expect(allMoves.filter(move => moves[move].needsReason).sort()).toEqual(['hold', 'return-to-draft', 'stand-down', 'supersede', 'withdraw'])
   })
 
   it.each([
@@ -99,7 +102,7 @@ class TableUnderTest {
     if (move === 'publish' && needsSecondPerson(revision.verdict) && revision.approvedBy.length < 2) return
     if (move === 'publish' && out && canMove(out.state, 'supersede', 'server')) out.state = moves.supersede.to
     if (move === 'approve') revision.approvedBy = [mover === 'rule' ? 'rule' : person]
-    if (move === 'hold' || move === 'return-to-draft') revision.approvedBy = []
+    if (move === 'hold' || move === 'stand-down' || move === 'return-to-draft') revision.approvedBy = []
     revision.state = moves[move].to
   }
 

@@ -1,7 +1,7 @@
 import type { TableOut } from '#shared/schemas/tables'
 
 const done: Record<string, string> = {
-  'table.draft': 'drafted', 'table.approve': 'approved', 'table.second': 'approved as second person', 'table.hold': 'held', 'table.release': 'released',
+  'table.draft': 'drafted', 'table.approve': 'approved', 'table.second': 'approved as second person', 'table.hold': 'held', 'table.release': 'released', 'table.stand-down': 'stood down', 'table.stand-up': 'given the antenna back',
   'table.return-to-draft': 'returned to draft', 'table.publish': 'published', 'table.collect': 'collected', 'table.supersede': 'superseded', 'table.withdraw': 'withdrawn', 'table.lapse': 'lapsed',
 }
 

@@ -1,6 +1,7 @@
 import type { Deps } from '../context'
 import type { AlertKind, Cause, CauseScope } from './cause'
 import { findAutoUseDeclined } from './auto-use-declined'
+import { findAntennaConflicts } from './antenna-conflict'
 import { findDecisionDue } from './decision-due'
 import { findElementsOld } from './elements-old'
 import { findNotCollected } from './not-collected'
@@ -27,6 +28,7 @@ const finders: Partial<Record<AlertKind, Finder>> = {
   'web-hook-failing': findWebHookFailing,
   'auto-use-declined': findAutoUseDeclined,
   'slots-missed': findSlotsMissed,
+  'antenna-conflict': findAntennaConflicts,
 }
 export const allKinds = Object.keys(finders) as AlertKind[]
 

@@ -1,4 +1,4 @@
-import { and, desc, eq } from 'drizzle-orm'
+import { and, desc, eq, inArray } from 'drizzle-orm'
 import type { TableBrief } from '#shared/schemas/tables'
 import { audit, tableRevisions } from '~~/server/database/schema'
 import { recordAudit } from '../audit'
@@ -31,9 +31,9 @@ export async function releaseTable({ db, actor, now }: Deps<PersonActor>, { id, 
     const open = requireOpen(table, 'release', now, revision)
     requireMove(open, 'release')
     const [held] = await tx.select({ before: audit.before }).from(audit)
-      .where(and(eq(audit.tableId, id), eq(audit.entityId, open.id), eq(audit.action, 'table.hold'))).orderBy(desc(audit.id)).limit(1)
+      .where(and(eq(audit.tableId, id), eq(audit.entityId, open.id), inArray(audit.action, ['table.hold', 'table.stand-down']))).orderBy(desc(audit.id)).limit(1)
     const reason = (held?.before as { reason?: string | null } | undefined)?.reason ?? null
-    await tx.update(tableRevisions).set({ state: 'drafted', reason, heldAt: null, updatedAt: now }).where(eq(tableRevisions.id, open.id))
+    await tx.update(tableRevisions).set({ state: 'drafted', reason, standsDown: false, heldAt: null, updatedAt: now, approvedById: null, approvedBy: null, approvedAt: null, secondedById: null, secondedBy: null }).where(eq(tableRevisions.id, open.id))
     await recordAudit(deps, stateAudit('table.release', { tableId: id, revisionId: open.id, revision: open.number, from: 'held', to: 'drafted', before: { reason: open.reason } }))
     return getBrief(deps, id)
   })

@@ -1,6 +1,7 @@
 import { eq } from 'drizzle-orm'
 import { canMove, needsSecondPerson } from '#shared/table-life'
 import { tableRevisions } from '~~/server/database/schema'
+import { antennaRefusal } from '../antennas/before-publication'
 import { recordAudits } from '../audit'
 import type { Deps } from '../context'
 import { loadInputs } from '../prediction/load-inputs'
@@ -31,8 +32,10 @@ export interface PublishRequest {
  * - `frozen`: inside the station's freeze time; only a person publishes
  * - `gone`: the pass is no longer predicted
  * - `stale`: what it was made with has changed and the computation is under way
+ * - `stands-down`: another pass has the antenna
+ * - `antenna-wanted`: another pass wants the antenna, and a person has to give it to one of them
  */
-export type Refusal = 'nothing-open' | 'not-approved' | 'needs-second-person' | 'begun' | 'frozen' | 'gone' | 'stale'
+export type Refusal = 'nothing-open' | 'not-approved' | 'needs-second-person' | 'begun' | 'frozen' | 'gone' | 'stale' | 'stands-down' | 'antenna-wanted'
 
 export type PublishOutcome =
   | { outcome: 'published', revisionId: string, revision: number, supersedes: number | null }
@@ -53,7 +56,8 @@ export async function publishRevision({ db, actor, now }: Deps, request: Publish
       await requestRefresh(deps, { spacecraftIds: [table.craft.id], stationIds: [table.station.id], reason: 'Computed anew before publication.' })
       return { outcome: 'stale', detail: 'What this table was made with has just changed; it is being computed anew. Try again in a few seconds.' }
     }
-    return publish(deps, table, open)
+    const wanted = await antennaRefusal(deps, table, open)
+    return wanted ?? publish(deps, table, open)
   })
 }
 

@@ -1,7 +1,7 @@
 import type { RevisionState } from '#shared/table-life'
 import type { AuditEntry } from '../audit'
 
-export type TableAction = 'table.draft' | 'table.approve' | 'table.second' | 'table.hold' | 'table.release' | 'table.return-to-draft'
+export type TableAction = 'table.draft' | 'table.approve' | 'table.second' | 'table.hold' | 'table.release' | 'table.stand-down' | 'table.stand-up' | 'table.return-to-draft'
   | 'table.publish' | 'table.collect' | 'table.supersede' | 'table.withdraw' | 'table.lapse'
 
 interface Step {
