@@ -1,5 +1,6 @@
 import { execFile } from 'node:child_process'
 import { createHash } from 'node:crypto'
+import { readFileSync } from 'node:fs'
 import { fileURLToPath } from 'node:url'
 import { promisify } from 'node:util'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
@@ -68,3 +69,8 @@ function digestOf(served: string): string {
   const { digest: _digest, signature: _signature, ...table } = JSON.parse(served) as Record<string, unknown>
   return createHash('sha256').update(canonicalJson(table)).digest('hex')
 }
+
+it('is what the README shows, sign for sign', () => {
+  const file = (path: string) => readFileSync(new URL(`../../../${path}`, import.meta.url), 'utf8')
+  expect(file('README.md'), 'Copy tests/examples/verify-table.mjs into the README again.').toContain(`\`\`\`js\n${file('tests/examples/verify-table.mjs')}\`\`\``)
+})
