@@ -3,7 +3,7 @@ import { Agent, request } from 'node:http'
 import { setTimeout as wait } from 'node:timers/promises'
 import type { Database } from '../../server/database/client'
 import { databaseNow, openDatabase } from '../../server/database/client'
-import { apiKeys } from '../../server/database/schema'
+import { apiKeys, slots } from '../../server/database/schema'
 import { scheduleActor } from '../../server/domain/context'
 import { publishRevision } from '../../server/domain/tables/publish-revision'
 import { verifyTable } from '../examples/verify-table.mjs'
@@ -46,6 +46,7 @@ const retuneCount = 60
 export async function runFeedLoad({ pollsPerS, seconds }: { pollsPerS: number, seconds: number }): Promise<FeedLoad> {
   const made = await createTestDatabase()
   const database = openDatabase(made.url, { max: 4 })
+  await database.db.insert(slots).values([0, 1, 2].map(hours => rolledForward(hours)))
   const server = await startServer({ databaseUrl: made.url })
   const agent = new Agent({ keepAlive: true, maxSockets: 200 })
   try {
@@ -79,6 +80,12 @@ export async function runFeedLoad({ pollsPerS, seconds }: { pollsPerS: number, s
   }
 }
 
+/** The hour's predictions are done: these tables are the test's own, and what computing costs is another test's. */
+function rolledForward(hours: number): typeof slots.$inferInsert {
+  const now = Date.now()
+  return { kind: 'roll-forward', entity: 'all', instant: new Date((Math.floor(now / 3600_000) + hours) * 3600_000), doneAt: new Date(now), outcome: 'Done by the test.' }
+}
+
 async function addController({ db }: Database, craft: SpacecraftFixture, n: number): Promise<Controller> {
   const station = await addStation(db)
   const key = `nb_${String(n).padStart(8, '0')}${'k'.repeat(32)}`
@@ -86,7 +93,7 @@ async function addController({ db }: Database, craft: SpacecraftFixture, n: numb
   const now = await databaseNow(db)
   const tables: Controller['tables'] = []
   for (let i = 1; i <= tablesEach; i++) {
-    const pass = await addPass(db, craft, station, new Date(now.getTime() + i * 3600_000))
+    const pass = await addPass(db, craft, station, new Date(now.getTime() + (i + 3) * 3600_000))
     const { id } = await addTable(db, craft, station, pass, { state: 'approved', retunes: retunesFrom(pass.aos, 0), inputsDigest: await presentDigest(db, now, craft, station) })
     await publishRevision({ db, now, actor: scheduleActor }, { tableId: id, mover: 'schedule' })
     tables.push({ id, number: 1, tag: null })
@@ -108,7 +115,8 @@ async function publishAnew({ db }: Database, craft: SpacecraftFixture, controlle
     const now = await databaseNow(db)
     await addRevision(db, craft, station, { tableId: table.id, aos: now, number: table.number, state: 'approved', retunes: retunesFrom(now, n), inputsDigest: await presentDigest(db, now, craft, station) })
     const outcome = await publishRevision({ db, now, actor: scheduleActor }, { tableId: table.id, mover: 'schedule' })
-    if (outcome.outcome !== 'published') throw new Error(`Not published: ${outcome.detail}`)
+    // The evening's slot may come first.
+    if (outcome.outcome !== 'published' && outcome.outcome !== 'nothing-open') throw new Error(`Not published: ${outcome.detail}`)
     done()
     await wait(1000)
   }
