@@ -1,5 +1,4 @@
 import { z } from 'zod'
-import type { Direction } from '../physics/types'
 import { canonicalJsonBytes } from './canonical-json'
 
 const instant = z.iso.datetime({ precision: 3 }).describe('UTC, milliseconds, Z')
@@ -85,16 +84,6 @@ export const servedTableSchema = publishedTableSchema.extend({
 export type PublishedRetune = z.infer<typeof publishedRetuneSchema>
 export type PublishedTable = z.infer<typeof publishedTableSchema>
 export type ServedTable = z.infer<typeof servedTableSchema>
-
-const CAUTIONS: Readonly<Record<Direction, string>> = {
-  uplink: 'Transmitting needs a licence and a coordinated frequency. This table is advice to licensed operators, who answer for what they radiate. The station\'s own interlocks and local rules come first.',
-  downlink: 'This table is advice to the station\'s operators. The station\'s own interlocks and local rules come first.',
-}
-
-/** The caution that every published table carries. */
-export function cautionFor(direction: Direction): string {
-  return CAUTIONS[direction]
-}
 
 /**
  * The bytes that are digested (SHA-256) and signed: canonical JSON (RFC 8785) of the table without `digest` and `signature`.

@@ -1,6 +1,7 @@
 import { eq } from 'drizzle-orm'
+import { cautionFor } from '#shared/formats/cautions'
 import type { PublishedTable } from '#shared/formats/published-table'
-import { cautionFor, publishedTableSchema } from '#shared/formats/published-table'
+import { publishedTableSchema } from '#shared/formats/published-table'
 import { elementSets, radios } from '~~/server/database/schema'
 import type { Deps } from '../context'
 import type { RadioRow } from '../prediction/models'

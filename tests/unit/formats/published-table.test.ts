@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest'
-import { canonicalTableBytes, cautionFor, publishedTableSchema, servedTableSchema } from '#shared/formats/published-table'
+import { cautionFor } from '#shared/formats/cautions'
+import { canonicalTableBytes, publishedTableSchema, servedTableSchema } from '#shared/formats/published-table'
 import { servedTable } from './table-fixture'
 
 const text = (bytes: Uint8Array) => new TextDecoder().decode(bytes)

@@ -1,5 +1,5 @@
 import type { ServedTable } from '#shared/formats/published-table'
-import { cautionFor } from '#shared/formats/published-table'
+import { cautionFor } from '#shared/formats/cautions'
 
 /** An invented table of two retunes. */
 export const servedTable = (changes: Partial<ServedTable> = {}): ServedTable => ({

@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { cautionFor } from '#shared/formats/published-table'
+import { cautionFor } from '#shared/formats/cautions'
 import { tableTdm } from '#shared/formats/table-tdm'
 import { servedTable } from './table-fixture'
 import { readTdm, transmittedAt } from './tdm-reader'
