@@ -3,8 +3,8 @@ import { defaultOf, findConflicts } from '../antennas/find-conflicts'
 import type { Deps } from '../context'
 import type { Cause, CauseScope } from './cause'
 
-/** Looked at this long before the passes. */
-const aheadMs = 24 * 3600_000
+/** Called for this long before the passes; what lies further ahead stands on the page of the night. */
+const aheadMs = 3 * 3600_000
 /** A gap shorter than this keeps an alert standing, so that elements that move a pass by seconds do not open and close it in turn. */
 const closingGapMs = 30_000
 

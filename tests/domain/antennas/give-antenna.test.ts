@@ -166,10 +166,13 @@ describe('without a decision', () => {
 
   it('raises one notice for operators, which a decision closes, and which seconds of difference do not flutter', async () => {
     const [first, second] = [await passWith(low, '01T20:00:00'), await passWith(high, '01T20:05:00')]
-    const reconcile = (at = now) => reconcileAlerts({ db: database.db, now: at, actor: scheduleActor }, { kinds: ['antenna-conflict'] })
+    const soon = new Date('2026-12-01T17:30:00.000Z')
+    const reconcile = (at = soon) => reconcileAlerts({ db: database.db, now: at, actor: scheduleActor }, { kinds: ['antenna-conflict'] })
     const standing = () => database.db.select().from(alerts).where(and(eq(alerts.kind, 'antenna-conflict'), eq(alerts.stationId, station.id)))
-    await reconcile()
-    await reconcile()
+    await reconcile(now)
+    expect(await standing()).toEqual([])
+    await reconcile(soon)
+    await reconcile(soon)
     expect(await standing()).toMatchObject([{ severity: 'notice', state: 'open', dueAt: new Date('2026-12-01T20:00:00Z'), title: `${station.name}: ${low.name} and ${high.name} both want ${station.antenna.name}` }])
     const told = await database.db.select({ to: mails.toAddress }).from(mails).where(eq(mails.alertId, (await standing())[0]!.id))
     expect(told.map(({ to }) => to)).toContain(operator.email)
@@ -181,9 +184,9 @@ describe('without a decision', () => {
     await reconcile()
     expect(await standing()).toMatchObject([{ state: 'closed' }])
     await moveTo('20:05:00')
-    await reconcile(new Date(now.getTime() + 3600_000))
+    await reconcile(new Date(soon.getTime() + 3600_000))
     await give(first, second)
-    await reconcile(new Date(now.getTime() + 3601_000))
+    await reconcile(new Date(soon.getTime() + 3601_000))
     expect((await standing()).map(({ state }) => state)).toEqual(['closed', 'closed'])
   })
 })
