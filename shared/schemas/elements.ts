@@ -50,9 +50,9 @@ export const elementSetsQuery = pageQuery.extend({
 })
 export const setCounts = z.object({ waiting: z.number().int(), open: z.number().int(), kept: z.number().int(), dropped: z.number().int() })
 const setIds = z.array(idSchema).min(1).max(1000)
-/** Sets of no spacecraft: named one by one, or all of an upload or a search that stand at `handling`. */
+/** Sets of no spacecraft: named one by one, or all of an upload, of a search or of what stands at `handling`. */
 export const whichUnassigned = z.strictObject({ ids: setIds.optional(), uploadId: idSchema.optional(), q: searchSchema.optional(), handling: handlingSchema.optional() })
-  .refine(({ ids, uploadId, q }) => ids !== undefined || uploadId !== undefined || q !== undefined, 'Say which: ids, uploadId or q.')
+  .refine(which => Object.values(which).some(value => value !== undefined), 'Say which: ids, uploadId, q or handling.')
 export const assignSetBody = z.strictObject({ spacecraftId: idSchema })
 export const assignSetsBody = assignSetBody.extend({ ids: setIds })
 export const changedOut = z.object({ changed: z.number().int() })
