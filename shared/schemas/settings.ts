@@ -12,6 +12,8 @@ const fields = {
   digestAt: z.string().regex(/^([01]\d|2[0-3]):[0-5]\d$/, 'Write the time as 18:00.'),
   /** Called every minute while all is well. */
   heartbeatUrl: z.string().trim().min(1, 'Write the whole address, or leave it out.').max(500, 'At most 500 characters.').refine(text => URL.canParse(text), 'Write the whole address, such as https://watch.example/nullbeat.').nullable(),
+  /** A folder on the server whose files are uploaded and moved away. */
+  watchedFolder: z.string().trim().min(1, 'Write the whole path, or leave it out.').max(500, 'At most 500 characters.').nullable(),
   /** One sigma along track at the epoch and growth for perigees under and above 800 km. */
   prior: z.strictObject({
     lowFloorKm: z.number().positive().max(1000), lowGrowthKmPerDay: z.number().min(0).max(1000),
@@ -27,6 +29,7 @@ export const settingsSchema = z.strictObject({
   digestZone: fields.digestZone.default('UTC'),
   digestAt: fields.digestAt.default('18:00'),
   heartbeatUrl: fields.heartbeatUrl.default(null),
+  watchedFolder: fields.watchedFolder.default(null),
   prior: fields.prior.default({ lowFloorKm: 0.5, lowGrowthKmPerDay: 1.5, highFloorKm: 0.3, highGrowthKmPerDay: 0.5 }),
 })
 export type Settings = z.infer<typeof settingsSchema>

@@ -1,4 +1,4 @@
 import { settingsOverview } from '~~/server/domain/settings/settings-overview'
 import { defineRoute } from '~~/server/http/define-route'
 
-export default defineRoute('GET /api/settings', async ({ db }) => settingsOverview({ db }))
+export default defineRoute('GET /api/settings', async ({ db, actor }) => settingsOverview({ db, actor }))

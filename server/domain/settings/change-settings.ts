@@ -6,6 +6,7 @@ import { recordAudit } from '../audit'
 import type { Deps } from '../context'
 import { difference, touches } from '../difference'
 import { heartbeatPolicy } from '~~/server/outward/policy'
+import { checkWatchedFolder } from '../elements/folder-files'
 import { requestRefresh } from '../prediction/request-refresh'
 import { readSettings } from './read-settings'
 import { requireOutward } from '../web-hooks/require-outward'
@@ -15,6 +16,7 @@ import { settingsOverview } from './settings-overview'
 const predictionSettings = ['horizonDays', 'ut1', 'k', 'prior'] as const
 
 export async function changeSettings(deps: Deps, input: z.output<typeof changeSettingsBody>): Promise<z.infer<typeof settingsOut>> {
+  if (input.watchedFolder && input.watchedFolder !== (await readSettings(deps.db)).watchedFolder) await checkWatchedFolder(input.watchedFolder)
   if (input.heartbeatUrl) await requireOutward(input.heartbeatUrl, 'heartbeatUrl', heartbeatPolicy())
   await deps.db.transaction(async (tx) => {
     const inner = { ...deps, db: tx }
