@@ -12,8 +12,10 @@ export const sourceWords: Record<UploadBrief['source'], string> = { file: 'by fi
 
 export const stateWords: Record<UploadBrief['state'], string> = { receiving: 'Being sent', reading: 'Being read', finished: 'Finished', cancelled: 'Cancelled', failed: 'Refused' }
 
-/** An upload whose storing failed is no fault of the file; its detail says so. */
 export const nameOf = ({ fileName, source }: Pick<UploadBrief, 'fileName' | 'source'>): string => fileName ?? (source === 'paste' ? 'Pasted text' : 'Unnamed')
+
+const notations: Record<string, string> = { 'tle': 'TLE', 'omm-kvn': 'OMM as KVN', 'omm-xml': 'OMM as XML', 'omm-json': 'OMM as JSON', 'omm-csv': 'OMM as CSV' }
+export const notationWords = (format: string | null): string => format === null ? 'Notation not known' : notations[format] ?? format
 
 /** What became of an upload, in a sentence. */
 export function outcomeOf(upload: Pick<UploadBrief, 'state' | 'accepted' | 'alreadyHeld' | 'refused' | 'cancelling'>): string {
