@@ -89,7 +89,7 @@ export const routes = {
   'GET /api/element-sets/download': { access: read, summary: 'Up to 100 element sets as one file, in the order asked for', query: elements.downloadSetsQuery },
   'GET /api/element-sets/{id}/download': { access: read, summary: 'One element set as a file: TLE, or OMM as KVN, XML, JSON or CSV', params: idParams, query: elements.downloadQuery },
   'GET /api/element-sets/{id}/comparison': { access: read, summary: 'Shift of prediction against the set in use', params: idParams, response: elements.comparisonOut },
-  'GET /api/element-sets/{id}/preview': { access: read, summary: 'What putting it into use would do to tables; for one that is or was in use, what it did', params: idParams, response: elements.previewOut },
+  'GET /api/element-sets/{id}/preview': { access: read, summary: 'What putting it into use would do to tables; for one that is or was in use, what it did', params: idParams, query: elements.previewQuery, response: elements.previewOut },
   'POST /api/element-sets/{id}/use': { access: may('elements:decide'), summary: 'Put into use; a past set: roll back', params: idParams, response: elements.elementSetOut },
   'POST /api/element-sets/{id}/schedule-use': { access: may('elements:decide'), summary: 'Put into use at an instant', params: idParams, body: elements.scheduleUseBody, response: elements.elementSetOut },
   'POST /api/element-sets/{id}/cancel-use': { access: may('elements:decide'), summary: 'Take back what was scheduled', params: idParams, response: elements.elementSetOut },

@@ -71,10 +71,19 @@ export function useSetDecisions(waiting: Ref<readonly ElementSetOut[]>, done: ()
 /** What using a set would do to tables, or did; asked anew for each set. */
 export function usePreview() {
   const preview = shallowRef<PreviewOut | null>(null)
-  const load = useAction(async (id: string) => {
+  const problem = shallowRef<ApiProblem | null>(null)
+  let asked = ''
+  async function load(id: string, asOf?: PreviewOut['asOf']) {
+    asked = id
     preview.value = null
-    const answer = await callApi('GET /api/element-sets/{id}/preview', { params: { id } })
-    preview.value = answer
-  })
-  return { preview, load: load.run, problem: load.problem }
+    problem.value = null
+    try {
+      const answer = await callApi('GET /api/element-sets/{id}/preview', { params: { id }, query: { asOf } })
+      if (asked === id) preview.value = answer
+    }
+    catch (error) {
+      if (asked === id) problem.value = asProblem(error)
+    }
+  }
+  return { preview, load, problem }
 }

@@ -124,6 +124,8 @@ export const previewOut = z.object({
   /** How many tables were looked at, and passes that come or go. */
   looked: z.object({ published: z.number().int(), drafts: z.number().int(), passesGone: z.number().int(), passesNew: z.number().int() }),
 })
+/** Left out: by the set's state. A past set can be looked at both ways: what it did, and what a roll-back would do. */
+export const previewQuery = z.strictObject({ asOf: z.enum(['before', 'after']).optional() })
 export type PreviewOut = z.infer<typeof previewOut>
 
 /** Shift of prediction of the coming passes against the set in use. */

@@ -20,9 +20,10 @@ type Part = Pick<PreviewOut, 'published' | 'drafts' | 'looked'>
  * What would become of tables if this set were put into use now: predicted as it would be, station by station, and held
  * against what is known, with nothing written. For a set that is or was in use: what it did.
  */
-export async function previewSet({ db, now }: Pick<Deps, 'db' | 'now'>, { id }: { id: string }): Promise<PreviewOut> {
+export async function previewSet({ db, now }: Pick<Deps, 'db' | 'now'>, { id, asOf }: { id: string, asOf?: PreviewOut['asOf'] }): Promise<PreviewOut> {
   const set = await findSet(db, id)
-  if (set.state === 'in-use' || set.state === 'past') return effectsOfSet({ db }, { id })
+  const was = set.state === 'in-use' || set.state === 'past'
+  if ((asOf ?? (was ? 'after' : 'before')) === 'after') return effectsOfSet({ db }, { id })
   const spacecraftId = requireSpacecraft(set)
   const rows = await db.select({ id: stations.id }).from(stations).where(isNull(stations.retiredAt)).orderBy(asc(stations.name), asc(stations.id))
   // What was made for links that are retired is none of this set's doing.
