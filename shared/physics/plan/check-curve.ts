@@ -1,7 +1,11 @@
 import { dopplerHz } from '../doppler/needed'
+import { SPEED_OF_LIGHT_MPS } from '../doppler/ratio'
 import { answeringLink } from '../doppler/two-way'
-import type { Hz, LinkModel, PropagationError, Propagator, Site, Span, StateTeme, UtcMs } from '../types'
+import { EARTH_ROTATION_RAD_PER_S, siteStateTeme } from '../orbit/frames'
+import type { Hz, LinkModel, Propagator, Site, Span, StateTeme, UtcMs } from '../types'
+import type { Sampler } from './check-series'
 import { seriesOf } from './check-series'
+import { checkStatesOf, propagated } from './check-states'
 
 export interface CheckCurveQuery {
   readonly propagator: Propagator
@@ -13,6 +17,9 @@ export interface CheckCurveQuery {
 
 /** What the checker knows of the needed frequency over one workable part. */
 export interface CheckCurve {
+  readonly span: Span
+  /** The states it is made of; null outside the span, but for light on its way. */
+  readonly stateAt: (utcMs: UtcMs) => StateTeme | null
   /** Frequency to set minus carrier. */
   readonly offsetHz: (utcMs: UtcMs) => Hz
   readonly rateHzPerS: (utcMs: UtcMs) => number
@@ -36,8 +43,7 @@ export interface CheckCurve {
  * @tolerance 0.05, 0.2, 0.5 Hz at 437.5, 2245, 8200 MHz (plan/check-curve.test.ts)
  */
 export function directOffsetHz({ propagator, site, link, ut1MinusUtcS }: Omit<CheckCurveQuery, 'span'>, utcMs: UtcMs): Hz {
-  const now = propagator.at(utcMs)
-  if (!now.ok) throw failed(now.error, utcMs)
+  const now = propagated(propagator, utcMs)
   // A light time beyond the set's end is bridged from the state now.
   const stateAt = (at: UtcMs): StateTeme | null => {
     const state = at === utcMs ? now : propagator.at(at)
@@ -46,18 +52,31 @@ export function directOffsetHz({ propagator, site, link, ut1MinusUtcS }: Omit<Ch
   return dopplerHz({ ...link, stateAt, site, ut1MinusUtcS }, utcMs)
 }
 
-const failed = (error: PropagationError, utcMs: UtcMs) =>
-  new RangeError(`The element set cannot be propagated to ${new Date(utcMs).toISOString()}: ${error}. Cut the table before that instant.`)
+/**
+ * ∂ρ̇/∂UT1, m/s per second: the station s turned on with the Earth, its velocity u = ω×s, the spacecraft staying. With d the line
+ * from station to spacecraft and w the spacecraft's velocity against the station's: ρ̇ = d·w/ρ, ∂d = −u, ∂w = −ω×u.
+ */
+function rangeRateByUt1({ positionM: [x, y, z], velocityMps: [vx, vy, vz] }: StateTeme, site: Site, utcMs: UtcMs, ut1MinusUtcS: number): number {
+  const { positionM: [sx, sy, sz], velocityMps: [ux, uy] } = siteStateTeme(site, utcMs, ut1MinusUtcS)
+  const [dx, dy, dz, wx, wy] = [x - sx, y - sy, z - sz, vx - ux, vy - uy]
+  const range2 = dx * dx + dy * dy + dz * dz
+  const [alongU, closing] = [dx * ux + dy * uy, dx * wx + dy * wy + dz * vz]
+  const turning = EARTH_ROTATION_RAD_PER_S ** 2 * (dx * sx + dy * sy) - ux * wx - uy * wy
+  return (turning + closing * alongU / range2) / Math.sqrt(range2)
+}
 
-const UT1_STEP_S = 0.5
+/** Panels to begin with, in shares of the orbit's period. */
+const PANEL_SHARE = 1 / 48
+const NODES = 16
 
 /**
  * The checker's own interpolation of the needed frequency, from its own propagations: Chebyshev series, within 1e-3 Hz plus
  * 1e-12 of the carrier of direct propagation. Panels begin at a 48th of the orbit's period and are halved until the series
- * dies out. The partials are made when first asked for.
+ * dies out. ∂f/∂UT1 is of first order in v/c, a part in 10⁴.
  *
  * @card Checker’s curve: needed offset, rate and partials over a workable part, on its own interpolation.
- * @formula Chebyshev series on panels of a 48th of the period, halved until they die out; ∂f/∂t_along = ḟ − ∂f/∂UT1
+ * @formula Chebyshev series on panels of a 48th of the period, halved until they die out; ∂f/∂UT1 = ∓f0/c·∂ρ̇/∂UT1;
+ *   ∂f/∂t_along = ḟ − ∂f/∂UT1
  * @source Press et al., Numerical Recipes §5.8; mechanics
  * @units UTC ms → Hz, Hz/s
  * @frame TEME axes
@@ -65,33 +84,39 @@ const UT1_STEP_S = 0.5
  * @tolerance 1e-3 Hz and 1e-12 of the carrier of true propagation (plan/check-curve.test.ts)
  */
 export function checkCurveOf(query: CheckCurveQuery): CheckCurve {
-  const { propagator, link, ut1MinusUtcS, span } = query
-  const panelMs = 86_400_000 / propagator.elements.meanMotionRevPerDay / 48
-  const offset = seriesOf(utcMs => directOffsetHz(query, utcMs), {
-    ...span, panelMs, nodes: 16, tolerance: 1e-4 + 1e-13 * link.carrierHz,
-  })
+  const { propagator, link, site, ut1MinusUtcS, span } = query
+  const { stateAt } = checkStatesOf(propagator, span)
+  const panelMs = 86_400_000 / propagator.elements.meanMotionRevPerDay * PANEL_SHARE
+  const toleranceHz = 1e-4 + 1e-13 * link.carrierHz
+  // Both legs of a coherent link answer alike.
+  const perMps = (link.direction === 'uplink' ? 1 : -1) * (link.turnaround ? 2 : 1) * link.carrierHz / SPEED_OF_LIGHT_MPS
+  const path = { ...link, stateAt, site, ut1MinusUtcS }
+  const sample: Sampler = (utcMs, into) => {
+    into[OFFSET] = dopplerHz(path, utcMs)
+    into[UT1] = perMps * rangeRateByUt1(stateAt(utcMs)!, site, utcMs, ut1MinusUtcS)
+  }
+  const { valueAt, rateAt } = seriesOf(sample, { ...span, panelMs, nodes: NODES, tolerances: [toleranceHz, 1e-11 * link.carrierHz] })
   // What a link answers to errors by may be another curve than the one it is tuned along.
   const answering = answeringLink(link)
-  const answer = answering === link ? offset : seriesOf(utcMs => directOffsetHz({ ...query, link: answering }, utcMs), { ...span, panelMs, nodes: 16, tolerance: 1e-4 + 1e-13 * link.carrierHz })
-  const makeUt1 = () => seriesOf((utcMs) => {
-    // One propagation for both turns: what the light time adds over the state now is the same in both.
-    const now = propagator.at(utcMs)
-    if (!now.ok) throw failed(now.error, utcMs)
-    const stateAt = (at: UtcMs): StateTeme | null => at === utcMs ? now : null
-    const turned = (byS: number) => dopplerHz({ ...answering, stateAt, site: query.site, ut1MinusUtcS: ut1MinusUtcS + byS }, utcMs)
-    return (turned(UT1_STEP_S) - turned(-UT1_STEP_S)) / (2 * UT1_STEP_S)
-  }, { ...span, panelMs, nodes: 12, tolerance: 1e-11 * link.carrierHz })
-  let ut1: ReturnType<typeof makeUt1> | null = null
-  const ut1At = (utcMs: UtcMs) => (ut1 ??= makeUt1()).valueAt(utcMs)
+  const answer = answering === link
+    ? null
+    : seriesOf((utcMs, into) => {
+        into[0] = dopplerHz({ ...path, ...answering }, utcMs)
+      }, { ...span, panelMs, nodes: NODES, tolerances: [toleranceHz] })
   // The parts of the budget ask for the same instant one after the other.
-  const rateHzPerS = remembering(offset.rateAt)
-  const answerHzPerS = answer === offset ? rateHzPerS : remembering(answer.rateAt)
-  const ut1HzPerS = remembering(ut1At)
+  const rateHzPerS = remembering(utcMs => rateAt(utcMs, OFFSET))
+  const answerHzPerS = answer ? remembering(utcMs => answer.rateAt(utcMs)) : rateHzPerS
+  const ut1HzPerS = remembering(utcMs => valueAt(utcMs, UT1))
   return {
-    offsetHz: remembering(offset.valueAt), rateHzPerS, answerHzPerS, ut1HzPerS,
+    span, stateAt, rateHzPerS, answerHzPerS, ut1HzPerS,
+    offsetHz: remembering(utcMs => valueAt(utcMs, OFFSET)),
     alongTrackHzPerS: utcMs => answerHzPerS(utcMs) - ut1HzPerS(utcMs),
   }
 }
+
+/** Where each function stands in the series. */
+const OFFSET = 0
+const UT1 = 1
 
 /** The function, with its latest answer kept. */
 function remembering(fn: (utcMs: UtcMs) => number): (utcMs: UtcMs) => number {

@@ -1,28 +1,39 @@
 import type { UtcMs } from '../types'
 
-/** Where a function of time is asked: evenly, with its turning points between found by refinement. */
+/** Where a function of time is asked: evenly, with its turning points and peaks between found by refinement. */
 export const SCAN_STEP_MS = 1000
 
-/** Every whole second from `fromMs`, and both ends. */
-export function everySecond(fromMs: UtcMs, toMs: UtcMs): UtcMs[] {
-  const instants = [fromMs]
-  for (let at = fromMs + SCAN_STEP_MS; at < toMs; at += SCAN_STEP_MS) instants.push(at)
-  if (toMs > fromMs) instants.push(toMs)
-  return instants
-}
+/** Instants in order, and what a function comes to at each. */
+export interface Scan { readonly atMs: readonly UtcMs[], readonly value: readonly number[] }
 
-/** The instants with, between them, those at which `rate` changes sign, to a microsecond. */
-export function withTurns(instants: readonly UtcMs[], rate: (utcMs: UtcMs) => number): UtcMs[] {
-  const all: UtcMs[] = []
-  let rateBefore = 0
-  instants.forEach((at, i) => {
-    const rateNow = rate(at)
-    const side = rateBefore
-    if (i > 0 && side * rateNow < 0) all.push(crossingBetween(instants[i - 1]!, at, utcMs => rate(utcMs) * side > 0))
-    all.push(at)
-    rateBefore = rateNow
-  })
-  return all
+/**
+ * A function at every whole second from `fromMs` and at both ends; where `rate` changes sign between two of these, there as well, to
+ * a microsecond; and beside every instant that is highest among its neighbours, at the maximum near it, to 0.1 ms. `rate` and
+ * `value` are asked at the same instant one after the other.
+ */
+export function scanOf(fromMs: UtcMs, toMs: UtcMs, value: (utcMs: UtcMs) => number, rate?: (utcMs: UtcMs) => number): Scan {
+  const atMs: UtcMs[] = []
+  const values: number[] = []
+  const ask = (utcMs: UtcMs): void => {
+    atMs.push(utcMs)
+    values.push(value(utcMs))
+  }
+  let [beforeMs, rateBefore] = [fromMs, 0]
+  const step = (utcMs: UtcMs): void => {
+    if (rate) {
+      const rateNow = rate(utcMs)
+      if (rateBefore * rateNow < 0) {
+        const isRising = rateBefore > 0
+        ask(crossingBetween(beforeMs, utcMs, at => rate(at) > 0 === isRising))
+      }
+      [beforeMs, rateBefore] = [utcMs, rateNow]
+    }
+    ask(utcMs)
+  }
+  step(fromMs)
+  for (let at = fromMs + SCAN_STEP_MS; at < toMs; at += SCAN_STEP_MS) step(at)
+  if (toMs > fromMs) step(toMs)
+  return withPeaks({ atMs, value: values }, value)
 }
 
 /** Last instant of [fromMs, toMs] that satisfies `holds`, which the first does and the last does not; to a microsecond. */
@@ -36,14 +47,29 @@ export function crossingBetween(fromMs: UtcMs, toMs: UtcMs, holds: (utcMs: UtcMs
   return inside
 }
 
-/** The instants with, beside every one that is highest among its neighbours, the maximum near it by golden section, to 0.1 ms. */
-export function withPeaks(instants: readonly UtcMs[], value: (utcMs: UtcMs) => number): UtcMs[] {
-  const values = instants.map(value)
-  const peaks: UtcMs[] = []
-  for (let i = 1; i < instants.length - 1; i++) {
-    if (values[i]! >= values[i - 1]! && values[i]! >= values[i + 1]!) peaks.push(peakBetween(instants[i - 1]!, instants[i + 1]!, value))
+/** The scan with the peaks that lie between its instants, in their places. */
+function withPeaks(scan: Scan, value: (utcMs: UtcMs) => number): Scan {
+  const { atMs, value: values } = scan
+  let peaks: { atMs: UtcMs[], value: number[] } | null = null
+  let kept = 0
+  for (let i = 1; i < atMs.length - 1; i++) {
+    if (!(values[i]! >= values[i - 1]! && values[i]! >= values[i + 1]!)) continue
+    const at = peakBetween(atMs[i - 1]!, atMs[i + 1]!, value)
+    peaks ??= { atMs: [], value: [] }
+    const end = at < atMs[i]! ? i : i + 1
+    for (; kept < end; kept++) {
+      peaks.atMs.push(atMs[kept]!)
+      peaks.value.push(values[kept]!)
+    }
+    peaks.atMs.push(at)
+    peaks.value.push(value(at))
   }
-  return peaks.length === 0 ? [...instants] : [...instants, ...peaks].sort((a, b) => a - b)
+  if (!peaks) return scan
+  for (; kept < atMs.length; kept++) {
+    peaks.atMs.push(atMs[kept]!)
+    peaks.value.push(values[kept]!)
+  }
+  return peaks
 }
 
 const GOLDEN = (Math.sqrt(5) - 1) / 2

@@ -1,14 +1,17 @@
 import { allowanceOf } from '../link/allowance'
 import { lossDb } from '../link/loss'
-import { statesOf } from '../doppler/needed'
 import { receivedOverTransmitted } from '../doppler/ratio'
 import { lookAt } from '../orbit/look'
-import type { BudgetModel, BudgetParts, CheckedRetune, Hz, LinkModel, Propagator, RadioModel, RetuneRow, Site, Span, TableCheck, UtcMs, Verdict } from '../types'
+import type { BudgetModel, CheckedRetune, Hz, LinkModel, Propagator, RadioModel, RetuneRow, Site, Span, TableCheck, UtcMs, Verdict } from '../types'
 import type { CheckCurve } from './check-curve'
 import { checkCurveOf, directOffsetHz } from './check-curve'
 import type { AppliedRow, Fault } from './check-rows'
-import { applyRows, faultsOfRows, skyAt } from './check-rows'
-import { crossingBetween, everySecond, withPeaks, withTurns } from './check-scan'
+import type { Residual } from './check-residual'
+import { residualOf } from './check-residual'
+import { applyRows, faultsOfRows } from './check-rows'
+import type { Scan } from './check-scan'
+import { crossingBetween, scanOf } from './check-scan'
+import { propagated } from './check-states'
 
 export interface CheckQuery {
   readonly propagator: Propagator
@@ -53,47 +56,39 @@ export function checkTable(query: CheckQuery): TableCheck {
   const applied = applyRows(rows, radio)
   const faults = faultsOfRows(rows, applied, link, radio, parts, query.quiet)
   const spans = applied.map(() => ({ min: Infinity, max: -Infinity }))
-  let worst: { residualHz: Hz, atMs: UtcMs, parts: BudgetParts } | null = null
+  let worst: { residualHz: Hz, atMs: UtcMs, residual: Residual } | null = null
   let [slowest, fastest] = [Infinity, -Infinity]
   const excess: { fromMs: UtcMs, toMs: UtcMs }[] = []
 
-  for (const part of parts) {
-    const curve = checkCurveOf({ ...query, ut1MinusUtcS: budget.ut1MinusUtcS, span: part })
-    const drift = driftFault(curve, part, link, applied)
+  const curves = parts.map(part => checkCurveOf({ ...query, ut1MinusUtcS: budget.ut1MinusUtcS, span: part }))
+  for (const curve of curves) {
+    const drift = driftFault(curve, link, applied)
     if (drift) faults.push(drift)
-    for (const piece of piecesOf(part, applied)) {
-      const row = applied[piece.row]
-      const setHz = (utcMs: UtcMs): Hz => row ? skyAt(row, utcMs) - link.carrierHz : 0
-      const slope = row?.skySlopeHzPerS ?? 0
-      const partsAt = (utcMs: UtcMs): BudgetParts => ({ stepsHz: curve.offsetHz(utcMs) - setHz(utcMs), ...uncertainAt(curve, utcMs, query) })
-      const budgeted = (utcMs: UtcMs) => budgetedHz(partsAt(utcMs), budget.k)
-      const instants = withPeaks(withTurns(everySecond(piece.fromMs, piece.toMs), utcMs => curve.rateHzPerS(utcMs) - slope), budgeted)
-      let before: { atMs: UtcMs, isOver: boolean } | null = null
-      for (const atMs of instants) {
-        const at = partsAt(atMs)
-        const residualHz = budgetedHz(at, budget.k)
-        if (worst === null || residualHz > worst.residualHz) worst = { residualHz, atMs, parts: at }
-        const span = spans[piece.row]
-        if (span) {
-          span.min = Math.min(span.min, at.stepsHz)
-          span.max = Math.max(span.max, at.stepsHz)
-        }
-        const ratioMinusOne = symbolClock(query, curve.offsetHz(atMs), atMs)
+    const clockOf = symbolClockOf(curve, query)
+    for (const piece of piecesOf(curve.span, applied)) {
+      const residual = residualOf(curve, applied[piece.row], query)
+      const { atMs, value } = scanOf(piece.fromMs, piece.toMs, residual.budgetedHz, residual.rateHzPerS)
+      const span = spans[piece.row] ?? { min: Infinity, max: -Infinity }
+      for (let i = 0; i < atMs.length; i++) {
+        const [at, residualHz] = [atMs[i]!, value[i]!]
+        if (worst === null || residualHz > worst.residualHz) worst = { residualHz, atMs: at, residual }
+        const stepsHz = residual.stepsHz(at)
+        span.min = Math.min(span.min, stepsHz)
+        span.max = Math.max(span.max, stepsHz)
+        const ratioMinusOne = clockOf(at)
         slowest = Math.min(slowest, ratioMinusOne)
         fastest = Math.max(fastest, ratioMinusOne)
-        const isOver = residualHz > allowance.allowanceHz
-        addExcess(excess, before, { atMs, isOver }, utcMs => budgeted(utcMs) > allowance.allowanceHz)
-        before = { atMs, isOver }
       }
+      addExcess(excess, { atMs, value }, allowance.allowanceHz, residual.budgetedHz)
     }
   }
 
-  const { residualHz: worstResidualHz, atMs: worstAtMs, parts: worstParts } = worst!
+  const { residualHz: worstResidualHz, atMs: worstAtMs, residual } = worst!
   const margin = Math.min(MARGIN_CAP, worstResidualHz === 0 ? MARGIN_CAP : allowance.allowanceHz / worstResidualHz)
   faults.sort((a, b) => a.atMs - b.atMs)
   return {
-    verdict: verdictOf(margin, faults), allowance, worstResidualHz, worstAtMs, budget: worstParts, margin,
-    retunes: applied.map((row, i) => checkedRetune(row, spans[i]!, query)),
+    verdict: verdictOf(margin, faults), allowance, worstResidualHz, worstAtMs, budget: residual.partsAt(worstAtMs), margin,
+    retunes: applied.map((row, i) => checkedRetune(row, spans[i]!, query, curves)),
     excess, faults, symbolClockPpm: [slowest * 1e6, fastest * 1e6],
   }
 }
@@ -115,72 +110,67 @@ function piecesOf(part: Span, applied: readonly AppliedRow[]): { row: number, fr
   return pieces
 }
 
-function uncertainAt(curve: CheckCurve, utcMs: UtcMs, { budget, radio, link }: CheckQuery): Omit<BudgetParts, 'stepsHz'> {
-  const sigmaS = budget.alongTrackSigmaS(utcMs)
-  const timingS = (budget.clockErrorMs + radio.latencyUncertaintyMs) / 1000
-  // Oscillator figures are limits; a limit L spreads as L/√3. A coherent link has the station's alone, at both ends of the trip.
-  const oscillator = link.turnaround ? 0 : Math.sqrt((budget.spacecraftPpm ** 2 + budget.stationPpm ** 2) / 3) / 1e6
-  return {
-    timingHz: timingS * Math.abs(curve.answerHzPerS(utcMs)),
-    ut1Hz: budget.ut1BoundS === 0 ? 0 : budget.ut1BoundS * Math.abs(curve.ut1HzPerS(utcMs)),
-    orbitHz: sigmaS === 0 ? 0 : sigmaS * Math.abs(curve.alongTrackHzPerS(utcMs)),
-    oscillatorHz: link.carrierHz * oscillator,
-    trimHz: 0,
-  }
-}
-
-function budgetedHz(parts: BudgetParts, k: number): Hz {
-  const spread = Math.sqrt(parts.orbitHz ** 2 + parts.oscillatorHz ** 2 + parts.trimHz ** 2)
-  return Math.abs(parts.stepsHz) + parts.timingHz + parts.ut1Hz + k * spread
-}
-
-function addExcess(excess: { fromMs: UtcMs, toMs: UtcMs }[], before: { atMs: UtcMs, isOver: boolean } | null, now: { atMs: UtcMs, isOver: boolean }, isOver: (utcMs: UtcMs) => boolean): void {
+/** Adds where a scan is beyond the allowance, its edges refined. */
+function addExcess(excess: { fromMs: UtcMs, toMs: UtcMs }[], { atMs, value }: Scan, allowanceHz: Hz, budgetedHz: (utcMs: UtcMs) => Hz): void {
   const add = (fromMs: UtcMs, toMs: UtcMs) => {
     const last = excess[excess.length - 1]
     if (last && last.toMs >= fromMs) last.toMs = Math.max(last.toMs, toMs)
     else excess.push({ fromMs, toMs })
   }
-  if (before === null) {
-    if (now.isOver) add(now.atMs, now.atMs)
-    return
+  for (let i = 0; i < atMs.length; i++) {
+    const [before, now] = [atMs[i - 1]!, atMs[i]!]
+    const isOver = value[i]! > allowanceHz
+    const wasOver = i > 0 && value[i - 1]! > allowanceHz
+    if (i === 0) {
+      if (isOver) add(now, now)
+    }
+    else if (wasOver && isOver) add(before, now)
+    else if (wasOver) add(before, crossingBetween(before, now, utcMs => budgetedHz(utcMs) > allowanceHz))
+    else if (isOver) add(crossingBetween(before, now, utcMs => budgetedHz(utcMs) <= allowanceHz), now)
   }
-  if (before.isOver && now.isOver) add(before.atMs, now.atMs)
-  else if (before.isOver) add(before.atMs, crossingBetween(before.atMs, now.atMs, isOver))
-  else if (now.isOver) add(crossingBetween(before.atMs, now.atMs, utcMs => !isOver(utcMs)), now.atMs)
 }
 
 /** Largest |ḟ − slope| over a part, both rows asked at a retune, where it is beyond what the loop follows. */
-function driftFault(curve: CheckCurve, part: Span, { driftLimitHzPerS }: LinkModel, applied: readonly AppliedRow[]): Fault | null {
+function driftFault(curve: CheckCurve, { driftLimitHzPerS }: LinkModel, applied: readonly AppliedRow[]): Fault | null {
   if (driftLimitHzPerS === null) return null
-  let [worst, atMs] = [0, part.fromMs]
-  for (const { row, fromMs, toMs } of piecesOf(part, applied)) {
+  let [worst, worstMs] = [0, curve.span.fromMs]
+  for (const { row, fromMs, toMs } of piecesOf(curve.span, applied)) {
     const slope = applied[row]?.skySlopeHzPerS ?? 0
-    const drift = (utcMs: UtcMs) => Math.abs(curve.rateHzPerS(utcMs) - slope)
-    for (const at of withPeaks(everySecond(fromMs, toMs), drift)) if (drift(at) > worst) [worst, atMs] = [drift(at), at]
+    const { atMs, value } = scanOf(fromMs, toMs, utcMs => Math.abs(curve.rateHzPerS(utcMs) - slope))
+    for (let i = 0; i < atMs.length; i++) if (value[i]! > worst) [worst, worstMs] = [value[i]!, atMs[i]!]
   }
   if (worst <= driftLimitHzPerS) return null
   return {
-    code: 'drift', atMs,
-    message: `What is set drifts from what is needed by ${worst.toFixed(1)} Hz/s at ${new Date(atMs).toISOString()}; the link's loop follows ${driftLimitHzPerS} Hz/s.`,
+    code: 'drift', atMs: worstMs,
+    message: `What is set drifts from what is needed by ${worst.toFixed(1)} Hz/s at ${new Date(worstMs).toISOString()}; the link's loop follows ${driftLimitHzPerS} Hz/s.`,
   }
 }
 
 /** Received over transmitted, minus one: the scale of the symbol clock at the receiving end. A coherent spacecraft still counts its symbols by its own clock. */
-function symbolClock({ link, propagator, site, budget }: CheckQuery, offsetHz: Hz, utcMs: UtcMs): number {
-  if (link.turnaround) return receivedOverTransmitted({ stateAt: statesOf(propagator), site, ut1MinusUtcS: budget.ut1MinusUtcS }, 'downlink', utcMs).ratioMinusOne
-  return link.direction === 'downlink' ? offsetHz / link.carrierHz : -offsetHz / (link.carrierHz + offsetHz)
+function symbolClockOf({ offsetHz, stateAt }: CheckCurve, { link, site, budget }: CheckQuery): (utcMs: UtcMs) => number {
+  const { carrierHz, direction, turnaround } = link
+  if (turnaround) {
+    const path = { stateAt, site, ut1MinusUtcS: budget.ut1MinusUtcS }
+    return utcMs => receivedOverTransmitted(path, 'downlink', utcMs).ratioMinusOne
+  }
+  return direction === 'downlink'
+    ? utcMs => offsetHz(utcMs) / carrierHz
+    : (utcMs) => {
+        const hz = offsetHz(utcMs)
+        return -hz / (carrierHz + hz)
+      }
 }
 
-function checkedRetune({ row, effectMs }: AppliedRow, span: { min: Hz, max: Hz }, query: CheckQuery): CheckedRetune {
-  const { propagator, site, link, budget } = query
+/** Outside the workable parts a row's own instant is propagated directly. */
+function checkedRetune({ row, effectMs }: AppliedRow, span: { min: Hz, max: Hz }, query: CheckQuery, curves: readonly CheckCurve[]): CheckedRetune {
+  const { propagator, site, link, budget: { ut1MinusUtcS } } = query
   const [residualMinHz, residualMaxHz] = span.min <= span.max ? [span.min, span.max] : [0, 0]
-  const state = propagator.at(effectMs)
-  if (!state.ok) throw new RangeError(`The element set cannot be propagated to ${new Date(effectMs).toISOString()}: ${state.error}.`)
-  const look = lookAt(state, site, effectMs, budget.ut1MinusUtcS)
+  const curve = curves.find(({ span: { fromMs, toMs } }) => fromMs <= effectMs && effectMs <= toMs)
+  const look = lookAt(curve?.stateAt(effectMs) ?? propagated(propagator, effectMs), site, effectMs, ut1MinusUtcS)
   return {
     ...row, residualMinHz, residualMaxHz,
     lossDb: lossDb(link, Math.max(Math.abs(residualMinHz), Math.abs(residualMaxHz))),
-    dopplerHz: directOffsetHz({ propagator, site, link, ut1MinusUtcS: budget.ut1MinusUtcS }, effectMs),
+    dopplerHz: curve ? curve.offsetHz(effectMs) : directOffsetHz({ propagator, site, link, ut1MinusUtcS }, effectMs),
     rangeRateMps: look.rangeRateMps, azimuthRad: look.azimuthRad, elevationRad: look.elevationRad,
   }
 }
