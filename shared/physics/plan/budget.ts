@@ -36,7 +36,7 @@ export function budgetAt(at: Sensitivity, budget: BudgetModel, radio: Pick<Radio
     timingHz: (budget.clockErrorMs + radio.latencyUncertaintyMs) / 1000 * Math.abs(at.rateHzPerS),
     ut1Hz: budget.ut1BoundS * Math.abs(at.ut1HzPerS),
     orbitHz: budget.alongTrackSigmaS(at.utcMs) * Math.abs(at.alongTrackHzPerS),
-    oscillatorHz: at.carrierHz * 1e-6 * Math.hypot(budget.spacecraftPpm, budget.stationPpm) / Math.sqrt(3),
+    oscillatorHz: at.carrierHz * 1e-6 * Math.sqrt((budget.spacecraftPpm ** 2 + budget.stationPpm ** 2) / 3),
     trimHz: 0,
   }
 }
@@ -53,5 +53,5 @@ export function budgetAt(at: Sensitivity, budget: BudgetModel, radio: Pick<Radio
  * @tolerance 1e-12 Hz of a value by hand (plan/budget.test.ts)
  */
 export function uncertaintyHz(parts: UncertainParts, k: number): Hz {
-  return parts.timingHz + parts.ut1Hz + k * Math.hypot(parts.orbitHz, parts.oscillatorHz, parts.trimHz)
+  return parts.timingHz + parts.ut1Hz + k * Math.sqrt(parts.orbitHz ** 2 + parts.oscillatorHz ** 2 + parts.trimHz ** 2)
 }

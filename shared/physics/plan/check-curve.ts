@@ -29,7 +29,12 @@ export interface CheckCurve {
   readonly ut1HzPerS: (utcMs: UtcMs) => number
   /** ∂f/∂t_along, signed: the spacecraft moved along its orbit, the station staying. What ḟ has beside the station's turning. */
   readonly alongTrackHzPerS: (utcMs: UtcMs) => number
+  /** All of these at once, by `AT`; overwritten when another instant is asked. */
+  readonly lookAt: (utcMs: UtcMs) => Float64Array
 }
+
+/** Where each figure of a look stands. */
+export const AT = { offsetHz: 0, ut1HzPerS: 1, rateHzPerS: 2, answerHzPerS: 3 } as const
 
 /**
  * Offset by direct propagation, Hz; the truth that the curve interpolates. Throws RangeError where the propagator fails.
@@ -56,26 +61,31 @@ export function directOffsetHz({ propagator, site, link, ut1MinusUtcS }: Omit<Ch
  * ∂ρ̇/∂UT1, m/s per second: the station s turned on with the Earth, its velocity u = ω×s, the spacecraft staying. With d the line
  * from station to spacecraft and w the spacecraft's velocity against the station's: ρ̇ = d·w/ρ, ∂d = −u, ∂w = −ω×u.
  */
-function rangeRateByUt1({ positionM: [x, y, z], velocityMps: [vx, vy, vz] }: StateTeme, site: Site, utcMs: UtcMs, ut1MinusUtcS: number): number {
-  const { positionM: [sx, sy, sz], velocityMps: [ux, uy] } = siteStateTeme(site, utcMs, ut1MinusUtcS)
-  const [dx, dy, dz, wx, wy] = [x - sx, y - sy, z - sz, vx - ux, vy - uy]
+function rangeRateByUt1({ positionM: r, velocityMps: v }: StateTeme, site: Site, utcMs: UtcMs, ut1MinusUtcS: number): number {
+  const { positionM: s, velocityMps: u } = siteStateTeme(site, utcMs, ut1MinusUtcS)
+  const dx = r[0] - s[0]
+  const dy = r[1] - s[1]
+  const dz = r[2] - s[2]
+  const wx = v[0] - u[0]
+  const wy = v[1] - u[1]
   const range2 = dx * dx + dy * dy + dz * dz
-  const [alongU, closing] = [dx * ux + dy * uy, dx * wx + dy * wy + dz * vz]
-  const turning = EARTH_ROTATION_RAD_PER_S ** 2 * (dx * sx + dy * sy) - ux * wx - uy * wy
+  const alongU = dx * u[0] + dy * u[1]
+  const closing = dx * wx + dy * wy + dz * v[2]
+  const turning = EARTH_ROTATION_RAD_PER_S ** 2 * (dx * s[0] + dy * s[1]) - u[0] * wx - u[1] * wy
   return (turning + closing * alongU / range2) / Math.sqrt(range2)
 }
 
 /** Panels to begin with, in shares of the orbit's period. */
-const PANEL_SHARE = 1 / 48
-const NODES = 16
+const PANEL_SHARE = 1 / 24
+const NODES = 14
 
 /**
  * The checker's own interpolation of the needed frequency, from its own propagations: Chebyshev series, within 1e-3 Hz plus
- * 1e-12 of the carrier of direct propagation. Panels begin at a 48th of the orbit's period and are halved until the series
+ * 1e-12 of the carrier of direct propagation. Panels begin at a 24th of the orbit's period and are halved until the series
  * dies out. ∂f/∂UT1 is of first order in v/c, a part in 10⁴.
  *
  * @card Checker’s curve: needed offset, rate and partials over a workable part, on its own interpolation.
- * @formula Chebyshev series on panels of a 48th of the period, halved until they die out; ∂f/∂UT1 = ∓f0/c·∂ρ̇/∂UT1;
+ * @formula Chebyshev series on panels of a 24th of the period, halved until they die out; ∂f/∂UT1 = ∓f0/c·∂ρ̇/∂UT1;
  *   ∂f/∂t_along = ḟ − ∂f/∂UT1
  * @source Press et al., Numerical Recipes §5.8; mechanics
  * @units UTC ms → Hz, Hz/s
@@ -92,10 +102,10 @@ export function checkCurveOf(query: CheckCurveQuery): CheckCurve {
   const perMps = (link.direction === 'uplink' ? 1 : -1) * (link.turnaround ? 2 : 1) * link.carrierHz / SPEED_OF_LIGHT_MPS
   const path = { ...link, stateAt, site, ut1MinusUtcS }
   const sample: Sampler = (utcMs, into) => {
-    into[OFFSET] = dopplerHz(path, utcMs)
-    into[UT1] = perMps * rangeRateByUt1(stateAt(utcMs)!, site, utcMs, ut1MinusUtcS)
+    into[AT.offsetHz] = dopplerHz(path, utcMs)
+    into[AT.ut1HzPerS] = perMps * rangeRateByUt1(stateAt(utcMs)!, site, utcMs, ut1MinusUtcS)
   }
-  const { valueAt, rateAt } = seriesOf(sample, { ...span, panelMs, nodes: NODES, tolerances: [toleranceHz, 1e-11 * link.carrierHz] })
+  const series = seriesOf(sample, { ...span, panelMs, nodes: NODES, tolerances: [toleranceHz, 1e-11 * link.carrierHz] })
   // What a link answers to errors by may be another curve than the one it is tuned along.
   const answering = answeringLink(link)
   const answer = answering === link
@@ -103,30 +113,22 @@ export function checkCurveOf(query: CheckCurveQuery): CheckCurve {
     : seriesOf((utcMs, into) => {
         into[0] = dopplerHz({ ...path, ...answering }, utcMs)
       }, { ...span, panelMs, nodes: NODES, tolerances: [toleranceHz] })
-  // The parts of the budget ask for the same instant one after the other.
-  const rateHzPerS = remembering(utcMs => rateAt(utcMs, OFFSET))
-  const answerHzPerS = answer ? remembering(utcMs => answer.rateAt(utcMs)) : rateHzPerS
-  const ut1HzPerS = remembering(utcMs => valueAt(utcMs, UT1))
+  const at = new Float64Array(5).fill(NaN)
+  const lookAt = (utcMs: UtcMs): Float64Array => {
+    if (at[LOOKED_MS] === utcMs) return at
+    series.lookAt(utcMs, at)
+    at[AT.answerHzPerS] = answer ? answer.rateAt(utcMs) : at[AT.rateHzPerS]!
+    at[LOOKED_MS] = utcMs
+    return at
+  }
   return {
-    span, stateAt, rateHzPerS, answerHzPerS, ut1HzPerS,
-    offsetHz: remembering(utcMs => valueAt(utcMs, OFFSET)),
-    alongTrackHzPerS: utcMs => answerHzPerS(utcMs) - ut1HzPerS(utcMs),
+    span, stateAt, lookAt,
+    offsetHz: utcMs => lookAt(utcMs)[AT.offsetHz]!,
+    rateHzPerS: utcMs => lookAt(utcMs)[AT.rateHzPerS]!,
+    answerHzPerS: utcMs => lookAt(utcMs)[AT.answerHzPerS]!,
+    ut1HzPerS: utcMs => lookAt(utcMs)[AT.ut1HzPerS]!,
+    alongTrackHzPerS: utcMs => lookAt(utcMs)[AT.answerHzPerS]! - lookAt(utcMs)[AT.ut1HzPerS]!,
   }
 }
 
-/** Where each function stands in the series. */
-const OFFSET = 0
-const UT1 = 1
-
-/** The function, with its latest answer kept. */
-function remembering(fn: (utcMs: UtcMs) => number): (utcMs: UtcMs) => number {
-  let lastMs = NaN
-  let last = NaN
-  return (utcMs) => {
-    if (utcMs !== lastMs) {
-      last = fn(utcMs)
-      lastMs = utcMs
-    }
-    return last
-  }
-}
+const LOOKED_MS = 4

@@ -1,15 +1,25 @@
 import type { BudgetModel, BudgetParts, Hz, LinkModel, RadioModel, UtcMs } from '../types'
 import type { CheckCurve } from './check-curve'
+import { AT } from './check-curve'
 import type { AppliedRow } from './check-rows'
-import { skyAt } from './check-rows'
+
+/** Extremes over all instants at which a budgeted residual has been asked. */
+export interface SeenExtremes {
+  worstHz: Hz
+  worstMs: UtcMs
+  leastStepsHz: Hz
+  mostStepsHz: Hz
+  leastOffsetHz: Hz
+  mostOffsetHz: Hz
+}
 
 /** What one row leaves over what it serves of a part. */
 export interface Residual {
-  /** Needed minus set, signed. */
-  readonly stepsHz: (utcMs: UtcMs) => Hz
+  /** Needed minus set, per second. */
   readonly rateHzPerS: (utcMs: UtcMs) => number
   readonly budgetedHz: (utcMs: UtcMs) => Hz
   readonly partsAt: (utcMs: UtcMs) => BudgetParts
+  readonly seen: Readonly<SeenExtremes>
 }
 
 export interface ResidualTask { readonly link: LinkModel, readonly radio: RadioModel, readonly budget: BudgetModel }
@@ -27,22 +37,46 @@ export interface ResidualTask { readonly link: LinkModel, readonly radio: RadioM
  */
 export function residualOf(curve: CheckCurve, row: AppliedRow | undefined, { budget, radio, link }: ResidualTask): Residual {
   const { alongTrackSigmaS, ut1BoundS, k } = budget
-  const slope = row?.skySlopeHzPerS ?? 0
+  const { carrierHz } = link
   const timingS = (budget.clockErrorMs + radio.latencyUncertaintyMs) / 1000
   // Oscillator figures are limits; a limit L spreads as L/√3. A coherent link has the station's alone, at both ends of the trip.
-  const oscillatorHz = link.turnaround ? 0 : link.carrierHz * Math.sqrt((budget.spacecraftPpm ** 2 + budget.stationPpm ** 2) / 3) / 1e6
+  const oscillatorHz = link.turnaround ? 0 : carrierHz * Math.sqrt((budget.spacecraftPpm ** 2 + budget.stationPpm ** 2) / 3) / 1e6
+  const setHz = row ? row.skyHz - carrierHz : 0
+  const slope = row?.skySlopeHzPerS ?? 0
+  const fromMs = row?.effectMs ?? 0
+  const seen: SeenExtremes = {
+    worstHz: -Infinity, worstMs: NaN, leastStepsHz: Infinity, mostStepsHz: -Infinity, leastOffsetHz: Infinity, mostOffsetHz: -Infinity,
+  }
 
-  const stepsHz = (utcMs: UtcMs): Hz => curve.offsetHz(utcMs) - (row ? skyAt(row, utcMs) - link.carrierHz : 0)
-  const timingHz = (utcMs: UtcMs): Hz => timingS * Math.abs(curve.answerHzPerS(utcMs))
-  const ut1Hz = (utcMs: UtcMs): Hz => ut1BoundS === 0 ? 0 : ut1BoundS * Math.abs(curve.ut1HzPerS(utcMs))
-  const orbitHz = (utcMs: UtcMs): Hz => {
-    const sigmaS = alongTrackSigmaS(utcMs)
-    return sigmaS === 0 ? 0 : sigmaS * Math.abs(curve.alongTrackHzPerS(utcMs))
+  const budgetedHz = (utcMs: UtcMs): Hz => {
+    const at = curve.lookAt(utcMs)
+    const offsetHz = at[AT.offsetHz]!
+    const stepsHz = offsetHz - setHz - slope * (utcMs - fromMs) / 1000
+    const orbitHz = alongTrackSigmaS(utcMs) * (at[AT.answerHzPerS]! - at[AT.ut1HzPerS]!)
+    const limitsHz = timingS * Math.abs(at[AT.answerHzPerS]!) + ut1BoundS * Math.abs(at[AT.ut1HzPerS]!)
+    const residualHz = Math.abs(stepsHz) + limitsHz + k * Math.sqrt(orbitHz * orbitHz + oscillatorHz * oscillatorHz)
+    if (residualHz > seen.worstHz) {
+      seen.worstHz = residualHz
+      seen.worstMs = utcMs
+    }
+    if (stepsHz < seen.leastStepsHz) seen.leastStepsHz = stepsHz
+    if (stepsHz > seen.mostStepsHz) seen.mostStepsHz = stepsHz
+    if (offsetHz < seen.leastOffsetHz) seen.leastOffsetHz = offsetHz
+    if (offsetHz > seen.mostOffsetHz) seen.mostOffsetHz = offsetHz
+    return residualHz
   }
   return {
-    stepsHz,
-    rateHzPerS: utcMs => curve.rateHzPerS(utcMs) - slope,
-    budgetedHz: utcMs => Math.abs(stepsHz(utcMs)) + timingHz(utcMs) + ut1Hz(utcMs) + k * Math.sqrt(orbitHz(utcMs) ** 2 + oscillatorHz ** 2),
-    partsAt: utcMs => ({ stepsHz: stepsHz(utcMs), timingHz: timingHz(utcMs), ut1Hz: ut1Hz(utcMs), orbitHz: orbitHz(utcMs), oscillatorHz, trimHz: 0 }),
+    seen, budgetedHz,
+    rateHzPerS: utcMs => curve.lookAt(utcMs)[AT.rateHzPerS]! - slope,
+    partsAt: (utcMs) => {
+      const { offsetHz, answerHzPerS, ut1HzPerS, alongTrackHzPerS } = curve
+      return {
+        stepsHz: offsetHz(utcMs) - setHz - slope * (utcMs - fromMs) / 1000,
+        timingHz: timingS * Math.abs(answerHzPerS(utcMs)),
+        ut1Hz: ut1BoundS * Math.abs(ut1HzPerS(utcMs)),
+        orbitHz: alongTrackSigmaS(utcMs) * Math.abs(alongTrackHzPerS(utcMs)),
+        oscillatorHz, trimHz: 0,
+      }
+    },
   }
 }

@@ -18,7 +18,8 @@ export function scanOf(fromMs: UtcMs, toMs: UtcMs, value: (utcMs: UtcMs) => numb
     atMs.push(utcMs)
     values.push(value(utcMs))
   }
-  let [beforeMs, rateBefore] = [fromMs, 0]
+  let beforeMs = fromMs
+  let rateBefore = 0
   const step = (utcMs: UtcMs): void => {
     if (rate) {
       const rateNow = rate(utcMs)
@@ -26,7 +27,8 @@ export function scanOf(fromMs: UtcMs, toMs: UtcMs, value: (utcMs: UtcMs) => numb
         const isRising = rateBefore > 0
         ask(crossingBetween(beforeMs, utcMs, at => rate(at) > 0 === isRising))
       }
-      [beforeMs, rateBefore] = [utcMs, rateNow]
+      beforeMs = utcMs
+      rateBefore = rateNow
     }
     ask(utcMs)
   }

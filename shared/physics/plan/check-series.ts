@@ -4,6 +4,8 @@ export interface Series {
   readonly valueAt: (utcMs: number, k?: number) => number
   /** Per second. */
   readonly rateAt: (utcMs: number, k?: number) => number
+  /** Writes the values of all functions, and after them the rate of the first. */
+  readonly lookAt: (utcMs: number, into: Float64Array) => void
 }
 
 export interface SeriesOptions {
@@ -66,6 +68,12 @@ export function seriesOf(sample: Sampler, options: SeriesOptions): Series {
     rateAt: (utcMs, k = 0) => {
       const { values, rates, middleMs, perMs } = panelAt(utcMs)
       return clenshaw(rates[k] ??= derivative(values[k]!, 1000 * perMs), (utcMs - middleMs) * perMs)
+    },
+    lookAt: (utcMs, into) => {
+      const { values, rates, middleMs, perMs } = panelAt(utcMs)
+      const x = (utcMs - middleMs) * perMs
+      for (let k = 0; k < values.length; k++) into[k] = clenshaw(values[k]!, x)
+      into[values.length] = clenshaw(rates[0] ??= derivative(values[0]!, 1000 * perMs), x)
     },
   }
 }

@@ -1,4 +1,3 @@
-import { statesOf } from '../doppler/needed'
 import type { Propagation, PropagationError, Propagator, Span, StateTeme, UtcMs } from '../types'
 import { seriesOf } from './check-series'
 
@@ -6,10 +5,11 @@ import { seriesOf } from './check-series'
 const LIGHT_MS = 1500
 /** Panels to begin with, in shares of the orbit's period. */
 const PANEL_SHARE = 1 / 8
-const NODES = 14
+const NODES = 10
 /** What a state may miss by: between its points an instant in ms, as a double, is good to 2 mm along an orbit already. */
 const POSITION_TOLERANCE_M = 5e-3
 const VELOCITY_TOLERANCE_MPS = 2e-5
+const TOLERANCES = [0, 1, 2, 3, 4, 5].map(k => k < 3 ? POSITION_TOLERANCE_M : VELOCITY_TOLERANCE_MPS)
 
 /** The checker's own states over a part. */
 export interface CheckStates {
@@ -30,7 +30,7 @@ const endedBy = (error: PropagationError, utcMs: UtcMs) =>
 /**
  * States over a part by Chebyshev series through the checker's own propagations: place and velocity each by themselves, on panels
  * of an eighth of the orbit, halved until they die out. An orbit is smoother by far than the Doppler it makes, so a pass costs a
- * dozen or two propagations. The part is widened by what light needs, where the element set answers there. Throws RangeError where the
+ * dozen propagations or two. The part is widened by what light needs, where the element set answers there. Throws RangeError where the
  * propagator fails within the part.
  *
  * @card Checker’s states: place and velocity over a workable part, on its own interpolation.
@@ -42,9 +42,17 @@ const endedBy = (error: PropagationError, utcMs: UtcMs) =>
  * @tolerance 5 mm and 0.02 mm/s of true propagation (plan/check-states.test.ts)
  */
 export function checkStatesOf(propagator: Propagator, span: Span): CheckStates {
-  const states = statesOf(propagator)
-  const fromMs = states(span.fromMs - LIGHT_MS) ? span.fromMs - LIGHT_MS : span.fromMs
-  const toMs = states(span.toMs + LIGHT_MS) ? span.toMs + LIGHT_MS : span.toMs
+  const widened = { fromMs: span.fromMs - LIGHT_MS, toMs: span.toMs + LIGHT_MS }
+  try {
+    return statesOver(propagator, widened)
+  }
+  catch (error) {
+    if (!(error instanceof RangeError)) throw error
+    return statesOver(propagator, span)
+  }
+}
+
+function statesOver(propagator: Propagator, { fromMs, toMs }: Span): CheckStates {
   const sample = (utcMs: UtcMs, into: Float64Array): void => {
     const { positionM, velocityMps } = propagated(propagator, utcMs)
     for (let k = 0; k < 3; k++) {
@@ -52,14 +60,19 @@ export function checkStatesOf(propagator: Propagator, span: Span): CheckStates {
       into[k + 3] = velocityMps[k]!
     }
   }
-  const series = seriesOf(sample, {
-    fromMs, toMs, panelMs: 86_400_000 / propagator.elements.meanMotionRevPerDay * PANEL_SHARE, nodes: NODES,
-    tolerances: [POSITION_TOLERANCE_M, POSITION_TOLERANCE_M, POSITION_TOLERANCE_M, VELOCITY_TOLERANCE_MPS, VELOCITY_TOLERANCE_MPS, VELOCITY_TOLERANCE_MPS],
-  })
-  const { valueAt } = series
+  const panelMs = 86_400_000 / propagator.elements.meanMotionRevPerDay * PANEL_SHARE
+  const { valueAt } = seriesOf(sample, { fromMs, toMs, panelMs, nodes: NODES, tolerances: TOLERANCES })
+  let lastMs = NaN
+  let last: StateTeme | null = null
   return {
-    stateAt: utcMs => utcMs < fromMs || utcMs > toMs
-      ? null
-      : { positionM: [valueAt(utcMs, 0), valueAt(utcMs, 1), valueAt(utcMs, 2)], velocityMps: [valueAt(utcMs, 3), valueAt(utcMs, 4), valueAt(utcMs, 5)] },
+    stateAt: (utcMs) => {
+      // Who asks for one state mostly asks again.
+      if (utcMs === lastMs) return last
+      lastMs = utcMs
+      last = utcMs < fromMs || utcMs > toMs
+        ? null
+        : { positionM: [valueAt(utcMs, 0), valueAt(utcMs, 1), valueAt(utcMs, 2)], velocityMps: [valueAt(utcMs, 3), valueAt(utcMs, 4), valueAt(utcMs, 5)] }
+      return last
+    },
   }
 }

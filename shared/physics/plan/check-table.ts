@@ -6,7 +6,7 @@ import type { BudgetModel, CheckedRetune, Hz, LinkModel, Propagator, RadioModel,
 import type { CheckCurve } from './check-curve'
 import { checkCurveOf, directOffsetHz } from './check-curve'
 import type { AppliedRow, Fault } from './check-rows'
-import type { Residual } from './check-residual'
+import type { Residual, SeenExtremes } from './check-residual'
 import { residualOf } from './check-residual'
 import { applyRows, faultsOfRows } from './check-rows'
 import type { Scan } from './check-scan'
@@ -56,7 +56,7 @@ export function checkTable(query: CheckQuery): TableCheck {
   const applied = applyRows(rows, radio)
   const faults = faultsOfRows(rows, applied, link, radio, parts, query.quiet)
   const spans = applied.map(() => ({ min: Infinity, max: -Infinity }))
-  let worst: { residualHz: Hz, atMs: UtcMs, residual: Residual } | null = null
+  let worst: Residual | null = null
   let [slowest, fastest] = [Infinity, -Infinity]
   const excess: { fromMs: UtcMs, toMs: UtcMs }[] = []
 
@@ -64,30 +64,28 @@ export function checkTable(query: CheckQuery): TableCheck {
   for (const curve of curves) {
     const drift = driftFault(curve, link, applied)
     if (drift) faults.push(drift)
-    const clockOf = symbolClockOf(curve, query)
     for (const piece of piecesOf(curve.span, applied)) {
       const residual = residualOf(curve, applied[piece.row], query)
-      const { atMs, value } = scanOf(piece.fromMs, piece.toMs, residual.budgetedHz, residual.rateHzPerS)
-      const span = spans[piece.row] ?? { min: Infinity, max: -Infinity }
-      for (let i = 0; i < atMs.length; i++) {
-        const [at, residualHz] = [atMs[i]!, value[i]!]
-        if (worst === null || residualHz > worst.residualHz) worst = { residualHz, atMs: at, residual }
-        const stepsHz = residual.stepsHz(at)
-        span.min = Math.min(span.min, stepsHz)
-        span.max = Math.max(span.max, stepsHz)
-        const ratioMinusOne = clockOf(at)
-        slowest = Math.min(slowest, ratioMinusOne)
-        fastest = Math.max(fastest, ratioMinusOne)
+      const scan = scanOf(piece.fromMs, piece.toMs, residual.budgetedHz, residual.rateHzPerS)
+      const { seen } = residual
+      if (worst === null || seen.worstHz > worst.seen.worstHz) worst = residual
+      if (seen.worstHz > allowance.allowanceHz) addExcess(excess, scan, allowance.allowanceHz, residual.budgetedHz)
+      const span = spans[piece.row]
+      if (span) {
+        span.min = Math.min(span.min, seen.leastStepsHz)
+        span.max = Math.max(span.max, seen.mostStepsHz)
       }
-      addExcess(excess, { atMs, value }, allowance.allowanceHz, residual.budgetedHz)
+      const [slow, fast] = symbolClock(curve, scan, seen, query)
+      slowest = Math.min(slowest, slow)
+      fastest = Math.max(fastest, fast)
     }
   }
 
-  const { residualHz: worstResidualHz, atMs: worstAtMs, residual } = worst!
+  const { worstHz: worstResidualHz, worstMs: worstAtMs } = worst!.seen
   const margin = Math.min(MARGIN_CAP, worstResidualHz === 0 ? MARGIN_CAP : allowance.allowanceHz / worstResidualHz)
   faults.sort((a, b) => a.atMs - b.atMs)
   return {
-    verdict: verdictOf(margin, faults), allowance, worstResidualHz, worstAtMs, budget: residual.partsAt(worstAtMs), margin,
+    verdict: verdictOf(margin, faults), allowance, worstResidualHz, worstAtMs, budget: worst!.partsAt(worstAtMs), margin,
     retunes: applied.map((row, i) => checkedRetune(row, spans[i]!, query, curves)),
     excess, faults, symbolClockPpm: [slowest * 1e6, fastest * 1e6],
   }
@@ -118,12 +116,12 @@ function addExcess(excess: { fromMs: UtcMs, toMs: UtcMs }[], { atMs, value }: Sc
     else excess.push({ fromMs, toMs })
   }
   for (let i = 0; i < atMs.length; i++) {
-    const [before, now] = [atMs[i - 1]!, atMs[i]!]
     const isOver = value[i]! > allowanceHz
     const wasOver = i > 0 && value[i - 1]! > allowanceHz
-    if (i === 0) {
-      if (isOver) add(now, now)
-    }
+    if (!isOver && !wasOver) continue
+    const before = atMs[Math.max(0, i - 1)]!
+    const now = atMs[i]!
+    if (i === 0) add(now, now)
     else if (wasOver && isOver) add(before, now)
     else if (wasOver) add(before, crossingBetween(before, now, utcMs => budgetedHz(utcMs) > allowanceHz))
     else if (isOver) add(crossingBetween(before, now, utcMs => budgetedHz(utcMs) <= allowanceHz), now)
@@ -146,19 +144,20 @@ function driftFault(curve: CheckCurve, { driftLimitHzPerS }: LinkModel, applied:
   }
 }
 
-/** Received over transmitted, minus one: the scale of the symbol clock at the receiving end. A coherent spacecraft still counts its symbols by its own clock. */
-function symbolClockOf({ offsetHz, stateAt }: CheckCurve, { link, site, budget }: CheckQuery): (utcMs: UtcMs) => number {
+/**
+ * Received over transmitted, minus one, least and greatest: the scale of the symbol clock at the receiving end, which goes with the
+ * offset. A coherent spacecraft still counts its symbols by its own clock.
+ */
+function symbolClock({ stateAt }: CheckCurve, { atMs }: Scan, { leastOffsetHz, mostOffsetHz }: SeenExtremes, { link, site, budget }: CheckQuery): [slowest: number, fastest: number] {
   const { carrierHz, direction, turnaround } = link
   if (turnaround) {
     const path = { stateAt, site, ut1MinusUtcS: budget.ut1MinusUtcS }
-    return utcMs => receivedOverTransmitted(path, 'downlink', utcMs).ratioMinusOne
+    const ratios = atMs.map(utcMs => receivedOverTransmitted(path, 'downlink', utcMs).ratioMinusOne)
+    return [ratios.reduce((a, b) => Math.min(a, b)), ratios.reduce((a, b) => Math.max(a, b))]
   }
   return direction === 'downlink'
-    ? utcMs => offsetHz(utcMs) / carrierHz
-    : (utcMs) => {
-        const hz = offsetHz(utcMs)
-        return -hz / (carrierHz + hz)
-      }
+    ? [leastOffsetHz / carrierHz, mostOffsetHz / carrierHz]
+    : [-mostOffsetHz / (carrierHz + mostOffsetHz), -leastOffsetHz / (carrierHz + leastOffsetHz)]
 }
 
 /** Outside the workable parts a row's own instant is propagated directly. */
@@ -168,7 +167,7 @@ function checkedRetune({ row, effectMs }: AppliedRow, span: { min: Hz, max: Hz }
   const curve = curves.find(({ span: { fromMs, toMs } }) => fromMs <= effectMs && effectMs <= toMs)
   const look = lookAt(curve?.stateAt(effectMs) ?? propagated(propagator, effectMs), site, effectMs, ut1MinusUtcS)
   return {
-    ...row, residualMinHz, residualMaxHz,
+    atMs: row.atMs, frequencyHz: row.frequencyHz, slopeHzPerS: row.slopeHzPerS, residualMinHz, residualMaxHz,
     lossDb: lossDb(link, Math.max(Math.abs(residualMinHz), Math.abs(residualMaxHz))),
     dopplerHz: curve ? curve.offsetHz(effectMs) : directOffsetHz({ propagator, site, link, ut1MinusUtcS }, effectMs),
     rangeRateMps: look.rangeRateMps, azimuthRad: look.azimuthRad, elevationRad: look.elevationRad,

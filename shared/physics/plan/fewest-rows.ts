@@ -12,13 +12,12 @@ import { furthestReach, isWorkable, settingsOver } from './reach'
 /**
  * Fewest rows through a corridor. Furthest reach is tried first: without dwell and jump limit it is optimal, so where its rows
  * happen to keep both, it is optimal with them too, and where it needs too many rows, so does every plan. Only in between are
- * the paths from hold to hold searched, which `onSearch` is told.
+ * the paths from hold to hold searched.
  */
-export function fewestRows(c: Corridor, limits: Limits, limit = Infinity, onSearch?: () => void): number | null {
+export function fewestRows(c: Corridor, limits: Limits, limit = Infinity): number | null {
   const starts = furthestReach(c, firstInstant(c), limit, limits.quiet)
   if (starts === null) return null
-  if (keepsDwell(starts, limits) && settingsFor(c, starts, limits.jump) !== null) return starts.length
-  onSearch?.()
+  if (keepsDwell(starts, limits) && (limits.jump === Infinity || settingsFor(c, starts, limits.jump) !== null)) return starts.length
   const bound = boundJump(c, limits)
   const { layers, complete } = earliestStarts(holdsFor(c, bound), bound, limit)
   return complete ? layers.length : null
@@ -73,7 +72,8 @@ function settingsFor(c: Corridor, starts: readonly number[], jump: number): numb
 
 /** Both settings hold at a retune, so no jump is wider than the corridor; saying so narrows the search. */
 function boundJump(c: Corridor, limits: Limits): Limits {
-  const widest = c.lowHz.reduce((most, low, j) => Math.max(most, c.highHz[j]! - low), 0)
+  let widest = 0
+  for (let j = 0; j < c.lowHz.length; j++) widest = Math.max(widest, c.highHz[j]! - c.lowHz[j]!)
   return { ...limits, jump: Math.min(limits.jump, Math.ceil(widest / c.grid.stepHz)) }
 }
 
@@ -97,9 +97,4 @@ function pairsOf(c: Corridor, { jump }: Limits): number {
   const highest = c.highHz.reduce((a, b) => Math.max(a, b))
   const points = Math.min(c.grid.most - c.grid.least, (highest - lowest) / c.grid.stepHz) + 1
   return points * Math.min(jump, points)
-}
-
-/** True where a search through this corridor's holds takes long enough that a ratio or half-width is worth only a few digits. */
-export function isLargeSearch(c: Corridor, limits: Limits): boolean {
-  return pairsOf(c, boundJump(c, limits)) > MOST_PAIRS / 10
 }

@@ -38,7 +38,8 @@ export function holdsOf(c: Corridor, stride: number): Holds {
     open[i] = Number.NaN
   }
 
-  c.timeMs.forEach((time, knot) => {
+  for (let knot = 0; knot < c.timeMs.length; knot++) {
+    const time = c.timeMs[knot]!
     if (c.beginsPart[knot]) {
       const from = knot === 0 ? first : Math.floor(c.timeMs[knot - 1]!) + 1
       const to = Math.ceil(time) - 1
@@ -48,7 +49,7 @@ export function holdsOf(c: Corridor, stride: number): Holds {
         if (serves(knot, least + i)) open[i] = isOpen ? open[i]! : from
         else if (isOpen) close(i, to)
       }
-      return
+      continue
     }
     const before = knot - 1
     const inner = [Math.max(c.lowHz[before]!, c.lowHz[knot]!), Math.min(c.highHz[before]!, c.highHz[knot]!)] as const
@@ -65,7 +66,7 @@ export function holdsOf(c: Corridor, stride: number): Holds {
       if (stretch !== null && Number.isNaN(open[i]!)) open[i] = stretch[0]
       if (!Number.isNaN(open[i]!) && !serves(knot, n)) close(i, stretch === null ? Math.floor(c.timeMs[before]!) : stretch[1])
     }
-  })
+  }
   for (let i = 0; i < count; i++) if (!Number.isNaN(open[i]!)) close(i, last)
   found.sort((a, b) => a[0] - b[0] || a[1] - b[1])
   const column = (n: 0 | 1 | 2) => Float64Array.from(found, hold => hold[n])

@@ -1,5 +1,5 @@
 import type { Corridor } from './corridor'
-import { gridRange } from './corridor'
+import { gridRange, isOnGrid } from './corridor'
 import type { QuietStretches } from './quiet'
 import { lastFree } from './quiet'
 
@@ -11,18 +11,21 @@ import { lastFree } from './quiet'
 
 /** Latest whole instant to which one setting serves from `from`; Infinity when to the end; below `from` when none serves there. */
 export function reachFrom(c: Corridor, from: number): number {
+  const { timeMs, lowHz, highHz, grid } = c
   let knot = firstKnotAt(c, from)
   let low = -Infinity
   let high = Infinity
   if (insidePiece(c, knot, from)) {
-    low = between(c, c.lowHz, knot, from)
-    high = between(c, c.highHz, knot, from)
-    if (!fits(c, low, high)) return from - 1
+    low = between(c, lowHz, knot, from)
+    high = between(c, highHz, knot, from)
+    if (!isOnGrid(grid, low, high)) return from - 1
   }
-  for (; knot < c.timeMs.length; knot++) {
-    const lower = Math.max(low, c.lowHz[knot]!)
-    const higher = Math.min(high, c.highHz[knot]!)
-    if (!fits(c, lower, higher)) return lastBefore(c, knot, from, low, high)
+  // Where no band ends the grid, what is as wide as its step holds one of its points.
+  const sure = grid.least === -Infinity && grid.most === Infinity ? grid.stepHz : Infinity
+  for (; knot < timeMs.length; knot++) {
+    const lower = Math.max(low, lowHz[knot]!)
+    const higher = Math.min(high, highHz[knot]!)
+    if (!(higher - lower >= sure) && !isOnGrid(grid, lower, higher)) return lastBefore(c, knot, from, low, high)
     low = lower
     high = higher
   }
@@ -66,20 +69,28 @@ export function isWorkable(c: Corridor, time: number): boolean {
   return c.timeMs[knot] === time || insidePiece(c, knot, time)
 }
 
-function fits(c: Corridor, low: number, high: number): boolean {
-  const [least, most] = gridRange(c.grid, low, high)
-  return least <= most
-}
-
 /** The setting that served up to the knot before fails at `knot`: the last whole instant before it fails. */
 function lastBefore(c: Corridor, knot: number, from: number, low: number, high: number): number {
-  let fails = Math.ceil(c.timeMs[knot]!)
+  const { timeMs, lowHz, highHz, grid } = c
+  let fails = Math.ceil(timeMs[knot]!)
   if (c.beginsPart[knot]) return fails - 1
-  let serves = Math.max(from, Math.floor(c.timeMs[knot - 1]!))
+  const [start, end] = [timeMs[knot - 1]!, timeMs[knot]!]
+  let serves = Math.max(from, Math.floor(start))
+  const ok = (time: number) => isOnGrid(grid, Math.max(low, between(c, lowHz, knot, time)), Math.min(high, between(c, highHz, knot, time)))
+  // Where one side closes in on the last grid point, the instant is known to a few; the rest is halved.
+  const { stepHz } = grid
+  const whereMeets = (side: Float64Array, hz: number) => start + (end - start) * (hz - side[knot - 1]!) / (side[knot]! - side[knot - 1]!)
+  const guess = highHz[knot]! < high
+    ? whereMeets(highHz, Math.ceil(Math.max(low, lowHz[knot]!) / stepHz) * stepHz)
+    : whereMeets(lowHz, Math.floor(high / stepHz) * stepHz)
+  for (const time of [Math.floor(guess), Math.floor(guess) + 1]) {
+    if (!(time > serves && time < fails)) continue
+    if (ok(time)) serves = time
+    else fails = time
+  }
   while (fails - serves > 1) {
     const middle = Math.floor((serves + fails) / 2)
-    const ok = fits(c, Math.max(low, between(c, c.lowHz, knot, middle)), Math.min(high, between(c, c.highHz, knot, middle)))
-    if (ok) serves = middle
+    if (ok(middle)) serves = middle
     else fails = middle
   }
   return serves
@@ -102,7 +113,7 @@ export function insidePiece(c: Corridor, knot: number, time: number): boolean {
 }
 
 /** A side of the corridor on the piece that ends at `knot`. */
-export function between(c: Corridor, side: readonly number[], knot: number, time: number): number {
+export function between(c: Corridor, side: Float64Array, knot: number, time: number): number {
   const start = c.timeMs[knot - 1]!
   return side[knot - 1]! + (side[knot]! - side[knot - 1]!) * (time - start) / (c.timeMs[knot]! - start)
 }

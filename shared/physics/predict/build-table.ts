@@ -65,7 +65,7 @@ export function buildTable(query: TableQuery): BuiltTable | NotWorkable {
   const { quiet = [], firstRowLeadMs = 0 } = query
   const plan = planRetunes({
     ...onDial(neededOn(track, query), link, radio),
-    uncertaintyHz: uncertaintyOver(track, ephemeris, query), allowanceHz: allowanceOf(link).allowanceHz,
+    uncertaintyHz: uncertaintyOf(track, query), allowanceHz: allowanceOf(link).allowanceHz,
     parts, radio, jumpLimitHz: link.jumpLimitHz, driftLimitHzPerS: link.driftLimitHzPerS, quiet, firstRowLeadMs,
     ...(query.notBeforeMs === undefined ? {} : { notBeforeMs: query.notBeforeMs }),
   })
@@ -127,35 +127,24 @@ export function residualOfRows(query: ResidualQuery): TableCheck | NotWorkable {
  * @units UTC ms → Hz
  * @frame the site’s own axes
  * @range within the ephemeris
- * @tolerance within 1 % of the checker’s: plans hold (predict/build-table.test.ts)
+ * @tolerance within 0.3 % of the checker’s: plans hold (predict/build-table.test.ts)
  */
 export function exactUncertainty(track: SiteTrack, link: Pick<LinkModel, 'direction' | 'carrierHz' | 'turnaround'>, budget: BudgetModel, radio: RadioModel): (utcMs: UtcMs) => Hz {
   const { direction, carrierHz } = link
   const counted = withOscillatorsOf(budget, link)
   // Both legs of a coherent link answer alike, whether or not its uplink is pre-compensated.
   const legs = link.turnaround ? 2 : 1
-  return utcMs => uncertaintyHz(budgetAt({ utcMs, carrierHz, ...seenPartials(track, direction, legs * carrierHz, utcMs) }, counted, radio), budget.k)
+  return (utcMs) => {
+    const { rateHzPerS, alongTrackHzPerS, ut1HzPerS } = seenPartials(track, direction, legs * carrierHz, utcMs)
+    return uncertaintyHz(budgetAt({ utcMs, carrierHz, rateHzPerS, alongTrackHzPerS, ut1HzPerS }, counted, radio), budget.k)
+  }
 }
 
-/** Spacing of the nodes between which the uncertainty is interpolated, and what is added for it. */
-const NODE_MS = 4000
-const NODE_ROOM = 1.01
+/** What is added to the uncertainty, since its partials leave out oblateness and light time. */
+const UNCERTAINTY_ROOM = 1.003
 
-/**
- * Uncertainty over time. The partials cost several ratios an instant and change slowly, so they are asked every 4 s and
- * interpolated in straight pieces; one per cent is added, which no low orbit uses up.
- */
-function uncertaintyOver(track: SiteTrack, ephemeris: Ephemeris, { link, budget, radio }: TableQuery): (utcMs: UtcMs) => Hz {
+/** Uncertainty to plan with: no less than the checker will find. */
+function uncertaintyOf(track: SiteTrack, { link, budget, radio }: TableQuery): (utcMs: UtcMs) => Hz {
   const exact = exactUncertainty(track, link, budget, radio)
-  const nodes = new Map<number, Hz>()
-  const node = (n: number): Hz => {
-    let value = nodes.get(n)
-    if (value === undefined) nodes.set(n, value = exact(Math.min(Math.max(n * NODE_MS, ephemeris.fromMs), ephemeris.toMs)))
-    return value
-  }
-  return (utcMs) => {
-    const n = Math.floor(utcMs / NODE_MS)
-    const share = utcMs / NODE_MS - n
-    return NODE_ROOM * (node(n) * (1 - share) + node(n + 1) * share)
-  }
+  return utcMs => UNCERTAINTY_ROOM * exact(utcMs)
 }
