@@ -5,15 +5,15 @@ import { chooseRows, fewestRows } from './fewest-rows'
 import type { Limits } from './hold-paths'
 
 /** Ratios are found in this many steps to the half-width, widths in as many to the first that serves. */
-export const STEPS = 2 ** 14
+export const STEPS = 2 ** 13
 
 /**
- * Least rows, then least ratio of residual to half-width, in steps of 1/16384, then earliest, then lowest; null where the half-width
- * has no plan. The ratio is the least multiple of 1/16384 with rows that keep |f − g_i| ≤ ratio·h: settings are chosen by hertz
+ * Least rows, then least ratio of residual to half-width, in steps of 1/8192, then earliest, then lowest; null where the half-width
+ * has no plan. The ratio is the least multiple of 1/8192 with rows that keep |f − g_i| ≤ ratio·h: settings are chosen by hertz
  * of a grid and instants by milliseconds, and nobody hears less.
  *
  * @card Best rows: least rows, then the least share of the half-width.
- * @formula least N, then least n with |f − g_i| ≤ n/16384·h, by halving
+ * @formula least N, then least n with |f − g_i| ≤ n/8192·h, by halving
  * @source mechanics of intervals
  * @units Hz, ms → ms, steps of the grid
  * @frame from the radio’s reference step
@@ -35,7 +35,7 @@ export function bestPath(curve: Curve, grid: Grid, limits: Limits, halfWidthHz: 
 }
 
 /**
- * The plan with half-width max(h, x), x the least that has one, in steps of 1/16384 of the first that is tried and serves; then
+ * The plan with half-width max(h, x), x the least that has one, in steps of 1/8192 of the first that is tried and serves; then
  * least rows, earliest, lowest. The first tried is what a dwell leaves where the curve is fastest.
  *
  * @card Nearest rows: what comes closest where no plan fits.

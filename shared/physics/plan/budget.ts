@@ -42,6 +42,26 @@ export function budgetAt(at: Sensitivity, budget: BudgetModel, radio: Pick<Radio
 }
 
 /**
+ * The sum of the budget over time, without its parts: what a planner asks at every knot. Hz; rates in Hz per second.
+ *
+ * @card Sum of the budget, at once: what the uncertain parts come to at an instant.
+ * @formula timing·|ḟ| + UT1 bound·|∂f/∂UT1| + k·√((σ_t·∂f/∂t_along)² + oscillator²)
+ * @source the cards of the budget and of its sum
+ * @units ms, s, ppm, Hz/s → Hz
+ * @frame none
+ * @range k ≥ 0, 2 unless set
+ * @tolerance 1e-9 Hz of the parts summed (plan/budget.test.ts)
+ */
+export function uncertaintyBy(carrierHz: Hz, budget: BudgetModel, radio: Pick<RadioModel, 'latencyUncertaintyMs'>): (utcMs: UtcMs, alongTrackHzPerS: number, ut1HzPerS: number) => Hz {
+  const { alongTrackSigmaS, ut1BoundS, k } = budget
+  const { timingHz: timingS, oscillatorHz } = budgetAt({ utcMs: NaN, carrierHz, rateHzPerS: 1, alongTrackHzPerS: 0, ut1HzPerS: 0 }, { ...budget, alongTrackSigmaS: () => 0 }, radio)
+  return (utcMs, alongTrackHzPerS, ut1HzPerS) => {
+    const orbitHz = alongTrackSigmaS(utcMs) * alongTrackHzPerS
+    return timingS * Math.abs(alongTrackHzPerS + ut1HzPerS) + ut1BoundS * Math.abs(ut1HzPerS) + k * Math.sqrt(orbitHz * orbitHz + oscillatorHz * oscillatorHz)
+  }
+}
+
+/**
  * Limits add; one-sigma spreads add as root of squares, times k. Hz.
  *
  * @card Sum of the budget: what the uncertain parts come to.

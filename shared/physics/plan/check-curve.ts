@@ -1,10 +1,10 @@
 import { dopplerHz } from '../doppler/needed'
 import { SPEED_OF_LIGHT_MPS } from '../doppler/ratio'
 import { answeringLink } from '../doppler/two-way'
-import { EARTH_ROTATION_RAD_PER_S, siteStateTeme } from '../orbit/frames'
 import type { Hz, LinkModel, Propagator, Site, Span, StateTeme, UtcMs } from '../types'
 import type { Sampler } from './check-series'
 import { seriesOf } from './check-series'
+import { sightOf } from './check-sight'
 import { checkStatesOf, propagated } from './check-states'
 
 export interface CheckCurveQuery {
@@ -57,24 +57,6 @@ export function directOffsetHz({ propagator, site, link, ut1MinusUtcS }: Omit<Ch
   return dopplerHz({ ...link, stateAt, site, ut1MinusUtcS }, utcMs)
 }
 
-/**
- * ∂ρ̇/∂UT1, m/s per second: the station s turned on with the Earth, its velocity u = ω×s, the spacecraft staying. With d the line
- * from station to spacecraft and w the spacecraft's velocity against the station's: ρ̇ = d·w/ρ, ∂d = −u, ∂w = −ω×u.
- */
-function rangeRateByUt1({ positionM: r, velocityMps: v }: StateTeme, site: Site, utcMs: UtcMs, ut1MinusUtcS: number): number {
-  const { positionM: s, velocityMps: u } = siteStateTeme(site, utcMs, ut1MinusUtcS)
-  const dx = r[0] - s[0]
-  const dy = r[1] - s[1]
-  const dz = r[2] - s[2]
-  const wx = v[0] - u[0]
-  const wy = v[1] - u[1]
-  const range2 = dx * dx + dy * dy + dz * dz
-  const alongU = dx * u[0] + dy * u[1]
-  const closing = dx * wx + dy * wy + dz * v[2]
-  const turning = EARTH_ROTATION_RAD_PER_S ** 2 * (dx * s[0] + dy * s[1]) - u[0] * wx - u[1] * wy
-  return (turning + closing * alongU / range2) / Math.sqrt(range2)
-}
-
 /** Panels to begin with, in shares of the orbit's period. */
 const PANEL_SHARE = 1 / 24
 const NODES = 14
@@ -95,17 +77,21 @@ const NODES = 14
  */
 export function checkCurveOf(query: CheckCurveQuery): CheckCurve {
   const { propagator, link, site, ut1MinusUtcS, span } = query
-  const { stateAt } = checkStatesOf(propagator, span)
+  const states = checkStatesOf(propagator, span)
+  const { stateAt } = states
+  const { direction, carrierHz, turnaround } = link
   const panelMs = 86_400_000 / propagator.elements.meanMotionRevPerDay * PANEL_SHARE
-  const toleranceHz = 1e-4 + 1e-13 * link.carrierHz
+  const toleranceHz = 1e-4 + 1e-13 * carrierHz
   // Both legs of a coherent link answer alike.
-  const perMps = (link.direction === 'uplink' ? 1 : -1) * (link.turnaround ? 2 : 1) * link.carrierHz / SPEED_OF_LIGHT_MPS
+  const perMps = (direction === 'uplink' ? 1 : -1) * (turnaround ? 2 : 1) * carrierHz / SPEED_OF_LIGHT_MPS
   const path = { ...link, stateAt, site, ut1MinusUtcS }
+  const { tunedMinusOne, rangeRateByUt1 } = sightOf(states, site, ut1MinusUtcS, direction, span.fromMs)
   const sample: Sampler = (utcMs, into) => {
-    into[AT.offsetHz] = dopplerHz(path, utcMs)
-    into[AT.ut1HzPerS] = perMps * rangeRateByUt1(stateAt(utcMs)!, site, utcMs, ut1MinusUtcS)
+    const oneWayHz = carrierHz * tunedMinusOne(utcMs)
+    into[AT.offsetHz] = turnaround ? dopplerHz(path, utcMs) : oneWayHz
+    into[AT.ut1HzPerS] = perMps * rangeRateByUt1()
   }
-  const series = seriesOf(sample, { ...span, panelMs, nodes: NODES, tolerances: [toleranceHz, 1e-11 * link.carrierHz] })
+  const series = seriesOf(sample, { ...span, panelMs, nodes: NODES, tolerances: [toleranceHz, 1e-11 * carrierHz] })
   // What a link answers to errors by may be another curve than the one it is tuned along.
   const answering = answeringLink(link)
   const answer = answering === link

@@ -3,39 +3,51 @@ import type { UtcMs } from '../types'
 /** Where a function of time is asked: evenly, with its turning points and peaks between found by refinement. */
 export const SCAN_STEP_MS = 1000
 
-/** Instants in order, and what a function comes to at each. */
-export interface Scan { readonly atMs: readonly UtcMs[], readonly value: readonly number[] }
+/** Told of every instant of a scan, in order. */
+export type ScanVisitor = (atMs: UtcMs, value: number) => void
 
 /**
- * A function at every whole second from `fromMs` and at both ends; where `rate` changes sign between two of these, there as well, to
- * a microsecond; and beside every instant that is highest among its neighbours, at the maximum near it, to 0.1 ms. `rate` and
+ * Asks a function at every whole second from `fromMs` and at both ends; where `rate` changes sign between two of these, there as
+ * well, to a microsecond; and beside every instant that is highest among its neighbours, at the maximum near it, to 0.1 ms. `rate` and
  * `value` are asked at the same instant one after the other.
  */
-export function scanOf(fromMs: UtcMs, toMs: UtcMs, value: (utcMs: UtcMs) => number, rate?: (utcMs: UtcMs) => number): Scan {
-  const atMs: UtcMs[] = []
-  const values: number[] = []
+export function scan(fromMs: UtcMs, toMs: UtcMs, value: (utcMs: UtcMs) => number, rate?: ((utcMs: UtcMs) => number) | null, visit?: ScanVisitor): void {
+  // The last two instants asked; of these `visit` has been told of the first.
+  let firstMs = NaN
+  let first = NaN
+  let secondMs = NaN
+  let second = NaN
   const ask = (utcMs: UtcMs): void => {
-    atMs.push(utcMs)
-    values.push(value(utcMs))
+    const now = value(utcMs)
+    if (second >= first && second >= now) {
+      const peakMs = peakBetween(firstMs, utcMs, value)
+      const peak = value(peakMs)
+      if (visit && peakMs < secondMs) visit(peakMs, peak)
+      if (visit) visit(secondMs, second)
+      if (visit && peakMs >= secondMs) visit(peakMs, peak)
+    }
+    else if (visit && second === second) visit(secondMs, second)
+    firstMs = secondMs
+    first = second
+    secondMs = utcMs
+    second = now
   }
   let beforeMs = fromMs
   let rateBefore = 0
-  const step = (utcMs: UtcMs): void => {
+  for (let at = fromMs; ; at = Math.min(at + SCAN_STEP_MS, toMs)) {
     if (rate) {
-      const rateNow = rate(utcMs)
+      const rateNow = rate(at)
       if (rateBefore * rateNow < 0) {
         const isRising = rateBefore > 0
-        ask(crossingBetween(beforeMs, utcMs, at => rate(at) > 0 === isRising))
+        ask(crossingBetween(beforeMs, at, utcMs => rate(utcMs) > 0 === isRising))
       }
-      beforeMs = utcMs
+      beforeMs = at
       rateBefore = rateNow
     }
-    ask(utcMs)
+    ask(at)
+    if (at >= toMs) break
   }
-  step(fromMs)
-  for (let at = fromMs + SCAN_STEP_MS; at < toMs; at += SCAN_STEP_MS) step(at)
-  if (toMs > fromMs) step(toMs)
-  return withPeaks({ atMs, value: values }, value)
+  if (visit) visit(secondMs, second)
 }
 
 /** Last instant of [fromMs, toMs] that satisfies `holds`, which the first does and the last does not; to a microsecond. */
@@ -49,45 +61,27 @@ export function crossingBetween(fromMs: UtcMs, toMs: UtcMs, holds: (utcMs: UtcMs
   return inside
 }
 
-/** The scan with the peaks that lie between its instants, in their places. */
-function withPeaks(scan: Scan, value: (utcMs: UtcMs) => number): Scan {
-  const { atMs, value: values } = scan
-  let peaks: { atMs: UtcMs[], value: number[] } | null = null
-  let kept = 0
-  for (let i = 1; i < atMs.length - 1; i++) {
-    if (!(values[i]! >= values[i - 1]! && values[i]! >= values[i + 1]!)) continue
-    const at = peakBetween(atMs[i - 1]!, atMs[i + 1]!, value)
-    peaks ??= { atMs: [], value: [] }
-    const end = at < atMs[i]! ? i : i + 1
-    for (; kept < end; kept++) {
-      peaks.atMs.push(atMs[kept]!)
-      peaks.value.push(values[kept]!)
-    }
-    peaks.atMs.push(at)
-    peaks.value.push(value(at))
-  }
-  if (!peaks) return scan
-  for (; kept < atMs.length; kept++) {
-    peaks.atMs.push(atMs[kept]!)
-    peaks.value.push(values[kept]!)
-  }
-  return peaks
-}
-
 const GOLDEN = (Math.sqrt(5) - 1) / 2
 
 function peakBetween(fromMs: UtcMs, toMs: UtcMs, value: (utcMs: UtcMs) => number): UtcMs {
-  let [a, b] = [fromMs, toMs]
-  let [left, right] = [b - GOLDEN * (b - a), a + GOLDEN * (b - a)]
-  let [atLeft, atRight] = [value(left), value(right)]
+  let a = fromMs
+  let b = toMs
+  let left = b - GOLDEN * (b - a)
+  let right = a + GOLDEN * (b - a)
+  let atLeft = value(left)
+  let atRight = value(right)
   while (b - a > 0.1) {
     if (atLeft >= atRight) {
-      [b, right, atRight] = [right, left, atLeft]
+      b = right
+      right = left
+      atRight = atLeft
       left = b - GOLDEN * (b - a)
       atLeft = value(left)
     }
     else {
-      [a, left, atLeft] = [left, right, atRight]
+      a = left
+      left = right
+      atLeft = atRight
       right = a + GOLDEN * (b - a)
       atRight = value(right)
     }

@@ -4,7 +4,9 @@ export interface Series {
   readonly valueAt: (utcMs: number, k?: number) => number
   /** Per second. */
   readonly rateAt: (utcMs: number, k?: number) => number
-  /** Writes the values of all functions, and after them the rate of the first. */
+  /** Of all functions. */
+  readonly valuesAt: (utcMs: number, into: Float64Array) => void
+  /** Of the first two functions, and after them the rate of the first: in one go, as this is asked most. */
   readonly lookAt: (utcMs: number, into: Float64Array) => void
 }
 
@@ -69,11 +71,38 @@ export function seriesOf(sample: Sampler, options: SeriesOptions): Series {
       const { values, rates, middleMs, perMs } = panelAt(utcMs)
       return clenshaw(rates[k] ??= derivative(values[k]!, 1000 * perMs), (utcMs - middleMs) * perMs)
     },
+    valuesAt: (utcMs, into) => {
+      const { values, middleMs, perMs } = panelAt(utcMs)
+      const x = (utcMs - middleMs) * perMs
+      for (let k = 0; k < values.length; k++) into[k] = clenshaw(values[k]!, x)
+    },
     lookAt: (utcMs, into) => {
       const { values, rates, middleMs, perMs } = panelAt(utcMs)
       const x = (utcMs - middleMs) * perMs
-      for (let k = 0; k < values.length; k++) into[k] = clenshaw(values[k]!, x)
-      into[values.length] = clenshaw(rates[0] ??= derivative(values[0]!, 1000 * perMs), x)
+      const own = values[0]!
+      const other = values[1]!
+      const rate = rates[0] ??= derivative(own, 1000 * perMs)
+      const twice = 2 * x
+      let a = 0
+      let b = 0
+      let c = 0
+      let beforeA = 0
+      let beforeB = 0
+      let beforeC = 0
+      for (let k = own.length - 1; k >= 1; k--) {
+        const nextA = twice * a + (own[k]! - beforeA)
+        beforeA = a
+        a = nextA
+        const nextB = twice * b + (other[k]! - beforeB)
+        beforeB = b
+        b = nextB
+        const nextC = twice * c + (rate[k]! - beforeC)
+        beforeC = c
+        c = nextC
+      }
+      into[0] = x * a + (own[0]! - beforeA)
+      into[1] = x * b + (other[0]! - beforeB)
+      into[2] = x * c + (rate[0]! - beforeC)
     },
   }
 }

@@ -15,6 +15,8 @@ const TOLERANCES = [0, 1, 2, 3, 4, 5].map(k => k < 3 ? POSITION_TOLERANCE_M : VE
 export interface CheckStates {
   /** Null before and after the part and the light on its way there, and where the element set has ended by then. */
   readonly stateAt: (utcMs: UtcMs) => StateTeme | null
+  /** The same as six numbers; false where there is none. */
+  readonly stateInto: (utcMs: UtcMs, into: Float64Array) => boolean
 }
 
 /** Asks the propagator, or says where the element set ends. Throws RangeError there. */
@@ -61,18 +63,15 @@ function statesOver(propagator: Propagator, { fromMs, toMs }: Span): CheckStates
     }
   }
   const panelMs = 86_400_000 / propagator.elements.meanMotionRevPerDay * PANEL_SHARE
-  const { valueAt } = seriesOf(sample, { fromMs, toMs, panelMs, nodes: NODES, tolerances: TOLERANCES })
-  let lastMs = NaN
-  let last: StateTeme | null = null
+  const { valuesAt } = seriesOf(sample, { fromMs, toMs, panelMs, nodes: NODES, tolerances: TOLERANCES })
+  const stateInto = (utcMs: UtcMs, into: Float64Array): boolean => {
+    if (utcMs < fromMs || utcMs > toMs) return false
+    valuesAt(utcMs, into)
+    return true
+  }
+  const at = new Float64Array(6)
   return {
-    stateAt: (utcMs) => {
-      // Who asks for one state mostly asks again.
-      if (utcMs === lastMs) return last
-      lastMs = utcMs
-      last = utcMs < fromMs || utcMs > toMs
-        ? null
-        : { positionM: [valueAt(utcMs, 0), valueAt(utcMs, 1), valueAt(utcMs, 2)], velocityMps: [valueAt(utcMs, 3), valueAt(utcMs, 4), valueAt(utcMs, 5)] }
-      return last
-    },
+    stateInto,
+    stateAt: utcMs => stateInto(utcMs, at) ? { positionM: [at[0]!, at[1]!, at[2]!], velocityMps: [at[3]!, at[4]!, at[5]!] } : null,
   }
 }

@@ -9,8 +9,7 @@ import type { AppliedRow, Fault } from './check-rows'
 import type { Residual, SeenExtremes } from './check-residual'
 import { residualOf } from './check-residual'
 import { applyRows, faultsOfRows } from './check-rows'
-import type { Scan } from './check-scan'
-import { crossingBetween, scanOf } from './check-scan'
+import { crossingBetween, scan } from './check-scan'
 import { propagated } from './check-states'
 
 export interface CheckQuery {
@@ -66,16 +65,16 @@ export function checkTable(query: CheckQuery): TableCheck {
     if (drift) faults.push(drift)
     for (const piece of piecesOf(curve.span, applied)) {
       const residual = residualOf(curve, applied[piece.row], query)
-      const scan = scanOf(piece.fromMs, piece.toMs, residual.budgetedHz, residual.rateHzPerS)
+      scan(piece.fromMs, piece.toMs, residual.budgetedHz, residual.rateHzPerS)
       const { seen } = residual
       if (worst === null || seen.worstHz > worst.seen.worstHz) worst = residual
-      if (seen.worstHz > allowance.allowanceHz) addExcess(excess, scan, allowance.allowanceHz, residual.budgetedHz)
+      if (seen.worstHz > allowance.allowanceHz) addExcess(excess, piece, allowance.allowanceHz, residual)
       const span = spans[piece.row]
       if (span) {
         span.min = Math.min(span.min, seen.leastStepsHz)
         span.max = Math.max(span.max, seen.mostStepsHz)
       }
-      const [slow, fast] = symbolClock(curve, scan, seen, query)
+      const [slow, fast] = symbolClock(curve, piece, seen, query)
       slowest = Math.min(slowest, slow)
       fastest = Math.max(fastest, fast)
     }
@@ -108,24 +107,24 @@ function piecesOf(part: Span, applied: readonly AppliedRow[]): { row: number, fr
   return pieces
 }
 
-/** Adds where a scan is beyond the allowance, its edges refined. */
-function addExcess(excess: { fromMs: UtcMs, toMs: UtcMs }[], { atMs, value }: Scan, allowanceHz: Hz, budgetedHz: (utcMs: UtcMs) => Hz): void {
-  const add = (fromMs: UtcMs, toMs: UtcMs) => {
+/** Adds where a piece is beyond the allowance, the edges refined. */
+function addExcess(excess: { fromMs: UtcMs, toMs: UtcMs }[], { fromMs, toMs }: Span, allowanceHz: Hz, { budgetedHz, rateHzPerS }: Residual): void {
+  const add = (overMs: UtcMs, underMs: UtcMs) => {
     const last = excess[excess.length - 1]
-    if (last && last.toMs >= fromMs) last.toMs = Math.max(last.toMs, toMs)
-    else excess.push({ fromMs, toMs })
+    if (last && last.toMs >= overMs) last.toMs = Math.max(last.toMs, underMs)
+    else excess.push({ fromMs: overMs, toMs: underMs })
   }
-  for (let i = 0; i < atMs.length; i++) {
-    const isOver = value[i]! > allowanceHz
-    const wasOver = i > 0 && value[i - 1]! > allowanceHz
-    if (!isOver && !wasOver) continue
-    const before = atMs[Math.max(0, i - 1)]!
-    const now = atMs[i]!
-    if (i === 0) add(now, now)
-    else if (wasOver && isOver) add(before, now)
-    else if (wasOver) add(before, crossingBetween(before, now, utcMs => budgetedHz(utcMs) > allowanceHz))
-    else if (isOver) add(crossingBetween(before, now, utcMs => budgetedHz(utcMs) <= allowanceHz), now)
-  }
+  let before: { readonly atMs: UtcMs, readonly isOver: boolean } | null = null
+  scan(fromMs, toMs, budgetedHz, rateHzPerS, (atMs, value) => {
+    const isOver = value > allowanceHz
+    if (before === null) {
+      if (isOver) add(atMs, atMs)
+    }
+    else if (before.isOver && isOver) add(before.atMs, atMs)
+    else if (before.isOver) add(before.atMs, crossingBetween(before.atMs, atMs, utcMs => budgetedHz(utcMs) > allowanceHz))
+    else if (isOver) add(crossingBetween(before.atMs, atMs, utcMs => budgetedHz(utcMs) <= allowanceHz), atMs)
+    before = { atMs, isOver }
+  })
 }
 
 /** Largest |ḟ − slope| over a part, both rows asked at a retune, where it is beyond what the loop follows. */
@@ -134,8 +133,9 @@ function driftFault(curve: CheckCurve, { driftLimitHzPerS }: LinkModel, applied:
   let [worst, worstMs] = [0, curve.span.fromMs]
   for (const { row, fromMs, toMs } of piecesOf(curve.span, applied)) {
     const slope = applied[row]?.skySlopeHzPerS ?? 0
-    const { atMs, value } = scanOf(fromMs, toMs, utcMs => Math.abs(curve.rateHzPerS(utcMs) - slope))
-    for (let i = 0; i < atMs.length; i++) if (value[i]! > worst) [worst, worstMs] = [value[i]!, atMs[i]!]
+    scan(fromMs, toMs, utcMs => Math.abs(curve.rateHzPerS(utcMs) - slope), null, (atMs, drift) => {
+      if (drift > worst) [worst, worstMs] = [drift, atMs]
+    })
   }
   if (worst <= driftLimitHzPerS) return null
   return {
@@ -148,12 +148,16 @@ function driftFault(curve: CheckCurve, { driftLimitHzPerS }: LinkModel, applied:
  * Received over transmitted, minus one, least and greatest: the scale of the symbol clock at the receiving end, which goes with the
  * offset. A coherent spacecraft still counts its symbols by its own clock.
  */
-function symbolClock({ stateAt }: CheckCurve, { atMs }: Scan, { leastOffsetHz, mostOffsetHz }: SeenExtremes, { link, site, budget }: CheckQuery): [slowest: number, fastest: number] {
+function symbolClock({ stateAt }: CheckCurve, { fromMs, toMs }: Span, { leastOffsetHz, mostOffsetHz }: SeenExtremes, { link, site, budget }: CheckQuery): [slowest: number, fastest: number] {
   const { carrierHz, direction, turnaround } = link
   if (turnaround) {
     const path = { stateAt, site, ut1MinusUtcS: budget.ut1MinusUtcS }
-    const ratios = atMs.map(utcMs => receivedOverTransmitted(path, 'downlink', utcMs).ratioMinusOne)
-    return [ratios.reduce((a, b) => Math.min(a, b)), ratios.reduce((a, b) => Math.max(a, b))]
+    const ends: [slowest: number, fastest: number] = [Infinity, -Infinity]
+    scan(fromMs, toMs, utcMs => receivedOverTransmitted(path, 'downlink', utcMs).ratioMinusOne, null, (_, ratio) => {
+      ends[0] = Math.min(ends[0], ratio)
+      ends[1] = Math.max(ends[1], ratio)
+    })
+    return ends
   }
   return direction === 'downlink'
     ? [leastOffsetHz / carrierHz, mostOffsetHz / carrierHz]

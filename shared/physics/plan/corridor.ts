@@ -44,7 +44,7 @@ const MOST_PIECES = 8
  * @units Hz, UTC ms → Hz, ms
  * @frame from the radio’s reference step
  * @range smooth curves; pieces of 3 ms at least
- * @tolerance 0.05 % of the allowance: plans hold when checked (predict/build-table.test.ts)
+ * @tolerance 0.1 % of the allowance: plans hold when checked (predict/build-table.test.ts)
  */
 export function sampleCurve(source: CurveSource): Curve {
   const { anchorMs, referenceHz, toleranceHz } = source
@@ -149,11 +149,13 @@ export function corridorOf(curve: Curve, grid: Grid, halfWidthHz: (knot: number)
 export function mirrored(c: Corridor): Corridor {
   const count = c.timeMs.length
   const timeMs = new Float64Array(count)
-  for (let j = 0; j < count; j++) timeMs[j] = -c.timeMs[count - 1 - j]!
+  const beginsPart = new Array<boolean>(count)
+  for (let j = 0; j < count; j++) {
+    timeMs[j] = -c.timeMs[count - 1 - j]!
+    beginsPart[j] = j === 0 || c.beginsPart[count - j]!
+  }
   return {
-    timeMs, lowHz: c.lowHz.slice().reverse(), highHz: c.highHz.slice().reverse(),
-    beginsPart: Array.from(timeMs, (_, j) => j === 0 || c.beginsPart[count - j]!),
-    grid: c.grid,
+    timeMs, beginsPart, lowHz: c.lowHz.slice().reverse(), highHz: c.highHz.slice().reverse(), grid: c.grid,
   }
 }
 

@@ -23,8 +23,10 @@ export function reachFrom(c: Corridor, from: number): number {
   // Where no band ends the grid, what is as wide as its step holds one of its points.
   const sure = grid.least === -Infinity && grid.most === Infinity ? grid.stepHz : Infinity
   for (; knot < timeMs.length; knot++) {
-    const lower = Math.max(low, lowHz[knot]!)
-    const higher = Math.min(high, highHz[knot]!)
+    let lower = lowHz[knot]!
+    let higher = highHz[knot]!
+    if (lower < low) lower = low
+    if (higher > high) higher = high
     if (!(higher - lower >= sure) && !isOnGrid(grid, lower, higher)) return lastBefore(c, knot, from, low, high)
     low = lower
     high = higher
@@ -74,26 +76,24 @@ function lastBefore(c: Corridor, knot: number, from: number, low: number, high: 
   const { timeMs, lowHz, highHz, grid } = c
   let fails = Math.ceil(timeMs[knot]!)
   if (c.beginsPart[knot]) return fails - 1
-  const [start, end] = [timeMs[knot - 1]!, timeMs[knot]!]
-  let serves = Math.max(from, Math.floor(start))
-  const ok = (time: number) => isOnGrid(grid, Math.max(low, between(c, lowHz, knot, time)), Math.min(high, between(c, highHz, knot, time)))
+  let serves = Math.max(from, Math.floor(timeMs[knot - 1]!))
   // Where one side closes in on the last grid point, the instant is known to a few; the rest is halved.
   const { stepHz } = grid
-  const whereMeets = (side: Float64Array, hz: number) => start + (end - start) * (hz - side[knot - 1]!) / (side[knot]! - side[knot - 1]!)
   const guess = highHz[knot]! < high
-    ? whereMeets(highHz, Math.ceil(Math.max(low, lowHz[knot]!) / stepHz) * stepHz)
-    : whereMeets(lowHz, Math.floor(high / stepHz) * stepHz)
-  for (const time of [Math.floor(guess), Math.floor(guess) + 1]) {
+    ? whereMeets(c, highHz, knot, Math.ceil(Math.max(low, lowHz[knot]!) / stepHz) * stepHz)
+    : whereMeets(c, lowHz, knot, Math.floor(high / stepHz) * stepHz)
+  for (let time = Math.floor(guess), tries = 0; fails - serves > 1; time = tries < 2 ? time + 1 : Math.floor((serves + fails) / 2)) {
+    tries++
     if (!(time > serves && time < fails)) continue
-    if (ok(time)) serves = time
+    if (isOnGrid(grid, Math.max(low, between(c, lowHz, knot, time)), Math.min(high, between(c, highHz, knot, time)))) serves = time
     else fails = time
   }
-  while (fails - serves > 1) {
-    const middle = Math.floor((serves + fails) / 2)
-    if (ok(middle)) serves = middle
-    else fails = middle
-  }
   return serves
+}
+
+/** Where a side meets a frequency on the piece that ends at `knot`, or beyond it; not a number where it never does. */
+function whereMeets({ timeMs }: Corridor, side: Float64Array, knot: number, hz: number): number {
+  return timeMs[knot - 1]! + (timeMs[knot]! - timeMs[knot - 1]!) * (hz - side[knot - 1]!) / (side[knot]! - side[knot - 1]!)
 }
 
 /** Index of the first knot at or after `time`. */

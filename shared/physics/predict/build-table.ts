@@ -1,12 +1,12 @@
 import type { NeededFrequency } from '../doppler/needed'
 import { createNeededFrequency } from '../doppler/needed'
-import { createSeenFrequency, seenPartials } from '../doppler/seen-ratio'
+import { createSeenFrequency, seenPartialsInto } from '../doppler/seen-ratio'
 import { withOscillatorsOf } from '../doppler/two-way'
 import { createSiteTrack } from '../orbit/site-track'
 import type { SiteTrack } from '../orbit/site-track'
 import { workablePartsForLink } from '../orbit/passes'
 import { allowanceOf } from '../link/allowance'
-import { budgetAt, uncertaintyHz } from '../plan/budget'
+import { uncertaintyBy } from '../plan/budget'
 import { checkTable } from '../plan/check-table'
 import type { RetuneProblem } from '../plan/plan-retunes'
 import { planRetunes } from '../plan/plan-retunes'
@@ -134,9 +134,11 @@ export function exactUncertainty(track: SiteTrack, link: Pick<LinkModel, 'direct
   const counted = withOscillatorsOf(budget, link)
   // Both legs of a coherent link answer alike, whether or not its uplink is pre-compensated.
   const legs = link.turnaround ? 2 : 1
+  const summed = uncertaintyBy(carrierHz, counted, radio)
+  const partials = new Float64Array(2)
   return (utcMs) => {
-    const { rateHzPerS, alongTrackHzPerS, ut1HzPerS } = seenPartials(track, direction, legs * carrierHz, utcMs)
-    return uncertaintyHz(budgetAt({ utcMs, carrierHz, rateHzPerS, alongTrackHzPerS, ut1HzPerS }, counted, radio), budget.k)
+    seenPartialsInto(track, direction, legs * carrierHz, utcMs, partials)
+    return summed(utcMs, partials[0]!, partials[1]!)
   }
 }
 

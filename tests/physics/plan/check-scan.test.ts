@@ -1,5 +1,15 @@
 import { describe, expect, it } from 'vitest'
-import { crossingBetween, scanOf } from '../../../shared/physics/plan/check-scan'
+import { crossingBetween, scan } from '../../../shared/physics/plan/check-scan'
+
+/** Everything that a scan visits. */
+function scanOf(fromMs: number, toMs: number, value: (utcMs: number) => number, rate?: (utcMs: number) => number) {
+  const visited = { atMs: [] as number[], value: [] as number[] }
+  scan(fromMs, toMs, value, rate, (atMs, v) => {
+    visited.atMs.push(atMs)
+    visited.value.push(v)
+  })
+  return visited
+}
 
 describe('where the checker looks', () => {
   const rising = (utcMs: number) => utcMs

@@ -13,8 +13,8 @@ export interface SmallProblem {
   /** Closed stretches in which no row begins. */
   readonly quiet: readonly (readonly [number, number])[]
 }
-/** Ratios count in steps of this, rounded up: nobody hears less than 0.006 % of a half-width. */
-export const RATIO_STEPS = 16_384
+/** Ratios count in steps of this, rounded up: nobody hears less than 0.012 % of a half-width. */
+export const RATIO_STEPS = 8192
 /** Hertz by which a setting may stand beyond the half-width, as rounding. */
 const SLACK_HZ = 1e-6
 
@@ -22,7 +22,7 @@ export interface SmallPlan { readonly starts: number[], readonly settings: numbe
 
 /**
  * Tries every plan of up to `mostRows` rows and returns the best by the published order: fewest rows, least worst ratio in
- * steps of 1/16384, earliest starts, lowest settings; null where none of that many rows serves. A straight piece is worst at a knot or at a retune.
+ * steps of 1/8192, earliest starts, lowest settings; null where none of that many rows serves. A straight piece is worst at a knot or at a retune.
  */
 export function bestByTryingAll(problem: SmallProblem, mostRows: number): SmallPlan | null {
   for (let rows = 1; rows <= mostRows; rows++) {
