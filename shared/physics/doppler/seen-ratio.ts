@@ -113,14 +113,14 @@ export function seenPartials(track: SiteTrack, direction: Direction, carrierHz: 
  * @tolerance 0.2 % of differences by true propagation (doppler/seen-ratio.test.ts)
  */
 export function seenPartialsInto(track: SiteTrack, direction: Direction, carrierHz: Hz, utcMs: UtcMs, into: Float64Array): void {
-  if (!track.viewAt(utcMs, partialsView)) throw new RangeError(`The spacecraft's state at ${utcMs} is not known: ask within the ephemeris`)
+  const view = viewOf(track, utcMs)
   const { siteEastM, siteNorthM, siteUpM, siteSpeedMps } = track
-  const e = partialsView[EAST]!
-  const n = partialsView[NORTH]!
-  const u = partialsView[UP]!
-  const ve = partialsView[EAST_RATE]!
-  const vn = partialsView[NORTH_RATE]!
-  const vu = partialsView[UP_RATE]!
+  const e = view[EAST]!
+  const n = view[NORTH]!
+  const u = view[UP]!
+  const ve = view[EAST_RATE]!
+  const vn = view[NORTH_RATE]!
+  const vu = view[UP_RATE]!
   const re = e + siteEastM
   const rn = n + siteNorthM
   const ru = u + siteUpM
@@ -139,7 +139,18 @@ export function seenPartialsInto(track: SiteTrack, direction: Direction, carrier
   into[1] = perMps * turn
 }
 
-const partialsView = new Float64Array(VIEW_LENGTH)
+/** The view asked last, since a planner asks several things of one instant. */
+const lastView = { track: null as SiteTrack | null, atMs: new Float64Array(1), view: new Float64Array(VIEW_LENGTH) }
+
+function viewOf(track: SiteTrack, utcMs: UtcMs): Float64Array {
+  const { atMs, view } = lastView
+  if (lastView.track === track && atMs[0] === utcMs) return view
+  lastView.track = null
+  if (!track.viewAt(utcMs, view)) throw new RangeError(`The spacecraft's state at ${utcMs} is not known: ask within the ephemeris`)
+  lastView.track = track
+  atMs[0] = utcMs
+  return view
+}
 
 /**
  * What to set at the station over time, as `createNeededFrequency`, from a track: quicker by an order, within 1e-12 of the
@@ -154,11 +165,7 @@ const partialsView = new Float64Array(VIEW_LENGTH)
  * @tolerance 0.05 Hz at 437.5 MHz of an independent program (predict/sample-pass.test.ts)
  */
 export function createSeenFrequency(track: SiteTrack, direction: Direction, carrierHz: Hz): NeededFrequency {
-  const view = new Float64Array(VIEW_LENGTH)
-  const dopplerHz = (utcMs: UtcMs): Hz => {
-    if (!track.viewAt(utcMs, view)) throw new RangeError(`The spacecraft's state at ${utcMs} is not known: ask within the ephemeris`)
-    return carrierHz * seenOverCarrierMinusOne(track, view, direction)
-  }
+  const dopplerHz = (utcMs: UtcMs): Hz => carrierHz * seenOverCarrierMinusOne(track, viewOf(track, utcMs), direction)
   return {
     frequencyHz: utcMs => carrierHz + dopplerHz(utcMs),
     dopplerHz,

@@ -9,10 +9,13 @@ import { lastFree } from './quiet'
  * with each setting needs the fewest.
  */
 
-/** Latest whole instant to which one setting serves from `from`; Infinity when to the end; below `from` when none serves there. */
-export function reachFrom(c: Corridor, from: number): number {
+/**
+ * Latest whole instant to which one setting serves from `from`; Infinity when to the end; below `from` when none serves there.
+ * `fromKnot` is the first knot at or after `from`.
+ */
+export function reachFrom(c: Corridor, from: number, fromKnot = firstKnotAt(c, from)): number {
   const { timeMs, lowHz, highHz, grid } = c
-  let knot = firstKnotAt(c, from)
+  let knot = fromKnot
   let low = -Infinity
   let high = Infinity
   if (insidePiece(c, knot, from)) {
@@ -36,16 +39,22 @@ export function reachFrom(c: Corridor, from: number): number {
 
 /** Lowest and highest grid multiple that serve over all of [from, to]. */
 export function settingsOver(c: Corridor, from: number, to: number): readonly [number, number] {
+  const { timeMs, lowHz, highHz } = c
   let low = -Infinity
   let high = Infinity
-  const include = (lower: number, higher: number) => {
-    low = Math.max(low, lower)
-    high = Math.min(high, higher)
-  }
   let knot = firstKnotAt(c, from)
-  if (insidePiece(c, knot, from)) include(between(c, c.lowHz, knot, from), between(c, c.highHz, knot, from))
-  for (; knot < c.timeMs.length && c.timeMs[knot]! <= to; knot++) include(c.lowHz[knot]!, c.highHz[knot]!)
-  if (insidePiece(c, knot, to)) include(between(c, c.lowHz, knot, to), between(c, c.highHz, knot, to))
+  if (insidePiece(c, knot, from)) {
+    low = between(c, lowHz, knot, from)
+    high = between(c, highHz, knot, from)
+  }
+  for (; knot < timeMs.length && timeMs[knot]! <= to; knot++) {
+    if (lowHz[knot]! > low) low = lowHz[knot]!
+    if (highHz[knot]! < high) high = highHz[knot]!
+  }
+  if (insidePiece(c, knot, to)) {
+    low = Math.max(low, between(c, lowHz, knot, to))
+    high = Math.min(high, between(c, highHz, knot, to))
+  }
   return gridRange(c.grid, low, high)
 }
 
@@ -55,13 +64,15 @@ export function settingsOver(c: Corridor, from: number, to: number): readonly [n
  */
 export function furthestReach(c: Corridor, first: number, limit: number, quiet: QuietStretches = []): number[] | null {
   const starts = [first]
+  let knot = firstKnotAt(c, first)
   for (let from = first; ;) {
-    const reached = reachFrom(c, from)
+    const reached = reachFrom(c, from, knot)
     if (reached === Infinity) return starts
     const to = lastFree(quiet, reached)
     if (to <= from || starts.length >= limit) return null
     starts.push(to)
     from = to
+    while (c.timeMs[knot]! < from) knot++
   }
 }
 
