@@ -28,9 +28,11 @@ export function bestPath(curve: Curve, grid: Grid, limits: Limits, halfWidthHz: 
   if (rows === null) return null
   const serves = (step: number) => fewestRows(corridor(step), limits, rows) !== null
   const { swingHz, widestHz } = swingOf(curve, halfWidthHz)
-  // N rows cover a swing of 2·N·h at most; what the grid takes is half a step of it or so.
-  const fails = Math.max(0, Math.floor(STEPS * (swingHz / (2 * rows * widestHz)) * (1 - 1e-9)) - 1)
-  const step = leastStep(serves, fails, STEPS, fails + Math.ceil(STEPS * grid.stepHz / 2 / widestHz) + 2)
+  // N rows cover a swing of 2·N·h at most, and of 2·h beside N − 1 jumps; what the grid takes is half a step of it or so.
+  const leapsHz = rows === 1 ? 0 : (rows - 1) * limits.jump * grid.stepHz
+  const leastHz = Math.max(swingHz / (2 * rows), (swingHz - leapsHz) / 2, leastByDwell(curve, limits.dwell).leastHz)
+  const fails = Math.max(0, Math.floor(STEPS * leastHz / widestHz * (1 - 1e-9)) - 1)
+  const step = leastStep(serves, fails, STEPS, Math.ceil(STEPS * grid.stepHz / 2 / widestHz) + 2)
   return chosenAbove(step, STEPS, limits, rows, corridor)
 }
 
@@ -48,20 +50,28 @@ export function bestPath(curve: Curve, grid: Grid, limits: Limits, halfWidthHz: 
  */
 export function widenedPath(curve: Curve, grid: Grid, limits: Limits, halfWidthHz: readonly number[]): Path {
   let reused: Corridor | undefined
-  let enough = grid.stepHz + fastestHzPerMs(curve) * limits.dwell / 2
+  const { leastHz, fastestHz, from, to } = leastByDwell(curve, limits.dwell)
+  let enough = grid.stepHz + fastestHz
   const corridor = (step: number) => reused = corridorOf(curve, grid, j => Math.max(halfWidthHz[j]!, step / STEPS * enough), reused)
   const serves = (step: number) => fewestRows(corridor(step), limits) !== null
   while (!serves(STEPS)) enough *= 2
-  const step = leastStep(serves, 0, STEPS, Math.floor(0.75 * STEPS))
+  // Where the half-width itself leaves less than the dwell asks, x has to give it.
+  const isBound = halfWidthHz.every((h, j) => h < leastHz || curve.timeMs[j]! < from || curve.timeMs[j]! > to)
+  const fails = isBound ? Math.max(0, Math.floor(STEPS * leastHz / enough * (1 - 1e-9)) - 1) : 0
+  const step = leastStep(serves, fails, STEPS, Math.ceil(STEPS * grid.stepHz / 2 / enough) + 2)
   return chosenAbove(step, Infinity, limits, fewestRows(corridor(step), limits) ?? Infinity, corridor)
 }
 
-/** Least step above `fails` that serves, where `enough` does and so does what is above one that does; `guess` is tried first. */
-function leastStep(serves: (step: number) => boolean, fails: number, enough: number, guess: number): number {
-  let [low, high, next] = [fails, enough, guess]
+/** Least step above `fails` that serves, where `enough` does and so does what is above one that does; looked for at `stride` first, and on in longer ones. */
+function leastStep(serves: (step: number) => boolean, fails: number, enough: number, stride: number): number {
+  let low = fails
+  let high = enough
+  for (let reach = stride; low + reach < high; reach *= 4) {
+    if (serves(low + reach)) high = low + reach
+    else low += reach
+  }
   while (high - low > 1) {
-    const middle = next > low && next < high ? next : Math.floor((low + high) / 2)
-    next = NaN
+    const middle = Math.floor((low + high) / 2)
     if (serves(middle)) high = middle
     else low = middle
   }
@@ -90,10 +100,20 @@ function swingOf({ offsetHz, beginsPart }: Curve, halfWidthHz: readonly number[]
   return { swingHz, widestHz }
 }
 
-function fastestHzPerMs({ timeMs, offsetHz, beginsPart }: Curve): number {
+/**
+ * A half-width that every plan needs where the curve is fastest, since some row lasts a dwell there: half a dwell of the least
+ * rate within a dwell of it, `from` to `to`. 0 near a part's ends and where the curve turns.
+ */
+function leastByDwell({ timeMs, offsetHz, beginsPart }: Curve, dwell: number): { leastHz: number, fastestHz: number, from: number, to: number } {
+  const rateAt = (j: number) => j === 0 || beginsPart[j] || timeMs[j]! <= timeMs[j - 1]! ? 0 : (offsetHz[j]! - offsetHz[j - 1]!) / (timeMs[j]! - timeMs[j - 1]!)
   let fastest = 0
-  for (let j = 1; j < timeMs.length; j++) {
-    if (!beginsPart[j] && timeMs[j]! > timeMs[j - 1]!) fastest = Math.max(fastest, Math.abs(offsetHz[j]! - offsetHz[j - 1]!) / (timeMs[j]! - timeMs[j - 1]!))
-  }
-  return fastest
+  for (let j = 1; j < timeMs.length; j++) if (Math.abs(rateAt(j)) > Math.abs(rateAt(fastest))) fastest = j
+  const middle = fastest === 0 ? timeMs[0]! : (timeMs[fastest - 1]! + timeMs[fastest]!) / 2
+  const [from, to] = [middle - dwell, middle + dwell]
+  const fastestHz = Math.abs(rateAt(fastest)) * dwell / 2
+  if (timeMs[0]! > from || timeMs[timeMs.length - 1]! < to) return { leastHz: 0, fastestHz, from, to }
+  const sign = Math.sign(rateAt(fastest))
+  let least = Infinity
+  for (let j = 1; j < timeMs.length; j++) if (timeMs[j]! > from && timeMs[j - 1]! < to) least = Math.min(least, sign * rateAt(j))
+  return { leastHz: Math.max(0, least) * dwell / 2, fastestHz, from, to }
 }
