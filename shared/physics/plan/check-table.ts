@@ -2,9 +2,11 @@ import { allowanceOf } from '../link/allowance'
 import { lossDb } from '../link/loss'
 import { receivedOverTransmitted } from '../doppler/ratio'
 import { lookAt } from '../orbit/look'
-import type { BudgetModel, CheckedRetune, Hz, LinkModel, Propagator, RadioModel, RetuneRow, Site, Span, TableCheck, UtcMs, Verdict } from '../types'
+import type { BudgetModel, CheckedRetune, Hz, LinkModel, Propagator, RadioModel, RetuneRow, Site, Span, TableCheck, UplinkInUse, UtcMs, Verdict } from '../types'
 import type { CheckCurve } from './check-curve'
 import { checkCurveOf, directOffsetHz } from './check-curve'
+import type { Echo } from './check-echo'
+import { echoesOf } from './check-echo'
 import type { AppliedRow, Fault } from './check-rows'
 import type { Residual, SeenExtremes } from './check-residual'
 import { residualOf } from './check-residual'
@@ -24,6 +26,8 @@ export interface CheckQuery {
   readonly rows: readonly RetuneRow[]
   /** No row may take effect inside. */
   readonly quiet?: readonly Span[]
+  /** Of a coherent link with a pre-compensated uplink: the uplink's own table, whose steps come back. Left out or null: none is known, and nothing is added. */
+  readonly uplink?: UplinkInUse | null
 }
 
 /** Margin of a table without any residual. */
@@ -34,7 +38,7 @@ export const MARGIN_CAP = 1e6
  * interpolates in its own way, applies the rows as the radio does (one latency after their instant, through its converter, with their
  * slopes) and asks both sides of every retune, every extreme between, and every second.
  *
- * Budgeted residual = |needed − set| + timing + UT1 + k·√(orbit² + oscillator²), as in the error budget. Margin = allowance / worst
+ * Budgeted residual = |needed − set|, an uplink's returned steps with it, + timing + UT1 + k·√(orbit² + oscillator²), as in the error budget. Margin = allowance / worst
  * budgeted residual; holds from 1.25, tight from 1, breaks below, and breaks with any fault. Before the first row the radio is
  * taken to stand on the carrier. A row that serves no workable instant has residual 0.
  *
@@ -61,10 +65,13 @@ export function checkTable(query: CheckQuery): TableCheck {
 
   const curves = parts.map(part => checkCurveOf({ ...query, ut1MinusUtcS: budget.ut1MinusUtcS, span: part }))
   for (const curve of curves) {
-    const drift = driftFault(curve, link, applied)
+    const echoes = echoesOf({ ...query, ut1MinusUtcS: budget.ut1MinusUtcS }, curve)
+    const pieces = piecesOf(curve.span, applied).flatMap(piece => piecesByEcho(piece, echoes))
+    const residuals = pieces.map(piece => residualOf(curve, applied[piece.row], query, piece.returned))
+    const drift = driftFault(link, pieces, residuals)
     if (drift) faults.push(drift)
-    for (const piece of piecesOf(curve.span, applied)) {
-      const residual = residualOf(curve, applied[piece.row], query)
+    for (const [i, piece] of pieces.entries()) {
+      const residual = residuals[i]!
       scan(piece.fromMs, piece.toMs, residual.budgetedHz, residual.rateHzPerS)
       const { seen } = residual
       if (worst === null || seen.worstHz > worst.seen.worstHz) worst = residual
@@ -95,8 +102,19 @@ function verdictOf(margin: number, faults: readonly Fault[]): Verdict {
   return margin >= 1.25 ? 'holds' : 'tight'
 }
 
+interface Piece extends Span { readonly row: number, readonly returned: Echo['steps'] }
+
+/** A piece cut where another row of the uplink begins to come back. */
+function piecesByEcho(piece: Omit<Piece, 'returned'>, echoes: readonly Echo[]): Piece[] {
+  return echoes.flatMap((echo) => {
+    const fromMs = Math.max(piece.fromMs, echo.fromMs)
+    const toMs = Math.min(piece.toMs, echo.toMs)
+    return fromMs < toMs || (fromMs === toMs && piece.fromMs === piece.toMs) ? [{ row: piece.row, fromMs, toMs, returned: echo.steps }] : []
+  })
+}
+
 /** The part cut at every row's effect; row −1 before the first. Both rows are asked at a retune, so pieces share their ends. */
-function piecesOf(part: Span, applied: readonly AppliedRow[]): { row: number, fromMs: UtcMs, toMs: UtcMs }[] {
+function piecesOf(part: Span, applied: readonly AppliedRow[]): Omit<Piece, 'returned'>[] {
   const pieces = []
   for (let row = -1; row < applied.length; row++) {
     const fromMs = Math.max(part.fromMs, row < 0 ? -Infinity : applied[row]!.effectMs)
@@ -128,12 +146,12 @@ function addExcess(excess: { fromMs: UtcMs, toMs: UtcMs }[], { fromMs, toMs }: S
 }
 
 /** Largest |ḟ − slope| over a part, both rows asked at a retune, where it is beyond what the loop follows. */
-function driftFault(curve: CheckCurve, { driftLimitHzPerS }: LinkModel, applied: readonly AppliedRow[]): Fault | null {
+function driftFault({ driftLimitHzPerS }: LinkModel, pieces: readonly Piece[], residuals: readonly Residual[]): Fault | null {
   if (driftLimitHzPerS === null) return null
-  let [worst, worstMs] = [0, curve.span.fromMs]
-  for (const { row, fromMs, toMs } of piecesOf(curve.span, applied)) {
-    const slope = applied[row]?.skySlopeHzPerS ?? 0
-    scan(fromMs, toMs, utcMs => Math.abs(curve.rateHzPerS(utcMs) - slope), null, (atMs, drift) => {
+  let [worst, worstMs] = [0, pieces[0]!.fromMs]
+  for (const [i, { fromMs, toMs }] of pieces.entries()) {
+    const { rateHzPerS } = residuals[i]!
+    scan(fromMs, toMs, utcMs => Math.abs(rateHzPerS(utcMs)), null, (atMs, drift) => {
       if (drift > worst) [worst, worstMs] = [drift, atMs]
     })
   }

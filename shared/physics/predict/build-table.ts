@@ -1,7 +1,7 @@
 import type { NeededFrequency } from '../doppler/needed'
 import { createNeededFrequency } from '../doppler/needed'
 import { createSeenFrequency, seenPartialsInto } from '../doppler/seen-ratio'
-import { withOscillatorsOf } from '../doppler/two-way'
+import { returnedStepsHz, withOscillatorsOf } from '../doppler/two-way'
 import { createSiteTrack } from '../orbit/site-track'
 import type { SiteTrack } from '../orbit/site-track'
 import { workablePartsForLink } from '../orbit/passes'
@@ -10,7 +10,7 @@ import { uncertaintyBy } from '../plan/budget'
 import { checkTable } from '../plan/check-table'
 import type { RetuneProblem } from '../plan/plan-retunes'
 import { planRetunes } from '../plan/plan-retunes'
-import type { BudgetModel, Ephemeris, Hz, LinkModel, PredictedPass, Propagator, RadioModel, RetuneRow, Site, Span, TableCheck, UtcMs } from '../types'
+import type { BudgetModel, Ephemeris, Hz, LinkModel, PredictedPass, Propagator, RadioModel, RetuneRow, Site, Span, TableCheck, UplinkInUse, UtcMs } from '../types'
 
 export interface TableQuery {
   readonly propagator: Propagator
@@ -32,6 +32,11 @@ export interface TableQuery {
   readonly firstRowLeadMs?: number
   /** No row takes effect inside. */
   readonly quiet?: readonly Span[]
+  /**
+   * Of a coherent link with a pre-compensated uplink: the uplink's own table at this station and pass. The plan leaves room for the worst
+   * that its steps come back as; the check has them as they come. Left out or null: none is known, and nothing is added.
+   */
+  readonly uplink?: UplinkInUse | null
 }
 
 export interface BuiltTable {
@@ -73,7 +78,7 @@ export function buildTable(query: TableQuery): BuiltTable | NotWorkable {
     // Exact: planned rows take effect one latency after a whole millisecond.
     atMs: Math.round(effectMs - radio.latencyMs), frequencyHz, slopeHzPerS,
   }))
-  return { kind: 'table', rows, check: checkTable({ propagator, site, link, radio, budget, parts, rows, quiet }), parts, kappa: plan.kappa }
+  return { kind: 'table', rows, check: checkTable({ propagator, site, link, radio, budget, parts, rows, quiet, uplink: query.uplink ?? null }), parts, kappa: plan.kappa }
 }
 
 /** What a table is planned along. Two legs, or a carrier that is not what the uplink makes, are asked of the ephemeris itself. */
@@ -146,7 +151,25 @@ export function exactUncertainty(track: SiteTrack, link: Pick<LinkModel, 'direct
 const UNCERTAINTY_ROOM = 1.003
 
 /** Uncertainty to plan with: no less than the checker will find. */
-function uncertaintyOf(track: SiteTrack, { link, budget, radio }: TableQuery): (utcMs: UtcMs) => Hz {
+function uncertaintyOf(track: SiteTrack, { link, budget, radio, uplink }: TableQuery): (utcMs: UtcMs) => Hz {
   const exact = exactUncertainty(track, link, budget, radio)
-  return utcMs => UNCERTAINTY_ROOM * exact(utcMs)
+  const returnedHz = worstReturnedHz(link, uplink)
+  return utcMs => UNCERTAINTY_ROOM * exact(utcMs) + returnedHz
+}
+
+/**
+ * The most that an uplink's steps may come back as, either way, Hz; 0 where nothing of them is known or nothing comes back.
+ *
+ * @card Largest returned steps: what a plan leaves room for on a coherent downlink.
+ * @formula N/D·max |r_up| over the uplink’s rows
+ * @source mechanics; CCSDS 401.0-B
+ * @units Hz → Hz
+ * @frame none
+ * @range pre-compensated uplinks whose table is known
+ * @tolerance never less than what the checker finds (predict/returned-steps.test.ts)
+ */
+export function worstReturnedHz({ turnaround }: Pick<LinkModel, 'turnaround'>, uplink: UplinkInUse | null | undefined): Hz {
+  if (!uplink || !turnaround?.uplinkPrecompensated) return 0
+  return uplink.retunes.reduce((worst, { residualMinHz, residualMaxHz }) =>
+    Math.max(worst, Math.abs(returnedStepsHz(residualMinHz, turnaround)), Math.abs(returnedStepsHz(residualMaxHz, turnaround))), 0)
 }
