@@ -10,7 +10,7 @@ import { readSettings } from '../settings/read-settings'
 import { ut1InForce } from '../settings/ut1-in-force'
 import { learnedAccuracy } from './learned-accuracy'
 import type { BudgetParameters, LinkRow, RadioRow, SpacecraftRow, StationRow } from './models'
-import { budgetParametersOf, linkMinElevationRad, linkModelOf, radioFor, radioModelOf, siteOf } from './models'
+import { budgetParametersOf, isUplinkOf, linkMinElevationRad, linkModelOf, radioFor, radioModelOf, siteOf } from './models'
 
 /** AOS is uncertain by a second or two; a newer set may bring it forward by some more. */
 const LARGEST_LEAD_MS = 30_000
@@ -69,7 +69,7 @@ export async function loadInputs({ db, now }: Pick<Deps, 'db' | 'now'>, { spacec
     else if (set && learned && radio) served.push(serve({ craft, station, link, radio, setupS, elements: set.elements, settings, learned, ut1, site }))
     else unserved.set(link.id, `No radio at ${station.name} covers this link any more.`)
   }
-  return { craft, station, settings, set: set ?? null, stopped: whyStopped(craft, station, set !== undefined), site, ut1, served, unserved }
+  return { craft, station, settings, set: set ?? null, stopped: whyStopped(craft, station, set !== undefined), site, ut1, served: served.map(link => withUplink(link, served)), unserved }
 }
 
 function whyStopped(craft: SpacecraftRow, station: StationRow, hasSet: boolean): string | null {
@@ -89,6 +89,12 @@ function serve({ craft, station, link, radio, setupS, elements, settings, learne
   const firstRowLeadMs = Math.min(LARGEST_LEAD_MS, setupS * 1000)
   const inputs = { elements, site, model, minElevationRad, radioId: radio.id, radioModel, budget, firstRowLeadMs }
   return { link, radio, model, minElevationRad, radioModel, budget, firstRowLeadMs, digest: inputsDigest(inputs) }
+}
+
+/** The table of a coherent downlink is made of its uplink's, too; nothing changes for other links. */
+function withUplink(link: ServedLink, served: readonly ServedLink[]): ServedLink {
+  const uplink = served.find(other => isUplinkOf(other.model, link.model))
+  return uplink ? { ...link, digest: createHash('sha256').update(`${link.digest} ${uplink.digest}`).digest('hex') } : link
 }
 
 /** Names of objects and the like change nothing in a prediction; raise `version` when the computing itself changes. */
