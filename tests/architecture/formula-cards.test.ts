@@ -23,6 +23,7 @@ const helpers: Record<string, string> = {
   'plan/holds.ts': 'step of planRetunes\' search, held by exhaustive search',
   'plan/hold-paths.ts': 'step of planRetunes\' search, held by exhaustive search',
   'plan/choose-path.ts': 'step of planRetunes\' search, held by exhaustive search',
+  'plan/line-reach.ts startChoices': 'where a search lets rows begin, held by exhaustive search',
   'plan/reach.ts': 'step of planRetunes\' search, held by exhaustive search',
   'plan/fewest-rows.ts': 'step of planRetunes\' search, held by exhaustive search',
 }
