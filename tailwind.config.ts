@@ -12,7 +12,8 @@ export default {
     },
     fontSize: { small: token('text-small'), body: token('text-body'), large: token('text-large') },
     fontFamily: { sans: ['Inter', 'system-ui', 'sans-serif'] },
-    extend: { maxWidth: { page: '84rem', form: '40rem' } },
+    // What can be hit is 24 pixels high at least (WCAG 2.2, 2.5.8), whatever the size of type.
+    extend: { minHeight: { target: '24px' }, minWidth: { target: '24px' }, maxWidth: { page: '84rem', form: '40rem' } },
   },
   corePlugins: { preflight: true },
 } satisfies Config

@@ -16,7 +16,7 @@ export function eveningInstant({ zone, publishAt }: EveningRule, year: number, m
   return Math.min(...local.getPossibleOffsets().map(possible => possible.toMillis()))
 }
 
-/** Every evening publication with fromMs ≤ instant < toMs, in order. */
+/** Every evening publication with fromMs ≤ instant < toMs, in order. Two local days that share an instant, as where a whole day is skipped, count once. */
 export function eveningInstants(rule: EveningRule, fromMs: number, toMs: number): number[] {
   const instants: number[] = []
   const first = DateTime.fromMillis(fromMs, { zone: rule.zone }).startOf('day').minus({ days: 1 })
@@ -24,7 +24,7 @@ export function eveningInstants(rule: EveningRule, fromMs: number, toMs: number)
     const { year, month, day } = first.plus({ days })
     const instant = eveningInstant(rule, year, month, day)
     if (instant >= toMs) return instants
-    if (instant >= fromMs) instants.push(instant)
+    if (instant >= fromMs && instant !== instants.at(-1)) instants.push(instant)
   }
 }
 
@@ -36,6 +36,14 @@ export function eveningBefore(rule: EveningRule, aosMs: number): number {
     const instant = eveningInstant(rule, year, month, date)
     if (instant < aosMs) return instant
   }
+}
+
+/** A link's own times at a station; what is null is the station's. */
+export interface OwnTimes { readonly publishAt: string | null, readonly leadMinutes: number | null }
+
+/** The times that a link is published at: its own, and the station's where it has none. */
+export function timesOf(station: EveningRule & { readonly publishLeadMinutes: number }, own: OwnTimes | null): EveningRule & { leadMinutes: number } {
+  return { zone: station.zone, publishAt: own?.publishAt ?? station.publishAt, leadMinutes: own?.leadMinutes ?? station.publishLeadMinutes }
 }
 
 /**

@@ -7,5 +7,6 @@ export const chartColours = {
   grid: 'var(--chart-grid)',
   ink: 'var(--ink)',
   outside: 'var(--sunk)',
+  quiet: 'var(--edge)',
   workable: 'var(--accent-wash)',
 } as const

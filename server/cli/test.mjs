@@ -15,6 +15,8 @@ import { explain, step } from './lib/say.mjs'
 import { countResults } from './lib/test-results.mjs'
 
 const waiting = () => step('Waiting for another command in this folder')
+/** The long tests alone, without lint and types: `npm run endurance`. */
+const enduranceOnly = process.env.NULLBEAT_ENDURANCE === '1'
 let passed = 0
 let failed = 0
 
@@ -69,6 +71,7 @@ async function main() {
   // Once the types are there, the build works in a folder of its own and leaves them to the two checks.
   await nuxt('Preparing the types', ['prepare'])
   await Promise.all([build(), (async () => {
+    if (enduranceOnly) return
     await check('Lint', ['eslint/bin/eslint.js', '.'])
     await check('Types', ['nuxt/bin/nuxt.mjs', 'typecheck'])
   })()])

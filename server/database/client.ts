@@ -1,3 +1,4 @@
+import type { Socket } from 'node:net'
 import { sql } from 'drizzle-orm'
 import type { NodePgDatabase } from 'drizzle-orm/node-postgres'
 import { drizzle } from 'drizzle-orm/node-postgres'
@@ -9,20 +10,40 @@ export type Db = Pick<NodePgDatabase<typeof schema>, 'select' | 'selectDistinct'
 
 export interface Database { db: Db, pool: pg.Pool, close(): Promise<void> }
 
+/** Leaves a request that a frozen database keeps waiting time to be answered within 5 s. */
+const statementLimitMs = 4200
+
 /** Requests give up within 5 s when the database is frozen; the pool never grows past its size. */
 export function openDatabase(url: string, options: { max?: number } = {}): Database {
   const pool = new pg.Pool({
     connectionString: url,
     max: options.max ?? 12,
     connectionTimeoutMillis: 3000,
-    query_timeout: 5000,
-    statement_timeout: 5000,
+    query_timeout: statementLimitMs,
+    statement_timeout: statementLimitMs,
     idle_in_transaction_session_timeout: 30_000,
     application_name: 'nullbeat',
   })
   // A dropped idle connection is replaced at the next request; without a listener it would end the process.
   pool.on('error', () => {})
+  pool.on('connect', cutWhenLate)
   return { db: drizzle(pool, { schema }), pool, close: () => pool.end() }
+}
+
+/**
+ * A statement that was not answered in time leaves its connection useless: it is cut at once, or the transaction’s
+ * ROLLBACK would wait as long again.
+ */
+function cutWhenLate(client: pg.PoolClient): void {
+  const query = client.query.bind(client) as (...args: unknown[]) => unknown
+  const cut = (error: Error) => {
+    if (error.message === 'Query read timeout') (client as unknown as { connection: { stream: Socket } }).connection.stream.destroy()
+    throw error
+  }
+  Object.assign(client, { query: (...args: unknown[]) => {
+    const result = query(...args)
+    return result instanceof Promise ? result.catch(cut) : result
+  } })
 }
 
 let shared: Database | null = null
@@ -38,13 +59,17 @@ export function useDatabase(): Database {
 }
 
 /**
- * The one clock that decides what is due: the database's. Tests may shift it, by a row that only a server
- * started with NULLBEAT_TEST=1 looks at.
+ * The one clock that decides what is due, as a column: the database's, UTC milliseconds. Tests may shift it, by a row that
+ * only a server started with NULLBEAT_TEST=1 looks at.
  */
-export async function databaseNow(db: Db): Promise<Date> {
+export function clockMs() {
   const shift = process.env.NULLBEAT_TEST === '1'
     ? sql`coalesce((SELECT (value #>> '{}')::double precision FROM settings WHERE key = 'testClockShiftMs'), 0)`
     : sql`0::double precision`
-  const result = await db.execute<{ ms: string }>(sql`SELECT floor(extract(epoch FROM clock_timestamp()) * 1000 + ${shift}) AS ms`)
+  return sql<string>`floor(extract(epoch FROM clock_timestamp()) * 1000 + ${shift})`
+}
+
+export async function databaseNow(db: Db): Promise<Date> {
+  const result = await db.execute<{ ms: string }>(sql`SELECT ${clockMs()} AS ms`)
   return new Date(Number(result.rows[0]!.ms))
 }

@@ -44,7 +44,7 @@ export function isUnavailable(error: unknown): boolean {
   for (let cause = error; cause instanceof Error; cause = cause.cause) {
     const code = (cause as { code?: unknown }).code
     if (typeof code === 'string' && (/^(08|57P0|53|40)/.test(code) || code === '57014' || code === 'ECONNREFUSED' || code === 'ECONNRESET' || code === 'EPIPE' || code === 'ETIMEDOUT')) return true
-    if (/timeout exceeded when trying to connect|Connection terminated|Query read timeout/i.test(cause.message)) return true
+    if (/timeout exceeded when trying to connect|Connection terminated|Query read timeout|connection error and is not queryable|Client was closed and is not queryable/i.test(cause.message)) return true
   }
   return false
 }

@@ -7,23 +7,25 @@ import { findKey } from '~~/server/domain/auth/find-key'
 import { findSession } from '~~/server/domain/auth/find-session'
 import { DomainError } from '~~/server/domain/errors'
 import type { Db } from '~~/server/database/client'
+import { databaseNow } from '~~/server/database/client'
 import { requireOwnOrigin } from './origin'
 import { readSessionHash } from './session'
 
 const changing = new Set(['POST', 'PUT', 'PATCH', 'DELETE'])
 
-/** Who asks: a key, a signed-in person, or nobody. The tables are asked at every request. */
-export async function authenticate(event: H3Event, db: Db, now: Date): Promise<Actor | null> {
+/** Who asks: a key, a signed-in person, or nobody; and what the clock says. The tables are asked at every request. */
+export async function authenticate(event: H3Event, db: Db): Promise<{ actor: Actor | null, now: Date }> {
   const header = getRequestHeader(event, 'authorization')
   if (header !== undefined) {
     const bearer = /^Bearer ([\w-]{20,200})$/i.exec(header)?.[1]
-    const key = bearer ? await findKey({ db, now }, bearer) : null
-    if (!key) throw new DomainError('not-signed-in', 'This key is not known, or it has been revoked.')
-    return key
+    const found = bearer ? await findKey({ db }, bearer) : null
+    if (!found) throw new DomainError('not-signed-in', 'This key is not known, or it has been revoked.')
+    return found
   }
   if (changing.has(event.method)) requireOwnOrigin(event)
   const sessionHash = await readSessionHash(event)
-  return sessionHash ? await findSession({ db, now }, sessionHash) : null
+  const now = await databaseNow(db)
+  return { actor: sessionHash ? await findSession({ db, now }, sessionHash) : null, now }
 }
 
 /** Holds the actor against what the route states. Nothing is allowed that is not written there. */
@@ -37,6 +39,7 @@ export function authorise(access: Access, actor: Actor | null): void {
 function allowed(access: Exclude<Access, { kind: 'public' }>, actor: Actor): boolean {
   if (actor.kind === 'key') {
     if (access.kind === 'station-key') return actor.scope === 'station' && actor.stationId !== null
+    if (access.kind === 'metrics-key') return actor.scope === 'metrics'
     return access.kind === 'permission' && access.keys.includes(actor.scope)
   }
   if (actor.kind !== 'person') return false

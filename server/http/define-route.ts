@@ -36,12 +36,17 @@ export function defineRoute<R extends RouteName>(name: R, act: (context: RouteCo
   const spec: RouteSpec = routes[name]
   return defineEventHandler(async (event) => {
     try {
+      event.context.routeName = name
       setResponseHeader(event, 'cache-control', 'private, no-store')
       // Health must answer without a database.
-      if (spec.access.kind === 'public' && event.method === 'GET') return await act({ event } as RouteContext<R>)
+      if (spec.access.kind === 'public' && event.method === 'GET' && !spec.params) return await act({ event } as RouteContext<R>)
       const { db } = useDatabase()
-      const now = await databaseNow(db)
-      const actor = await authenticate(event, db, now)
+      // Who holds a secret address needs neither session nor key, and is not refused for a wrong one.
+      if (spec.access.kind === 'public' && event.method === 'GET') {
+        const params = parse(spec.params!, getRouterParams(event), 'not-found')
+        return await act({ event, db, now: await databaseNow(db), actor: null, params } as RouteContext<R>)
+      }
+      const { actor, now } = await authenticate(event, db)
       authorise(spec.access, actor)
       const params = spec.params && parse(spec.params, getRouterParams(event), 'not-found')
       const query = spec.query && parse(spec.query, getQuery(event), 'not-valid')

@@ -22,13 +22,14 @@ export async function serveTable({ event, db, now, actor, params }: Request): Pr
   const tag = entityTag(table.digest, notation)
   setResponseHeaders(event, { 'etag': tag, 'table-revision': String(table.revision), 'table-digest': `sha-256=${table.digest}`, 'table-signature': table.signature })
   const match = matchTag(getRequestHeader(event, 'if-none-match'), tag)
+  const text = match === 'none' ? await writeFeedTable({ db }, table, notation) : null
   if (match !== 'any' && event.node.req.method !== 'HEAD' && !table.isCollected) collectWhenSent(event, { db, now, actor }, table)
-  if (match !== 'none') {
+  if (text === null) {
     setResponseStatus(event, 304)
     await send(event, null)
     return
   }
-  await send(event, writeFeedTable(table, notation), `${notations[notation]}; charset=utf-8`)
+  await send(event, text, `${notations[notation]}; charset=utf-8`)
 }
 
 function collectWhenSent(event: H3Event, deps: Deps, table: FeedTable): void {

@@ -22,5 +22,8 @@ export function bootStep(name: string, step: () => Promise<void>): void {
   })
 }
 
+/** A process that only works jobs: the heavy ones, so that servers keep answering. */
+export const isWorker = () => process.env.NULLBEAT_ROLE === 'worker'
+
 /** Whether this process serves: not while pages are rendered ahead at build time, and not without a database. */
 export const serves = () => !import.meta.prerender && !!process.env.DATABASE_URL

@@ -7,6 +7,9 @@ export interface Jobs {
   /** Recompute passes and tables of one spacecraft at one station. */
   'predict': { spacecraftId: string, stationId: string, reason: string }
   'mail': { mailId: string }
+  'web-hook': { deliveryId: string }
+  /** Let the rule of one spacecraft judge what waits for it. */
+  'auto-use': { spacecraftId: string }
 }
 export type JobName = keyof Jobs
 
@@ -42,21 +45,34 @@ function wakeSoon(name: JobName): void {
   }, WAKE_AFTER_MS).unref()
 }
 
+/** Statements of bounded size: a fleet's pairs are tens of thousands. */
+const jobsAtOnce = 1000
+
 /**
  * One waiting job for each key. One that waits already takes the newer data where that is as urgent, and moves up where
  * it is more so. It stays locked until the caller's transaction ends: taken before that, it would run without what the
- * transaction changes, and nothing would be left to run afterwards.
+ * transaction changes, and nothing would be left to run afterwards. Give the keys in one order everywhere, so that two
+ * callers wait for each other instead of blocking each other.
  */
-export async function enqueueOnce<N extends JobName>(db: Db, name: N, data: Jobs[N], { key, priority }: { key: string, priority: number }): Promise<void> {
-  for (let tries = 0; tries < mostTries; tries++) {
-    if (await enqueue(db, name, data, { singletonKey: key, priority }) !== null) return
-    const { rows } = await db.execute(sql`
-      UPDATE pgboss.job SET data = CASE WHEN priority <= ${priority} THEN ${JSON.stringify(data)}::jsonb ELSE data END, priority = greatest(priority, ${priority})
-      WHERE name = ${name} AND singleton_key = ${key} AND state = 'created' RETURNING id`)
-    // None: it has just been taken, so that there is room for another.
-    if (rows.length > 0) return
+export async function enqueueOnce<N extends JobName>(db: Db, name: N, jobs: readonly { key: string, data: Jobs[N] }[], { priority }: { priority: number }): Promise<void> {
+  for (let start = 0; start < jobs.length; start += jobsAtOnce) await enqueueSome(db, name, jobs.slice(start, start + jobsAtOnce), priority)
+  if (jobs.length > 0) wakeSoon(name)
+}
+
+async function enqueueSome<N extends JobName>(db: Db, name: N, jobs: readonly { key: string, data: Jobs[N] }[], priority: number): Promise<void> {
+  let missing = jobs
+  for (let tries = 0; tries < mostTries && missing.length > 0; tries++) {
+    await sender.insert(missing.map(({ key, data }) => ({ name, data, singletonKey: key, priority })), { db: { executeSql: (text, values) => executeIn(db, text, values) } })
+    const { rows } = await db.execute<{ key: string }>(sql`
+      WITH wanted AS (SELECT x.key, x.data FROM jsonb_to_recordset(${JSON.stringify(missing)}::jsonb) AS x(key text, data jsonb)),
+      held AS (SELECT j.id, w.data FROM pgboss.job j JOIN wanted w ON w.key = j.singleton_key WHERE j.name = ${name} AND j.state = 'created' ORDER BY j.singleton_key FOR UPDATE OF j)
+      UPDATE pgboss.job j SET data = CASE WHEN j.priority <= ${priority} THEN held.data ELSE j.data END, priority = greatest(j.priority, ${priority})
+      FROM held WHERE j.id = held.id AND j.name = ${name} RETURNING j.singleton_key AS key`)
+    // One that is not among them has just been taken, so that there is room for another.
+    const found = new Set(rows.map(row => row.key))
+    missing = missing.filter(({ key }) => !found.has(key))
   }
-  throw new Error(`The queue ${name} takes no job: is it made? The migration makes it.`)
+  if (missing.length > 0) throw new Error(`The queue ${name} takes no job: is it made? The migration makes it.`)
 }
 
 /** The queue package hands over text with numbered places; the transaction's driver takes chunks. */

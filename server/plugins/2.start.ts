@@ -8,11 +8,11 @@ import { resumeUploads } from '~~/server/domain/elements/resume-uploads'
 import { lifecycle } from '~~/server/domain/schedule/lifecycle'
 import { describeError } from '~~/server/http/describe-error'
 import { log } from '~~/server/http/log'
-import { bootStep, serves } from '~~/server/jobs/boot'
+import { bootStep, isWorker, serves } from '~~/server/jobs/boot'
 
 /** An empty installation hands out the address of its first administrator; the demo loads its operator instead. */
 export default defineNitroPlugin(() => {
-  if (!serves()) return
+  if (!serves() || isWorker()) return
   const demo = process.env.NULLBEAT_DEMO === '1'
   if (demo) lifecycle.demo = 'loading'
   bootStep('start', async () => {

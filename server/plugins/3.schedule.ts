@@ -6,14 +6,13 @@ import { lifecycle } from '~~/server/domain/schedule/lifecycle'
 import { wake } from '~~/server/domain/schedule/wake'
 import { describeError } from '~~/server/http/describe-error'
 import { log } from '~~/server/http/log'
-import { bootStep, serves } from '~~/server/jobs/boot'
+import { bootStep, isWorker, serves } from '~~/server/jobs/boot'
 
 const alertsEveryMs = 60_000
 
 /** Wakes the schedule every five seconds. What is due is rows compared with the database's clock: a wake lost is made up by the next. */
 export default defineNitroPlugin((nitroApp) => {
-  if (!serves()) return
-  let busy: Promise<void> | null = null
+  if (!serves() || isWorker()) return
   let alertsAt = 0
 
   const onError = (part: string, error: unknown) => {
@@ -36,8 +35,8 @@ export default defineNitroPlugin((nitroApp) => {
     lifecycle.schedulerBeatAt = Date.now()
   }
   const wakeUp = () => {
-    if (lifecycle.stopping || busy) return
-    busy = beat().finally(() => { busy = null })
+    if (lifecycle.stopping || lifecycle.wake) return
+    lifecycle.wake = beat().finally(() => { lifecycle.wake = null })
   }
 
   bootStep('schedule', async () => {

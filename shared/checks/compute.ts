@@ -1,8 +1,11 @@
+import { manoeuvreSpreadM } from '../physics/accuracy/manoeuvre-spread'
 import { alongTrackSigmaS, perigeeHeightKm } from '../physics/accuracy/prior'
-import { createNeededFrequency, dopplerHz, statesOf, symbolClockPpmAt } from '../physics/doppler/needed'
+import { createNeededFrequency, dopplerHz, type LinkPath, statesOf, symbolClockPpmAt } from '../physics/doppler/needed'
 import { neededOverCarrierMinusOne, receivedOverTransmitted } from '../physics/doppler/ratio'
+import { turnedAroundHz } from '../physics/doppler/two-way'
 import { allowanceOf } from '../physics/link/allowance'
 import { requiredEbN0Db } from '../physics/link/error-rate'
+import { loopDriftLimitHzPerS, loopPhaseErrorRad } from '../physics/link/loop'
 import { lossDb } from '../physics/link/loss'
 import { interSymbolInterferenceDb } from '../physics/link/root-raised-cosine'
 import { partialAlongTrackHzPerS, partialUt1HzPerS } from '../physics/orbit/along-track'
@@ -10,10 +13,11 @@ import { createEphemeris } from '../physics/orbit/ephemeris'
 import { gmstRad, sitePosition, siteStateTeme } from '../physics/orbit/frames'
 import { lookAt } from '../physics/orbit/look'
 import { findPasses } from '../physics/orbit/passes'
+import { trackDifference } from '../physics/orbit/track-difference'
 import { budgetAt, uncertaintyHz } from '../physics/plan/budget'
-import type { Detector, Direction, LinkModel } from '../physics/types'
-import { closedFormDeviationPercent, planOf } from './compute-longer'
-import { circular, DAY_MS, invented500, northern, object00005, overhead, pole, propagatorFor, RADIUS_500_M, siteAt, southern, T0, toHorizonS } from './examples'
+import type { Detector, Direction, LinkModel, Turnaround } from '../physics/types'
+import { burnt, cadenceMissHz, closedFormDeviationPercent, planOf } from './compute-longer'
+import { circular, DAY_MS, invented500, northern, object00005, overhead, pole, propagatorFor, RADIUS_500_M, siteAt, southern, T0, TILT, toHorizonS } from './examples'
 import type { outsideValues } from './values'
 
 export type CheckId = typeof outsideValues[number]['id']
@@ -26,7 +30,12 @@ const plain = {
   driftLimitHzPerS: null, jumpLimitHz: null, limitHz: null, errorRate: 1e-5, esN0Db: 20, bandwidthHz: null, spreadingFactor: null, bandLowHz: null, bandHighHz: null,
 }
 const link = (detector: Detector, more: Partial<LinkModel> = {}): LinkModel => ({ ...plain, detector, ...more })
+const sBand: Turnaround = { numerator: 240, denominator: 221, uplinkPrecompensated: false, uplinkHz: null }
+const loopOf = (noiseBandwidthHz: number) => ({ noiseBandwidthHz, damping: 0.707 })
 const loss = (model: LinkModel, epsilon: number): number => lossDb(model, epsilon * model.symbolRateHz) ?? NaN
+
+/** An orbit at 30° from its node against another, tilted and ahead by so many degrees. */
+const offTrack = (tiltDeg: number, aheadDeg: number) => trackDifference(circular(TILT, 0, 30 / DEG)(T0), circular(TILT + tiltDeg / DEG, 0, (30 + aheadDeg) / DEG)(T0))
 
 function lookOfInvented() {
   const utcMs = DAY_MS + 890_000
@@ -42,11 +51,12 @@ function offsetOfInvented(direction: Direction, carrierHz: number, seconds: numb
   return carrierHz * (direction === 'downlink' ? receivedOverTransmitted(path, 'downlink', utcMs).ratioMinusOne : neededOverCarrierMinusOne(path, 'uplink', utcMs))
 }
 
-function uplinkAlongTheAxis(speedMps: number): number {
+/** Along the Earth's axis, over a station that stands still. */
+function offsetOverThePole(speedMps: number, link: Pick<LinkPath, 'direction' | 'carrierHz' | 'turnaround'>): number {
   const poleM = siteStateTeme(pole, T0, 0).positionM[2]
   return createNeededFrequency({
     stateAt: utcMs => ({ positionM: [0, 0, poleM + 1e6 + speedMps * (utcMs - T0) / 1000], velocityMps: [0, 0, speedMps] }),
-    site: pole, ut1MinusUtcS: 0, direction: 'uplink', carrierHz: 437e6,
+    site: pole, ut1MinusUtcS: 0, ...link,
   }).dopplerHz(T0)
 }
 
@@ -96,6 +106,7 @@ export const computations: Record<CheckId, (at: number) => number> = {
     const [before, after] = [place(0), place(seconds)]
     return Math.hypot(before[0] - after[0], before[1] - after[1])
   },
+  'burn-orbit': burnt,
   'angles': which => (which === 0 ? lookOfInvented().azimuthRad : lookOfInvented().elevationRad) * DEG,
   'range': () => lookOfInvented().rangeM,
   'range-rate': () => lookOfInvented().rangeRateMps,
@@ -105,10 +116,12 @@ export const computations: Record<CheckId, (at: number) => number> = {
   'received-x': seconds => offsetOfInvented('downlink', 8200e6, seconds),
   'transmit-uhf': seconds => offsetOfInvented('uplink', 437.5e6, seconds),
   'transmit-x': seconds => offsetOfInvented('uplink', 8200e6, seconds),
-  'uplink-7': uplinkAlongTheAxis,
+  'uplink-7': speedMps => offsetOverThePole(speedMps, { direction: 'uplink', carrierHz: 437e6 }),
   'at-horizon': mhz => dopplerHz({ ...overhead(), direction: 'downlink', carrierHz: mhz * 1e6 }, T0 - toHorizonS * 1000),
   'peak-rate': mhz => peakRate(mhz * 1e6),
   'second-order': dilation,
+  'turnaround': () => turnedAroundHz(2106.40625e6, sBand) / 1e6,
+  'coherent-7': speedMps => offsetOverThePole(speedMps, { direction: 'downlink', carrierHz: 2287.5e6, turnaround: sBand }),
   'symbol-clock': () => symbolClockPpmAt(overhead(), 'downlink', T0 - toHorizonS * 1000),
   'quadrature-loss': epsilon => loss(link('quadrature'), epsilon),
   'quadrature-epsilon': permittedLossDb => allowanceOf(link('quadrature', { permittedLossDb })).epsilon,
@@ -121,15 +134,21 @@ export const computations: Record<CheckId, (at: number) => number> = {
   'differential': epsilon => loss(link('differential'), epsilon),
   'fsk': epsilon => loss(link('fsk'), epsilon),
   'multicarrier': epsilon => loss(link('multicarrier'), epsilon),
+  'multicarrier-small': epsilon => loss(link('multicarrier', { esN0Db: 40 }), epsilon),
+  'loop': noiseBandwidthHz => loopPhaseErrorRad(loopOf(noiseBandwidthHz), 159.3) * DEG,
+  'loop-drift': degrees => loopDriftLimitHzPerS(loopOf(20), degrees / DEG),
   'filter': () => allowanceOf(link('quadrature', { filterBandwidthHz: 14_000, rolloff: 0.25 })).allowanceHz,
   'bpsk': requiredEbN0Db,
   'budget': budgetPart,
   'sum': k => uncertaintyHz({ timingHz: 1, ut1Hz: 2, orbitHz: 2, oscillatorHz: 3, trimHz: 6 }, k),
   'split': equatorialShare,
   'age': days => alongTrackSigmaS({ floorKm: 0.5, growthKmPerDay: 1.5, epochMs: T0, speedMps: 7000 })(T0 + days * 86_400_000),
+  'burn': days => manoeuvreSpreadM({ startMs: T0, speedSigmaMps: 0.01 }, T0 + days * 86_400_000) / 1000,
+  'track': which => which === 0 ? offTrack(0, 0.1).alongM : offTrack(0.1, 0).crossM,
   'height': meanMotionRevPerDay => perigeeHeightKm({ meanMotionRevPerDay, eccentricity: 0 }),
   'rows': slope => planOf(slope).rows,
   'corridor': slope => planOf(slope).furthestPercent,
+  'cadence': cadenceMissHz,
   'pass': edge => ((edge === 0 ? firstPass().aosMs : firstPass().losMs) - DAY_MS) / 1000,
   'highest': () => firstPass().maxElevationRad * DEG,
 }

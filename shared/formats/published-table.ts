@@ -42,6 +42,8 @@ export const publishedTableSchema = z.strictObject({
     symbolRateHz: hz.positive(),
     bandLowHz: hz.nullable(),
     bandHighHz: hz.nullable(),
+    turnaround: z.strictObject({ numerator: z.int().positive(), denominator: z.int().positive(), uplinkPrecompensated: z.boolean() }).optional()
+      .describe('Of a coherent downlink: downlink = numerator/denominator × what the spacecraft hears'),
   }),
   radio: z.strictObject({
     id,
@@ -54,6 +56,8 @@ export const publishedTableSchema = z.strictObject({
     converter: z.strictObject({ loHz: hz.positive(), inverts: z.boolean() }).optional()
       .describe('Of a radio behind a converter: sky = loHz + dial, or loHz − dial where it inverts'),
   }),
+  plan: z.strictObject({ mode: z.enum(['fewest', 'cadence']), cadenceS: z.number().positive().nullable() }).optional()
+    .describe('How the rows were chosen: as few as hold, or one every cadenceS. Not in revisions of former versions'),
   verdict: z.enum(['holds', 'tight', 'breaks']),
   allowanceHz: hz.nonnegative(),
   limitedBy: z.enum(['loss', 'captureRange', 'filter', 'stated']),

@@ -24,6 +24,12 @@ const COLUMNS: readonly Column[] = [
   ['symbolRateHz', t => t.link.symbolRateHz],
   ['radio', t => t.radio.name],
   ['latencyMs', t => t.radio.latencyMs],
+  ['planMode', t => t.plan?.mode ?? null],
+  ['cadenceS', t => t.plan?.cadenceS ?? null],
+  ['converterLoHz', t => t.radio.converter?.loHz ?? null],
+  ['converterInverts', t => t.radio.converter ? String(t.radio.converter.inverts) : null],
+  ['turnaroundNumerator', t => t.link.turnaround?.numerator ?? null],
+  ['turnaroundDenominator', t => t.link.turnaround?.denominator ?? null],
   ['allowanceHz', t => t.allowanceHz],
   ['worstResidualHz', t => t.worstResidualHz],
   ['elementSetSha256', t => t.elementSet.sha256],
@@ -48,7 +54,7 @@ const COLUMNS: readonly Column[] = [
  * One row a retune. The columns before `row` say which table it is and are the same in each row; `row` counts from 1 and the
  * last column, `rows`, is how many there are, so that a file cut short is noticed. Names are those of the JSON with
  * the unit at the end; instants are UTC with milliseconds and Z; `at` is when to command, `latencyMs` before it takes effect.
- * `digest` is that of the JSON, for checking against it. `catalogueNumber` and `lossDb` may be empty. A text that begins with
+ * `digest` is that of the JSON, for checking against it. `catalogueNumber`, `lossDb` and what a link or radio does not have may be empty. A text that begins with
  * = + - @ or a tab has an apostrophe before it, so that no spreadsheet runs it; numbers never have.
  */
 export function tableCsv(table: ServedTable): string {

@@ -1,7 +1,8 @@
 import { z } from 'zod'
 import { idSchema, instantOut, pageQuery, reasonSchema } from './common'
 
-export const alertKinds = ['residual-ahead', 'published-table-breaks', 'not-collected', 'elements-old', 'publication-failed', 'decision-due', 'station-refused'] as const
+export const alertKinds = ['residual-ahead', 'published-table-breaks', 'not-collected', 'elements-old', 'publication-failed', 'decision-due', 'station-refused',
+  'antenna-conflict', 'upload-refused', 'auto-use-declined', 'slots-missed', 'server-silent', 'web-hook-failing'] as const
 export const alertsQuery = pageQuery.extend({ state: z.enum(['open', 'acknowledged', 'closed', 'standing']).optional() })
 export const alertOut = z.object({
   id: idSchema,

@@ -1,5 +1,5 @@
 import { z } from 'zod'
-import { instantOut, instantSchema, nameSchema, zoneSchema } from './common'
+import { idSchema, instantOut, instantSchema, nameSchema, zoneSchema } from './common'
 
 const fields = {
   organisation: nameSchema,
@@ -10,6 +10,8 @@ const fields = {
   k: z.number().min(1).max(5),
   digestZone: zoneSchema,
   digestAt: z.string().regex(/^([01]\d|2[0-3]):[0-5]\d$/, 'Write the time as 18:00.'),
+  /** Called every minute while all is well. */
+  heartbeatUrl: z.string().trim().min(1, 'Write the whole address, or leave it out.').max(500, 'At most 500 characters.').refine(text => URL.canParse(text), 'Write the whole address, such as https://watch.example/nullbeat.').nullable(),
   /** One sigma along track at the epoch and growth for perigees under and above 800 km. */
   prior: z.strictObject({
     lowFloorKm: z.number().positive().max(1000), lowGrowthKmPerDay: z.number().min(0).max(1000),
@@ -24,6 +26,7 @@ export const settingsSchema = z.strictObject({
   k: fields.k.default(2),
   digestZone: fields.digestZone.default('UTC'),
   digestAt: fields.digestAt.default('18:00'),
+  heartbeatUrl: fields.heartbeatUrl.default(null),
   prior: fields.prior.default({ lowFloorKm: 0.5, lowGrowthKmPerDay: 1.5, highFloorKm: 0.3, highGrowthKmPerDay: 0.5 }),
 })
 export type Settings = z.infer<typeof settingsSchema>
@@ -34,7 +37,23 @@ export const settingsOut = z.object({
   demo: z.boolean(),
   mail: z.object({ local: z.boolean(), queued: z.number().int(), failed: z.number().int() }),
 })
+/** What a slot would publish if it came now; null for a slot that publishes nothing. */
+const wouldPublish = { approved: z.number().int().nullable(), undecided: z.number().int().nullable() }
+const comingSlot = z.object({ kind: z.string(), entity: z.string(), name: z.string(), at: instantOut, local: z.string(), ...wouldPublish })
+export type ComingSlot = z.infer<typeof comingSlot>
 export const slotsOut = z.object({
-  coming: z.array(z.object({ kind: z.string(), entity: z.string(), name: z.string(), at: instantOut, local: z.string() })),
+  coming: z.array(comingSlot),
   done: z.array(z.object({ kind: z.string(), entity: z.string(), name: z.string(), at: instantOut, doneAt: instantOut, outcome: z.string() })),
 })
+
+export const previewSlotsQuery = z.strictObject({
+  stationId: idSchema,
+  /** The times would be this link's own; left out: the station's. */
+  linkId: idSchema.optional(),
+  zone: zoneSchema.optional(),
+  publishAt: fields.digestAt.optional(),
+  leadMinutes: z.coerce.number().int().min(1).max(1440).optional(),
+})
+/** The slots of the next seven days: every evening, and the passes' own, some hundreds at most. */
+export const previewSlotsOut = z.object({ evenings: z.array(comingSlot), leads: z.array(comingSlot), leadCount: z.number().int() })
+export type PreviewSlots = z.infer<typeof previewSlotsOut>

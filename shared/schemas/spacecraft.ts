@@ -4,6 +4,17 @@ import { atLeastZero, idSchema, instantOut, nameSchema, positive } from './commo
 export const catalogueNumberSchema = z.string().trim().regex(/^\d{1,9}$/, 'One to nine digits.')
 export const designatorSchema = z.string().trim().max(20).regex(/^\d{4}-\d{3}[A-Z]{1,3}$/, 'Write the international designator as 2026-801A.')
 
+/** When a waiting set goes into use without a person: newer, with no warning, and within all of these. */
+export const autoUseRule = z.strictObject({
+  /** Largest move of any coming rise, culmination or set. */
+  maxShiftS: positive().max(600),
+  /** Largest change of Doppler on any link, as a share of its allowance. */
+  maxAllowanceShare: positive().max(1, 'At most 1: the whole allowance.'),
+  /** Largest difference along the track over what the sets' age explains. */
+  maxSigmas: positive().max(10),
+})
+export type AutoUseRule = z.infer<typeof autoUseRule>
+
 const fields = {
   name: nameSchema,
   catalogueNumber: catalogueNumberSchema.nullable(),
@@ -12,6 +23,8 @@ const fields = {
   elementAgeLimitHours: positive().max(2400),
   alongTrackFloorKm: positive().max(1000).nullable(),
   alongTrackGrowthKmPerDay: atLeastZero().max(1000).nullable(),
+  /** Null: a person decides on every set. */
+  autoUse: autoUseRule.nullable(),
 }
 export const createSpacecraftBody = z.strictObject({
   ...fields,
@@ -23,6 +36,7 @@ export const createSpacecraftBody = z.strictObject({
   elementAgeLimitHours: fields.elementAgeLimitHours.default(72),
   alongTrackFloorKm: fields.alongTrackFloorKm.default(null),
   alongTrackGrowthKmPerDay: fields.alongTrackGrowthKmPerDay.default(null),
+  autoUse: fields.autoUse.default(null),
   /** Made from this held set in one step; the set then waits for it. */
   fromElementSetId: idSchema.optional(),
 }).refine(body => body.name !== undefined || body.fromElementSetId !== undefined, { path: ['name'], message: 'Give a name.' })
@@ -47,6 +61,9 @@ export const accuracyOut = z.object({
   ...growth,
   bins: z.array(z.object({ ageDays: z.number(), sigmaKm: z.number(), pairs: z.number().int() })),
   prior: z.object(growth),
+  /** Where pairs=true asks for them: one set carried to the epoch of a later one, at most 600, positive where it ran ahead. */
+  errors: z.array(z.object({ ageDays: z.number(), alongKm: z.number() })).optional(),
 })
+export const accuracyQuery = z.strictObject({ pairs: z.enum(['true', 'false']).optional() })
 export type AccuracyOut = z.infer<typeof accuracyOut>
 export type SpacecraftOut = z.infer<typeof spacecraftOut>

@@ -11,3 +11,6 @@ export const feedListOut = listOf(z.object({
 export const reportBody = z.strictObject({ revision: z.number().int().min(1), outcome: z.enum(['loaded', 'refused']), reason: reasonSchema.optional() })
   .refine(report => report.outcome === 'loaded' || report.reason !== undefined, { path: ['reason'], message: 'Say why the table was refused.' })
 export const jwkSetOut = z.object({ keys: z.array(z.object({ kty: z.string(), crv: z.string(), x: z.string(), kid: z.string(), alg: z.string(), use: z.string() })) })
+
+/** `lastSignedAt`: within the last 90 days, null where it signed nothing in them. `served`: stations get its public half. */
+export const signingKeyOut = z.object({ kid: z.string(), createdAt: instantOut, retiredAt: instantOut.nullable(), lastSignedAt: instantOut.nullable(), served: z.boolean() })

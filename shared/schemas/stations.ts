@@ -29,6 +29,13 @@ export const createStationBody = z.strictObject({
 })
 export const changeStationBody = z.strictObject(stationFields).partial()
 
+/** A link's own times at a station; null for the station's. Both null is no rule. */
+export const setPublicationRuleBody = z.strictObject({ stationId: idSchema, linkId: idSchema, publishAt: stationFields.publishAt.nullable().default(null), leadMinutes: stationFields.publishLeadMinutes.nullable().default(null) })
+  .refine(rule => rule.publishAt !== null || rule.leadMinutes !== null, { path: ['publishAt'], message: 'Give a time of day or a lead: with neither the link follows the station.' })
+export const publicationRulesQuery = z.strictObject({ stationId: idSchema.optional(), linkId: idSchema.optional() })
+export const publicationRuleOut = z.object({ id: idSchema, stationId: idSchema, stationName: z.string(), linkId: idSchema, linkName: z.string(), spacecraftName: z.string(), publishAt: z.string().nullable(), leadMinutes: z.number().int().nullable() })
+export type PublicationRuleOut = z.infer<typeof publicationRuleOut>
+
 const antennaFields = { name: nameSchema, setupS: atLeastZero().max(86_400) }
 export const createAntennaBody = z.strictObject({ stationId: idSchema, ...antennaFields, setupS: antennaFields.setupS.default(120) })
 export const changeAntennaBody = z.strictObject(antennaFields).partial()

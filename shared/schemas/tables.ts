@@ -22,8 +22,10 @@ export const tableBrief = z.object({
   reason: z.string().nullable(),
   approvedBy: z.string().nullable(), approvedById: idSchema.nullable(), secondedBy: z.string().nullable(),
   publishedAt: instantOut.nullable(), collectedAt: instantOut.nullable(),
+  /** Of this revision, once it is published. */
+  digest: z.string().nullable(),
   /** Newest revision that the station gets, when that is another one. */
-  out: z.object({ revision: z.number().int(), state: revisionStateSchema, publishedAt: instantOut, collectedAt: instantOut.nullable(), verdict: verdictSchema }).nullable(),
+  out: z.object({ revision: z.number().int(), state: revisionStateSchema, publishedAt: instantOut, collectedAt: instantOut.nullable(), verdict: verdictSchema, digest: z.string() }).nullable(),
   /** The instant at which the schedule publishes it if it is approved by then. */
   publishesAt: instantOut.nullable(),
   stationReport: z.object({ outcome: z.enum(['loaded', 'refused']), reason: z.string().nullable(), at: instantOut }).nullable(),

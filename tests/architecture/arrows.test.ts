@@ -7,6 +7,7 @@ const rules: { room: string, may: string, breaks: (imported: string) => boolean 
   { room: 'shared', may: 'imports neither server nor pages nor what Nuxt provides', breaks: imported => /^(server|app|tests)\/|^(#imports|#app|h3|nitropack|nuxt|vue)(\/|$)|^node:(?!url$)/.test(imported) },
   { room: 'app', may: 'imports nothing of the server', breaks: imported => /^server\//.test(imported) },
   { room: 'server/api', may: 'never touches the database or the queue', breaks: imported => /^server\/(database|jobs|workers)\/|^(drizzle-orm|pg|pg-boss)(\/|$)/.test(imported) },
+  { room: 'server/routes', may: 'never touches the database or the queue', breaks: imported => /^server\/(database|jobs|workers)\/|^(drizzle-orm|pg|pg-boss)(\/|$)/.test(imported) },
   { room: 'server/domain', may: 'knows nothing of HTTP', breaks: imported => /^server\/(http|api|middleware|plugins)\/|^(h3|nitropack|#imports|nuxt)(\/|$)/.test(imported) },
   { room: 'server/database', may: 'imports nothing that uses it', breaks: imported => /^server\/(domain|http|api|jobs|mail|workers|plugins)\//.test(imported) },
 ]

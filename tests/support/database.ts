@@ -10,13 +10,13 @@ export interface TestDatabase {
 }
 
 /**
- * A database of the test's own with all migrations applied, copied from the template in milliseconds.
+ * A database of the test's own with all migrations applied, copied from the template in milliseconds; `empty`: without any.
  * Only in the projects whose global set-up is database-setup.ts.
  */
-export async function createTestDatabase(): Promise<TestDatabase> {
+export async function createTestDatabase({ empty = false } = {}): Promise<TestDatabase> {
   const name = `test_${randomBytes(8).toString('hex')}`
   const url = new URL(inject('databaseOwnerUrl'))
-  await asAdmin(`create database ${name} template ${inject('databaseTemplate')} owner ${decodeURIComponent(url.username)}`)
+  await asAdmin(`create database ${name} template ${empty ? 'template0' : inject('databaseTemplate')} owner ${decodeURIComponent(url.username)}`)
   url.pathname = `/${name}`
   return { url: url.href, drop: () => asAdmin(`drop database if exists ${name} with (force)`) }
 }

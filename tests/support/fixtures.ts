@@ -55,7 +55,7 @@ const ordinaryElements: MeanElements = {
 export async function addElementSet(db: Db, epoch: Date, given: Given<typeof schema.elementSets> = {}) {
   const text = randomUUID()
   const sha256 = createHash('sha256').update(text).digest('hex')
-  const [upload] = await db.insert(schema.elementUploads).values({ state: 'finished', by: 'Test', source: 'api', original: Buffer.from(text), sha256, totalBytes: text.length }).returning()
+  const [upload] = await db.insert(schema.elementUploads).values({ state: 'finished', by: 'Test', source: 'api', sha256, totalBytes: text.length }).returning()
   const [set] = await db.insert(schema.elementSets).values({
     uploadId: upload!.id, epoch, epochUtcUs: epoch.getTime() * 1000, originalText: text, lineNumber: 1, sha256, contentSha256: sha256,
     elements: { ...ordinaryElements, epochUtcUs: epoch.getTime() * 1000 }, ...given,

@@ -12,12 +12,17 @@ export const demoPassword = 'only-for-the-tests-7'
 export interface TestServer {
   /** Without a slash at its end. */
   url: string
+  pid: number
   /** All that it has printed. */
   log: () => string
   /** Asks it to finish, and forces it after ten seconds. */
   stop: () => Promise<void>
   /** Ends it as a power cut would. */
   kill: () => void
+  /** Waits until it answers that it is ready. */
+  ready: () => Promise<void>
+  /** Its exit code, once it has ended; null where a signal ended it. */
+  ended: Promise<number | null>
 }
 
 interface Options {
@@ -28,7 +33,14 @@ interface Options {
 }
 
 /** Starts the built server on a free port of loopback, and waits until it is ready. */
-export async function startServer({ databaseUrl, env = {}, demo = false }: Options): Promise<TestServer> {
+export async function startServer(options: Options): Promise<TestServer> {
+  const server = await spawnServer(options)
+  await server.ready()
+  return server
+}
+
+/** Starts it, and does not wait: for tests that end it while it starts. */
+export async function spawnServer({ databaseUrl, env = {}, demo = false }: Options): Promise<TestServer> {
   const entry = join(root, '.output/server/index.mjs')
   if (!existsSync(entry)) throw new Error('There is no built server: run `npm run build` first (`npm test` does it by itself).')
   const port = await freeLoopbackPort()
@@ -55,18 +67,22 @@ export async function startServer({ databaseUrl, env = {}, demo = false }: Optio
   let log = ''
   for (const stream of [child.stdout, child.stderr]) stream.setEncoding('utf8').on('data', (text: string) => { log += text })
 
-  const server = { url, log: () => log, stop: async () => void await stopChild(child, 'SIGTERM', 10_000), kill: () => void child.kill('SIGKILL') }
-  const deadline = Date.now() + 90_000
-  for (let last = 'no answer'; ; await wait(100)) {
-    try {
-      const response = await fetch(`${url}/api/health/ready`, { signal: AbortSignal.timeout(5000) })
-      if (response.status === 200) return server
-      last = `${response.status} ${await response.text()}`
-    }
-    catch { /* not listening yet */ }
-    if (hasEnded(child) || Date.now() > deadline) {
-      await server.stop()
-      throw new Error(`The server was not ready (${last}). It printed:\n${log}`)
+  const ended = new Promise<number | null>(resolve => child.once('exit', code => resolve(code)))
+  const stop = async () => void await stopChild(child, 'SIGTERM', 10_000)
+  const ready = async () => {
+    const deadline = Date.now() + 90_000
+    for (let last = 'no answer'; ; await wait(100)) {
+      try {
+        const response = await fetch(`${url}/api/health/ready`, { signal: AbortSignal.timeout(5000) })
+        if (response.status === 200) return
+        last = `${response.status} ${await response.text()}`
+      }
+      catch { /* not listening yet */ }
+      if (hasEnded(child) || Date.now() > deadline) {
+        await stop()
+        throw new Error(`The server was not ready (${last}). It printed:\n${log}`)
+      }
     }
   }
+  return { url, pid: child.pid!, log: () => log, stop, kill: () => void child.kill('SIGKILL'), ready, ended }
 }

@@ -18,6 +18,18 @@ describe('when the schedule publishes', () => {
     ['Australia/Lord_Howe', '01:45', [2026, 4, 5], '2026-04-04T14:45:00.000Z'],
     ['Australia/Lord_Howe', '02:10', [2026, 10, 4], '2026-10-03T15:40:00.000Z'],
     ['Pacific/Chatham', '18:00', [2028, 2, 29], '2028-02-29T04:15:00.000Z'],
+    // Two hours of difference: 01:00 to 03:00 UTC+0 is skipped on 29 March (02:30 goes to 04:30 of UTC+2); 01:00 to 03:00 is repeated on 25 October.
+    ['Antarctica/Troll', '01:30', [2026, 3, 29], '2026-03-29T01:30:00.000Z'],
+    ['Antarctica/Troll', '02:00', [2026, 10, 25], '2026-10-25T00:00:00.000Z'],
+    // The gap lies at midnight: 00:00 to 01:00 on 24 April (from UTC+2) and on 6 September (from UTC-4).
+    ['Africa/Cairo', '00:30', [2026, 4, 24], '2026-04-23T22:30:00.000Z'],
+    ['America/Santiago', '00:00', [2026, 9, 6], '2026-09-06T04:00:00.000Z'],
+    // Half hours in the offset itself: summer UTC-2:30, winter UTC-3:30.
+    ['America/St_Johns', '02:15', [2026, 3, 8], '2026-03-08T05:45:00.000Z'],
+    ['America/St_Johns', '01:15', [2026, 11, 1], '2026-11-01T03:45:00.000Z'],
+    // The southern hemisphere goes the other way round: 02:00 to 03:00 is skipped on 27 September, repeated on 5 April.
+    ['Pacific/Auckland', '02:30', [2026, 9, 27], '2026-09-26T14:30:00.000Z'],
+    ['Pacific/Auckland', '02:30', [2026, 4, 5], '2026-04-04T13:30:00.000Z'],
   ] as const)('in %s at %s on %j', (zone, publishAt, [year, month, day], expected) => {
     expect(iso(eveningInstant({ zone, publishAt }, year, month, day))).toBe(expected)
   })
@@ -26,6 +38,21 @@ describe('when the schedule publishes', () => {
     const rule = { zone: 'Europe/Berlin', publishAt: '02:30' }
     expect(eveningInstants(rule, at('2026-03-28T00:00:00Z'), at('2026-03-31T00:00:00Z')).map(iso)).toEqual(['2026-03-28T01:30:00.000Z', '2026-03-29T01:30:00.000Z', '2026-03-30T00:30:00.000Z'])
     expect(eveningInstants(rule, at('2026-10-24T00:00:00Z'), at('2026-10-27T00:00:00Z')).map(iso)).toEqual(['2026-10-24T00:30:00.000Z', '2026-10-25T00:30:00.000Z', '2026-10-26T01:30:00.000Z'])
+  })
+
+  // Intl reads the same zone database by another road than the product's; a year has as many evenings as days.
+  it.each(['Europe/Oslo', 'America/St_Johns', 'Australia/Lord_Howe', 'Antarctica/Troll', 'Asia/Kathmandu', 'Pacific/Chatham'])('in %s comes on every day of the leap year 2028 once, at its local time', (zone) => {
+    const instants = eveningInstants({ zone, publishAt: '17:30' }, at('2028-01-01T12:00:00Z'), at('2029-01-01T12:00:00Z'))
+    const local = new Intl.DateTimeFormat('sv-SE', { timeZone: zone, dateStyle: 'short', timeStyle: 'short' })
+    const shown = instants.map(ms => local.format(ms))
+    expect(shown.every(text => text.endsWith(' 17:30'))).toBe(true)
+    expect(new Set(shown).size).toBe(366)
+    expect(shown).toHaveLength(366)
+  })
+
+  it('is not owed twice where a whole day was skipped: Samoa went from 29 to 31 December 2011', () => {
+    const rule = { zone: 'Pacific/Apia', publishAt: '18:00' }
+    expect(eveningInstants(rule, at('2011-12-29T00:00:00Z'), at('2012-01-01T12:00:00Z')).map(iso)).toEqual(['2011-12-29T04:00:00.000Z', '2011-12-30T04:00:00.000Z', '2011-12-31T04:00:00.000Z', '2012-01-01T04:00:00.000Z'])
   })
 
   it('takes the bounds as from, including, to, excluding', () => {

@@ -1,5 +1,5 @@
 import { sql } from 'drizzle-orm'
-import { check, index, integer, jsonb, pgTable, primaryKey, text, timestamp, uniqueIndex, uuid } from 'drizzle-orm/pg-core'
+import { boolean, check, index, integer, jsonb, pgTable, primaryKey, text, timestamp, uniqueIndex, uuid } from 'drizzle-orm/pg-core'
 import { createdAt, id, instant } from './columns'
 import { people } from './people'
 import { spacecraft } from './spacecraft'
@@ -18,7 +18,7 @@ export const slots = pgTable('slots', {
 
 export const alerts = pgTable('alerts', {
   id: id(),
-  kind: text('kind', { enum: ['residual-ahead', 'published-table-breaks', 'not-collected', 'elements-old', 'publication-failed', 'decision-due', 'station-refused'] }).notNull(),
+  kind: text('kind', { enum: ['residual-ahead', 'published-table-breaks', 'not-collected', 'elements-old', 'publication-failed', 'decision-due', 'station-refused', 'antenna-conflict', 'upload-refused', 'auto-use-declined', 'slots-missed', 'server-silent', 'web-hook-failing'] }).notNull(),
   /** One open alert per cause. */
   cause: text('cause').notNull(),
   severity: text('severity', { enum: ['call', 'notice'] }).notNull(),
@@ -106,3 +106,65 @@ export const rateLimits = pgTable('rate_limits', {
   points: integer('points').notNull().default(0),
   expire: timestamp('expire', { withTimezone: true }),
 })
+
+/** A calendar that a program fetches by an address nobody can guess: of a person (all stations) or of one station. */
+export const calendarAddresses = pgTable('calendar_addresses', {
+  id: id(),
+  /** SHA-256 of the secret part. */
+  tokenHash: text('token_hash').notNull(),
+  personId: uuid('person_id').references(() => people.id, { onDelete: 'cascade' }),
+  stationId: uuid('station_id').references(() => stations.id, { onDelete: 'cascade' }),
+  createdBy: text('created_by').notNull(),
+  createdAt: createdAt(),
+  lastUsedAt: instant('last_used_at'),
+  revokedAt: instant('revoked_at'),
+}, t => [
+  uniqueIndex('calendar_addresses_token_unique').on(t.tokenHash),
+  index('calendar_addresses_person').on(t.personId),
+  index('calendar_addresses_station').on(t.stationId),
+  check('calendar_addresses_whose', sql`num_nonnulls(${t.personId}, ${t.stationId}) = 1`),
+])
+
+/** Where somebody wants to be told by HTTP. */
+export const webHooks = pgTable('web_hooks', {
+  id: id(),
+  name: text('name').notNull(),
+  url: text('url').notNull(),
+  /** Deliveries are signed with it, so it is kept as it is; shown once. */
+  secret: text('secret').notNull(),
+  events: text('events').array().notNull(),
+  enabled: boolean('enabled').notNull().default(true),
+  createdBy: text('created_by').notNull(),
+  createdAt: createdAt(),
+  retiredAt: instant('retired_at'),
+}, t => [
+  uniqueIndex('web_hooks_name_unique').on(sql`lower(${t.name})`).where(sql`${t.retiredAt} IS NULL`),
+  check('web_hooks_events_known', sql`${t.events} <@ ARRAY['table.published','table.superseded','table.withdrawn','alert.opened','alert.closed']::text[] AND cardinality(${t.events}) >= 1`),
+])
+
+export const webHookDeliveries = pgTable('web_hook_deliveries', {
+  /** The message's id, the same at every try. */
+  id: id(),
+  hookId: uuid('hook_id').notNull().references(() => webHooks.id, { onDelete: 'cascade' }),
+  event: text('event').notNull(),
+  /** The body, byte for byte. */
+  body: text('body').notNull(),
+  state: text('state', { enum: ['queued', 'delivered', 'failed'] }).notNull().default('queued'),
+  attempts: integer('attempts').notNull().default(0),
+  lastStatus: integer('last_status'),
+  lastError: text('last_error'),
+  createdAt: createdAt(),
+  triedAt: instant('tried_at'),
+}, t => [index('web_hook_deliveries_hook').on(t.hookId, t.createdAt), index('web_hook_deliveries_state').on(t.state, t.createdAt)])
+
+/** Every running server says here that it lives. */
+export const servers = pgTable('servers', {
+  id: id(),
+  host: text('host').notNull(),
+  pid: integer('pid').notNull(),
+  role: text('role', { enum: ['server', 'worker'] }).notNull(),
+  startedAt: instant('started_at').notNull(),
+  seenAt: instant('seen_at').notNull(),
+  /** Ended on purpose. */
+  stoppedAt: instant('stopped_at'),
+}, t => [index('servers_seen').on(t.seenAt)])

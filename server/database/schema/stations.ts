@@ -1,6 +1,8 @@
 import { sql } from 'drizzle-orm'
 import { boolean, check, index, integer, jsonb, pgTable, text, uniqueIndex, uuid } from 'drizzle-orm/pg-core'
 import { createdAt, id, instant, real } from './columns'
+import { links } from './links'
+import { spacecraft } from './spacecraft'
 
 export const stations = pgTable('stations', {
   id: id(),
@@ -76,4 +78,41 @@ export const radios = pgTable('radios', {
   check('radios_plan_mode_stated', sql`${t.planMode} IN ('fewest', 'cadence') AND (${t.cadenceS} IS NULL OR ${t.cadenceS} > 0) AND (${t.planMode} = 'fewest' OR ${t.cadenceS} IS NOT NULL)`),
   check('radios_converter_side', sql`CASE WHEN ${t.converterLoHz} IS NULL THEN NOT ${t.converterInverts}
     WHEN ${t.converterInverts} THEN ${t.converterLoHz} > ${t.tuneHighHz} ELSE ${t.converterLoHz} > 0 AND ${t.converterLoHz} < ${t.tuneLowHz} END`),
+])
+
+/** Where a link at a station is published at other times than the station's own. */
+export const publicationRules = pgTable('publication_rules', {
+  id: id(),
+  stationId: uuid('station_id').notNull().references(() => stations.id, { onDelete: 'cascade' }),
+  linkId: uuid('link_id').notNull().references(() => links.id, { onDelete: 'cascade' }),
+  /** Local time of the station, HH:MM; null for the station's own. */
+  publishAt: text('publish_at'),
+  leadMinutes: integer('lead_minutes'),
+  createdAt: createdAt(),
+}, t => [
+  uniqueIndex('publication_rules_station_link_unique').on(t.stationId, t.linkId),
+  index('publication_rules_link').on(t.linkId),
+  check('publication_rules_publish_at_form', sql`${t.publishAt} ~ '^([01][0-9]|2[0-3]):[0-5][0-9]$'`),
+  check('publication_rules_lead_range', sql`${t.leadMinutes} BETWEEN 1 AND 1440`),
+])
+
+/** No retune inside it: of a station, or only of one spacecraft or link. */
+export const quietSpans = pgTable('quiet_spans', {
+  id: id(),
+  stationId: uuid('station_id').references(() => stations.id, { onDelete: 'cascade' }),
+  spacecraftId: uuid('spacecraft_id').references(() => spacecraft.id, { onDelete: 'cascade' }),
+  linkId: uuid('link_id').references(() => links.id, { onDelete: 'cascade' }),
+  startsAt: instant('starts_at').notNull(),
+  endsAt: instant('ends_at').notNull(),
+  reason: text('reason').notNull(),
+  enteredBy: text('entered_by').notNull(),
+  cancelledAt: instant('cancelled_at'),
+  cancelledBy: text('cancelled_by'),
+  createdAt: createdAt(),
+}, t => [
+  index('quiet_spans_station').on(t.stationId, t.startsAt),
+  index('quiet_spans_spacecraft').on(t.spacecraftId),
+  index('quiet_spans_link').on(t.linkId),
+  check('quiet_spans_of_something', sql`num_nonnulls(${t.stationId}, ${t.spacecraftId}, ${t.linkId}) >= 1`),
+  check('quiet_spans_order', sql`${t.startsAt} < ${t.endsAt}`),
 ])

@@ -5,7 +5,7 @@ import { elementSets } from './elements'
 import { links } from './links'
 import { people } from './people'
 import { spacecraft } from './spacecraft'
-import { radios, stations } from './stations'
+import { antennas, radios, stations } from './stations'
 
 /** One spacecraft, one station, one culmination; keeps its id when elements change. */
 export const passes = pgTable('passes', {
@@ -17,6 +17,8 @@ export const passes = pgTable('passes', {
   culmination: instant('culmination').notNull(),
   los: instant('los').notNull(),
   maxElevationDeg: real('max_elevation_deg').notNull(),
+  /** Counts what a calendar has to be told: it moved, or is gone. */
+  calendarSequence: integer('calendar_sequence').notNull().default(0),
   /** No longer predicted. */
   goneAt: instant('gone_at'),
   createdAt: createdAt(),
@@ -80,6 +82,8 @@ export const tableRevisions = pgTable('table_revisions', {
   check: jsonb('check').$type<StoredCheck>().notNull(),
   /** SHA-256 of all that went into the plan; equal means nothing to recompute. */
   inputsDigest: text('inputs_digest').notNull(),
+  /** Its passes stand down for another that has the antenna. */
+  standsDown: boolean('stands_down').notNull().default(false),
   /** Why it is in this state or was drafted anew, in words. */
   reason: text('reason'),
   approvedById: uuid('approved_by_id').references(() => people.id, { onDelete: 'set null' }),
@@ -114,6 +118,24 @@ export const tableRevisions = pgTable('table_revisions', {
   check('table_revisions_published_whole', sql`${t.state} NOT IN ('published','collected','superseded','withdrawn') OR (${t.publishedAt} IS NOT NULL AND ${t.canonical} IS NOT NULL AND ${t.digest} IS NOT NULL AND ${t.signature} IS NOT NULL)`),
 ])
 
+/** A person gave an antenna to one of two passes that want it at one time. */
+export const antennaDecisions = pgTable('antenna_decisions', {
+  id: id(),
+  antennaId: uuid('antenna_id').notNull().references(() => antennas.id, { onDelete: 'cascade' }),
+  /** Has the antenna. */
+  passId: uuid('pass_id').notNull().references(() => passes.id, { onDelete: 'cascade' }),
+  /** Stands down. */
+  otherPassId: uuid('other_pass_id').notNull().references(() => passes.id, { onDelete: 'cascade' }),
+  decidedBy: text('decided_by').notNull(),
+  decidedAt: instant('decided_at').notNull(),
+  reason: text('reason'),
+}, t => [
+  uniqueIndex('antenna_decisions_pair_unique').on(t.antennaId, sql`least(${t.passId}, ${t.otherPassId})`, sql`greatest(${t.passId}, ${t.otherPassId})`),
+  index('antenna_decisions_pass').on(t.passId),
+  index('antenna_decisions_other_pass').on(t.otherPassId),
+  check('antenna_decisions_two_passes', sql`${t.passId} <> ${t.otherPassId}`),
+])
+
 export const stationReports = pgTable('station_reports', {
   id: id(),
   revisionId: uuid('revision_id').notNull().references(() => tableRevisions.id, { onDelete: 'cascade' }),
@@ -127,5 +149,7 @@ export const signingKeys = pgTable('signing_keys', {
   publicJwk: jsonb('public_jwk').$type<Record<string, string>>().notNull(),
   privateJwk: jsonb('private_jwk').$type<Record<string, string>>().notNull(),
   active: boolean('active').notNull().default(true),
+  /** Signs no more; what it signed still verifies. */
+  retiredAt: instant('retired_at'),
   createdAt: createdAt(),
 }, t => [uniqueIndex('signing_keys_one_active').on(t.active).where(sql`${t.active}`)])

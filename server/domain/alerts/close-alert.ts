@@ -4,6 +4,8 @@ import { alerts } from '~~/server/database/schema'
 import { recordAudit } from '../audit'
 import type { Deps } from '../context'
 import { DomainError } from '../errors'
+import { alertEvent } from '../web-hooks/alert-event'
+import { tellHooks } from '../web-hooks/tell-hooks'
 import { findCauses } from './find-causes'
 import { readAlert } from './read-alerts'
 import { requireAlert } from './require-alert'
@@ -24,6 +26,7 @@ export async function closeAlert(given: Deps, input: { alertId: string, reason?:
     await tx.update(alerts).set({ state: 'closed', closedAt: deps.now, closedBy: person.name, closeReason: closeReasonOf(cause !== undefined, reason) }).where(eq(alerts.id, alertId))
     const entry = { entityKind: 'alert', entityId: alertId, tableId: alert.tableId ?? undefined, reason: reason ?? null }
     await recordAudit(deps, { ...entry, action: 'alert.close', before: { state: alert.state }, after: { state: 'closed' } })
+    await tellHooks(deps, 'alert.closed', alertEvent(alert, { closedBy: person.name, reason: closeReasonOf(cause !== undefined, reason) }))
     if (cause) await recordAudit(deps, { ...entry, action: 'alert.set-aside', after: { weight: cause.weight } })
     return await readAlert(deps, alertId)
   })

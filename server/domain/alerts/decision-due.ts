@@ -3,7 +3,7 @@ import { decisionCallMinutes, decisionDueMinutes } from '#shared/table-life'
 import { formatUtc } from '#shared/utils/format'
 import type { Deps } from '../context'
 import type { Cause } from './cause'
-import { at, comingTables } from './coming-tables'
+import { at, comingTables, leadSlot } from './coming-tables'
 
 interface Row extends Record<string, unknown> { pass_id: string, spacecraft_id: string, spacecraft: string, station_id: string, station: string, aos: string, tables: number, first_table: string, what: string }
 
@@ -24,7 +24,7 @@ export async function findDecisionDue({ db, now }: Pick<Deps, 'db' | 'now'>): Pr
     WHERE p.aos > ${at(now)} AND p.aos <= ${at(new Date(now.getTime() + decisionDueMinutes * 60_000))} AND p.gone_at IS NULL
       AND (r.state = 'drafted' OR r.state = 'approved' AND (
         r.verdict = 'breaks' AND r.seconded_by IS NULL
-        OR p.aos - make_interval(mins => st.publish_lead_minutes) < ${at(new Date(now.getTime() - slotGraceMs))}))
+        OR ${leadSlot} < ${at(new Date(now.getTime() - slotGraceMs))}))
     GROUP BY p.id, sc.name, st.name`)
   return rows.map((row) => {
     const aos = new Date(row.aos)

@@ -2,6 +2,8 @@ import { eq, sql } from 'drizzle-orm'
 import { alerts } from '~~/server/database/schema'
 import { recordAudit } from '../audit'
 import type { Deps } from '../context'
+import { alertEvent } from '../web-hooks/alert-event'
+import { tellHooks } from '../web-hooks/tell-hooks'
 import type { Cause } from './cause'
 import { flutterMs, worseFactor } from './cause'
 import type { LastClosed } from './last-closed'
@@ -28,10 +30,11 @@ export async function openAlert(deps: Deps, cause: Cause, last: LastClosed | nul
   if (last !== null && last.setAsideWeight !== null && cause.weight < worseFactor * last.setAsideWeight) return
   const flutters = last !== null && last.closedBy === goneBy && last.closeReason === goneReason && now.getTime() - last.closedAt.getTime() < flutterMs
   const [opened] = await db.insert(alerts).values({ ...rowOf(cause), cause: cause.cause, kind: cause.kind, severity: cause.severity, detail: cause.detail + (flutters ? flutterNote : ''), openedAt: now })
-    .onConflictDoNothing({ target: alerts.cause, where: sql`${alerts.state} <> 'closed'` }).returning({ id: alerts.id })
+    .onConflictDoNothing({ target: alerts.cause, where: sql`${alerts.state} <> 'closed'` }).returning()
   // Another server was faster.
   if (!opened) return
   await recordAudit(deps, { action: 'alert.open', entityKind: 'alert', entityId: opened.id, tableId: cause.tableId, reason: flutters ? flutterNote.trim() : null, after: { cause: cause.cause, severity: cause.severity, count: cause.count } })
+  await tellHooks(deps, 'alert.opened', alertEvent(opened))
   if (!flutters) await tellPeople(deps, opened.id)
 }
 

@@ -2,6 +2,8 @@ import { and, eq, inArray, ne } from 'drizzle-orm'
 import { alerts } from '~~/server/database/schema'
 import { recordAudit } from '../audit'
 import type { Deps } from '../context'
+import { alertEvent } from '../web-hooks/alert-event'
+import { tellHooks } from '../web-hooks/tell-hooks'
 import type { CauseScope } from './cause'
 import { allKinds, findCauses } from './find-causes'
 import { lastClosedOf, setAside } from './last-closed'
@@ -32,6 +34,7 @@ export async function reconcileAlerts(given: Deps, scope: CauseScope = {}): Prom
     for (const alert of standing.filter(({ cause }) => !present.has(cause))) {
       await tx.update(alerts).set({ state: 'closed', closedAt: deps.now, closedBy: goneBy, closeReason: goneReason }).where(eq(alerts.id, alert.id))
       await recordAudit(deps, { action: 'alert.close', entityKind: 'alert', entityId: alert.id, tableId: alert.tableId ?? undefined, reason: goneReason, before: { state: alert.state }, after: { state: 'closed' } })
+      await tellHooks(deps, 'alert.closed', alertEvent(alert, { closedBy: goneBy, reason: goneReason }))
     }
     // What was set aside and has gone calls again when it comes back.
     for (const past of await setAside(deps, kinds, scope)) {

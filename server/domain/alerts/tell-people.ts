@@ -7,10 +7,13 @@ import type { Deps } from '../context'
 import { readSettings } from '../settings/read-settings'
 import type { AlertKind, Severity } from './cause'
 
+/** Whose work a notice is, where it is not flight dynamics' and on-call's. */
+const noticed: Partial<Record<AlertKind, Role[]>> = { 'decision-due': ['operator'], 'antenna-conflict': ['operator'], 'slots-missed': ['operator', 'administrator'], 'web-hook-failing': ['administrator'] }
+
 /** A call goes to on-call; a notice to those whose work it is. */
 function rolesFor(kind: AlertKind, severity: Severity): Role[] {
   if (severity === 'call') return ['on-call']
-  return kind === 'decision-due' ? ['operator'] : ['flight-dynamics', 'on-call']
+  return noticed[kind] ?? ['flight-dynamics', 'on-call']
 }
 
 /** One mail to each person concerned, in the transaction that opens or raises the alert. */

@@ -1,26 +1,23 @@
-import { isNull } from 'drizzle-orm'
+import type { LineNote } from '#shared/formats/elements/read-elements'
 import type { MeanElements } from '#shared/physics/types'
-import type { Db } from '~~/server/database/client'
-import type { UploadNote } from '~~/server/database/schema'
-import { spacecraft } from '~~/server/database/schema'
 
-export interface Match { spacecraftId: string, warning: UploadNote | null }
+/** A spacecraft by what a set can name it: plain data, to cross to a worker. */
+export interface Named { readonly id: string, readonly name: string, readonly number: string | null, readonly designator: string | null }
+
+export interface Match { spacecraftId: string, warning: LineNote | null }
 export type Matcher = (elements: MeanElements, line: number) => Match | null
 
 /** 00005 and 5 are one number. */
 const bare = (number: string) => number.replace(/^0+(?=\d)/, '')
 
 /**
- * Finds the spacecraft that a set belongs to among those that fly: by catalogue number, then by designator, then by
- * name whatever its case. A match by the latter two whose catalogue numbers differ is made with a warning.
+ * Finds the spacecraft that a set belongs to: by catalogue number, then by designator, then by name whatever its case. A
+ * match by the latter two whose catalogue numbers differ is made with a warning.
  */
-export async function createMatcher(db: Pick<Db, 'select'>): Promise<Matcher> {
-  const rows = await db.select({ id: spacecraft.id, name: spacecraft.name, number: spacecraft.catalogueNumber, designator: spacecraft.designator })
-    .from(spacecraft).where(isNull(spacecraft.retiredAt)).orderBy(spacecraft.id)
-  type Row = typeof rows[number]
-  const index = (keyOf: (row: Row) => string | null | undefined) => {
-    const found = new Map<string, Row>()
-    for (const row of rows) {
+export function createMatcher(fleet: readonly Named[]): Matcher {
+  const index = (keyOf: (row: Named) => string | null | undefined) => {
+    const found = new Map<string, Named>()
+    for (const row of fleet) {
       const key = keyOf(row)
       if (key && !found.has(key)) found.set(key, row)
     }

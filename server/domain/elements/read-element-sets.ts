@@ -2,20 +2,28 @@ import { and, desc, eq, isNull, isNotNull, sql } from 'drizzle-orm'
 import { z } from 'zod'
 import type { ElementSetOut, elementSetsQuery } from '#shared/schemas/elements'
 import type { Db } from '~~/server/database/client'
-import { elementSets, elementUploads, spacecraft } from '~~/server/database/schema'
+import { audit, elementSets, elementUploads, spacecraft } from '~~/server/database/schema'
 import type { Deps } from '../context'
 import { cursorInstant, readCursor, toPage } from '../cursor'
 import { DomainError } from '../errors'
 import { apsidesKm } from './apsides'
+import { ruleDeclines } from './trail-words'
+import { isFound, isHandled, isOfUpload } from './unassigned-sets'
 
-const select = (db: Pick<Db, 'select'>) => db.select({ set: elementSets, spacecraftName: spacecraft.name, uploadedAt: elementUploads.createdAt, uploadedBy: elementUploads.by })
+/** Why the rule of its spacecraft, as it stands, has left a waiting set to people. */
+const ruleDeclined = sql<string | null>`CASE WHEN ${elementSets.state} = 'waiting' AND ${spacecraft.autoUse} IS NOT NULL THEN (
+  SELECT declined.reason FROM ${audit} AS declined
+  WHERE declined.entity_kind = 'element-set' AND declined.entity_id = ${elementSets.id}::text AND declined.action = ${ruleDeclines} AND declined.after -> 'rule' = ${spacecraft.autoUse}
+  ORDER BY declined.id DESC LIMIT 1) END`
+
+const select = (db: Pick<Db, 'select'>) => db.select({ set: elementSets, spacecraftName: spacecraft.name, uploadedAt: elementUploads.createdAt, uploadedBy: elementUploads.by, ruleDeclined })
   .from(elementSets)
   .innerJoin(elementUploads, eq(elementUploads.id, elementSets.uploadId))
   .leftJoin(spacecraft, eq(spacecraft.id, elementSets.spacecraftId))
   .$dynamic()
 type Row = Awaited<ReturnType<typeof select>>[number]
 
-function toOut({ set, spacecraftName, uploadedAt, uploadedBy }: Row, now: Date): ElementSetOut {
+function toOut({ set, spacecraftName, uploadedAt, uploadedBy, ruleDeclined }: Row, now: Date): ElementSetOut {
   const { id, uploadId, spacecraftId, state, name, catalogueNumber, designator, epochUtcUs, sha256, originalText, warnings, decidedBy, reason } = set
   const { inclinationDeg, eccentricity, meanMotionRevPerDay, bstar } = set.elements
   return {
@@ -27,6 +35,7 @@ function toOut({ set, spacecraftName, uploadedAt, uploadedBy }: Row, now: Date):
     sha256, originalText, warnings,
     uploadedAt: uploadedAt.toISOString(), uploadedBy,
     decidedAt: set.decidedAt?.toISOString() ?? null, decidedBy, reason,
+    useAt: set.useAt?.toISOString() ?? null, useScheduledBy: set.useScheduledBy, ruleDeclined,
   }
 }
 
@@ -38,6 +47,9 @@ export async function listElementSets({ db, now }: Pick<Deps, 'db' | 'now'>, que
       query.spacecraftId ? eq(elementSets.spacecraftId, query.spacecraftId) : undefined,
       query.state ? eq(elementSets.state, query.state) : undefined,
       query.unassigned === 'true' ? isNull(elementSets.spacecraftId) : query.unassigned === 'false' ? isNotNull(elementSets.spacecraftId) : undefined,
+      query.handling ? isHandled(query.handling) : undefined,
+      query.uploadId ? isOfUpload(db, query.uploadId) : undefined,
+      query.q ? isFound(query.q) : undefined,
       after ? sql`(${elementSets.epoch}, ${elementSets.id}) < (${after[0]}::timestamptz, ${after[1]}::uuid)` : undefined,
     ))
     .orderBy(desc(elementSets.epoch), desc(elementSets.id)).limit(query.limit + 1)

@@ -1,114 +1,105 @@
-import { setTimeout as wait } from 'node:timers/promises'
-import { and, eq, getTableColumns, inArray, sql } from 'drizzle-orm'
-import type { ElementReading, LineNote } from '#shared/formats/elements/read-elements'
-import { readElements } from '#shared/formats/elements/read-elements'
+import { and, eq, inArray, isNull } from 'drizzle-orm'
+import type { LineNote } from '#shared/formats/elements/read-elements'
 import type { Db } from '~~/server/database/client'
-import { elementUploads } from '~~/server/database/schema'
-import { runTask } from '~~/server/workers/pool'
+import { databaseNow } from '~~/server/database/client'
+import { elementUploadNotes, elementUploads } from '~~/server/database/schema'
+import { jsonBytes } from '~~/server/workers/tasks/batch'
 import { recordAudit } from '../audit'
 import type { Deps } from '../context'
-import { DomainError } from '../errors'
+import { pointOutMisfits } from './point-out-misfits'
 import { storableNote, storableText } from './storable-text'
-import { storeSets } from './store-sets'
-
-/** Up to this size an upload is read while its sender waits. */
-export const readAtOnceBytes = 1024 * 1024
+import { storeNotes } from './store-batch'
+import { Cancelled, RefusedWhole, storeReading } from './store-reading'
+import { inTurn, takeLock } from './storing-turn'
+import type { UploadRow } from './upload-columns'
+import { inHand } from './upload-columns'
 
 export type UploadOutcome =
-  | { kind: 'finished' }
-  | { kind: 'refused', detail: string, errors: readonly LineNote[] }
+  | { kind: 'finished' | 'cancelled' }
+  | { kind: 'refused', detail: string, errors: readonly LineNote[], count: number }
   /** Another server, or another call, has it in hand or has finished it. */
   | { kind: 'elsewhere' }
 
-const { original: _original, refusals: _refusals, warnings: _warnings, ...brief } = getTableColumns(elementUploads)
-/** An upload in brief: without its report, and without its original, which may be 50 MB. */
-export const briefColumns = brief
+/** So many reasons go into the answer to a small file that is refused whole; its report has all. */
+export const errorsShown = 100
 
-const unread = ['receiving', 'reading'] as const
-
-/** Bytes read so far of the uploads that this process has in hand. */
-const progress = new Map<string, number>()
-export const readBytesOf = (uploadId: string): number => progress.get(uploadId) ?? 0
-
-/** One upload is stored at a time, here and on all servers: two of the same sets would wait for each other past a statement's time limit. */
-let last: Promise<unknown> = Promise.resolve()
-function afterTheOthers<T>(act: () => Promise<T>): Promise<T> {
-  const mine = last.then(act, act)
-  last = mine.catch(() => {})
-  return mine
-}
-
-const turnPauseMs = 250
-const turnPatienceMs = 120_000
-
-async function takeTurn(tx: Db): Promise<boolean> {
-  const { rows } = await tx.execute<{ free: boolean }>(sql`SELECT pg_try_advisory_xact_lock(hashtext('store-element-sets')) AS free`)
-  return rows[0]!.free
-}
-
-/** Comes back until it is this upload's turn; nobody holds a connection meanwhile. */
-async function whenFree<T>(act: () => Promise<T | null>): Promise<T> {
-  for (let waitedMs = 0; waitedMs < turnPatienceMs; waitedMs += turnPauseMs) {
-    const done = await act()
-    if (done !== null) return done
-    await wait(turnPauseMs)
-  }
-  throw new DomainError('unavailable', 'Another server is storing element sets: try again in a minute.', [], 60)
-}
-
-/** Reads what was sent: a large file in a worker thread, so that requests are answered meanwhile. */
-export async function readOriginal(original: Uint8Array, nowMs: number): Promise<ElementReading> {
-  return original.length <= readAtOnceBytes ? readElements(original, { nowMs }) : runTask('read-elements', { original, nowMs })
-}
+/** Held by whoever stores the upload; the row itself stays free for what shows and cancels it. */
+export const claimOf = (uploadId: string): string => `element-upload:${uploadId}`
 
 /**
  * Reads a received upload and stores all its sets, or none, in one transaction with its report and its row of the
  * trail. A file that is refused whole ends as `failed`; its original stays. May be called again after a crash.
- * `held` is the original where the caller has it still.
  */
-export async function readUpload(deps: Deps, uploadId: string, held?: Buffer): Promise<UploadOutcome> {
-  const original = held ?? (await deps.db.select({ original: elementUploads.original }).from(elementUploads).where(eq(elementUploads.id, uploadId)))[0]?.original
-  if (!original) return { kind: 'elsewhere' }
-  const reading = await readOriginal(original, deps.now.getTime())
+export async function readUpload(deps: Deps, uploadId: string): Promise<UploadOutcome> {
   try {
-    return await afterTheOthers(() => whenFree(() => deps.db.transaction(async (tx) => {
-      const inner = { ...deps, db: tx }
-      if (!await takeTurn(tx)) return null
-      const [mine] = await tx.select({ id: elementUploads.id }).from(elementUploads)
-        .where(and(eq(elementUploads.id, uploadId), inArray(elementUploads.state, unread))).for('update', { skipLocked: true })
-      if (!mine) return { kind: 'elsewhere' }
-      if (reading.kind === 'refused') return refuseWhole(inner, uploadId, reading)
-      const stored = await storeSets(inner, uploadId, reading.sets, (share) => { progress.set(uploadId, Math.round(share * original.length)) })
-      await finish(inner, uploadId, {
-        state: 'finished',
-        format: reading.format,
-        accepted: stored.accepted,
-        alreadyHeld: stored.alreadyHeld,
-        refused: reading.refusals.length,
-        refusals: reading.refusals.map(storableNote),
-        warnings: [...reading.warnings.map(storableNote), ...stored.warnings].sort((a, b) => a.line - b.line),
-      })
-      return { kind: 'finished' }
-    })))
+    return await inTurn(deps.db, async (tx) => {
+      if (!await takeLock(tx, claimOf(uploadId))) return { kind: 'elsewhere' }
+      const [row] = await tx.select().from(elementUploads).where(and(eq(elementUploads.id, uploadId), eq(elementUploads.state, 'reading')))
+      if (!row) return { kind: 'elsewhere' }
+      if (row.cancelRequestedAt) throw new Cancelled()
+      return readAndFinish({ ...deps, db: tx }, deps.db, row)
+    })
   }
-  finally {
-    progress.delete(uploadId)
+  catch (error) {
+    if (!(error instanceof Cancelled)) throw error
+    await markCancelled(deps, uploadId)
+    return { kind: 'cancelled' }
   }
 }
 
-async function refuseWhole(deps: Deps, uploadId: string, { detail, errors }: Extract<ElementReading, { kind: 'refused' }>): Promise<UploadOutcome> {
-  await finish(deps, uploadId, { state: 'failed', refused: errors.length, refusals: errors.map(storableNote), detail: storableText(detail) })
-  return { kind: 'refused', detail, errors }
+async function readAndFinish(deps: Deps, outside: Db, row: UploadRow): Promise<UploadOutcome> {
+  try {
+    // What is stored before the file turns out to be none is taken back, and only that.
+    const { end, accepted, alreadyHeld } = await deps.db.transaction(tx => storeReading({ ...deps, db: tx }, outside, row))
+    if (end.kind === 'refused') return refuse(deps, row.id, end.detail)
+    await pointOutMisfits(deps, row.id)
+    await finish(deps, row, { state: 'finished', format: end.format, accepted, alreadyHeld, refused: end.refusals })
+    return { kind: 'finished' }
+  }
+  catch (error) {
+    if (!(error instanceof RefusedWhole)) throw error
+    await storeNotes(deps, row.id, jsonBytes(error.end.errors!.map(note => ({ kind: 'refusal', ...storableNote(note) }))))
+    return refuse(deps, row.id, error.end.detail)
+  }
+
+  async function refuse(deps: Deps, id: string, detail: string): Promise<UploadOutcome> {
+    const refusals = and(eq(elementUploadNotes.uploadId, id), eq(elementUploadNotes.kind, 'refusal'))
+    const count = await deps.db.$count(elementUploadNotes, refusals)
+    await finish(deps, row, { state: 'failed', refused: count, detail: storableText(detail) })
+    const errors = await deps.db.select({ line: elementUploadNotes.line, code: elementUploadNotes.code, message: elementUploadNotes.message }).from(elementUploadNotes)
+      .where(refusals).orderBy(elementUploadNotes.line, elementUploadNotes.id).limit(errorsShown)
+    return { kind: 'refused', detail, errors, count }
+  }
 }
 
-async function finish(deps: Deps, uploadId: string, values: Partial<typeof elementUploads.$inferInsert>): Promise<void> {
-  const [row] = await deps.db.update(elementUploads).set(values).where(eq(elementUploads.id, uploadId)).returning(briefColumns)
-  const { sha256, totalBytes, fileName, source, state, format, accepted, alreadyHeld, refused } = row!
-  await recordAudit(deps, { action: 'element-sets.upload', entityKind: 'element-upload', entityId: uploadId, after: { state, source, fileName, format, totalBytes, sha256, accepted, alreadyHeld, refused } })
+/** @throws Cancelled where somebody was quicker than the end */
+async function finish(deps: Deps, { id, totalBytes }: UploadRow, values: Partial<typeof elementUploads.$inferInsert>): Promise<void> {
+  const finishedAt = await databaseNow(deps.db)
+  const [row] = await deps.db.update(elementUploads).set({ ...values, readBytes: totalBytes, finishedAt })
+    .where(and(eq(elementUploads.id, id), eq(elementUploads.state, 'reading'), isNull(elementUploads.cancelRequestedAt))).returning()
+  if (!row) throw new Cancelled()
+  await recordUpload(deps, row)
+}
+
+async function recordUpload(deps: Deps, row: UploadRow): Promise<void> {
+  const { sha256, totalBytes, fileName, source, state, format, accepted, alreadyHeld, refused } = row
+  await recordAudit(deps, { action: 'element-sets.upload', entityKind: 'element-upload', entityId: row.id, after: { state, source, fileName, format, totalBytes, sha256, accepted, alreadyHeld, refused } })
+}
+
+/** Ends an upload that somebody has cancelled, unless it has ended otherwise: nothing of it is stored but its original. */
+export async function markCancelled(deps: Deps, uploadId: string): Promise<void> {
+  await endUnstored(deps, uploadId, { state: 'cancelled', detail: 'Cancelled before it was stored; nothing of it was kept.' })
 }
 
 /** Marks an upload whose storing broke off: nothing of it was kept but its original. */
-export async function markBroken(db: Db, uploadId: string): Promise<void> {
-  await db.update(elementUploads).set({ state: 'failed', detail: 'The server could not store this file; nothing of it was kept. Upload it again.' })
-    .where(and(eq(elementUploads.id, uploadId), inArray(elementUploads.state, unread)))
+export async function markBroken(deps: Deps, uploadId: string): Promise<void> {
+  await endUnstored(deps, uploadId, { state: 'failed', detail: 'The server could not store this file; nothing of it was kept. Upload it again.' })
+}
+
+async function endUnstored(deps: Deps, uploadId: string, values: { state: 'cancelled' | 'failed', detail: string }): Promise<void> {
+  await deps.db.transaction(async (tx) => {
+    const finishedAt = await databaseNow(tx)
+    const [row] = await tx.update(elementUploads).set({ ...values, finishedAt }).where(and(eq(elementUploads.id, uploadId), inArray(elementUploads.state, inHand))).returning()
+    if (row) await recordUpload({ ...deps, db: tx }, row)
+  })
 }

@@ -1,24 +1,32 @@
-import { inArray } from 'drizzle-orm'
-import { elementUploads } from '~~/server/database/schema'
+import { and, eq, inArray, lt, or, sql } from 'drizzle-orm'
+import { elementUploadParts, elementUploads } from '~~/server/database/schema'
 import type { Deps } from '../context'
-import { markBroken, readUpload } from './read-upload'
+import { readOrLeave } from './upload-elements'
+
+/** No request takes longer to send its body: the server itself cuts it off after five minutes. */
+const longestSendingMs = 10 * 60_000
+/** One that has just come is in the hands of whoever received it. */
+const graceMs = 15_000
 
 /**
- * Called at boot: uploads that a stopped process left half done are read now. An upload's original is stored with
- * its row, so nothing has to be sent again; one that cannot be stored either way is marked failed.
+ * Takes up what a stopped server left: at boot at once, later what nobody has had in hand for a while. An upload's original
+ * is stored before it is answered, so nothing has to be sent again; one that was never sent whole is marked failed.
  */
-export async function resumeUploads(deps: Deps): Promise<{ resumed: number, broken: number }> {
-  const left = await deps.db.select({ id: elementUploads.id }).from(elementUploads)
-    .where(inArray(elementUploads.state, ['receiving', 'reading'])).orderBy(elementUploads.createdAt)
-  let broken = 0
+export async function resumeUploads(deps: Deps, { atBoot = true }: { atBoot?: boolean } = {}): Promise<{ resumed: number, broken: number }> {
+  const { db, now } = deps
+  await giveUpUnsent(deps)
+  const settled = lt(elementUploads.createdAt, new Date(now.getTime() - graceMs))
+  const left = await db.select({ id: elementUploads.id }).from(elementUploads)
+    .where(and(eq(elementUploads.state, 'reading'), atBoot ? undefined : or(settled, sql`${elementUploads.cancelRequestedAt} IS NOT NULL`))).orderBy(elementUploads.createdAt)
+  let [resumed, broken] = [0, 0]
   for (const { id } of left) {
-    try {
-      await readUpload(deps, id)
-    }
-    catch {
-      broken++
-      await markBroken(deps.db, id)
-    }
+    await readOrLeave(deps, id).then((outcome) => { if (outcome.kind !== 'elsewhere') resumed++ }, () => { broken++ })
   }
-  return { resumed: left.length - broken, broken }
+  return { resumed, broken }
+}
+
+async function giveUpUnsent({ db, now }: Deps): Promise<void> {
+  const unsent = await db.update(elementUploads).set({ state: 'failed', finishedAt: now, detail: 'The sending was broken off; nothing of it was kept. Upload it again.' })
+    .where(and(eq(elementUploads.state, 'receiving'), lt(elementUploads.createdAt, new Date(now.getTime() - longestSendingMs)))).returning({ id: elementUploads.id })
+  if (unsent.length > 0) await db.delete(elementUploadParts).where(inArray(elementUploadParts.uploadId, unsent.map(({ id }) => id)))
 }

@@ -1,63 +1,70 @@
-import { desc, eq, inArray, sql } from 'drizzle-orm'
+import { and, asc, desc, eq, inArray, sql } from 'drizzle-orm'
+import { unionAll } from 'drizzle-orm/pg-core'
 import { z } from 'zod'
-import type { UploadOut } from '#shared/schemas/elements'
+import type { UploadBrief, UploadOut, uploadsQuery } from '#shared/schemas/elements'
 import type { Db } from '~~/server/database/client'
-import { elementSets, elementUploads, spacecraft } from '~~/server/database/schema'
+import { elementSets, elementUploadHeld, elementUploadNotes, elementUploads, spacecraft } from '~~/server/database/schema'
 import type { Deps } from '../context'
 import { cursorInstant, readCursor, toPage } from '../cursor'
 import { DomainError } from '../errors'
-import { briefColumns, readBytesOf, readOriginal } from './read-upload'
-import { contentSha256 } from './store-sets'
+import type { UploadRow } from './upload-columns'
+import { inHand, isInHand } from './upload-columns'
 
-type Brief = Pick<typeof elementUploads.$inferSelect, keyof typeof briefColumns>
+/** So many lines of each kind stand in an upload's own answer; further ones are paged. */
+const linesShown = 1000
 
-function briefOut(row: Brief) {
-  const isOver = row.state !== 'receiving' && row.state !== 'reading'
+export function briefOut(row: UploadRow): UploadBrief {
+  const { id, state, format, fileName, by, source, totalBytes, accepted, alreadyHeld, refused, detail } = row
   return {
-    id: row.id, state: row.state, format: row.format, fileName: row.fileName, by: row.by, at: row.createdAt.toISOString(),
-    readBytes: isOver ? row.totalBytes : readBytesOf(row.id), totalBytes: row.totalBytes,
-    accepted: row.accepted, alreadyHeld: row.alreadyHeld, refused: row.refused,
+    id, state, format, fileName, by, source, at: row.createdAt.toISOString(), finishedAt: row.finishedAt?.toISOString() ?? null,
+    readBytes: isInHand(row) ? row.readBytes : totalBytes, totalBytes, accepted, alreadyHeld, refused, detail,
+    cancelling: isInHand(row) && row.cancelRequestedAt !== null,
   }
 }
 
 /** Uploads, newest first, without their reports. */
-export async function listUploads({ db }: Pick<Deps, 'db'>, query: { limit: number, cursor?: string }) {
+export async function listUploads({ db }: Pick<Deps, 'db'>, query: Partial<z.output<typeof uploadsQuery>> & { limit: number }) {
   const after = readCursor(query.cursor, z.tuple([cursorInstant, z.uuid()]))
-  const rows = await db.select(briefColumns).from(elementUploads)
-    .where(after ? sql`(${elementUploads.createdAt}, ${elementUploads.id}) < (${after[0]}::timestamptz, ${after[1]}::uuid)` : undefined)
+  const rows = await db.select().from(elementUploads)
+    .where(and(
+      query.inHand === 'true' ? inArray(elementUploads.state, inHand) : undefined,
+      query.source ? eq(elementUploads.source, query.source) : undefined,
+      after ? sql`(${elementUploads.createdAt}, ${elementUploads.id}) < (${after[0]}::timestamptz, ${after[1]}::uuid)` : undefined,
+    ))
     .orderBy(desc(elementUploads.createdAt), desc(elementUploads.id)).limit(query.limit + 1)
   const page = toPage(rows, query.limit, row => [row.createdAt.toISOString(), row.id])
   return { items: page.rows.map(briefOut), nextCursor: page.nextCursor }
 }
 
-/** One upload and its report. */
-export async function getUpload({ db }: Pick<Deps, 'db'>, id: string): Promise<UploadOut> {
-  const [row] = await db.select({ ...briefColumns, refusals: elementUploads.refusals, warnings: elementUploads.warnings }).from(elementUploads).where(eq(elementUploads.id, id))
+export async function findUpload(db: Pick<Db, 'select'>, id: string): Promise<UploadRow> {
+  const [row] = await db.select().from(elementUploads).where(eq(elementUploads.id, id))
   if (!row) throw new DomainError('not-found', 'There is no upload under this address.')
-  return { ...briefOut(row), refusals: row.refusals, warnings: row.warnings, sets: row.state === 'finished' ? await setsOf(db, row) : [] }
+  return row
 }
 
-const setColumns = {
-  id: elementSets.id, line: elementSets.lineNumber, name: elementSets.name, catalogueNumber: elementSets.catalogueNumber, epoch: elementSets.epoch,
-  spacecraftId: elementSets.spacecraftId, spacecraftName: spacecraft.name, state: elementSets.state, key: elementSets.contentSha256,
+/** One upload and its report: the first thousand lines of each kind, the counts of all. */
+export async function getUpload({ db }: Pick<Deps, 'db'>, id: string): Promise<UploadOut> {
+  const row = await findUpload(db, id)
+  const [refusals, warnings] = [await firstNotes(db, id, 'refusal'), await firstNotes(db, id, 'warning')]
+  const warned = warnings.length < linesShown ? warnings.length : await db.$count(elementUploadNotes, and(eq(elementUploadNotes.uploadId, id), eq(elementUploadNotes.kind, 'warning')))
+  return { ...briefOut(row), warned, refusals, warnings, sets: row.state === 'finished' ? await firstSets(db, id) : [] }
 }
-const selectSets = (db: Db) => db.select(setColumns).from(elementSets).leftJoin(spacecraft, eq(spacecraft.id, elementSets.spacecraftId)).$dynamic()
-type SetRow = Awaited<ReturnType<typeof selectSets>>[number]
+
+async function firstNotes(db: Pick<Db, 'select'>, uploadId: string, kind: 'refusal' | 'warning') {
+  const { line, name, code, message } = elementUploadNotes
+  const rows = await db.select({ line, name, code, message }).from(elementUploadNotes)
+    .where(and(eq(elementUploadNotes.uploadId, uploadId), eq(elementUploadNotes.kind, kind))).orderBy(asc(line), asc(elementUploadNotes.id)).limit(linesShown)
+  return rows.map(({ name, ...note }) => name === null ? note : { ...note, name })
+}
 
 /** The sets that an upload brought and those that it brought again, by line. */
-async function setsOf(db: Db, row: Brief): Promise<UploadOut['sets']> {
-  const rows = row.alreadyHeld === 0 ? await selectSets(db).where(eq(elementSets.uploadId, row.id)) : await setsAgain(db, row)
-  return rows.sort((a, b) => a.line - b.line).map(({ key: _, epoch, ...set }) => ({ ...set, epoch: epoch.toISOString() }))
-}
-
-/** A set that was held belongs to the upload that brought it first; that this one holds it too is told by its original. */
-async function setsAgain(db: Db, { id, createdAt }: Brief): Promise<SetRow[]> {
-  const [upload] = await db.select({ original: elementUploads.original }).from(elementUploads).where(eq(elementUploads.id, id))
-  const reading = await readOriginal(upload!.original, createdAt.getTime())
-  if (reading.kind === 'refused') return []
-  const lines = new Map(reading.sets.map(set => [contentSha256(set), set.line]))
-  const keys = [...lines.keys()]
-  const rows: SetRow[] = []
-  for (let start = 0; start < keys.length; start += 10_000) rows.push(...await selectSets(db).where(inArray(elementSets.contentSha256, keys.slice(start, start + 10_000))))
-  return rows.map(set => ({ ...set, line: lines.get(set.key) ?? set.line }))
+async function firstSets(db: Db, uploadId: string): Promise<UploadOut['sets']> {
+  const { id, name, catalogueNumber, epoch, spacecraftId, state } = elementSets
+  const rest = { id, name, catalogueNumber, epoch, spacecraftId, spacecraftName: spacecraft.name, state }
+  const brought = db.select({ line: elementSets.lineNumber, ...rest }).from(elementSets).leftJoin(spacecraft, eq(spacecraft.id, spacecraftId)).where(eq(elementSets.uploadId, uploadId))
+    .orderBy(elementSets.lineNumber).limit(linesShown)
+  const again = db.select({ line: elementUploadHeld.line, ...rest }).from(elementUploadHeld).innerJoin(elementSets, eq(id, elementUploadHeld.elementSetId)).leftJoin(spacecraft, eq(spacecraft.id, spacecraftId))
+    .where(eq(elementUploadHeld.uploadId, uploadId)).orderBy(elementUploadHeld.line).limit(linesShown)
+  const rows = await unionAll(brought, again).orderBy(sql`1`).limit(linesShown)
+  return rows.map(({ epoch, ...set }) => ({ ...set, epoch: epoch.toISOString() }))
 }

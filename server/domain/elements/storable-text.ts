@@ -1,9 +1,9 @@
-import type { UploadNote } from '~~/server/database/schema'
+import type { LineNote } from '#shared/formats/elements/read-elements'
 
 /** PostgreSQL holds neither NUL nor halves of surrogate pairs; the upload's original keeps them. */
 export const storableText = (text: string): string => text.replaceAll('\u0000', '\uFFFD').toWellFormed()
 
-export function storableNote(note: UploadNote): UploadNote {
+export function storableNote(note: LineNote): LineNote {
   return { ...note, message: storableText(note.message), ...(note.name === undefined ? {} : { name: storableText(note.name) }) }
 }
 

@@ -1,65 +1,61 @@
-import { createHash } from 'node:crypto'
 import type { UploadOut } from '#shared/schemas/elements'
-import { elementUploads } from '~~/server/database/schema'
 import type { Deps } from '../context'
-import { personId } from '../context'
-import { DomainError } from '../errors'
+import { DomainError, isUnavailable } from '../errors'
+import { lifecycle } from '../schedule/lifecycle'
 import { getUpload } from './show-uploads'
-import { markBroken, readAtOnceBytes, readUpload } from './read-upload'
-import { displayFileName } from './storable-text'
+import type { UploadOutcome } from './read-upload'
+import { errorsShown, markBroken, readUpload } from './read-upload'
+import type { Received, UploadOrigin } from './receive-upload'
+import { receiveUpload, storeHeld } from './receive-upload'
 
-export interface UploadInput {
-  /** What was sent, byte for byte. */
-  bytes: Buffer
-  source: 'file' | 'paste' | 'api' | 'demo'
-  fileName?: string | null
+export interface TakeUp extends UploadOrigin {
   /** Where the sender finds the problems of a file that is refused whole: the field's name. */
   path?: string
 }
+export interface UploadInput extends TakeUp {
+  /** What was sent, byte for byte. */
+  bytes: Buffer
+}
 
-const errorsShown = 100
+/** Handed the end of a reading that goes on behind the answer, to wait for or to log. */
+export type OnBackground = (work: Promise<unknown>) => void
+const unattended: OnBackground = work => void work.catch(() => {})
+
+/** Receives element sets that are all there, and takes them up. */
+export async function uploadElements(deps: Deps, { bytes, path, ...origin }: UploadInput, onBackground?: OnBackground): Promise<UploadOut> {
+  return takeUpUpload(deps, { ...origin, path }, await receiveUpload(deps, origin, [bytes]), onBackground)
+}
 
 /**
- * Receives element sets. Up to 1 MB: the finished report; a file refused whole throws `not-valid` with its lines, and
- * the upload stays on record as failed. Above: the report in state `reading`, and reading goes on behind it
- * (`onBackground` is handed its end, to wait for or to log).
+ * Takes up an upload that has been received. Up to 1 MB: the finished report; a file refused whole throws `not-valid`
+ * with its lines, and the upload stays on record as failed. Above: the report in state `reading`, and reading goes on.
  */
-export async function uploadElements(deps: Deps, input: UploadInput, onBackground: (work: Promise<void>) => void = work => void work.catch(() => {})): Promise<UploadOut> {
-  const { db, actor, now } = deps
-  const [row] = await db.insert(elementUploads).values({
-    state: 'reading',
-    by: actor.name,
-    personId: personId(actor),
-    fileName: displayFileName(input.fileName),
-    source: input.source,
-    original: input.bytes,
-    sha256: createHash('sha256').update(input.bytes).digest('hex'),
-    totalBytes: input.bytes.length,
-    createdAt: now,
-  }).returning({ id: elementUploads.id })
-  const { id } = row!
-  if (input.bytes.length > readAtOnceBytes) {
-    onBackground(readInBackground(deps, id, input.bytes))
-    return getUpload(deps, id)
+export async function takeUpUpload(deps: Deps, { path = 'file', ...origin }: TakeUp, received: Received, onBackground = unattended): Promise<UploadOut> {
+  if (received.kind === 'stored') {
+    onBackground(readOrLeave(deps, received.id))
+    return getUpload(deps, received.id)
   }
-  const outcome = await readUpload(deps, id, input.bytes).catch(async (error: unknown) => {
-    await markBroken(db, id).catch(() => {})
-    throw error
-  })
+  const id = await storeHeld(deps, origin, received)
+  const outcome = await readOrLeave(deps, id)
   if (outcome.kind === 'refused') {
-    const more = outcome.errors.length > errorsShown ? ` The first ${errorsShown} are listed.` : ''
-    throw new DomainError('not-valid', outcome.detail + more, outcome.errors.slice(0, errorsShown).map(({ message, line }) => ({ path: input.path ?? 'file', message, line })))
+    const more = outcome.count > errorsShown ? ` The first ${errorsShown} are listed.` : ''
+    throw new DomainError('not-valid', outcome.detail + more, outcome.errors.map(({ message, line }) => ({ path, message, line })))
   }
   return getUpload(deps, id)
 }
 
-async function readInBackground(deps: Deps, id: string, bytes: Buffer): Promise<void> {
+/**
+ * Reads an upload. One that the database was out of reach for, or that the server's own end cut off, is left as it is and
+ * taken up again later, here or elsewhere; one that cannot be stored is marked failed.
+ */
+export async function readOrLeave(deps: Deps, id: string): Promise<UploadOutcome> {
   try {
-    await readUpload(deps, id, bytes)
+    return await readUpload(deps, id)
   }
   catch (error) {
-    // Where even this fails the upload stays in `reading` and is resumed at the next boot.
-    await markBroken(deps.db, id).catch(() => {})
+    const comesBack = lifecycle.stopping || isUnavailable(error) || (error instanceof DomainError && error.code === 'unavailable')
+    // Where even this fails the upload stays in `reading` and is taken up again.
+    if (!comesBack) await markBroken(deps, id).catch(() => {})
     throw error
   }
 }

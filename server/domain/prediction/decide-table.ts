@@ -33,6 +33,8 @@ export interface TableCase {
   readonly known: KnownTable | null
   readonly served: ServedLink
   readonly predicted: PredictedTable
+  /** Of all that this pass's table is made of. */
+  readonly digest: string
   readonly elementSetId: string
   /** Why the prediction was made, in words. */
   readonly reason: string
@@ -100,7 +102,7 @@ function draft(given: TableCase, planned: PlannedTable): TableDecision {
   return { insert: { id, tableId, number, state, verdict, radioId, elementSetId, retunes, check, inputsDigest, reason, ...approval, updatedAt: now, createdAt: now }, audits }
 }
 
-const rowsOf = ({ served, elementSetId }: TableCase, planned: PlannedTable) => ({ ...planned, radioId: served.radio.id, elementSetId, inputsDigest: served.digest })
+const rowsOf = ({ served, elementSetId, digest }: TableCase, planned: PlannedTable) => ({ ...planned, radioId: served.radio.id, elementSetId, inputsDigest: digest })
 
 /** By how much the published rows have moved, for whoever reads why there is a newer revision. */
 function whyAnew(out: Pick<KnownRevision, 'verdict' | 'worstResidualHz'>, recheck: Recheck, reason: string): string {

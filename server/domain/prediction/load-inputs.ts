@@ -1,16 +1,18 @@
 import { createHash } from 'node:crypto'
 import { and, asc, eq, isNull } from 'drizzle-orm'
 import { canonicalJson } from '#shared/formats/canonical-json'
-import type { LinkModel, MeanElements, RadioModel, Site } from '#shared/physics/types'
+import type { LinkModel, MeanElements, RadioModel, Site, Span } from '#shared/physics/types'
 import type { Settings } from '#shared/schemas/settings'
 import { antennas, elementSets, links, radios, spacecraft, stations } from '~~/server/database/schema'
 import type { Deps } from '../context'
 import { DomainError } from '../errors'
+import { manoeuvresOf } from '../manoeuvres/manoeuvres-of'
 import { readSettings } from '../settings/read-settings'
 import { ut1InForce } from '../settings/ut1-in-force'
 import { learnedAccuracy } from './learned-accuracy'
 import type { BudgetParameters, LinkRow, RadioRow, SpacecraftRow, StationRow } from './models'
 import { budgetParametersOf, isUplinkOf, linkMinElevationRad, linkModelOf, radioFor, radioModelOf, siteOf } from './models'
+import { loadQuiet } from './quiet-spans'
 
 /** AOS is uncertain by a second or two; a newer set may bring it forward by some more. */
 const LARGEST_LEAD_MS = 30_000
@@ -27,8 +29,12 @@ export interface ServedLink {
   readonly budget: BudgetParameters
   /** How much before AOS the first row takes effect. */
   readonly firstRowLeadMs: number
-  /** SHA-256 of all that goes into a table of this link beside the pass itself. */
+  /** Spans in which no row may take effect; those of any pass to come. */
+  readonly quiet: readonly Span[]
+  /** SHA-256 of all that goes into a table of this link beside the pass itself, its quiet spans and its uplink. */
   readonly digest: string
+  /** The uplink that a coherent downlink turns around: its table goes into this link's. Null for all other links. */
+  readonly uplink: ServedLink | null
 }
 
 export interface PairInputs {
@@ -59,6 +65,8 @@ export async function loadInputs({ db, now }: Pick<Deps, 'db' | 'now'>, { spacec
   const ut1 = ut1InForce(settings, now)
   const site = siteOf(station)
   const learned = set && await learnedAccuracy({ db }, { spacecraftId, elements: set.elements, settings })
+  const manoeuvres = await manoeuvresOf({ db }, spacecraftId)
+  const quiet = await loadQuiet({ db, now }, { stationId, spacecraftId, linkIds: linkRows.map(link => link.id) })
 
   const served: ServedLink[] = []
   const unserved = new Map<string, string>()
@@ -66,10 +74,10 @@ export async function loadInputs({ db, now }: Pick<Deps, 'db' | 'now'>, { spacec
     const radio = set && radioFor(link, set.elements, radioRows.map(row => row.radio))
     const setupS = radioRows.find(row => row.radio === radio)?.setupS ?? 0
     if (link.retiredAt) unserved.set(link.id, 'The link has been retired.')
-    else if (set && learned && radio) served.push(serve({ craft, station, link, radio, setupS, elements: set.elements, settings, learned, ut1, site }))
+    else if (set && learned && radio) served.push(serve({ craft, station, link, radio, setupS, elements: set.elements, settings, learned, manoeuvres, ut1, site, quiet: quiet.get(link.id) ?? [] }))
     else unserved.set(link.id, `No radio at ${station.name} covers this link any more.`)
   }
-  return { craft, station, settings, set: set ?? null, stopped: whyStopped(craft, station, set !== undefined), site, ut1, served: served.map(link => withUplink(link, served)), unserved }
+  return { craft, station, settings, set: set ?? null, stopped: whyStopped(craft, station, set !== undefined), site, ut1, served: served.map(link => ({ ...link, uplink: served.find(other => isUplinkOf(other.model, link.model)) ?? null })), unserved }
 }
 
 function whyStopped(craft: SpacecraftRow, station: StationRow, hasSet: boolean): string | null {
@@ -78,23 +86,17 @@ function whyStopped(craft: SpacecraftRow, station: StationRow, hasSet: boolean):
   return hasSet ? null : `${craft.name} has no element set in use.`
 }
 
-type Sources = Parameters<typeof budgetParametersOf>[0] & { link: LinkRow, site: Site, setupS: number }
+type Sources = Parameters<typeof budgetParametersOf>[0] & { link: LinkRow, site: Site, setupS: number, quiet: readonly Span[] }
 
-function serve({ craft, station, link, radio, setupS, elements, settings, learned, ut1, site }: Sources): ServedLink {
+function serve({ craft, station, link, radio, setupS, elements, settings, learned, manoeuvres, ut1, site, quiet }: Sources): ServedLink {
   const model = linkModelOf(link)
   const minElevationRad = linkMinElevationRad(link)
   const radioModel = radioModelOf(radio)
-  const budget = budgetParametersOf({ craft, station, radio, elements, settings, learned, ut1 })
+  const budget = budgetParametersOf({ craft, station, radio, elements, settings, learned, manoeuvres, ut1 })
   // The antenna is free for its set-up time before a pass, so the radio may be, too.
   const firstRowLeadMs = Math.min(LARGEST_LEAD_MS, setupS * 1000)
   const inputs = { elements, site, model, minElevationRad, radioId: radio.id, radioModel, budget, firstRowLeadMs }
-  return { link, radio, model, minElevationRad, radioModel, budget, firstRowLeadMs, digest: inputsDigest(inputs) }
-}
-
-/** The table of a coherent downlink is made of its uplink's, too; nothing changes for other links. */
-function withUplink(link: ServedLink, served: readonly ServedLink[]): ServedLink {
-  const uplink = served.find(other => isUplinkOf(other.model, link.model))
-  return uplink ? { ...link, digest: createHash('sha256').update(`${link.digest} ${uplink.digest}`).digest('hex') } : link
+  return { link, radio, model, minElevationRad, radioModel, budget, firstRowLeadMs, quiet, digest: inputsDigest(inputs), uplink: null }
 }
 
 /** Names of objects and the like change nothing in a prediction; raise `version` when the computing itself changes. */
@@ -108,6 +110,6 @@ export function fingerprint(inputs: PairInputs): string {
   const { set, stopped, settings, site, ut1, served, unserved } = inputs
   return canonicalJson({
     set: set?.id ?? null, stopped, site, ut1, horizonDays: settings.horizonDays,
-    served: served.map(({ link, digest }) => [link.id, digest, link.approveWhatHolds]), unserved: [...unserved],
+    served: served.map(({ link, digest, quiet }) => [link.id, digest, quiet.map(span => [span.fromMs, span.toMs]), link.approveWhatHolds]), unserved: [...unserved],
   })
 }

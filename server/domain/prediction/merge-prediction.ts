@@ -6,6 +6,7 @@ import type { RevisionChange, RevisionInsert, TableDecision } from './decide-tab
 import { decideTable, lapse } from './decide-table'
 import type { PairInputs, ServedLink } from './load-inputs'
 import type { KnownPass, KnownTable } from './load-known'
+import { tableDigest } from './quiet-spans'
 import type { RecheckOutcome } from './recheck-outcome'
 
 export interface PassChange { id: string, elementSetId: string, aos: string, culmination: string, los: string, maxElevationDeg: number }
@@ -69,7 +70,7 @@ function mergePass(merge: Merge, given: MergeCase, pass: StationPass, known: Kno
     const table = known?.tables.find(({ linkId }) => linkId === predicted.linkId) ?? null
     const tableId = table?.id ?? randomUUID()
     if (!table && predicted.planned) merge.tableInserts.push({ id: tableId, passId, linkId: served.link.id, createdAt: now })
-    take(merge, decideTable({ tableId, known: table, served, predicted, elementSetId, reason, now, newId: randomUUID }))
+    take(merge, decideTable({ tableId, known: table, served, predicted, digest: tableDigest(served, pass), elementSetId, reason, now, newId: randomUUID }))
     if (table?.out) merge.rechecks.push(recheckOf(passId, table, served, predicted))
   }
   for (const table of known?.tables ?? []) {

@@ -5,6 +5,8 @@ import { isTurnedAroundTo } from '#shared/physics/doppler/two-way'
 import type { BudgetModel, ConverterModel, LinkModel, MeanElements, RadioModel, RampModel, Site } from '#shared/physics/types'
 import type { Settings } from '#shared/schemas/settings'
 import type { links, radios, spacecraft, stations } from '~~/server/database/schema'
+import type { ManoeuvreRow } from '../manoeuvres/manoeuvres-of'
+import { unknownTo } from '../manoeuvres/manoeuvres-of'
 
 export type SpacecraftRow = typeof spacecraft.$inferSelect
 export type StationRow = typeof stations.$inferSelect
@@ -60,13 +62,19 @@ export function converterOf({ converterLoHz, converterInverts }: Pick<RadioRow, 
   return converterLoHz === null ? null : { loHz: converterLoHz, inverts: converterInverts }
 }
 
-/** The spacecraft's own along-track accuracy where it is stated, else what its sets have taught, which is the prior where they are few. */
-export function alongTrackOf(craft: SpacecraftRow, elements: MeanElements, learned: AlongTrackGrowth): AlongTrackModel {
+/**
+ * The spacecraft's own along-track accuracy where it is stated, else what its sets have taught, which is the prior where
+ * they are few; wider after a manoeuvre that the elements do not know of.
+ */
+export function alongTrackOf(craft: SpacecraftRow, elements: MeanElements, learned: AlongTrackGrowth, manoeuvres: readonly ManoeuvreRow[]): AlongTrackModel {
+  const unknown = unknownTo(elements, manoeuvres)
   return {
     floorKm: craft.alongTrackFloorKm ?? learned.floorKm,
     growthKmPerDay: craft.alongTrackGrowthKmPerDay ?? learned.growthKmPerDay,
     epochMs: elements.epochUtcUs / 1000,
     speedMps: meanSpeedMps(elements),
+    // Nothing where there is none, so that digests stay what they were.
+    ...(unknown.length > 0 ? { manoeuvres: unknown } : {}),
   }
 }
 
@@ -77,10 +85,11 @@ export interface BudgetSources {
   readonly elements: MeanElements
   readonly settings: Pick<Settings, 'k'>
   readonly learned: AlongTrackGrowth
+  readonly manoeuvres: readonly ManoeuvreRow[]
   readonly ut1: { readonly ut1MinusUtcS: number, readonly boundS: number }
 }
 
-export function budgetParametersOf({ craft, station, radio, elements, settings, learned, ut1 }: BudgetSources): BudgetParameters {
+export function budgetParametersOf({ craft, station, radio, elements, settings, learned, manoeuvres, ut1 }: BudgetSources): BudgetParameters {
   return {
     clockErrorMs: station.clockErrorMs,
     ut1MinusUtcS: ut1.ut1MinusUtcS,
@@ -88,7 +97,7 @@ export function budgetParametersOf({ craft, station, radio, elements, settings, 
     spacecraftPpm: craft.oscillatorPpm,
     stationPpm: radio.referencePpm,
     k: settings.k,
-    alongTrack: alongTrackOf(craft, elements, learned),
+    alongTrack: alongTrackOf(craft, elements, learned, manoeuvres),
   }
 }
 

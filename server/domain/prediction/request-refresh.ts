@@ -32,9 +32,7 @@ export async function requestRefresh({ db }: Pick<Deps, 'db'>, request: RefreshR
       spacecraftIds && inArray(spacecraft.id, [...spacecraftIds]),
     ))
     .orderBy(spacecraft.id, stations.id)
-  for (const pair of pairs) {
-    await enqueueOnce(db, 'predict', { ...pair, reason }, { key: `${pair.spacecraftId}:${pair.stationId}`, priority })
-  }
+  await enqueueOnce(db, 'predict', pairs.map(pair => ({ key: `${pair.spacecraftId}:${pair.stationId}`, data: { ...pair, reason } })), { priority })
   return pairs.length
 }
 

@@ -1,14 +1,16 @@
 import type { KnownTableTask, LinkTask, PredictStationInput } from '~~/server/workers/tasks/predict-station'
 import type { PairInputs, ServedLink } from './load-inputs'
 import type { KnownPass, KnownTable } from './load-known'
+import type { PassTimes } from './quiet-during'
+import { tableDigest } from './quiet-spans'
 
 const HOUR_MS = 3_600_000
 
 /** A pass that began up to an hour ago is still seen whole. */
 export const windowStart = (now: Date): Date => new Date(now.getTime() - HOUR_MS)
 
-export function linkTaskOf({ link, model, minElevationRad, radioModel, budget, firstRowLeadMs }: ServedLink): LinkTask {
-  return { linkId: link.id, model, minElevationRad, radioModel, budget, firstRowLeadMs }
+export function linkTaskOf({ link, model, minElevationRad, radioModel, budget, firstRowLeadMs, quiet }: ServedLink): LinkTask {
+  return { linkId: link.id, model, minElevationRad, radioModel, budget, firstRowLeadMs, quiet: [...quiet] }
 }
 
 /** The horizon, or as far as passes are known already, so that a shorter horizon leaves none with old elements. */
@@ -33,14 +35,16 @@ export function workerInputOf(inputs: PairInputs & { set: object }, known: reado
       gone: pass.gone,
       tables: pass.tables.flatMap((table) => {
         const served = inputs.served.find(({ link }) => link.id === table.linkId)
-        return served ? [tableTaskOf(table, served)] : []
+        return served ? [tableTaskOf(table, served, { aosMs: pass.aos.getTime(), losMs: pass.los.getTime() })] : []
       }),
     })),
   }
 }
 
 /** Rows made with the same inputs are not made again; rows that are out are rechecked once their inputs have changed. */
-function tableTaskOf({ linkId, open, out, last }: KnownTable, { digest, radio }: ServedLink): KnownTableTask {
+function tableTaskOf({ linkId, open, out, last }: KnownTable, served: ServedLink, pass: PassTimes): KnownTableTask {
+  const { radio } = served
+  const digest = tableDigest(served, pass)
   const isOutCurrent = out?.inputsDigest === digest
   const task: KnownTableTask = {
     linkId,

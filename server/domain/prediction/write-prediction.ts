@@ -8,19 +8,23 @@ import type { Merge } from './merge-prediction'
 const CHUNK = 50
 const MOST_RETUNES = 10_000
 
-/** Writes a prediction in a few statements; inside the caller's transaction. */
+/**
+ * Writes a prediction in a few statements; inside the caller's transaction. A pass counts what a calendar has to be told (RFC 5546,
+ * section 2.1.4): AOS or LOS moved by a second as calendars write them, it went, or it came back.
+ */
 export async function writePrediction(deps: Deps, merge: Merge): Promise<void> {
   const { db, now } = deps
   for (const rows of chunks(merge.passInserts)) await db.insert(passes).values(rows)
   for (const rows of chunks(merge.passChanges)) {
     await db.execute(sql`
-      UPDATE passes SET element_set_id = new.element_set_id, aos = new.aos, culmination = new.culmination, los = new.los, max_elevation_deg = new.max_elevation_deg, gone_at = NULL
+      UPDATE passes SET element_set_id = new.element_set_id, aos = new.aos, culmination = new.culmination, los = new.los, max_elevation_deg = new.max_elevation_deg, gone_at = NULL,
+        calendar_sequence = passes.calendar_sequence + CASE WHEN passes.gone_at IS NOT NULL OR date_trunc('second', passes.aos) <> date_trunc('second', new.aos) OR date_trunc('second', passes.los) <> date_trunc('second', new.los) THEN 1 ELSE 0 END
       FROM jsonb_to_recordset(${JSON.stringify(rows.map(row => ({ ...row, element_set_id: row.elementSetId, max_elevation_deg: row.maxElevationDeg })))}::jsonb)
         AS new(id uuid, element_set_id uuid, aos timestamptz, culmination timestamptz, los timestamptz, max_elevation_deg double precision)
       WHERE passes.id = new.id`)
   }
   for (const ids of chunks(merge.gonePassIds)) {
-    await db.execute(sql`UPDATE passes SET gone_at = ${now.toISOString()} WHERE id IN (SELECT value::uuid FROM jsonb_array_elements_text(${JSON.stringify(ids)}::jsonb))`)
+    await db.execute(sql`UPDATE passes SET gone_at = ${now.toISOString()}, calendar_sequence = calendar_sequence + 1 WHERE id IN (SELECT value::uuid FROM jsonb_array_elements_text(${JSON.stringify(ids)}::jsonb))`)
   }
   for (const rows of chunks(merge.tableInserts)) await db.insert(tables).values(rows)
   for (const rows of chunks(merge.lapses)) {

@@ -10,7 +10,7 @@ const schedulerSilenceMs = 60_000
 export async function checkReadiness(): Promise<Record<string, string>> {
   return {
     ...await checkDatabase(),
-    scheduler: Date.now() - lifecycle.schedulerBeatAt < schedulerSilenceMs ? 'ok' : 'has not woken for a minute',
+    ...(process.env.NULLBEAT_ROLE === 'worker' ? {} : { scheduler: Date.now() - lifecycle.schedulerBeatAt < schedulerSilenceMs ? 'ok' : 'has not woken for a minute' }),
     ...(lifecycle.demo === 'off' ? {} : { demo: lifecycle.demo === 'loaded' ? 'ok' : lifecycle.demo }),
     ...(lifecycle.stopping ? { process: 'stopping' } : {}),
   }

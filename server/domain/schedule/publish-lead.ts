@@ -1,10 +1,10 @@
 import { sql } from 'drizzle-orm'
 import type { Deps } from '../context'
-import { at } from '../alerts/coming-tables'
+import { at, comingTables, leadSlot } from '../alerts/coming-tables'
 import type { DueTable } from './publish-approved'
 import { describePublished, publishApproved } from './publish-approved'
 import type { Slot } from './slot'
-import { claimSlot, finishSlot, lateness, releaseSlot } from './slot'
+import { claimSlot, finishSlot, lateness, leadNotDone, releaseSlot } from './slot'
 
 export interface DueLead extends DueTable { instant: Date, state: 'drafted' | 'approved' | 'held' }
 
@@ -14,17 +14,13 @@ interface Row extends Record<string, unknown> { table_id: string, spacecraft_id:
 export async function findDueLeads({ db, now }: Pick<Deps, 'db' | 'now'>): Promise<DueLead[]> {
   const { rows } = await db.execute<Row>(sql`
     SELECT t.id AS table_id, p.spacecraft_id, sc.name AS spacecraft, p.station_id, st.name AS station, l.name AS link, p.aos, r.state,
-      p.aos - make_interval(mins => st.publish_lead_minutes) AS due
-    FROM passes p
-    JOIN stations st ON st.id = p.station_id AND st.retired_at IS NULL
-    JOIN spacecraft sc ON sc.id = p.spacecraft_id AND sc.retired_at IS NULL
-    JOIN tables t ON t.pass_id = p.id
-    JOIN links l ON l.id = t.link_id AND l.retired_at IS NULL
+      ${leadSlot} AS due
+    FROM ${comingTables}
     JOIN table_revisions r ON r.table_id = t.id AND r.state IN ('drafted','approved','held')
     WHERE p.gone_at IS NULL AND p.aos > ${at(now)} AND p.aos <= ${at(new Date(now.getTime() + 24 * 3600_000))}
-      AND p.aos - make_interval(mins => st.publish_lead_minutes) <= ${at(now)}
+      AND ${leadSlot} <= ${at(now)}
       AND p.aos - make_interval(mins => st.freeze_minutes) > ${at(now)}
-      AND NOT EXISTS (SELECT 1 FROM slots s WHERE s.kind = 'publish-lead' AND s.entity = t.id::text)
+      AND ${leadNotDone(now)}
     ORDER BY p.aos, t.id`)
   return rows.map(row => ({
     tableId: row.table_id, spacecraftId: row.spacecraft_id, spacecraftName: row.spacecraft, stationId: row.station_id, stationName: row.station,

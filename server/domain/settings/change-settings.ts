@@ -5,14 +5,17 @@ import { settings } from '~~/server/database/schema'
 import { recordAudit } from '../audit'
 import type { Deps } from '../context'
 import { difference, touches } from '../difference'
+import { heartbeatPolicy } from '~~/server/outward/policy'
 import { requestRefresh } from '../prediction/request-refresh'
 import { readSettings } from './read-settings'
+import { requireOutward } from '../web-hooks/require-outward'
 import { settingsOverview } from './settings-overview'
 
 /** What every prediction and table is computed with. */
 const predictionSettings = ['horizonDays', 'ut1', 'k', 'prior'] as const
 
 export async function changeSettings(deps: Deps, input: z.output<typeof changeSettingsBody>): Promise<z.infer<typeof settingsOut>> {
+  if (input.heartbeatUrl) await requireOutward(input.heartbeatUrl, 'heartbeatUrl', heartbeatPolicy())
   await deps.db.transaction(async (tx) => {
     const inner = { ...deps, db: tx }
     // Two changes at once take turns, so that the trail's before is what stood.

@@ -1,7 +1,7 @@
 import { DomainError } from '../errors'
 
 /** The notations of a table that stations are served. */
-export const notations = { json: 'application/json', csv: 'text/csv' } as const
+export const notations = { json: 'application/json', csv: 'text/csv', tdm: 'text/plain' } as const
 export type Notation = keyof typeof notations
 
 /**
@@ -15,7 +15,7 @@ export function chooseNotation(accept: string | undefined): Notation {
     .map(notation => ({ notation, quality: qualityOf(notations[notation], ranges) }))
     .reduce((one, other) => other.quality > one.quality ? other : one)
   if (best.quality > 0) return best.notation
-  throw new DomainError('not-acceptable', 'A table is served as application/json or as text/csv: name one of them in Accept.')
+  throw new DomainError('not-acceptable', 'A table is served as application/json, text/csv or text/plain (CCSDS TDM): name one of them in Accept.')
 }
 
 interface Range { type: string, quality: number }

@@ -4,7 +4,10 @@ import { tableRevisions } from '~~/server/database/schema'
 import { recordAudits } from '../audit'
 import type { Deps } from '../context'
 import { loadInputs } from '../prediction/load-inputs'
+import { tableDigest } from '../prediction/quiet-spans'
 import { requestRefresh } from '../prediction/request-refresh'
+import { tableEvent } from '../web-hooks/table-event'
+import { tellHooks } from '../web-hooks/tell-hooks'
 import type { LockedTable, RevisionRow } from './lock-table'
 import { lockTable } from './lock-table'
 import { publishedTableOf } from './published-table-of'
@@ -69,9 +72,10 @@ function refusalOf({ open, newest, pass, station }: LockedTable, { mover, revisi
 }
 
 /** Whether the rows are still what the present inputs lead to: a change asks for a computation, which may not have run yet. */
-async function isCurrent(deps: Deps, { craft, station, link }: LockedTable, open: RevisionRow): Promise<boolean> {
+async function isCurrent(deps: Deps, { craft, station, link, pass }: LockedTable, open: RevisionRow): Promise<boolean> {
   const { stopped, served } = await loadInputs(deps, { spacecraftId: craft.id, stationId: station.id })
-  return stopped === null && served.some(candidate => candidate.link.id === link.id && candidate.digest === open.inputsDigest)
+  const times = { aosMs: pass.aos.getTime(), losMs: pass.los.getTime() }
+  return stopped === null && served.some(candidate => candidate.link.id === link.id && tableDigest(candidate, times) === open.inputsDigest)
 }
 
 async function publish(deps: Deps, table: LockedTable, open: RevisionRow): Promise<PublishOutcome> {
@@ -88,5 +92,7 @@ async function publish(deps: Deps, table: LockedTable, open: RevisionRow): Promi
   await db.update(tableRevisions).set({ state: 'published', publishedAt: now, publishedBy: actor.name, updatedAt: now, ...signed }).where(eq(tableRevisions.id, open.id))
   audits.push(stateAudit('table.publish', { tableId: table.id, revisionId: open.id, revision: open.number, from: open.state, to: 'published', reason: open.reason }))
   await recordAudits(deps, audits)
+  if (out) await tellHooks(deps, 'table.superseded', tableEvent(table, out, { by: open.number, reason }))
+  await tellHooks(deps, 'table.published', tableEvent(table, open, { digest: signed.digest, supersedes: out?.number ?? null, publishedBy: actor.name }))
   return { outcome: 'published', revisionId: open.id, revision: open.number, supersedes: out?.number ?? null }
 }

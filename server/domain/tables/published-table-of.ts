@@ -22,8 +22,9 @@ export async function publishedTableOf({ db, now }: Pick<Deps, 'db' | 'now'>, { 
       station: { id: station.id, name: station.name },
       aos: pass.aos.toISOString(), culmination: pass.culmination.toISOString(), los: pass.los.toISOString(), maxElevationDeg: pass.maxElevationDeg,
     },
-    link: { id: link.id, name: link.name, direction: link.direction, carrierHz: link.carrierHz, symbolRateHz: link.symbolRateHz, bandLowHz: link.bandLowHz, bandHighHz: link.bandHighHz },
+    link: publishedLink(link),
     radio: publishedRadio(radio!),
+    plan: { mode: radio!.planMode, cadenceS: radio!.planMode === 'cadence' ? radio!.cadenceS : null },
     verdict: revision.verdict,
     allowanceHz, limitedBy, worstResidualHz, worstAt, margin, budget, symbolClockPpm,
     elementSet: { id: set!.id, epoch: isoMicroseconds(set!.epochUtcUs), sha256: set!.sha256 },
@@ -31,6 +32,11 @@ export async function publishedTableOf({ db, now }: Pick<Deps, 'db' | 'now'>, { 
     retunes: revision.retunes,
     caution: cautionFor(link.direction),
   })
+}
+
+function publishedLink({ id, name, direction, carrierHz, symbolRateHz, bandLowHz, bandHighHz, turnaroundNumerator, turnaroundDenominator, uplinkPrecompensated }: LockedTable['link']): PublishedTable['link'] {
+  const turnaround = turnaroundNumerator === null || turnaroundDenominator === null ? {} : { turnaround: { numerator: turnaroundNumerator, denominator: turnaroundDenominator, uplinkPrecompensated } }
+  return { id, name, direction, carrierHz, symbolRateHz, bandLowHz, bandHighHz, ...turnaround }
 }
 
 /** The facts of a radio that its rows are read with; ramp and converter where it has them. */

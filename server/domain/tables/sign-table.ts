@@ -13,10 +13,14 @@ export interface SignedTable {
   signature: string
 }
 
+/** The header of what a key signs, as it stands at the beginning of a signature (RFC 7515, section 3.1). */
+export const protectedHeader = (kid: string) => Buffer.from(JSON.stringify(headerOf(kid))).toString('base64url')
+const headerOf = (kid: string) => ({ alg: 'EdDSA', kid })
+
 export async function signTable(table: PublishedTable, key: SigningKey): Promise<SignedTable> {
   const bytes = canonicalTableBytes(table)
   const { protected: header, signature } = await new FlattenedSign(bytes)
-    .setProtectedHeader({ alg: 'EdDSA', kid: key.kid })
+    .setProtectedHeader(headerOf(key.kid))
     .sign(await importJWK(key.privateJwk, 'EdDSA'))
   return {
     canonical: new TextDecoder().decode(bytes),

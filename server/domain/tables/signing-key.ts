@@ -5,15 +5,20 @@ import type { Deps } from '../context'
 
 export interface SigningKey { kid: string, publicJwk: Record<string, string>, privateJwk: Record<string, string> }
 
-/** The installation's signing key (Ed25519), made when it is first needed; its id is the RFC 7638 thumbprint. Several servers get the same one. */
+/** The installation's signing key (Ed25519), made when it is first needed. Several servers get the same one. */
 export async function ensureSigningKey({ db, now }: Pick<Deps, 'db' | 'now'>): Promise<SigningKey> {
   const active = await activeKey({ db })
   if (active) return active
+  await db.insert(signingKeys).values({ ...await makeSigningKey(), createdAt: now }).onConflictDoNothing()
+  return (await activeKey({ db }))!
+}
+
+/** A new pair; its id is the RFC 7638 thumbprint. */
+export async function makeSigningKey(): Promise<SigningKey> {
   const { publicKey, privateKey } = await generateKeyPair('EdDSA', { crv: 'Ed25519', extractable: true })
   const publicJwk = await exportJWK(publicKey) as Record<string, string>
   const privateJwk = await exportJWK(privateKey) as Record<string, string>
-  await db.insert(signingKeys).values({ kid: await calculateJwkThumbprint(publicJwk), publicJwk, privateJwk, createdAt: now }).onConflictDoNothing()
-  return (await activeKey({ db }))!
+  return { kid: await calculateJwkThumbprint(publicJwk), publicJwk, privateJwk }
 }
 
 async function activeKey({ db }: Pick<Deps, 'db'>): Promise<SigningKey | null> {

@@ -1,9 +1,9 @@
 import { and, eq, inArray, ne, sql } from 'drizzle-orm'
 import { alias } from 'drizzle-orm/pg-core'
-import { nextPublication } from '#shared/publication-slots'
+import { nextPublication, timesOf } from '#shared/publication-slots'
 import type { TableBrief } from '#shared/schemas/tables'
 import { openStates, outStates } from '#shared/table-life'
-import { links, passes, spacecraft, stations, tableRevisions, tables } from '~~/server/database/schema'
+import { links, passes, publicationRules, spacecraft, stations, tableRevisions, tables } from '~~/server/database/schema'
 import type { Deps } from '../context'
 import { DomainError } from '../errors'
 
@@ -16,17 +16,18 @@ const columns = {
   linkId: links.id, linkName: links.name, direction: links.direction, carrierHz: links.carrierHz,
   spacecraftId: spacecraft.id, spacecraftName: spacecraft.name,
   station: { id: stations.id, name: stations.name, zone: stations.zone, publishAt: stations.publishAt, publishLeadMinutes: stations.publishLeadMinutes },
+  ownTimes: { publishAt: publicationRules.publishAt, leadMinutes: publicationRules.leadMinutes },
   revision: {
     number: tableRevisions.number, state: tableRevisions.state, verdict: tableRevisions.verdict, reason: tableRevisions.reason,
     approvedBy: tableRevisions.approvedBy, approvedById: tableRevisions.approvedById, secondedBy: tableRevisions.secondedBy,
-    publishedAt: tableRevisions.publishedAt, collectedAt: tableRevisions.collectedAt,
+    publishedAt: tableRevisions.publishedAt, collectedAt: tableRevisions.collectedAt, digest: tableRevisions.digest,
   },
   margin: figure('margin'),
   worstResidualHz: figure('worstResidualHz'),
   allowanceHz: figure('allowanceHz'),
   worstAt: sql<string>`${tableRevisions.check} ->> 'worstAt'`,
   retuneCount: sql<number>`jsonb_array_length(${tableRevisions.retunes})`,
-  out: { number: out.number, state: out.state, publishedAt: out.publishedAt, collectedAt: out.collectedAt, verdict: out.verdict },
+  out: { number: out.number, state: out.state, publishedAt: out.publishedAt, collectedAt: out.collectedAt, verdict: out.verdict, digest: out.digest },
   report: sql<{ outcome: 'loaded' | 'refused', reason: string | null, at: string } | null>`(
     SELECT json_build_object('outcome', report.outcome, 'reason', report.reason, 'at', report.at) FROM station_reports AS report
     WHERE report.revision_id = coalesce(${out.id}, ${tableRevisions.id}) ORDER BY report.at DESC LIMIT 1)`,
@@ -39,12 +40,13 @@ export const selectBriefs = (db: Deps['db']) => db.select(columns).from(tables)
   .innerJoin(spacecraft, eq(spacecraft.id, passes.spacecraftId))
   .innerJoin(stations, eq(stations.id, passes.stationId))
   .innerJoin(tableRevisions, and(eq(tableRevisions.tableId, tables.id), sql`${tableRevisions.number} = (SELECT max(other.number) FROM table_revisions AS other WHERE other.table_id = ${tables.id})`))
+  .leftJoin(publicationRules, and(eq(publicationRules.stationId, stations.id), eq(publicationRules.linkId, links.id)))
   .leftJoin(out, and(eq(out.tableId, tables.id), inArray(out.state, [...outStates]), ne(out.id, tableRevisions.id)))
   .$dynamic()
 export type BriefRow = Awaited<ReturnType<typeof selectBriefs>>[number]
 
 export function briefOf(row: BriefRow, now: Date): TableBrief {
-  const { station, revision, out, report, goneAt, ...plain } = row
+  const { station, ownTimes: _, revision, out, report, goneAt, ...plain } = row
   return {
     ...plain,
     stationId: station.id, stationName: station.name, stationZone: station.zone,
@@ -52,16 +54,16 @@ export function briefOf(row: BriefRow, now: Date): TableBrief {
     revision: revision.number,
     state: revision.state, verdict: revision.verdict, reason: revision.reason,
     approvedBy: revision.approvedBy, approvedById: revision.approvedById, secondedBy: revision.secondedBy,
-    publishedAt: revision.publishedAt?.toISOString() ?? null, collectedAt: revision.collectedAt?.toISOString() ?? null,
-    out: out && { revision: out.number, state: out.state, publishedAt: out.publishedAt!.toISOString(), collectedAt: out.collectedAt?.toISOString() ?? null, verdict: out.verdict },
+    publishedAt: revision.publishedAt?.toISOString() ?? null, collectedAt: revision.collectedAt?.toISOString() ?? null, digest: revision.digest,
+    out: out && { revision: out.number, state: out.state, publishedAt: out.publishedAt!.toISOString(), collectedAt: out.collectedAt?.toISOString() ?? null, verdict: out.verdict, digest: out.digest! },
     publishesAt: goneAt === null ? publishesAt(row, now) : null,
     stationReport: report && { ...report, at: new Date(report.at).toISOString() },
   }
 }
 
-function publishesAt({ station, revision, aos }: BriefRow, now: Date): string | null {
+function publishesAt({ station, ownTimes, revision, aos }: BriefRow, now: Date): string | null {
   if (!openStates.includes(revision.state) || aos <= now) return null
-  const instant = nextPublication({ zone: station.zone, publishAt: station.publishAt, leadMinutes: station.publishLeadMinutes, aosMs: aos.getTime(), afterMs: now.getTime() })
+  const instant = nextPublication({ ...timesOf(station, ownTimes), aosMs: aos.getTime(), afterMs: now.getTime() })
   return instant === null ? null : new Date(instant).toISOString()
 }
 

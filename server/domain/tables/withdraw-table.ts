@@ -4,6 +4,8 @@ import { tableRevisions } from '~~/server/database/schema'
 import { recordAudit } from '../audit'
 import type { Deps, PersonActor } from '../context'
 import { DomainError } from '../errors'
+import { tableEvent } from '../web-hooks/table-event'
+import { tellHooks } from '../web-hooks/tell-hooks'
 import { lockTable } from './lock-table'
 import { requireMove } from './require-decidable'
 import { stateAudit } from './state-audit'
@@ -19,6 +21,7 @@ export async function withdrawTable({ db, actor, now }: Deps<PersonActor>, { id,
     requireMove(out, 'withdraw')
     await tx.update(tableRevisions).set({ state: 'withdrawn', reason, withdrawnAt: now, updatedAt: now }).where(eq(tableRevisions.id, out.id))
     await recordAudit(deps, stateAudit('table.withdraw', { tableId: id, revisionId: out.id, revision: out.number, from: out.state, to: 'withdrawn', reason }))
+    await tellHooks(deps, 'table.withdrawn', tableEvent(table, out, { reason, withdrawnBy: actor.name }))
     return getBrief(deps, id)
   })
 }

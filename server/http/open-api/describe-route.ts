@@ -17,7 +17,7 @@ export function describeRoute(method: string, path: string, spec: RouteSpec): Re
     operationId: operationId(method, path),
     summary: spec.summary,
     description: describeAccess(spec.access),
-    tags: [path.split('/')[2]!.replace('.json', '')],
+    tags: [path.split('/').slice(1).at(path.startsWith('/api/') ? 1 : 0)!.replace('.json', '')],
     security: securityOf(spec.access),
     ...(parameters.length > 0 ? { parameters } : {}),
     ...(spec.rawBody ? { requestBody: uploadBody } : spec.body ? { requestBody: describeBody(spec.body) } : {}),
@@ -57,6 +57,9 @@ const uploadBody = {
 
 function describeAnswers(path: string, spec: RouteSpec): Record<string, object> {
   if (path === '/api/station/v1/tables/{id}') return stationTableAnswers
+  if (path === '/metrics') return { 200: { description: 'Prometheus text exposition format 0.0.4', content: { 'text/plain': text } } }
+  if (path === '/api/station/v1/calendar.ics' || path === '/api/calendars/{token}') return calendarAnswers
+  if (path.startsWith('/api/element-sets/') && path.endsWith('/download')) return elementFileAnswers
   const status = String(spec.status ?? 200)
   const content = spec.response ? { content: { 'application/json': { schema: toSchema(spec.response, 'output') } } } : {}
   const answers: Record<string, object> = { [status]: { description: status === '204' ? 'Done' : status === '201' ? 'Created' : 'As asked', ...content } }
@@ -70,14 +73,27 @@ const stationTableAnswers = {
   200: {
     description: 'The newest published revision; sent whole, it counts as collected',
     headers: { ETag: { description: 'Digest and notation', ...text }, Vary: text },
-    content: { 'application/json': { schema: { type: 'object' } }, 'text/csv': text },
+    content: { 'application/json': { schema: { type: 'object' } }, 'text/csv': text, 'text/plain': text },
   },
   304: { description: 'Nothing newer than what If-None-Match names; counts as collected' },
 }
 
+const elementFileAnswers = {
+  200: {
+    description: 'A file in the notation asked for',
+    headers: { 'Content-Disposition': { description: 'Names the file', ...text }, 'Rounded-Values': { description: 'Keywords whose values a TLE rounds; absent where none is', ...text } },
+    content: { 'text/plain': text, 'application/xml': text, 'application/json': { schema: { type: 'array', items: { type: 'object' } } }, 'text/csv': text },
+  },
+}
+
+const calendarAnswers = {
+  200: { description: 'An event a pass; what is no longer predicted has status CANCELLED', headers: { ETag: { description: 'Of the content', ...text } }, content: { 'text/calendar': text } },
+  304: { description: 'Nothing has changed since' },
+}
+
 function errorsOf(method: string, path: string, spec: RouteSpec): ErrorCode[] {
   const errors: ErrorCode[] = spec.access.kind === 'public' ? [] : ['not-signed-in', 'not-allowed']
-  if (spec.params || path.startsWith('/api/auth/links/')) errors.push('not-found')
+  if (spec.params || path.startsWith('/api/auth/links/') || path === '/api/element-sets/download') errors.push('not-found')
   if (spec.query || spec.body || spec.rawBody) errors.push('not-valid')
   if (spec.body || spec.rawBody) errors.push('unreadable', 'too-large', 'wrong-type')
   if (method !== 'GET') errors.push('conflict')
@@ -93,13 +109,14 @@ function securityOf(access: Access): object[] {
   const key = { key: [] }
   if (access.kind === 'public') return []
   if (access.kind === 'person') return [session]
-  if (access.kind === 'station-key') return [key]
+  if (access.kind === 'station-key' || access.kind === 'metrics-key') return [key]
   return access.keys.length > 0 ? [session, key] : [session]
 }
 
 function describeAccess(access: Access): string {
   if (access.kind === 'public') return `Anybody. ${access.why}`
   if (access.kind === 'person') return 'Any signed-in person.'
+  if (access.kind === 'metrics-key') return 'A key of scope metrics.'
   if (access.kind === 'station-key') return 'A station’s key, for its own station.'
   const roles = `People of the roles ${permissions[access.permission].map(role => roleNames[role].toLowerCase()).join(', ')}`
   return access.keys.length > 0 ? `${roles}; keys of scope ${access.keys.join(', ')}.` : `${roles}.`

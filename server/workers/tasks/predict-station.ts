@@ -3,16 +3,17 @@ import { findPasses } from '#shared/physics/orbit/passes'
 import { createPropagator } from '#shared/physics/orbit/propagator'
 import type { TableQuery } from '#shared/physics/predict/build-table'
 import { buildTable, residualOfRows } from '#shared/physics/predict/build-table'
-import type { Ephemeris, LinkModel, MeanElements, PredictedPass, PropagationError, RadioModel, RetuneRow, Site, TableCheck, UplinkInUse, UtcMs, Verdict } from '#shared/physics/types'
+import type { Ephemeris, LinkModel, MeanElements, PredictedPass, PropagationError, RadioModel, RetuneRow, Site, Span, TableCheck, UplinkInUse, UtcMs, Verdict } from '#shared/physics/types'
 import { needsNewRevision } from '#shared/table-life'
 import type { StoredCheck, StoredRetune } from '~~/server/database/schema'
 import { identityToleranceMs, matchPasses } from '~~/server/domain/prediction/match-passes'
 import type { BudgetParameters } from '~~/server/domain/prediction/models'
 import { isUplinkOf } from '~~/server/domain/prediction/models'
+import { quietDuring } from '~~/server/domain/prediction/quiet-during'
 import { budgetModelOf } from './budget-model'
 import { isoOf, storedCheck, storedRetune } from './stored-table'
 
-export interface LinkTask { linkId: string, model: LinkModel, minElevationRad: number, radioModel: RadioModel, budget: BudgetParameters, firstRowLeadMs: number }
+export interface LinkTask { linkId: string, model: LinkModel, minElevationRad: number, radioModel: RadioModel, budget: BudgetParameters, firstRowLeadMs: number, quiet: Span[] }
 
 /** What is to be done for a table that exists: rows that are out are rechecked, a plan is made or not. */
 export interface KnownTableTask {
@@ -32,6 +33,8 @@ export interface PredictStationInput {
   toMs: UtcMs
   links: LinkTask[]
   known: KnownPassTask[]
+  /** What tables exist is looked at; none is made where there is none. */
+  onlyKnown?: boolean
 }
 
 export interface Recheck { verdict: Verdict, worstResidualHz: number, worstAt: string, allowanceHz: number, moved: boolean }
@@ -74,19 +77,24 @@ export function predictStation(input: PredictStationInput): PredictStationOutput
         culminationMs: Math.round(pass.culminationMs),
         losMs: Math.round(pass.losMs),
         maxElevationDeg: pass.maxElevationRad * 180 / Math.PI,
-        tables: untouched ? [] : tablesOf(input.links, known, { ephemeris, site, pass }),
+        tables: untouched ? [] : tablesOf(input, known, { ephemeris, site, pass }),
       }
     }),
   }
 }
 
+const tableOf = (pass: KnownPassTask | null, { linkId }: LinkTask): KnownTableTask | undefined => pass?.tables.find(table => table.linkId === linkId)
+
+function linksFor({ links, onlyKnown }: PredictStationInput, pass: KnownPassTask | null): LinkTask[] {
+  return onlyKnown ? links.filter(link => tableOf(pass, link)) : links
+}
+
 interface PassOf { readonly ephemeris: Ephemeris, readonly site: Site, readonly pass: PredictedPass }
 
-function tablesOf(links: readonly LinkTask[], known: KnownPassTask | null, at: PassOf): PredictedTable[] {
-  const knownOf = (link: LinkTask) => known?.tables.find(table => table.linkId === link.linkId)
-  return links.map((link) => {
-    const uplink = links.find(other => isUplinkOf(other.model, link.model))
-    return predictTable(link, knownOf(link), at, () => uplink ? uplinkInUse(uplink, knownOf(uplink), at) : null)
+function tablesOf(input: PredictStationInput, known: KnownPassTask | null, at: PassOf): PredictedTable[] {
+  return linksFor(input, known).map((link) => {
+    const uplink = input.links.find(other => isUplinkOf(other.model, link.model))
+    return predictTable(link, tableOf(known, link), at, () => uplink ? uplinkInUse(uplink, tableOf(known, uplink), at) : null)
   })
 }
 
@@ -100,8 +108,10 @@ function uplinkInUse(task: LinkTask, known: KnownTableTask | undefined, at: Pass
   return { carrierHz: task.model.carrierHz, radio: task.radioModel, parts: built.parts, retunes: (stays ? out : built.check).retunes }
 }
 
-function queryOf({ model: link, minElevationRad: linkMinElevationRad, radioModel: radio, budget }: LinkTask, { ephemeris, site, pass }: PassOf): TableQuery {
-  return { propagator: ephemeris.propagator, ephemeris, site, link, linkMinElevationRad, radio, budget: budgetModelOf(budget), pass }
+function queryOf(task: LinkTask, { ephemeris, site, pass }: PassOf): TableQuery {
+  const { model: link, minElevationRad: linkMinElevationRad, radioModel: radio } = task
+  const quiet = quietDuring(task.quiet, pass, task.firstRowLeadMs)
+  return { propagator: ephemeris.propagator, ephemeris, site, link, linkMinElevationRad, radio, budget: budgetModelOf(task.budget), pass, quiet }
 }
 
 const isMoved = (out: NonNullable<KnownTableTask['out']>, { verdict, worstResidualHz, allowance }: TableCheck): boolean =>

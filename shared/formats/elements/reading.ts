@@ -22,7 +22,7 @@ export interface ReadSet {
   readonly warnings: readonly LineNote[]
 }
 
-export type ElementFormat = 'tle' | 'omm-json'
+export type ElementFormat = 'tle' | 'omm-kvn' | 'omm-xml' | 'omm-json' | 'omm-csv'
 
 export type ElementReading =
   | {
@@ -37,6 +37,19 @@ export type ElementReading =
   }
   | { readonly kind: 'refused', readonly detail: string, readonly errors: readonly LineNote[] }
 
+/** Where a reader's findings go, one by one, in the order of the file: into lists, or on in batches. */
+export interface SetSink {
+  set(set: ReadSet): void
+  refusal(note: LineNote): void
+  warning(note: LineNote): void
+}
+
+/** How a reading ended, when its findings have gone to a sink. */
+export type ReadingEnd =
+  | { readonly kind: 'read', readonly format: ElementFormat, readonly sets: number, readonly refusals: number, readonly repeated: number }
+  /** Nothing of the file may be taken, whatever went to the sink before; `errors` null: every set was refused, and the sink has the reasons. */
+  | { readonly kind: 'refused', readonly detail: string, readonly errors: readonly LineNote[] | null }
+
 /** Thrown while one set is read; ends that set only. */
 export class SetRefusal extends Error {
   constructor(readonly line: number, readonly code: string, message: string) {
@@ -45,10 +58,18 @@ export class SetRefusal extends Error {
   }
 }
 
+/** Thrown by a reader when the file as a whole is not what it looks like; `message` says how to mend it. */
+export class FileRefusal extends Error {
+  constructor(readonly line: number, readonly code: string, message: string) {
+    super(message)
+    this.name = 'FileRefusal'
+  }
+}
+
 /** Collects the warnings of the set being read. */
 export type Warn = (line: number, code: string, message: string) => void
 
 /** A whole upload refused for one reason. */
-export function refusedWhole(line: number, code: string, message: string): ElementReading {
+export function refusedWhole(line: number, code: string, message: string): { readonly kind: 'refused', readonly detail: string, readonly errors: readonly LineNote[] } {
   return { kind: 'refused', detail: message, errors: [{ line, code, message }] }
 }

@@ -1,6 +1,6 @@
 import type { MeanElements } from '../../physics/types'
 import { contentKey } from './content-key'
-import type { ElementFormat, ElementReading, LineNote, ReadSet, Warn } from './reading'
+import type { ElementFormat, LineNote, ReadingEnd, SetSink, Warn } from './reading'
 import { SetRefusal } from './reading'
 import { quote } from './show-value'
 
@@ -14,16 +14,16 @@ export class TooManySets extends Error {
   }
 }
 
-/** Gathers what became of each set of an upload; a bad one never loses the good ones. */
+/** Hands on what became of each set of an upload, one by one; a bad one never loses the good ones. */
 export class SetCollector {
-  private readonly sets: ReadSet[] = []
-  private readonly refusals: LineNote[] = []
-  private readonly warnings: LineNote[] = []
   private readonly seen = new Map<string, { line: number, name: string | null }>()
+  private first: LineNote | null = null
+  private sets = 0
+  private refusals = 0
   private repeated = 0
   private attempts = 0
 
-  constructor(private readonly nowMs: number, private readonly limit: number) {}
+  constructor(private readonly nowMs: number, private readonly limit: number, private readonly sink: SetSink) {}
 
   /** Reads one set; what `read` throws as SetRefusal becomes that set's refusal. */
   take(at: { line: number, name: string | null, text: () => string }, read: (warn: Warn) => MeanElements): void {
@@ -32,45 +32,47 @@ export class SetCollector {
     const warn: Warn = (line, code, message) => { notes.push(this.note(line, at.name, code, message)) }
     try {
       const elements = read(warn)
-      this.keep(at.line, elements, at.text(), notes)
+      this.keep(at.line, elements, at.text, notes)
     }
     catch (error) {
       if (!(error instanceof SetRefusal)) throw error
-      this.refusals.push(this.note(error.line, at.name, error.code, error.message))
+      this.pass(this.note(error.line, at.name, error.code, error.message))
     }
   }
 
   refuse(line: number, name: string | null, code: string, message: string): void {
     this.count(line)
-    this.refusals.push(this.note(line, name, code, message))
+    this.pass(this.note(line, name, code, message))
   }
 
   warn(line: number, code: string, message: string): void {
-    this.warnings.push({ line, code, message })
+    this.sink.warning({ line, code, message })
   }
 
-  finish(format: ElementFormat): ElementReading {
-    const first = this.refusals[0]
-    if (this.sets.length === 0) {
-      if (!first) return { kind: 'refused', detail: 'The file holds no element set.', errors: [{ line: 1, code: 'no-sets', message: 'No element set was found. Upload a file with at least one.' }] }
-      const count = this.refusals.length
-      const detail = count === 1 ? `The only element set in the file was refused. ${first.message}` : `None of the ${count} element sets in the file can be taken; each is listed with its reason.`
-      return { kind: 'refused', detail, errors: this.refusals }
-    }
-    return { kind: 'read', format, sets: this.sets, refusals: this.refusals, warnings: this.warnings, repeated: this.repeated }
+  finish(format: ElementFormat): ReadingEnd {
+    if (this.sets > 0) return { kind: 'read', format, sets: this.sets, refusals: this.refusals, repeated: this.repeated }
+    if (!this.first) return { kind: 'refused', detail: 'The file holds no element set.', errors: [{ line: 1, code: 'no-sets', message: 'No element set was found. Upload a file with at least one.' }] }
+    const detail = this.refusals === 1 ? `The only element set in the file was refused. ${this.first.message}` : `None of the ${this.refusals} element sets in the file can be taken; each is listed with its reason.`
+    return { kind: 'refused', detail, errors: null }
   }
 
   private count(line: number): void {
     if (++this.attempts > this.limit) throw new TooManySets(line, this.limit)
   }
 
-  private keep(line: number, elements: MeanElements, text: string, notes: LineNote[]): void {
+  private pass(refusal: LineNote): void {
+    this.first ??= refusal
+    this.refusals++
+    this.sink.refusal(refusal)
+  }
+
+  private keep(line: number, elements: MeanElements, text: () => string, notes: LineNote[]): void {
     const key = contentKey(elements)
     const before = this.seen.get(key)
     if (before) {
       this.repeated++
       const otherName = before.name === elements.name ? '' : ` under another name (${quote(before.name ?? 'none')} there)`
-      this.warnings.push(this.note(line, elements.name, 'repeated', `The same set stands at line ${before.line} already${otherName}; it is counted once. Nothing needs to be done unless another set was meant.`))
+      this.sink.warning(this.note(line, elements.name, 'repeated', `The same set stands at line ${before.line} already${otherName}; it is counted once. Nothing needs to be done unless another set was meant.`))
       return
     }
     this.seen.set(key, { line, name: elements.name })
@@ -78,8 +80,9 @@ export class SetCollector {
     if (aheadUs > DAY_US) {
       notes.push(this.note(line, elements.name, 'epoch-ahead', `The epoch lies ${(aheadUs / DAY_US).toFixed(1)} days ahead of now. Check the year and the day before putting this set into use.`))
     }
-    this.warnings.push(...notes)
-    this.sets.push({ line, elements, text, contentKey: key, warnings: notes })
+    for (const note of notes) this.sink.warning(note)
+    this.sets++
+    this.sink.set({ line, elements, text: text(), contentKey: key, warnings: notes })
   }
 
   private note(line: number, name: string | null, code: string, message: string): LineNote {

@@ -1,4 +1,5 @@
 import type { MeanElements, UtcMs } from '../types'
+import { manoeuvreSpreadM, type ManoeuvreSpread } from './manoeuvre-spread'
 
 /** WGS-72, as SGP4 has them: gravity, km³/s², and the Earth's radius, km. */
 const EARTH_GM_KM3PS2 = 398_600.8
@@ -23,6 +24,8 @@ export interface AlongTrackPrior {
 export interface AlongTrackModel extends AlongTrackGrowth {
   readonly epochMs: UtcMs
   readonly speedMps: number
+  /** Burns that these elements know nothing of; left out where there are none. */
+  readonly manoeuvres?: readonly ManoeuvreSpread[]
 }
 
 /** Semi-major axis by Kepler's third law from the set's mean motion, km; its small secular correction (up to 10 km) is left out. */
@@ -96,10 +99,11 @@ export function priorFor(elements: Pick<MeanElements, 'meanMotionRevPerDay' | 'e
 }
 
 /**
- * One sigma of along-track timing, s, at an instant: (floor + growth · age)/speed, the age counted either way from the epoch.
+ * One sigma of along-track timing, s, at an instant: (floor + growth · age)/speed, the age counted either way from the
+ * epoch, and beside it, as root of squares, what burns leave open that these elements do not know of (`manoeuvreSpreadM`).
  *
  * @card Age of elements: spread of the spacecraft’s timing at an instant.
- * @formula (floor + growth·|t − epoch|)/speed
+ * @formula √((floor + growth·|t − epoch|)² + Σ manoeuvres²)/speed
  * @source mechanics
  * @units km, km/day, m/s, UTC ms → s, 1 σ
  * @frame along track
@@ -107,5 +111,8 @@ export function priorFor(elements: Pick<MeanElements, 'meanMotionRevPerDay' | 'e
  * @tolerance 1e-12 s of values by hand (accuracy/prior.test.ts)
  */
 export function alongTrackSigmaS(model: AlongTrackModel): (utcMs: UtcMs) => number {
-  return utcMs => (model.floorKm + model.growthKmPerDay * Math.abs(utcMs - model.epochMs) / MS_PER_DAY) * 1000 / model.speedMps
+  const { floorKm, growthKmPerDay, epochMs, speedMps, manoeuvres = [] } = model
+  const byAgeM = (utcMs: UtcMs): number => (floorKm + growthKmPerDay * Math.abs(utcMs - epochMs) / MS_PER_DAY) * 1000
+  if (manoeuvres.length === 0) return utcMs => byAgeM(utcMs) / speedMps
+  return utcMs => Math.hypot(byAgeM(utcMs), ...manoeuvres.map(burn => manoeuvreSpreadM(burn, utcMs))) / speedMps
 }

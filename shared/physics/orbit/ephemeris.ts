@@ -1,4 +1,6 @@
-import type { Ephemeris, MeanElements, PropagationError, Propagator, StateTeme, UtcMs } from '../types'
+import type { Ephemeris, MeanElements, Propagator, StateTeme, UtcMs } from '../types'
+import { errorBefore, failureAtPerigee, validUntil, type Failure } from './first-failure'
+import { norm, type Triple } from './vector'
 
 /** Nodes an interpolation uses, and their barycentric weights on an even grid, (−1)^j·C(9, j) (Berrut, Trefethen 2004). */
 export const NODES = 10
@@ -14,9 +16,6 @@ const MIDPOINT_TOLERANCE_MPS = 1e-5
 const UNTRIED = 0
 const SMOOTH = 1
 const ROUGH = 2
-
-const END_TOLERANCE_MS = 0.1
-const MOST_SAMPLES_BEFORE_WINDOW = 2_000
 
 /**
  * Step between propagated nodes, ms. Short against the orbit's own motion (0.07 rad of mean anomaly) and against the
@@ -38,28 +37,6 @@ export function gridStepMs(elements: MeanElements): number {
   return Math.max(1, Math.floor(Math.min(0.07 / radPerS, perigeeS / 20))) * 1000
 }
 
-/** Whether the set has failed between its epoch and the window: errors come and go near decay, so sampled sparsely. */
-function errorBefore(propagator: Propagator, fromMs: UtcMs): PropagationError | null {
-  const epochMs = propagator.elements.epochUtcUs / 1000
-  const stepMs = Math.max(0.21 * 86_400_000 / propagator.elements.meanMotionRevPerDay, (fromMs - epochMs) / MOST_SAMPLES_BEFORE_WINDOW)
-  for (let t = epochMs + stepMs; t < fromMs; t += stepMs) {
-    const result = propagator.at(t)
-    if (!result.ok) return result.error
-  }
-  return null
-}
-
-/** Last valid instant between a valid and a failing one. */
-function validUntil(propagator: Propagator, validMs: UtcMs, failingMs: UtcMs): UtcMs {
-  let [valid, failing] = [validMs, failingMs]
-  while (failing - valid > END_TOLERANCE_MS) {
-    const middle = (valid + failing) / 2
-    if (propagator.at(middle).ok) valid = middle
-    else failing = middle
-  }
-  return valid
-}
-
 /**
  * States of a spacecraft over a span by interpolation between propagated nodes: position and velocity each by
  * themselves (SGP4's velocity is not exactly the derivative of its position), degree 9 on an even grid tied to the
@@ -69,8 +46,8 @@ function validUntil(propagator: Propagator, validMs: UtcMs, failingMs: UtcMs): U
  * neighbour's is more than 1 mm or 0.01 mm/s off (SGP4 has kinks and steps: its eccentricity is held above 1e-6, its
  * resonances are integrated in half days), or too few nodes are left beside an end, the answer is SGP4's own.
  *
- * `fromMs` and `toMs` of the answer reach 5 s beyond what was asked, where SGP4 does. The first propagation error ends
- * it, named in `endedBy`; nothing later is used, since near decay errors come and go.
+ * `fromMs` and `toMs` of the answer reach 5 s beyond what was asked, where SGP4 does. The first propagation error since the
+ * epoch ends it, named in `endedBy`, be it for seconds at a perigee; nothing later is used, since near decay errors come and go.
  *
  * @card Interpolated states: position and velocity between propagated nodes, each by itself.
  * @formula x(t) = Σ w_j x_j/(t − t_j) / Σ w_j/(t − t_j), ten even nodes, w_j = (−1)^j·C(9, j)
@@ -85,8 +62,8 @@ export function createEphemeris(propagator: Propagator, fromMs: UtcMs, toMs: Utc
   const stepMs = options.stepMs ?? gridStepMs(propagator.elements)
   if (!(stepMs > 0)) throw new RangeError(`stepMs is ${stepMs}: give a positive number of milliseconds`)
 
-  const failedBefore = errorBefore(propagator, fromMs)
   const atStart = propagator.at(fromMs)
+  const failedBefore = errorBefore(propagator, fromMs, atStart.ok ? atStart : null)
   if (failedBefore || !atStart.ok) {
     const endedBy = failedBefore ?? (atStart.ok ? null : atStart.error)
     return { fromMs, toMs: fromMs, endedBy, propagator, stateAt: () => null }
@@ -98,10 +75,20 @@ export function createEphemeris(propagator: Propagator, fromMs: UtcMs, toMs: Utc
   const data = new Float64Array(6 * (lastNode - firstNode + 1))
   let usableFrom = firstNode
   let usableTo = firstNode - 1
-  let failing: { readonly ms: UtcMs, readonly error: PropagationError } | null = null
+  let failing: Failure | null = null
+  let [before, here] = [Infinity, Infinity]
   for (let node = firstNode; node <= lastNode && !failing; node++) {
     const result = propagator.at(node * stepMs)
     if (result.ok) {
+      const after = norm(result.positionM as Triple)
+      const hidden = failureAtPerigee(propagator, [before, here, after], (node - 2) * stepMs, node * stepMs)
+      if (hidden && hidden.ms > fromMs) {
+        failing = hidden
+        usableTo = node - 2
+        break
+      }
+      before = here
+      here = after
       data.set(result.positionM, 6 * (node - firstNode))
       data.set(result.velocityMps, 6 * (node - firstNode) + 3)
       usableTo = node

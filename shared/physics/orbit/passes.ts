@@ -93,7 +93,6 @@ export function findPasses(query: PassQuery): PassSearch {
     t => sights.nearSin(t) - sinPlain,
     t => sights.exactSin(t) - sinPlain,
     gridTimes(fromMs, toMs, stepMs),
-    { isSmooth: true },
   )
   const window = { fromMs, toMs }
   const passes = arcs.flatMap(arc => passOnArc(sights, query, window, arc, plainRad, stepMs) ?? [])

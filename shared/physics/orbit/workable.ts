@@ -2,14 +2,18 @@ import type { Ephemeris, Look, PredictedPass, Site, Span, UtcMs } from '../types
 import { gridStepMs } from './ephemeris'
 import { lookOfView } from './look'
 import { horizonRad, sortedMask } from './mask'
-import { evenTimes, positiveSpans } from './positive-spans'
-import { findRoot } from './refine'
+import { evenTimes, signsOf, spansBetween, withExtremes } from './positive-spans'
+import { findMaximum, findRoot } from './refine'
 import { createSiteTrack, sinElevation, VIEW_LENGTH } from './site-track'
 
-const FEWEST_SAMPLES = 128
+const FEWEST_SAMPLES = 64
 const WIDEST_TURN_RAD = 0.1
 const SHORTEST_STEP_MS = 20
 const MASK_POINT_TOLERANCE_MS = 0.1
+/** A mask has its kinks at its points: looked at from either side, where an edge is steep, since on it a tenth of a millisecond may be a degree. */
+const BESIDE_MASK_POINT_MS = 2 * MASK_POINT_TOLERANCE_MS
+/** A sample this close to either end of an arc shows which way the azimuth runs there. */
+const END_STEP_MS = 100
 
 const signedTurn = (angleRad: number): number => Math.atan2(Math.sin(angleRad), Math.cos(angleRad))
 
@@ -41,13 +45,37 @@ export function sightsFrom(ephemeris: Ephemeris, site: Site, ut1MinusUtcS: numbe
   }
 }
 
-/** Samples of an arc, closer where the azimuth runs, with the instants at which it passes a mask point. */
+/** Even samples of an arc and the instants at which the azimuth turns back: between two of them it runs one way. */
+function timesOneWay(azimuth: (utcMs: UtcMs) => number, arc: Span, count: number): number[] {
+  const times = evenTimes(arc.fromMs, arc.toMs, count)
+  const endStepMs = Math.min(END_STEP_MS, (arc.toMs - arc.fromMs) / count / 2)
+  times.splice(1, 0, arc.fromMs + endStepMs)
+  times.splice(-1, 0, arc.toMs - endStepMs)
+  const all = [times[0]!]
+  let before = azimuth(times[0]!)
+  let here = azimuth(times[1]!)
+  for (let i = 1; i < times.length - 1; i++) {
+    const after = azimuth(times[i + 1]!)
+    const [turned, turning] = [signedTurn(here - before), signedTurn(after - here)]
+    if (turned * turning < 0) {
+      const middle = here
+      all.push(findMaximum(t => Math.sign(turned) * signedTurn(azimuth(t) - middle), times[i - 1]!, times[i + 1]!, MASK_POINT_TOLERANCE_MS))
+    }
+    all.push(times[i]!)
+    before = here
+    here = after
+  }
+  all.push(times[times.length - 1]!)
+  return all.sort((a, b) => a - b)
+}
+
+/** Samples of an arc, closer where the azimuth runs, with the instants at which it turns back and either side of those at which it passes a mask point. */
 function timesAlongMask(sights: Sights, site: Site, arc: Span, longestStepMs: number): number[] {
   const count = Math.max(FEWEST_SAMPLES, Math.ceil((arc.toMs - arc.fromMs) / longestStepMs))
-  const coarse = evenTimes(arc.fromMs, arc.toMs, count)
   const points = sortedMask(site.mask)
-  if (points.length < 2) return coarse
+  if (points.length < 2) return evenTimes(arc.fromMs, arc.toMs, count)
   const azimuth = (utcMs: UtcMs): number => sights.near(utcMs).azimuthRad
+  const coarse = timesOneWay(azimuth, arc, count)
 
   const times: number[] = [coarse[0]!]
   const walk = (fromMs: number, fromRad: number, toMs: number, toRad: number): void => {
@@ -62,7 +90,8 @@ function timesAlongMask(sights: Sights, site: Site, arc: Span, longestStepMs: nu
     for (const point of points) {
       const ahead = signedTurn(point.azimuthRad - fromRad)
       if (ahead * turned > 0 && Math.abs(ahead) < Math.abs(turned)) {
-        times.push(findRoot(t => signedTurn(azimuth(t) - point.azimuthRad), fromMs, toMs, MASK_POINT_TOLERANCE_MS))
+        const atMs = findRoot(t => signedTurn(azimuth(t) - point.azimuthRad), fromMs, toMs, MASK_POINT_TOLERANCE_MS)
+        times.push(Math.max(fromMs, atMs - BESIDE_MASK_POINT_MS), Math.min(toMs, atMs + BESIDE_MASK_POINT_MS))
       }
     }
     times.push(toMs)
@@ -79,8 +108,8 @@ function timesAlongMask(sights: Sights, site: Site, arc: Span, longestStepMs: nu
 /** The parts of an arc in which the spacecraft is above the horizon of site (mask and minimum) and link. */
 export function partsAboveHorizon(sights: Sights, site: Site, arc: Span, minElevationRad: number, longestStepMs: number): Span[] {
   const clearance = (look: Look): number => look.elevationRad - horizonRad(site, look.azimuthRad, minElevationRad)
-  const times = timesAlongMask(sights, site, arc, longestStepMs)
-  return positiveSpans(t => clearance(sights.near(t)), t => clearance(sights.exact(t)), times)
+  const near = (utcMs: UtcMs): number => clearance(sights.near(utcMs))
+  return spansBetween(t => clearance(sights.exact(t)), signsOf(near, withExtremes(near, timesAlongMask(sights, site, arc, longestStepMs))))
 }
 
 /**

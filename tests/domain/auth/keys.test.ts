@@ -14,6 +14,7 @@ const test = useTestDatabase()
 const now = new Date('2026-12-01T12:00:00.000Z')
 let actor: PersonActor
 const deps = () => ({ db: test.db, actor, now })
+const actorOf = async (key: string) => (await findKey({ db: test.db }, key))?.actor ?? null
 const stationKey = (stationId: string, name = 'Controller') => createKey(deps(), { name, scope: 'station', stationId })
 beforeAll(async () => {
   actor = await addActor(test.db, ['administrator'])
@@ -24,7 +25,7 @@ describe('a key', () => {
     const { id, key, prefix } = await createKey(deps(), { name: 'Ground software', scope: 'read', stationId: null })
     expect(key).toMatch(/^nb_[A-Za-z0-9]{40}$/)
     expect(prefix).toBe(key.slice(0, 11))
-    expect(await findKey(deps(), key)).toMatchObject({ kind: 'key', id, name: 'Ground software', scope: 'read', stationId: null })
+    expect(await actorOf(key)).toMatchObject({ kind: 'key', id, name: 'Ground software', scope: 'read', stationId: null })
     const [row] = await test.db.select().from(apiKeys).where(eq(apiKeys.id, id))
     expect(row!.keyHash).toBe(createHash('sha256').update(key).digest('hex'))
     expect(JSON.stringify([row, await test.db.select().from(audit), await listKeys(deps(), { limit: 1000 })])).not.toContain(key.slice(11))
@@ -33,7 +34,7 @@ describe('a key', () => {
   it('does not work with one sign changed', async () => {
     const { key } = await createKey(deps(), { name: 'K', scope: 'metrics', stationId: null })
     const last = key.at(-1) === 'A' ? 'B' : 'A'
-    expect(await findKey(deps(), key.slice(0, -1) + last)).toBeNull()
+    expect(await actorOf(key.slice(0, -1) + last)).toBeNull()
   })
 
   it('uses every sign about equally often', async () => {
@@ -50,7 +51,7 @@ describe('a key', () => {
     const { id, key } = await createKey(deps(), { name: 'K', scope: 'read', stationId: null })
     await revokeKey(deps(), id)
     await revokeKey({ ...deps(), now: new Date(now.getTime() + 1000) }, id)
-    expect(await findKey(deps(), key)).toBeNull()
+    expect(await actorOf(key)).toBeNull()
     expect((await listKeys(deps(), { limit: 1000 })).items.find(item => item.id === id)!.revokedAt).toBe(now.toISOString())
     expect(await refusalOf(revokeKey(deps(), actor.id))).toMatchObject({ code: 'not-found' })
   })
@@ -75,9 +76,9 @@ describe('a station’s keys', () => {
   it('do not work once the station is retired, nor can one be made for it', async () => {
     const station = await addStation(test.db)
     const { key } = await stationKey(station.id)
-    expect(await findKey(deps(), key)).toMatchObject({ stationId: station.id })
+    expect(await actorOf(key)).toMatchObject({ stationId: station.id })
     await test.db.update(stations).set({ retiredAt: now }).where(eq(stations.id, station.id))
-    expect(await findKey(deps(), key)).toBeNull()
+    expect(await actorOf(key)).toBeNull()
     expect(await refusalOf(stationKey(station.id))).toMatchObject({ code: 'not-valid', paths: ['stationId'] })
   })
 })

@@ -41,7 +41,37 @@ describe('shift of prediction', () => {
     }
     expect(Math.max(...passes.map(pass => pass.links[0]!.worstShiftHz))).toBeGreaterThan(100)
     // 12 km at one epoch, where 0.5 km each way is expected.
-    expect(warnings).toEqual([{ code: 'along-track-jump', message: expect.stringMatching(/12\.0 km \(1\.5\d s\) ahead/) }])
+    expect(warnings).toEqual([{ code: 'along-track-jump', message: expect.stringMatching(/12\.0 km \(1\.5\d s\) ahead/), action: expect.stringContaining('enter the manoeuvre') }])
+  })
+
+  it('is the radius times the anomaly along the track over a day, and next to nothing up and across', async () => {
+    // Source: mechanics, a·ΔM = 6877.98 km · 0.1° = 12.004 km; a height that breathes with the eccentricity makes it 0.2 % more or less.
+    const { difference, jumpSigmas } = await compareWith({ anomaly: '272.6678' })
+    expect(difference).toHaveLength(289)
+    expect(difference[0]!.at).toBe('2026-11-30T18:00:00.000Z')
+    expect(difference.at(-1)!.at).toBe('2026-12-01T18:00:00.000Z')
+    for (const { radialM, alongM, crossM } of difference) {
+      expect(Math.abs(alongM / 12_004 - 1)).toBeLessThan(0.005)
+      expect(Math.hypot(radialM, crossM)).toBeLessThan(60)
+    }
+    // 12 km over the root of two squares of 0.5 km at one epoch.
+    expect(Math.abs(jumpSigmas! - 12_004 / Math.hypot(500, 500))).toBeLessThan(0.1)
+  })
+
+  it('is drawn, with each link, where it is worst against its allowance', async () => {
+    const { passes, worstByLink, largest, curve } = await compareWith({ anomaly: '272.6678' })
+    const worst = passes.toSorted((a, b) => b.links[0]!.worstShiftHz - a.links[0]!.worstShiftHz)[0]!
+    expect(worstByLink).toMatchObject([{ linkName: 'Telemetry', stationName: 'Invented Hill', aos: worst.aos, worstShiftHz: worst.links[0]!.worstShiftHz }])
+    expect(largest.allowanceShare).toBeCloseTo(worst.links[0]!.worstShiftHz / worst.links[0]!.allowanceHz, 9)
+    expect(largest.shiftS).toBeGreaterThan(1.4)
+    expect(curve).toMatchObject({ aos: worst.aos, linkName: 'Telemetry' })
+    // A downlink falls through its pass (mechanics), by both sets, and they part by no more than the worst.
+    const { samples } = curve!
+    expect(samples[0]!.oldHz).toBeGreaterThan(5000)
+    expect(samples.at(-1)!.newHz).toBeLessThan(-5000)
+    const apart = Math.max(...samples.map(sample => Math.abs(sample.newHz - sample.oldHz)))
+    expect(apart).toBeLessThanOrEqual(worst.links[0]!.worstShiftHz + 0.01)
+    expect(apart).toBeGreaterThan(0.9 * worst.links[0]!.worstShiftHz)
   })
 
   it('has new passes only where nothing is in use', async () => {

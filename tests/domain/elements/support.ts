@@ -5,6 +5,7 @@ import type { Database } from '~~/server/database/client'
 import { openDatabase } from '~~/server/database/client'
 import { audit, elementSets, links, spacecraft, stations } from '~~/server/database/schema'
 import type { Actor, Deps } from '~~/server/domain/context'
+import { originalOf } from '~~/server/domain/elements/upload-parts'
 import { uploadElements } from '~~/server/domain/elements/upload-elements'
 import { createTestDatabase } from '../../support/database'
 
@@ -32,6 +33,13 @@ export async function openWorld(now = NOW): Promise<World> {
 
 export const upload = (deps: Deps, content: string | Buffer, fileName = 'sets.tle') =>
   uploadElements(deps, { bytes: Buffer.from(content as string), source: 'file', fileName })
+
+/** What was sent, as it is kept. */
+export async function originalBytes({ db }: Deps, uploadId: string): Promise<Buffer> {
+  const parts: Buffer[] = []
+  for await (const part of originalOf(db, uploadId)) parts.push(part)
+  return Buffer.concat(parts)
+}
 
 export async function addSpacecraft({ db }: Deps, values: Partial<typeof spacecraft.$inferInsert> = {}): Promise<string> {
   const [row] = await db.insert(spacecraft).values({ name: 'Invented One', catalogueNumber: '90001', designator: '2026-801A', ...values }).returning({ id: spacecraft.id })

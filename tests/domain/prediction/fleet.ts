@@ -31,7 +31,7 @@ export function ahead(elements: MeanElements, seconds: number): MeanElements {
 export async function addSet(db: Db, spacecraftId: string, elements: MeanElements): Promise<string> {
   const text = JSON.stringify(elements)
   const sha256 = createHash('sha256').update(text).digest('hex')
-  const [upload] = await db.insert(elementUploads).values({ state: 'finished', by: 'Test', source: 'api', original: Buffer.from(text), sha256, totalBytes: text.length }).returning()
+  const [upload] = await db.insert(elementUploads).values({ state: 'finished', by: 'Test', source: 'api', sha256, totalBytes: text.length }).returning()
   const [set] = await db.insert(elementSets).values({
     uploadId: upload!.id, spacecraftId, state: 'waiting', epoch: new Date(elements.epochUtcUs / 1000), epochUtcUs: elements.epochUtcUs, elements,
     originalText: text, lineNumber: 1, sha256, contentSha256: createHash('sha256').update(randomUUID()).digest('hex'),

@@ -5,7 +5,8 @@ import { openDatabase } from '../../../server/database/client'
 import { alerts, audit, slots, tableRevisions } from '../../../server/database/schema'
 import { listSlots } from '../../../server/domain/schedule/list-slots'
 import { scheduleActor } from '../../../server/domain/context'
-import { findDueNights, publishNight } from '../../../server/domain/schedule/publish-night'
+import { findDueEvenings } from '../../../server/domain/schedule/evenings'
+import { publishNight } from '../../../server/domain/schedule/publish-night'
 import { wake } from '../../../server/domain/schedule/wake'
 import type { TestDatabase } from '../../support/database'
 import { createTestDatabase } from '../../support/database'
@@ -73,7 +74,7 @@ describe('the evening’s publication', () => {
     for (let hours = 0; hours <= 48; hours++) {
       now = new Date(start.getTime() + minutes(60 * hours))
       const deps = { db: database.db, now, actor: scheduleActor }
-      for (const night of await findDueNights(deps)) await publishNight(deps, night)
+      for (const night of await findDueEvenings(deps)) await publishNight(deps, night)
     }
     expect((await slotsOf('publish-night')).filter(({ entity }) => entity === local.id).map(({ instant }) => instant.toISOString()).slice(0, 2)).toEqual(expected)
   })
@@ -134,7 +135,7 @@ describe('the evening’s publication', () => {
 
   it('is not owed for evenings before the station was entered', async () => {
     await addStation(database.db, { publishAt: '12:00', createdAt: new Date('2026-12-01T12:00:00.001Z') })
-    expect(await findDueNights({ db: database.db, now: new Date('2026-12-01T12:30:00Z') })).toEqual([])
+    expect(await findDueEvenings({ db: database.db, now: new Date('2026-12-01T12:30:00Z') })).toEqual([])
   })
 })
 

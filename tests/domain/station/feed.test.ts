@@ -1,68 +1,36 @@
 import { createHash } from 'node:crypto'
-import type { Server } from 'node:http'
-import { createServer } from 'node:http'
-import type { AddressInfo } from 'node:net'
 import { connect } from 'node:net'
 import { setTimeout as wait } from 'node:timers/promises'
 import { eq } from 'drizzle-orm'
-import { createApp, createRouter, toNodeListener } from 'h3'
 import { flattenedVerify, importJWK } from 'jose'
 import { afterAll, beforeAll, beforeEach, describe, expect, it } from 'vitest'
-import keysHandler from '../../../server/api/station/v1/keys.get'
-import tableHandler from '../../../server/api/station/v1/tables/[id]/index.get'
-import reportHandler from '../../../server/api/station/v1/tables/[id]/report.post'
-import listHandler from '../../../server/api/station/v1/tables/index.get'
-import { databaseNow, useDatabase } from '../../../server/database/client'
-import { alerts, apiKeys, audit, mails, stationReports, tableRevisions } from '../../../server/database/schema'
-import { scheduleActor } from '../../../server/domain/context'
-import { publishRevision } from '../../../server/domain/tables/publish-revision'
-import type { TestDatabase } from '../../support/database'
-import { createTestDatabase } from '../../support/database'
+import { alerts, audit, mails, stationReports, tableRevisions } from '../../../server/database/schema'
+import type { FeedServer } from '../../support/feed-server'
+import { startFeed } from '../../support/feed-server'
 import type { SpacecraftFixture, StationFixture } from '../../support/fixtures'
-import { addPass, addPerson, addRevision, addSpacecraft, addStation, addTable, presentDigest } from '../../support/fixtures'
+import { readTdm } from '../../unit/formats/tdm-reader'
+import { addPass, addPerson, addRevision, addStation, addTable } from '../../support/fixtures'
 
 // The feed over a real connection. Conditional requests and negotiation: RFC 9110, sections 12.5.1, 13.1.2 and 15.4.5.
-let test: TestDatabase
-let server: Server
+let feed: FeedServer
 let url: string
 let now: Date
 let craft: SpacecraftFixture
 let station: StationFixture
+let publish: FeedServer['publish']
 const key = { own: `nb_${'a'.repeat(40)}`, other: `nb_${'b'.repeat(40)}` }
-const db = () => useDatabase().db
+const db = () => feed.db
 
 beforeAll(async () => {
-  test = await createTestDatabase()
-  process.env.DATABASE_URL = test.url
-  process.env.NUXT_SESSION_PASSWORD = 'a-session-secret-only-for-the-tests-0001'
-  const router = createRouter()
-    .get('/api/station/v1/tables', listHandler).get('/api/station/v1/tables/:id', tableHandler).head('/api/station/v1/tables/:id', tableHandler)
-    .post('/api/station/v1/tables/:id/report', reportHandler).get('/api/station/v1/keys', keysHandler)
-  server = createServer(toNodeListener(createApp().use(router)))
-  await new Promise<void>(resolve => server.listen(0, '127.0.0.1', resolve))
-  url = `http://127.0.0.1:${(server.address() as AddressInfo).port}/api/station/v1`
-  now = await databaseNow(db())
-  craft = await addSpacecraft(db(), now)
-  station = await addStation(db(), { name: '=North "Cove", first' })
-  const addKey = (stationId: string, text: string) => db().insert(apiKeys).values({ name: 'Controller', prefix: text.slice(0, 11), keyHash: createHash('sha256').update(text).digest('hex'), scope: 'station', stationId })
-  await addKey(station.id, key.own)
-  await addKey((await addStation(db())).id, key.other)
+  feed = await startFeed({ name: '=North "Cove", first' })
+  url = `${feed.url}/api/station/v1`
+  ;({ now, craft, station, publish } = feed)
+  await feed.addKey(station.id, key.own)
+  await feed.addKey((await addStation(db())).id, key.other)
   await addPerson(db(), ['on-call'])
 })
-afterAll(async () => {
-  server.closeAllConnections()
-  server.close()
-  await useDatabase().close()
-  await test.drop()
-})
+afterAll(() => feed.close())
 
-let hours = 0
-async function publish(given: Parameters<typeof addTable>[4] = {}, aos = new Date(now.getTime() + ++hours * 3600_000)) {
-  const pass = await addPass(db(), craft, station, aos)
-  const table = await addTable(db(), craft, station, pass, { state: 'approved', inputsDigest: await presentDigest(db(), now, craft, station), ...given })
-  expect(await publishRevision({ db: db(), now, actor: scheduleActor }, { tableId: table.id, mover: 'schedule' })).toMatchObject({ outcome: 'published' })
-  return table
-}
 const get = (path: string, headers: Record<string, string> = {}, bearer = key.own, method = 'GET') => fetch(`${url}${path}`, { method, headers: { authorization: `Bearer ${bearer}`, ...headers } })
 const revisionOf = async (tableId: string) => (await db().select().from(tableRevisions).where(eq(tableRevisions.tableId, tableId)))[0]!
 /** The mark is made behind the answer. */
@@ -117,6 +85,16 @@ describe('fetching a table', () => {
     expect([cell('at'), Number(cell('frequencyHz')), Number(cell('lossDb')), cell('digest')]).toEqual([json.retunes[0]!.at, json.retunes[0]!.frequencyHz, json.retunes[0]!.lossDb, json.digest])
   })
 
+  it('gives a Tracking Data Message with the same rows, marked as a plan, with digest and signature in it and beside it', async () => {
+    const json = await (await get(`/tables/${table.id}`)).json() as { retunes: { frequencyHz: number }[], digest: string, signature: string }
+    const response = await get(`/tables/${table.id}`, { accept: 'text/plain' })
+    expect([response.headers.get('content-type'), response.headers.get('etag'), response.headers.get('table-signature'), response.headers.get('table-digest')])
+      .toEqual(['text/plain; charset=utf-8', `"${json.digest}-tdm"`, json.signature, `sha-256=${json.digest}`])
+    const message = readTdm(await response.text())
+    expect(message.comments.header).toEqual(expect.arrayContaining([expect.stringMatching(/^PLAN, NOT A MEASUREMENT/), `Digest ${json.digest}`, `Signature ${json.signature}`]))
+    expect(message.records.map(({ value }) => value)).toEqual(json.retunes.map(({ frequencyHz }) => frequencyHz))
+  })
+
   it('answers 304 to the tag of the same notation, which collects; * and other tags do not', async () => {
     const { digest } = await revisionOf(table.id)
     for (const [headers, status] of [[{ 'if-none-match': '*' }, 304], [{ 'accept': 'text/csv', 'if-none-match': '"something-else"' }, 200]] as const) {
@@ -138,6 +116,7 @@ describe('fetching a table', () => {
     expect(await typeFor('*/*')).toBe('application/json')
     expect(await typeFor('text/csv;q=0.9, application/json;q=0.5')).toBe('text/csv')
     expect(await typeFor('application/json;q=0, */*;q=0.1')).toBe('text/csv')
+    expect(await typeFor('text/plain')).toBe('text/plain')
     expect((await get(`/tables/${table.id}`, { accept: 'image/png' })).status).toBe(406)
     expect(await typeFor('image/png')).toBe('application/problem+json')
   })

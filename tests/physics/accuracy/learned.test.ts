@@ -11,6 +11,10 @@ const SPEED_KMPS = 7.616 // √(GM/a) at 15.2 rev/day, mechanics
 const prior = { floorKm: 0.01, growthKmPerDay: 1.5 }
 const daily = (count: number, error: (i: number) => { aheadS?: number, gainSPerDay?: number }): MeanElements[] =>
   Array.from({ length: count }, (_, i) => setAt(i, error(i)))
+const spanOfDays = (from: number, to: number) => {
+  const startMs = setAt(0).epochUtcUs / 1000
+  return { fromMs: startMs + from * 86_400_000, toMs: startMs + to * 86_400_000 }
+}
 const nearly = (value: number, expected: number, share: number): void => expect(Math.abs(value / expected - 1), `${value} for ${expected}`).toBeLessThan(share)
 
 describe('accuracy learned from pairs of sets', () => {
@@ -64,6 +68,34 @@ describe('accuracy learned from pairs of sets', () => {
     expect(Math.max(...kept.map(({ timingS }) => Math.abs(timingS)))).toBeLessThan(0.01)
     // One that covers an epoch takes every pair of that set as well.
     expect(agedErrors(burnt, [{ fromMs: from - 1000, toMs: to - 1000 }])).toHaveLength(36 + 6)
+  })
+
+  it('follows the known error through a burn that is left out, and is spoilt by one that is not', () => {
+    // From halfway between days 19 and 20 on the orbit gains 30 s a day: sets before it know nothing of that.
+    const errors = normalErrors(40, 8)
+    const history = daily(40, i => ({ aheadS: Math.max(0, 30 * (i - 19.5)), gainSPerDay: (i > 19 ? 30 : 0) + 0.2 * errors[i]! }))
+    const learned = learnAccuracy(history, prior, [spanOfDays(19.2, 19.8)])
+    // 20 sets on either side, ages to 14 days: 2·(6·14 + 13·14/2) pairs (combinatorics)
+    expect(learned.pairs).toBe(350)
+    nearly(learned.growthKmPerDay, 0.2 * SPEED_KMPS, 0.15)
+    const spoilt = learnAccuracy(history, prior)
+    expect(spoilt.floorKm + 10 * spoilt.growthKmPerDay).toBeGreaterThan(2 * (learned.floorKm + 10 * learned.growthKmPerDay))
+  })
+
+  it('falls back on the prior as manoeuvres thin the pairs out', () => {
+    const agreeing = [0, 1, 2, 3, 4, 5].map(day => setAt(day))
+    const given = { floorKm: 0.5, growthKmPerDay: 10 }
+    // Six sets of one orbit show no growth, so what is left is the prior's share (arithmetic): three pairs beside two burns, one beside four, none beside five.
+    const burnsOn = (...days: number[]) => days.map(day => spanOfDays(day + 0.4, day + 0.6))
+    expect(learnAccuracy(agreeing, given, burnsOn(1, 3))).toMatchObject({ source: 'learned', pairs: 3, floorKm: 0.5, growthKmPerDay: 7 })
+    expect(learnAccuracy(agreeing, given, burnsOn(1, 2, 3, 4))).toMatchObject({ source: 'learned', pairs: 1, floorKm: 0.5, growthKmPerDay: 9 })
+    expect(learnAccuracy(agreeing, given, burnsOn(0, 1, 2, 3, 4))).toEqual({ source: 'prior', pairs: 0, bins: [], ...given })
+  })
+
+  it('needs the prior\'s growth no longer from ten pairs on', () => {
+    const growth = (count: number): number => learnAccuracy(Array.from({ length: count }, (_, day) => setAt(day)), { floorKm: 0.5, growthKmPerDay: 10 }).growthKmPerDay
+    // Four sets are six pairs, five are ten: 0.4 · 10, and nothing (arithmetic).
+    expect([4, 5].map(growth)).toEqual([4, 0])
   })
 
   it('is the prior itself without a pair: one set, none, the same set twice, or sets more than 14 days apart', () => {

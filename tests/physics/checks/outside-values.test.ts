@@ -56,6 +56,10 @@ describe('values from outside', () => {
     expect(outsideValues.map(({ card }) => card).filter(name => !cards.some(card => card.name === name && cardTags.every(tag => card[tag] !== '')))).toEqual([])
   })
 
+  it('go by ids of their own, so that each is put to its own computation', () => {
+    expect(new Set(outsideValues.map(({ id }) => id)).size).toBe(outsideValues.length)
+  })
+
   it('are there for every place of the page', () => {
     expect(places.filter(place => !results.some(result => result.place === place))).toEqual([])
   })

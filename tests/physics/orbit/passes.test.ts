@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { createEphemeris } from '../../../shared/physics/orbit/ephemeris'
+import { createEphemeris, gridStepMs } from '../../../shared/physics/orbit/ephemeris'
 import { lookAt } from '../../../shared/physics/orbit/look'
 import { findPasses, workablePartsForLink } from '../../../shared/physics/orbit/passes'
 import type { Site } from '../../../shared/physics/types'
@@ -138,6 +138,24 @@ describe('the pass finder', () => {
     expect(gap).toBeLessThan(160_000)
     expect(lowest).toBeGreaterThan(passes[0]!.losMs)
     expect(lowest).toBeLessThan(passes[1]!.aosMs)
+  })
+
+  it('finds a pass that peaks midway in the first or the last step of its window, with the edges as low on either side', () => {
+    const stepMs = gridStepMs(sso.ephemeris.propagator.elements)
+    let tried = 0
+    for (const pass of reference.passes.filter(({ satellite, minElevationDeg, maxElevationDeg }) => satellite === 'SSO500' && minElevationDeg === 0 && maxElevationDeg > 1)) {
+      const peakMs = sso.fromMs + pass.culminationS * 1000
+      const site = siteFromDegrees(place(pass.station), pass.maxElevationDeg - 0.01)
+      const aside = peakMs % stepMs / stepMs
+      // The grid's nodes are whole steps. The window's edge lies as far from the peak as the node on its other side, a moment less, so that it is the higher one.
+      const edgeMs = 2 * peakMs - (aside > 0.5 ? Math.ceil(peakMs / stepMs) : Math.floor(peakMs / stepMs)) * stepMs
+      const window = aside > 0.5 ? { fromMs: edgeMs + 200, toMs: edgeMs + 30 * stepMs } : { fromMs: edgeMs - 30 * stepMs, toMs: edgeMs - 200 }
+      if (Math.abs(edgeMs - peakMs) < 10_000 || window.fromMs < sso.fromMs || window.toMs > sso.toMs) continue
+      const found = findPasses({ ...sso, site, ...window, ut1MinusUtcS: 0 }).passes
+      expect(found.some(own => Math.abs(own.culminationMs - peakMs) < 2000), `${pass.station}, ${pass.culminationS} s`).toBe(true)
+      tried++
+    }
+    expect(tried).toBeGreaterThan(20)
   })
 
   it('takes the larger of two minimum elevations', () => {

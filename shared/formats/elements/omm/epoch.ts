@@ -4,8 +4,8 @@ export type EpochReading =
   | { readonly ok: true, readonly epochUtcUs: number, readonly warning?: { code: string, message: string } }
   | { readonly ok: false, readonly message: string }
 
-const CALENDAR = /^(\d{4})-(\d{2})-(\d{2})([T ])(\d{2}):(\d{2}):(\d{2})(?:\.(\d{1,18}))?(Z?)$/
-const DAY_OF_YEAR = /^(\d{4})-(\d{3})([T ])(\d{2}):(\d{2}):(\d{2})(?:\.(\d{1,18}))?(Z?)$/
+const CALENDAR = /^(\d{4})-(\d{2})-(\d{2})([Tt ])(\d{2}):(\d{2}):(\d{2})(?:\.(\d{1,18}))?[Zz]?$/
+const DAY_OF_YEAR = /^(\d{4})-(\d{3})([Tt ])(\d{2}):(\d{2}):(\d{2})(?:\.(\d{1,18}))?[Zz]?$/
 const LONGEST = 48
 
 /** The first year with anything to track, and the last whose microseconds fit a double exactly. */
@@ -24,7 +24,7 @@ function mayHoldLeapSecond(date: string): boolean {
   return LEAP_SECOND_DAYS.has(date) || (date > '2016-12-31' && (date.endsWith('-06-30') || date.endsWith('-12-31')))
 }
 
-const SHAPE = 'It must be written as 2026-11-30T12:17:46.665888 or 2026-334T12:17:46.665888, in UTC.'
+const SHAPE = 'Correct it: it must be written as 2026-11-30T12:17:46.665888 or 2026-334T12:17:46.665888, in UTC.'
 
 /**
  * A CCSDS epoch (502.0-B-3 §7.5.10: calendar or day-of-year, fraction and Z optional) in whole microseconds since
@@ -75,6 +75,9 @@ export function readOmmEpoch(text: string): EpochReading {
   }
   if (separator === ' ') {
     return { ok: true, epochUtcUs, warning: { code: 'epoch-blank', message: 'The epoch has a blank where T belongs; it is read as UTC. Check that the source does not mean local time.' } }
+  }
+  if (separator === 't') {
+    return { ok: true, epochUtcUs, warning: { code: 'lower-case', message: 'The epoch has a small t where T belongs; it is read as T. Nothing needs to be done.' } }
   }
   return { ok: true, epochUtcUs }
 }

@@ -1,36 +1,56 @@
 import { parseDecimal, parseWhole } from '../decimal'
-import type { JsonMember, JsonObject } from '../json/json-value'
+import type { Warn } from '../reading'
 import { SetRefusal } from '../reading'
 import { quote } from '../show-value'
+import { isUnitOf, ommKeyword, spellKeyword } from './keywords'
 
-/** The keywords of one OMM, by name, each with its line. Null and empty text count as missing, never as zero. */
+/** One keyword of a message with its value, in whatever notation it stood. */
+export interface OmmEntry {
+  readonly key: string
+  readonly line: number
+  /** Text or a number's text; null when it is stated to be missing. */
+  readonly value: string | null
+  /** As written beside the value. */
+  readonly unit?: string
+  /** What stands there where neither a text nor a number does: "true or false", "an object". */
+  readonly odd?: string
+}
+
+/**
+ * The keywords of one OMM, by name, each with its line. Null and empty text count as missing, never as zero. Keywords
+ * in small letters are read as capitals, with a warning.
+ */
 export class OmmFields {
-  private readonly byKey = new Map<string, JsonMember>()
+  private readonly byKey = new Map<string, OmmEntry>()
 
   /** @throws SetRefusal when a keyword stands twice (comments may) */
-  constructor(private readonly object: JsonObject) {
-    for (const member of object.members) {
-      if (member.key === 'COMMENT') continue
-      const before = this.byKey.get(member.key)
+  constructor(entries: readonly OmmEntry[], private readonly line: number, warn: Warn) {
+    let small: OmmEntry | null = null
+    for (const entry of entries) {
+      if (entry.key === 'COMMENT') continue
+      const spelled = spellKeyword(entry.key)
+      if (spelled !== null && spelled !== entry.key) small ??= entry
+      const key = spelled ?? entry.key
+      const before = this.byKey.get(key)
       if (before) {
-        const where = before.line === member.line ? `both times on line ${member.line}` : `at lines ${before.line} and ${member.line}`
-        throw new SetRefusal(member.line, 'duplicate-keyword', `${quote(member.key)} stands twice in this set, ${where}, and nothing says which is meant. Remove one.`)
+        const where = before.line === entry.line ? `both times on line ${entry.line}` : `at lines ${before.line} and ${entry.line}`
+        throw new SetRefusal(entry.line, 'duplicate-keyword', `${quote(key)} stands twice in this set, ${where}, and nothing says which is meant. Remove one.`)
       }
-      this.byKey.set(member.key, member)
+      this.byKey.set(key, entry)
     }
+    if (small) warn(small.line, 'lower-case', `${quote(small.key)} is in small letters: keywords are written in capitals. It is read as ${small.key.toUpperCase()}, and others like it. Nothing needs to be done.`)
   }
 
   lineOf(key: string): number {
-    return this.byKey.get(key)?.line ?? this.object.line
+    return this.byKey.get(key)?.line ?? this.line
   }
 
   /** Text or a number's text; null when missing. */
   text(key: string): string | null {
-    const value = this.byKey.get(key)?.value
-    if (!value || value.kind === 'null') return null
-    if (value.kind === 'number') return value.text
-    if (value.kind !== 'string') throw new SetRefusal(this.lineOf(key), 'type', `${key} is ${value.kind === 'boolean' ? 'true or false' : `an ${value.kind}`}: a number or a text belongs there. Correct it.`)
-    const text = value.value.trim()
+    const entry = this.byKey.get(key)
+    if (!entry) return null
+    if (entry.odd) throw new SetRefusal(entry.line, 'type', `${key} is ${entry.odd}: a number or a text belongs there. Correct it.`)
+    const text = entry.value?.trim() ?? ''
     return text === '' ? null : text
   }
 
@@ -38,16 +58,17 @@ export class OmmFields {
     const text = this.text(key)
     if (text === null) return null
     const value = parseDecimal(text)
-    if (value === null) throw new SetRefusal(this.lineOf(key), 'number', `${key} reads ${quote(text)}: a finite decimal number belongs there, with a point and nothing after it. Correct it or ask for this set again.`)
+    if (value === null) throw new SetRefusal(this.lineOf(key), 'number', `${key} reads ${quote(text)}: a finite decimal number belongs there, with a point and nothing after it. ${commaHint(text)}Correct it or ask for this set again.`)
+    this.checkUnit(key)
     return value
   }
 
   requiredNumber(key: string): number {
-    return this.number(key) ?? this.missing(key)
+    return this.number(key) ?? this.missing(key, 'A missing value is not zero:')
   }
 
-  requiredText(key: string): string {
-    return this.text(key) ?? this.missing(key)
+  requiredText(key: string, why = 'A missing value is not zero:'): string {
+    return this.text(key) ?? this.missing(key, why)
   }
 
   /** A whole number from zero up; null when missing. */
@@ -56,15 +77,29 @@ export class OmmFields {
     if (text === null) return null
     const value = parseWhole(text, digits)
     if (value === null) throw new SetRefusal(this.lineOf(key), 'number', `${key} reads ${quote(text)}: a whole number of up to ${digits} digits belongs there. Correct it, or leave the keyword out.`)
+    this.checkUnit(key)
     return value
   }
 
-  private missing(key: string): never {
+  /** Keywords that the standard does not know, those that a sender defines apart. */
+  unknown(): OmmEntry[] {
+    return [...this.byKey].filter(([key, entry]) => !ommKeyword(key) && !key.toUpperCase().startsWith('USER_DEFINED') && entry.value !== '').map(([, entry]) => entry)
+  }
+
+  private checkUnit(key: string): void {
+    const entry = this.byKey.get(key)
+    if (entry?.unit === undefined || isUnitOf(key, entry.unit)) return
+    const units = ommKeyword(key)?.units ?? []
+    const rule = units.length === 0 ? 'it has no unit' : `it is given in ${units.join(' or ')}`
+    throw new SetRefusal(entry.line, 'unit', `${key} is given in ${quote(entry.unit)}, but ${rule}. Convert the value and correct the unit.`)
+  }
+
+  private missing(key: string, why: string): never {
     const written = this.byKey.get(key)
-    if (written) throw new SetRefusal(written.line, 'missing', `${key} is empty. A missing value is not zero: fill it in or ask for this set again from its source.`)
-    for (const [other, member] of this.byKey) {
-      if (other.toUpperCase() === key) throw new SetRefusal(member.line, 'missing', `${key} is missing, but ${quote(other)} is there: keywords are written in capitals. Correct the keyword.`)
-    }
-    throw new SetRefusal(this.object.line, 'missing', `${key} is missing from the set that begins here. A missing value is not zero: add it or ask for this set again from its source.`)
+    const where = written ? 'empty' : 'missing from the set that begins here'
+    throw new SetRefusal(written?.line ?? this.line, 'missing', `${key} is ${where}. ${why} ${written ? 'fill it in' : 'add it'} or ask for this set again from its source.`)
   }
 }
+
+/** Said where a comma stands in place of the decimal point. */
+export const commaHint = (text: string): string => /^[^,]{1,40},\d/.test(text) ? 'It has a decimal comma. ' : ''

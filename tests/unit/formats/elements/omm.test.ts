@@ -74,9 +74,12 @@ describe('an OMM as JSON', () => {
     expect(mustRead(readText(text)).refusals.map(r => r.code)).toEqual(['number', 'number'])
   })
 
-  it('says when a keyword is there in small letters', () => {
+  it('takes a keyword in small letters with a warning, and refuses one that stands in both', () => {
     const { MEAN_MOTION, ...rest } = ommMembers()
-    expect(mustRefuse(readText(JSON.stringify({ ...rest, mean_motion: MEAN_MOTION }))).detail).toContain('"mean_motion" is there')
+    const reading = mustRead(readText(JSON.stringify({ ...rest, mean_motion: MEAN_MOTION })))
+    expect(reading.warnings).toMatchObject([{ line: 1, code: 'lower-case' }])
+    expect(reading.warnings[0]!.message).toContain('"mean_motion" is in small letters')
+    expect(refusal({ mean_motion: 15 })).toMatchObject({ code: 'duplicate-keyword' })
   })
 
   it('keeps unprintable characters out of the name, and the text as it was sent', () => {
@@ -115,13 +118,14 @@ describe('an OMM\'s epoch', () => {
     for (const text of ['2026-11-30T12:00:00', '2026-11-30T12:00:00Z', '2026-11-30T12:00:00.000000000', '2026-334T12:00:00', '2026-334T12:00:00.0Z', '2026-11-30 12:00:00']) expect(us(text)).toBe(noon)
     expect(us('2026-11-30T12:00:00.1234567')).toBe(noon + 123_457)
     expect(us('2026-11-30T12:00:00.9999999')).toBe(noon + 1_000_000)
+    expect(readOmmEpoch('2026-11-30t12:00:00z')).toMatchObject({ epochUtcUs: noon, warning: { code: 'lower-case' } })
     expect(us('2024-366T00:00:00')).toBe(Date.UTC(2024, 11, 31) * 1000)
     expect(us('2024-02-29T00:00:00')).toBe(Date.UTC(2024, 1, 29) * 1000)
   })
 
   it.each([
     '2026-02-29T00:00:00', '2026-13-01T00:00:00', '2026-00-10T00:00:00', '2026-04-31T00:00:00', '2026-366T00:00:00', '2026-000T00:00:00', '2026-11-30T24:00:00', '2026-11-30T12:60:00', '2026-11-30T12:00:61',
-    '2026-11-30T12:00:00+02:00', '2026-11-30', '30.11.2026 12:00', '2026-11-30t12:00:00', '1901-01-01T00:00:00', '9999-01-01T00:00:00', '1796041066', ' ', '2026-11-30T12:00:00.', '2026-11-30T12:00:00ZZ', '2026-11-30T12:00:60',
+    '2026-11-30T12:00:00+02:00', '2026-11-30', '30.11.2026 12:00', '1901-01-01T00:00:00', '9999-01-01T00:00:00', '1796041066', ' ', '2026-11-30T12:00:00.', '2026-11-30T12:00:00ZZ', '2026-11-30T12:00:60',
     '2016-12-30T23:59:60', '2015-12-31T23:59:60',
   ])('is refused as %s, with how to mend it', (text) => {
     expect(us(text)).toMatch(/must be|Correct/)

@@ -39,6 +39,26 @@ export const ommMembers = (changes: Record<string, unknown> = {}): Record<string
 })
 export const omm = (changes: Record<string, unknown> = {}): string => JSON.stringify(ommMembers(changes))
 
+const HEADER = { CCSDS_OMM_VERS: '3.0', CREATION_DATE: '2026-11-30T20:00:00', ORIGINATOR: 'REF' }
+const CONVENTIONS = { CENTER_NAME: 'EARTH', REF_FRAME: 'TEME', TIME_SYSTEM: 'UTC', MEAN_ELEMENT_THEORY: 'SGP4' }
+type Changes = Record<string, string | number | undefined>
+
+/** The keywords of a whole message, in the order of the standard; those changed to undefined are left out. */
+export const messageValues = (changes: Changes = {}): [string, string][] =>
+  Object.entries({ ...HEADER, ...CONVENTIONS, ...ommMembers(), ...changes } as Changes).filter(([, value]) => value !== undefined).map(([key, value]) => [key, String(value)])
+
+export const kvn = (changes: Changes = {}): string => messageValues(changes).map(([key, value]) => `${key} = ${value}\n`).join('')
+
+/** An `omm` element, one value a line from line 2 on; `inside` stands after the last one. */
+export const xml = (changes: Changes = {}, inside = ''): string => {
+  const values = messageValues({ ...changes, CCSDS_OMM_VERS: undefined }).map(([key, value]) => `<${key}>${value}</${key}>\n`).join('')
+  return `<omm id="CCSDS_OMM_VERS" version="3.0"><body><segment><data>\n${values}${inside}</data></segment></body></omm>`
+}
+
+/** A header and a row for each set of changes. */
+export const csv = (...rows: Changes[]): string =>
+  [Object.keys(ommMembers()), ...rows.map(changes => Object.values({ ...ommMembers(), ...changes } as Changes))].map(row => row.join(',')).join('\n')
+
 /** Line with the checksum that the published rule gives, counted here on its own. */
 export function withChecksum(line: string): string {
   const sum = [...line.slice(0, 68)].reduce((total, c) => total + (c === '-' ? 1 : Number.isNaN(Number.parseInt(c)) ? 0 : Number(c)), 0)

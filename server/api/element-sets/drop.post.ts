@@ -1,0 +1,4 @@
+import { handleUnassigned } from '~~/server/domain/elements/handle-unassigned'
+import { defineRoute } from '~~/server/http/define-route'
+
+export default defineRoute('POST /api/element-sets/drop', ({ db, now, actor, body }) => handleUnassigned({ db, now, actor }, 'dropped', body))
