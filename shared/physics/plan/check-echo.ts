@@ -26,7 +26,7 @@ const ROUNDS = 4
 
 /**
  * The steps of a pre-compensated uplink as they come back over one workable part of its coherent downlink, signed and row by row,
- * in order, the part covered; one span without steps where the link is not coherent, its uplink not pre-compensated or not known.
+ * in order, the part covered; null where the link is not coherent, its uplink not pre-compensated or not known.
  *
  * @card Steps that come back: an uplink’s residual on its downlink, as the checker adds it.
  * @formula N/D·(g_k + s_k·(t′ − e_k) − f_up(t′)), t′ = t − round trip, while row k was in effect and the uplink workable
@@ -36,9 +36,9 @@ const ROUNDS = 4
  * @range within the part; one station both ways
  * @tolerance 0.5 Hz at 2287.5 MHz of rows set off against direct propagation (predict/returned-steps.test.ts)
  */
-export function echoesOf({ propagator, site, link, ut1MinusUtcS, uplink }: EchoQuery, { span, stateAt }: CheckCurve): Echo[] {
+export function echoesOf({ propagator, site, link, ut1MinusUtcS, uplink }: EchoQuery, { span, stateAt }: CheckCurve): Echo[] | null {
   const { turnaround } = link
-  if (!uplink || !turnaround?.uplinkPrecompensated) return [{ ...span, steps: null }]
+  if (!uplink || !turnaround?.uplinkPrecompensated) return null
   const path = { stateAt, site, ut1MinusUtcS }
   const panelMs = 86_400_000 / propagator.elements.meanMotionRevPerDay / 24
   const roundTrip = seriesOf((utcMs, into) => {

@@ -66,7 +66,8 @@ export function checkTable(query: CheckQuery): TableCheck {
   const curves = parts.map(part => checkCurveOf({ ...query, ut1MinusUtcS: budget.ut1MinusUtcS, span: part }))
   for (const curve of curves) {
     const echoes = echoesOf({ ...query, ut1MinusUtcS: budget.ut1MinusUtcS }, curve)
-    const pieces = piecesOf(curve.span, applied).flatMap(piece => piecesByEcho(piece, echoes))
+    const whole = piecesOf(curve.span, applied)
+    const pieces = echoes ? whole.flatMap(piece => piecesByEcho(piece, echoes)) : whole
     const residuals = pieces.map(piece => residualOf(curve, applied[piece.row], query, piece.returned))
     const drift = driftFault(link, pieces, residuals)
     if (drift) faults.push(drift)
@@ -105,7 +106,7 @@ function verdictOf(margin: number, faults: readonly Fault[]): Verdict {
 interface Piece extends Span { readonly row: number, readonly returned: Echo['steps'] }
 
 /** A piece cut where another row of the uplink begins to come back. */
-function piecesByEcho(piece: Omit<Piece, 'returned'>, echoes: readonly Echo[]): Piece[] {
+function piecesByEcho(piece: Piece, echoes: readonly Echo[]): Piece[] {
   return echoes.flatMap((echo) => {
     const fromMs = Math.max(piece.fromMs, echo.fromMs)
     const toMs = Math.min(piece.toMs, echo.toMs)
@@ -114,13 +115,13 @@ function piecesByEcho(piece: Omit<Piece, 'returned'>, echoes: readonly Echo[]): 
 }
 
 /** The part cut at every row's effect; row −1 before the first. Both rows are asked at a retune, so pieces share their ends. */
-function piecesOf(part: Span, applied: readonly AppliedRow[]): Omit<Piece, 'returned'>[] {
-  const pieces = []
+function piecesOf(part: Span, applied: readonly AppliedRow[]): Piece[] {
+  const pieces: Piece[] = []
   for (let row = -1; row < applied.length; row++) {
     const fromMs = Math.max(part.fromMs, row < 0 ? -Infinity : applied[row]!.effectMs)
     const toMs = Math.min(part.toMs, applied[row + 1]?.effectMs ?? Infinity)
     // A retune at the very start of a part leaves nothing of the row before it, unless it falls there exactly.
-    if (fromMs < toMs || (fromMs === toMs && row >= 0)) pieces.push({ row, fromMs, toMs })
+    if (fromMs < toMs || (fromMs === toMs && row >= 0)) pieces.push({ row, fromMs, toMs, returned: null })
   }
   return pieces
 }

@@ -32,11 +32,13 @@ export interface CurveSource {
 const FIRST_STEP_MS = 16_000
 const LEAST_STEP_MS = 3
 const MOST_PIECES = 8
+/** How much closer than its thirds' stray a piece cut there is taken to be; a parabola is eight times. */
+const CLOSER = 6
 
 /**
  * Samples the curve until straight pieces follow it. Each piece is tried at its thirds: a parabola lies 9/8 times closer to its
  * chord there than at worst, and a piece cut at its thirds strays an eighth of what was measured, so a piece is accepted at
- * four times the tolerance with its thirds as knots: twice as close as needed. Thirds, not the middle, since an inflection hides there.
+ * six times the tolerance with its thirds as knots: a third closer than needed. Thirds, not the middle, since an inflection hides there.
  *
  * @card Straight pieces: the needed frequency as the planner follows it.
  * @formula chords cut until they stray less than the tolerance at their thirds; the stray is taken off h
@@ -83,14 +85,14 @@ export function sampleCurve(source: CurveSource): Curve {
       Math.abs(oneOffset - (2 * fromOffset + offset) / 3) + Math.abs(oneUncertainty - (2 * fromUncertainty + uncertainty) / 3),
       Math.abs(twoOffset - (fromOffset + 2 * offset) / 3) + Math.abs(twoUncertainty - (fromUncertainty + 2 * uncertainty) / 3),
     )
-    if (stray <= 4 * toleranceHz) {
-      samplingErrorHz = Math.max(samplingErrorHz, stray / 4)
+    if (stray <= CLOSER * toleranceHz) {
+      samplingErrorHz = Math.max(samplingErrorHz, stray / CLOSER)
       keep(oneTime, oneOffset, oneUncertainty, false)
       keep(twoTime, twoOffset, twoUncertainty, false)
       return keep(time, offset, uncertainty, false)
     }
     // A parabola's stray falls with the square of a piece's length.
-    const pieces = Math.min(MOST_PIECES, Math.ceil(Math.sqrt(stray / (4 * toleranceHz))))
+    const pieces = Math.min(MOST_PIECES, Math.ceil(Math.sqrt(stray / (CLOSER * toleranceHz))))
     for (let i = 1; i < pieces; i++) {
       const end = fromTime + 3 * third * i / pieces
       refine(end, offsetAt(end), uncertaintyAt(end))

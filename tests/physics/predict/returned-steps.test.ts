@@ -22,9 +22,9 @@ const downTable = tableOf({ ...query, link: down })
 const [part] = downTable.parts
 const check = (changes: Partial<{ link: LinkModel, uplink: UplinkInUse | null, rows: readonly RetuneRow[] }> = {}) =>
   checkTable({ ...query, link: down, parts: downTable.parts, rows: downTable.rows, uplink, ...changes })
-const echoes = (given: UplinkInUse | null = uplink, link = down) => {
+const echoes = (given: UplinkInUse | null = uplink, link: LinkModel = down) => {
   const curve = checkCurveOf({ ...query, link, ut1MinusUtcS: 0, span: part! })
-  return echoesOf({ ...query, link, ut1MinusUtcS: 0, uplink: given }, curve)
+  return echoesOf({ ...query, link, ut1MinusUtcS: 0, uplink: given }, curve)!
 }
 
 /** Instant of transmission of what is received at `utcMs`, twice the range at reception before it (mechanics; 0.1 µs off). */
@@ -104,6 +104,7 @@ describe('the steps of a pre-compensated uplink', () => {
     for (const link of [{ ...down, turnaround: { ...turnaround, uplinkPrecompensated: false } }, { ...down, turnaround: null }]) {
       expect(check({ link })).toEqual(check({ link, uplink: null }))
       expect(worstReturnedHz(link, uplink)).toBe(0)
+      expect(echoes(uplink, link)).toBeNull()
     }
     expect(check({ uplink: null }).worstResidualHz).toBe(downTable.check.worstResidualHz)
     expect(worstReturnedHz(down, null)).toBe(0)
