@@ -211,6 +211,19 @@ export interface CheckedRetune extends RetuneRow {
   readonly elevationRad: number
 }
 
+/**
+ * The table of the uplink that a coherent spacecraft turns around, at the same station and pass: what its steps leave at the
+ * spacecraft comes back on the downlink.
+ */
+export interface UplinkInUse {
+  readonly carrierHz: Hz
+  readonly radio: RadioModel
+  /** Where the uplink is workable; nothing is sent outside. */
+  readonly parts: readonly Span[]
+  /** As published, with what each row leaves. */
+  readonly retunes: readonly CheckedRetune[]
+}
+
 export interface TableCheck {
   readonly verdict: Verdict
   readonly allowance: Allowance

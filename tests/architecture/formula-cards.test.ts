@@ -18,10 +18,12 @@ const helpers: Record<string, string> = {
   'doppler/needed.ts statesOf': 'adapts a propagator',
   'link/positive.ts': 'refuses a figure that is not above 0, held by the tests of what it guards',
   'plan/check-scan.ts': 'where the checker looks, held by checkTable',
+  'plan/check-states.ts propagated': 'asks the propagator, or says where a set ends',
   'plan/corridor.ts mirrored': 'turns time round for the search',
   'plan/holds.ts': 'step of planRetunes\' search, held by exhaustive search',
   'plan/hold-paths.ts': 'step of planRetunes\' search, held by exhaustive search',
   'plan/choose-path.ts': 'step of planRetunes\' search, held by exhaustive search',
+  'plan/line-reach.ts startChoices': 'where a search lets rows begin, held by exhaustive search',
   'plan/reach.ts': 'step of planRetunes\' search, held by exhaustive search',
   'plan/fewest-rows.ts': 'step of planRetunes\' search, held by exhaustive search',
 }

@@ -11,7 +11,7 @@ import { readSettings } from '../settings/read-settings'
 import { ut1InForce } from '../settings/ut1-in-force'
 import { learnedAccuracy } from './learned-accuracy'
 import type { BudgetParameters, LinkRow, RadioRow, SpacecraftRow, StationRow } from './models'
-import { budgetParametersOf, linkMinElevationRad, linkModelOf, radioFor, radioModelOf, siteOf } from './models'
+import { budgetParametersOf, isUplinkOf, linkMinElevationRad, linkModelOf, radioFor, radioModelOf, siteOf } from './models'
 import { loadQuiet } from './quiet-spans'
 
 /** AOS is uncertain by a second or two; a newer set may bring it forward by some more. */
@@ -31,8 +31,10 @@ export interface ServedLink {
   readonly firstRowLeadMs: number
   /** Spans in which no row may take effect; those of any pass to come. */
   readonly quiet: readonly Span[]
-  /** SHA-256 of all that goes into a table of this link beside the pass itself and its quiet spans. */
+  /** SHA-256 of all that goes into a table of this link beside the pass itself, its quiet spans and its uplink. */
   readonly digest: string
+  /** The uplink that a coherent downlink turns around: its table goes into this link's. Null for all other links. */
+  readonly uplink: ServedLink | null
 }
 
 export interface PairInputs {
@@ -75,7 +77,7 @@ export async function loadInputs({ db, now }: Pick<Deps, 'db' | 'now'>, { spacec
     else if (set && learned && radio) served.push(serve({ craft, station, link, radio, setupS, elements: set.elements, settings, learned, manoeuvres, ut1, site, quiet: quiet.get(link.id) ?? [] }))
     else unserved.set(link.id, `No radio at ${station.name} covers this link any more.`)
   }
-  return { craft, station, settings, set: set ?? null, stopped: whyStopped(craft, station, set !== undefined), site, ut1, served, unserved }
+  return { craft, station, settings, set: set ?? null, stopped: whyStopped(craft, station, set !== undefined), site, ut1, served: served.map(link => ({ ...link, uplink: served.find(other => isUplinkOf(other.model, link.model)) ?? null })), unserved }
 }
 
 function whyStopped(craft: SpacecraftRow, station: StationRow, hasSet: boolean): string | null {
@@ -94,7 +96,7 @@ function serve({ craft, station, link, radio, setupS, elements, settings, learne
   // The antenna is free for its set-up time before a pass, so the radio may be, too.
   const firstRowLeadMs = Math.min(LARGEST_LEAD_MS, setupS * 1000)
   const inputs = { elements, site, model, minElevationRad, radioId: radio.id, radioModel, budget, firstRowLeadMs }
-  return { link, radio, model, minElevationRad, radioModel, budget, firstRowLeadMs, quiet, digest: inputsDigest(inputs) }
+  return { link, radio, model, minElevationRad, radioModel, budget, firstRowLeadMs, quiet, digest: inputsDigest(inputs), uplink: null }
 }
 
 /** Names of objects and the like change nothing in a prediction; raise `version` when the computing itself changes. */

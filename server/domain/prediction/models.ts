@@ -1,6 +1,7 @@
 import type { AlongTrackGrowth, AlongTrackModel } from '#shared/physics/accuracy/prior'
 import { meanSpeedMps, perigeeSpeedMps } from '#shared/physics/accuracy/prior'
 import { SPEED_OF_LIGHT_MPS } from '#shared/physics/doppler/ratio'
+import { isTurnedAroundTo } from '#shared/physics/doppler/two-way'
 import type { BudgetModel, ConverterModel, LinkModel, MeanElements, RadioModel, RampModel, Site } from '#shared/physics/types'
 import type { Settings } from '#shared/schemas/settings'
 import type { links, radios, spacecraft, stations } from '~~/server/database/schema'
@@ -39,6 +40,10 @@ export function linkModelOf(link: LinkRow): LinkModel {
 function turnaroundOf({ turnaroundNumerator: numerator, turnaroundDenominator: denominator, uplinkPrecompensated }: LinkRow): Pick<LinkModel, 'turnaround'> {
   return numerator === null || denominator === null ? {} : { turnaround: { numerator, denominator, uplinkPrecompensated, uplinkHz: null } }
 }
+
+/** Whether a coherent downlink turns this uplink around, so that what the uplink's table leaves at the spacecraft comes back on it. */
+export const isUplinkOf = (uplink: LinkModel, downlink: LinkModel): boolean =>
+  uplink.direction === 'uplink' && downlink.turnaround?.uplinkPrecompensated === true && isTurnedAroundTo(uplink.carrierHz, downlink)
 
 /** A link's own minimum elevation, rad. */
 export const linkMinElevationRad = (link: LinkRow): number => link.minElevationDeg * RAD_PER_DEG

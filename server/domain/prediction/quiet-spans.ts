@@ -21,8 +21,15 @@ export async function loadQuiet({ db, now }: Pick<Deps, 'db' | 'now'>, { station
   return new Map(linkIds.map(linkId => [linkId, rows.filter(row => row.linkId === null || row.linkId === linkId).map(row => ({ fromMs: row.startsAt.getTime(), toMs: row.endsAt.getTime() }))]))
 }
 
-/** SHA-256 of all that goes into one pass's table: the link's own, and the quiet spans that touch the pass. */
-export function tableDigest({ digest, quiet, firstRowLeadMs }: { readonly digest: string, readonly quiet: readonly Span[], readonly firstRowLeadMs: number }, pass: PassTimes): string {
+interface Digested { readonly digest: string, readonly quiet: readonly Span[], readonly firstRowLeadMs: number, readonly uplink: Digested | null }
+
+/** SHA-256 of all that goes into one pass's table: the link's own, the quiet spans that touch the pass, and its uplink's where it turns one around. */
+export function tableDigest(link: Digested, pass: PassTimes): string {
+  const own = ownDigest(link, pass)
+  return link.uplink ? createHash('sha256').update(`${own} ${ownDigest(link.uplink, pass)}`).digest('hex') : own
+}
+
+function ownDigest({ digest, quiet, firstRowLeadMs }: Digested, pass: PassTimes): string {
   const spans = quietDuring(quiet, pass, firstRowLeadMs)
   return spans.length === 0 ? digest : createHash('sha256').update(JSON.stringify([digest, spans.map(span => [span.fromMs, span.toMs])])).digest('hex')
 }

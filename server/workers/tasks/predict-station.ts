@@ -1,12 +1,14 @@
 import { createEphemeris } from '#shared/physics/orbit/ephemeris'
 import { findPasses } from '#shared/physics/orbit/passes'
 import { createPropagator } from '#shared/physics/orbit/propagator'
+import type { TableQuery } from '#shared/physics/predict/build-table'
 import { buildTable, residualOfRows } from '#shared/physics/predict/build-table'
-import type { Ephemeris, LinkModel, MeanElements, PredictedPass, PropagationError, RadioModel, RetuneRow, Site, Span, UtcMs, Verdict } from '#shared/physics/types'
+import type { Ephemeris, LinkModel, MeanElements, PredictedPass, PropagationError, RadioModel, RetuneRow, Site, Span, TableCheck, UplinkInUse, UtcMs, Verdict } from '#shared/physics/types'
 import { needsNewRevision } from '#shared/table-life'
 import type { StoredCheck, StoredRetune } from '~~/server/database/schema'
 import { identityToleranceMs, matchPasses } from '~~/server/domain/prediction/match-passes'
 import type { BudgetParameters } from '~~/server/domain/prediction/models'
+import { isUplinkOf } from '~~/server/domain/prediction/models'
 import { quietDuring } from '~~/server/domain/prediction/quiet-during'
 import { budgetModelOf } from './budget-model'
 import { isoOf, storedCheck, storedRetune } from './stored-table'
@@ -75,7 +77,7 @@ export function predictStation(input: PredictStationInput): PredictStationOutput
         culminationMs: Math.round(pass.culminationMs),
         losMs: Math.round(pass.losMs),
         maxElevationDeg: pass.maxElevationRad * 180 / Math.PI,
-        tables: untouched ? [] : linksFor(input, known).map(link => predictTable(link, tableOf(known, link), { ephemeris, site, pass })),
+        tables: untouched ? [] : tablesOf(input, known, { ephemeris, site, pass }),
       }
     }),
   }
@@ -87,19 +89,47 @@ function linksFor({ links, onlyKnown }: PredictStationInput, pass: KnownPassTask
   return onlyKnown ? links.filter(link => tableOf(pass, link)) : links
 }
 
-function predictTable(task: LinkTask, known: KnownTableTask | undefined, { ephemeris, site, pass }: { ephemeris: Ephemeris, site: Site, pass: PredictedPass }): PredictedTable {
-  const { linkId, model: link, minElevationRad: linkMinElevationRad, radioModel: radio } = task
+interface PassOf { readonly ephemeris: Ephemeris, readonly site: Site, readonly pass: PredictedPass }
+
+function tablesOf(input: PredictStationInput, known: KnownPassTask | null, at: PassOf): PredictedTable[] {
+  return linksFor(input, known).map((link) => {
+    const uplink = input.links.find(other => isUplinkOf(other.model, link.model))
+    return predictTable(link, tableOf(known, link), at, () => uplink ? uplinkInUse(uplink, tableOf(known, uplink), at) : null)
+  })
+}
+
+/** What the station sends up in the pass: rows that are out where they stay, else those planned now, as they were and will be with these inputs. */
+function uplinkInUse(task: LinkTask, known: KnownTableTask | undefined, at: PassOf): UplinkInUse | null {
+  const query = queryOf(task, at)
+  const built = buildTable({ ...query, firstRowLeadMs: task.firstRowLeadMs })
+  if (built.kind === 'not-workable') return null
+  const out = known?.out ? residualOfRows({ ...query, rows: known.out.rows }) : null
+  const stays = out && !('kind' in out) && known?.plan !== 'make' && !isMoved(known!.out!, out)
+  return { carrierHz: task.model.carrierHz, radio: task.radioModel, parts: built.parts, retunes: (stays ? out : built.check).retunes }
+}
+
+function queryOf(task: LinkTask, { ephemeris, site, pass }: PassOf): TableQuery {
+  const { model: link, minElevationRad: linkMinElevationRad, radioModel: radio } = task
   const quiet = quietDuring(task.quiet, pass, task.firstRowLeadMs)
-  const query = { propagator: ephemeris.propagator, ephemeris, site, link, linkMinElevationRad, radio, budget: budgetModelOf(task.budget), pass, quiet }
+  return { propagator: ephemeris.propagator, ephemeris, site, link, linkMinElevationRad, radio, budget: budgetModelOf(task.budget), pass, quiet }
+}
+
+const isMoved = (out: NonNullable<KnownTableTask['out']>, { verdict, worstResidualHz, allowance }: TableCheck): boolean =>
+  out.otherRadio || needsNewRevision(out, { verdict, worstResidualHz, allowanceHz: allowance.allowanceHz })
+
+function predictTable(task: LinkTask, known: KnownTableTask | undefined, at: PassOf, uplinkOf: () => UplinkInUse | null): PredictedTable {
+  const { linkId } = task
+  const plan = known?.plan ?? 'make'
+  if (plan === 'leave' && !known?.out) return { linkId, kind: 'left', planned: null, recheck: null }
+  const query = { ...queryOf(task, at), uplink: uplinkOf() }
 
   let recheck: Recheck | null = null
   if (known?.out) {
     const check = residualOfRows({ ...query, rows: known.out.rows })
     if ('kind' in check) return { linkId, kind: 'not-workable', planned: null, recheck: null }
-    const figures = { verdict: check.verdict, worstResidualHz: check.worstResidualHz, allowanceHz: check.allowance.allowanceHz }
-    recheck = { ...figures, worstAt: isoOf(check.worstAtMs), moved: known.out.otherRadio || needsNewRevision(known.out, figures) }
+    const { verdict, worstResidualHz, allowance: { allowanceHz } } = check
+    recheck = { verdict, worstResidualHz, allowanceHz, worstAt: isoOf(check.worstAtMs), moved: isMoved(known.out, check) }
   }
-  const plan = known?.plan ?? 'make'
   if (plan === 'leave' || (plan === 'make-if-moved' && !recheck?.moved)) return { linkId, kind: 'left', planned: null, recheck }
 
   const built = buildTable({ ...query, firstRowLeadMs: task.firstRowLeadMs })

@@ -49,21 +49,33 @@ export function receivedOverTransmitted(path: Path, direction: Direction, utcMs:
   const station = siteStateTeme(path.site, utcMs, path.ut1MinusUtcS)
   const now = path.stateAt(utcMs)
   if (!now) throw new RangeError(`The spacecraft's state at ${utcMs} is not known: ask within the ephemeris`)
-  const [sx, sy, sz] = station.positionM
+  const sx = station.positionM[0]
+  const sy = station.positionM[1]
+  const sz = station.positionM[2]
   const sign = direction === 'downlink' ? -1 : 1
 
   // An instant in ms resolves 0.24 µs, a spacecraft moves 2 mm in that: the rest is bridged from the nearest state.
   let lightTimeS = Math.sqrt((now.positionM[0] - sx) ** 2 + (now.positionM[1] - sy) ** 2 + (now.positionM[2] - sz) ** 2) / C
   const baseMs = utcMs + sign * lightTimeS * 1000
   const base = path.stateAt(baseMs)
-  const [px, py, pz] = (base ?? now).positionM
-  const [vx, vy, vz] = (base ?? now).velocityMps
+  const { positionM, velocityMps } = base ?? now
+  const px = positionM[0]
+  const py = positionM[1]
+  const pz = positionM[2]
+  const vx = velocityMps[0]
+  const vy = velocityMps[1]
+  const vz = velocityMps[2]
   const baseAfterS = base ? (baseMs - utcMs) / 1000 : 0
 
   // By the central attraction alone. For light time at most: over 0.3 s what it leaves out (oblateness) is below 1 mm and 3 mm/s.
   const r2 = px * px + py * py + pz * pz
   const pull = -EARTH_GM_M3PS2 / (r2 * Math.sqrt(r2))
-  let [by, x, y, z, rangeM, change] = [0, 0, 0, 0, 0, Infinity]
+  let by = 0
+  let x = 0
+  let y = 0
+  let z = 0
+  let rangeM = 0
+  let change = Infinity
   // The last round is made with the light time that is given back.
   for (let round = 0; round < MOST_ROUNDS; round++) {
     by = sign * lightTimeS - baseAfterS
@@ -78,8 +90,11 @@ export function receivedOverTransmitted(path: Path, direction: Direction, utcMs:
   }
 
   // Speeds over c along the ray from transmitter to receiver, and squared in all.
-  const [ux, uy, uz] = [vx + by * pull * px, vy + by * pull * py, vz + by * pull * pz]
-  const [wx, wy] = station.velocityMps
+  const ux = vx + by * pull * px
+  const uy = vy + by * pull * py
+  const uz = vz + by * pull * pz
+  const wx = station.velocityMps[0]
+  const wy = station.velocityMps[1]
   const toRay = sign / (rangeM * C)
   const craftBeta = (x * ux + y * uy + z * uz) * toRay
   const siteBeta = (x * wx + y * wy) * toRay

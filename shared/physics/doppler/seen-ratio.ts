@@ -14,9 +14,6 @@ const C = SPEED_OF_LIGHT_MPS
  * are in TEME. The light time is bridged by the central attraction from the view itself: what that leaves out (oblateness,
  * 0.01 m/s² in low orbit, over 10 ms of light) is below 1e-12 of the carrier. Nothing is allocated.
  *
- * `alongS` moves the spacecraft along its orbit, the site staying, and `turnS` the site with the Earth, the spacecraft
- * staying; both s and small, for partial derivatives.
- *
  * @card Fraction to tune by, from a view: the same relation in the station’s own axes.
  * @formula downlink: ratio − 1; uplink: 1/ratio − 1; light time bridged by the central attraction
  * @source special relativity; mechanics
@@ -25,11 +22,11 @@ const C = SPEED_OF_LIGHT_MPS
  * @range within the ephemeris; oblateness over the light time left out, 1e-12
  * @tolerance 0.05 Hz at 437.5 MHz of an independent program (predict/sample-pass.test.ts)
  */
-export function seenOverCarrierMinusOne(track: SiteTrack, view: Float64Array, direction: Direction, alongS = 0, turnS = 0): number {
+export function seenOverCarrierMinusOne(track: SiteTrack, view: Float64Array, direction: Direction): number {
   const { siteEastM, siteNorthM, siteUpM, siteSpeedMps } = track
-  let e = view[EAST]!
-  let n = view[NORTH]!
-  let u = view[UP]!
+  const e = view[EAST]!
+  const n = view[NORTH]!
+  const u = view[UP]!
   let ve = view[EAST_RATE]!
   let vn = view[NORTH_RATE]!
   let vu = view[UP_RATE]!
@@ -41,26 +38,6 @@ export function seenOverCarrierMinusOne(track: SiteTrack, view: Float64Array, di
   const ae = pull * re
   const an = pull * rn
   const au = pull * ru
-  if (alongS !== 0) {
-    e += alongS * (ve + alongS / 2 * ae)
-    n += alongS * (vn + alongS / 2 * an)
-    u += alongS * (vu + alongS / 2 * au)
-    ve += alongS * ae
-    vn += alongS * an
-    vu += alongS * au
-  }
-  // The site's velocity is to the east; turning with the Earth it bends towards the axis.
-  let sn = 0
-  let su = 0
-  if (turnS !== 0) {
-    const inward = -EARTH_ROTATION_RAD_PER_S * siteSpeedMps
-    // Away from the axis is up by the cosine and south by the sine of the latitude: the axis's own parts along north and up.
-    sn = -inward * track.axisUp * turnS
-    su = inward * track.axisNorth * turnS
-    e -= turnS * siteSpeedMps
-    n -= turnS / 2 * sn
-    u -= turnS / 2 * su
-  }
 
   const sign = direction === 'downlink' ? -1 : 1
   // |p + τv| to the first order in v/c: what is left of the light time is below 0.1 ns.
@@ -77,9 +54,9 @@ export function seenOverCarrierMinusOne(track: SiteTrack, view: Float64Array, di
   // Along the ray from transmitter to receiver, over c.
   const toRay = sign / (range * C)
   const craft = (x * ve + y * vn + z * vu) * toRay
-  const site = (x * siteSpeedMps + y * sn + z * su) * toRay
+  const site = x * siteSpeedMps * toRay
   const craft2 = (ve * ve + vn * vn + vu * vu) / (C * C)
-  const site2 = (siteSpeedMps * siteSpeedMps + sn * sn + su * su) / (C * C)
+  const site2 = siteSpeedMps * siteSpeedMps / (C * C)
   if (direction === 'downlink') return shift(craft, site, craft2, site2)
   const offset = shift(site, craft, site2, craft2)
   return -offset / (1 + offset)
@@ -103,26 +80,76 @@ export interface SeenPartials {
   readonly rateHzPerS: number
 }
 
-const PARTIAL_STEP_S = 0.5
-
 /**
- * Partials for the error budget, within 0.2 % (the spacecraft is moved by the central attraction alone). RangeError outside the track.
+ * Partials for the error budget, of first order in v/c: f = ∓f0·ρ̇/c with ρ̇ = p·w/ρ, p the place seen and w the velocity against the
+ * site's. Moved along its orbit the spacecraft has ∂p = v and ∂w = the central attraction; the site turned on with the Earth has
+ * ∂p = −u and ∂w = −ω×u. Within 0.2 % (oblateness and light time are left out). RangeError outside the track.
  *
  * @card Answers to timing and UT1, from a view: for the budget, quickly.
- * @formula (f(+½ s) − f(−½ s))/1 s, spacecraft moved by the central attraction, station turned
+ * @formula ∂f = ∓f0/c·∂ρ̇, ∂ρ̇ = (∂p·w + p·∂w)/ρ − ρ̇·(p·∂p)/ρ²
  * @source mechanics
  * @units Hz, UTC ms → Hz/s
  * @frame east, north, up of the station
- * @range within the ephemeris; oblateness left out, 0.2 %
- * @tolerance plans made with it hold when checked (predict/build-table.test.ts)
+ * @range within the ephemeris; first order, oblateness left out, 0.2 %
+ * @tolerance 0.2 % of differences by true propagation (doppler/seen-ratio.test.ts)
  */
 export function seenPartials(track: SiteTrack, direction: Direction, carrierHz: Hz, utcMs: UtcMs): SeenPartials {
-  const view = new Float64Array(VIEW_LENGTH)
-  if (!track.viewAt(utcMs, view)) throw new RangeError(`The spacecraft's state at ${utcMs} is not known: ask within the ephemeris`)
-  const share = (alongS: number, turnS: number): number => seenOverCarrierMinusOne(track, view, direction, alongS, turnS)
-  const alongTrackHzPerS = carrierHz * (share(PARTIAL_STEP_S, 0) - share(-PARTIAL_STEP_S, 0)) / (2 * PARTIAL_STEP_S)
-  const ut1HzPerS = carrierHz * (share(0, PARTIAL_STEP_S) - share(0, -PARTIAL_STEP_S)) / (2 * PARTIAL_STEP_S)
+  const two = new Float64Array(2)
+  seenPartialsInto(track, direction, carrierHz, utcMs, two)
+  const alongTrackHzPerS = two[0]!
+  const ut1HzPerS = two[1]!
   return { alongTrackHzPerS, ut1HzPerS, rateHzPerS: alongTrackHzPerS + ut1HzPerS }
+}
+
+/**
+ * The same, written as two numbers: ∂f/∂t_along, ∂f/∂UT1.
+ *
+ * @card Answers to timing and UT1, from a view, written: the same without an object an instant.
+ * @formula ∂f = ∓f0/c·∂ρ̇, ∂ρ̇ = (∂p·w + p·∂w)/ρ − ρ̇·(p·∂p)/ρ²
+ * @source mechanics
+ * @units Hz, UTC ms → Hz/s
+ * @frame east, north, up of the station
+ * @range within the ephemeris; first order, oblateness left out, 0.2 %
+ * @tolerance 0.2 % of differences by true propagation (doppler/seen-ratio.test.ts)
+ */
+export function seenPartialsInto(track: SiteTrack, direction: Direction, carrierHz: Hz, utcMs: UtcMs, into: Float64Array): void {
+  const view = viewOf(track, utcMs)
+  const { siteEastM, siteNorthM, siteUpM, siteSpeedMps } = track
+  const e = view[EAST]!
+  const n = view[NORTH]!
+  const u = view[UP]!
+  const ve = view[EAST_RATE]!
+  const vn = view[NORTH_RATE]!
+  const vu = view[UP_RATE]!
+  const re = e + siteEastM
+  const rn = n + siteNorthM
+  const ru = u + siteUpM
+  const r2 = re * re + rn * rn + ru * ru
+  const pull = -EARTH_GM_M3PS2 / (r2 * Math.sqrt(r2))
+  const range2 = e * e + n * n + u * u
+  const we = ve - siteSpeedMps
+  const closing = (e * we + n * vn + u * vu) / range2
+  // Per range, in time of the spacecraft and of the Earth.
+  const along = ve * we + vn * vn + vu * vu + pull * (e * re + n * rn + u * ru) - closing * (e * ve + n * vn + u * vu)
+  // The site's velocity is to the east and bends towards the axis, which is up by the cosine and south by the sine of the latitude.
+  const inward = EARTH_ROTATION_RAD_PER_S * siteSpeedMps
+  const turn = siteSpeedMps * (closing * e - we) + inward * (u * track.axisNorth - n * track.axisUp)
+  const perMps = (direction === 'downlink' ? -1 : 1) * carrierHz / (C * Math.sqrt(range2))
+  into[0] = perMps * along
+  into[1] = perMps * turn
+}
+
+/** The view asked last, since a planner asks several things of one instant. */
+const lastView = { track: null as SiteTrack | null, atMs: new Float64Array(1), view: new Float64Array(VIEW_LENGTH) }
+
+function viewOf(track: SiteTrack, utcMs: UtcMs): Float64Array {
+  const { atMs, view } = lastView
+  if (lastView.track === track && atMs[0] === utcMs) return view
+  lastView.track = null
+  if (!track.viewAt(utcMs, view)) throw new RangeError(`The spacecraft's state at ${utcMs} is not known: ask within the ephemeris`)
+  lastView.track = track
+  atMs[0] = utcMs
+  return view
 }
 
 /**
@@ -138,11 +165,7 @@ export function seenPartials(track: SiteTrack, direction: Direction, carrierHz: 
  * @tolerance 0.05 Hz at 437.5 MHz of an independent program (predict/sample-pass.test.ts)
  */
 export function createSeenFrequency(track: SiteTrack, direction: Direction, carrierHz: Hz): NeededFrequency {
-  const view = new Float64Array(VIEW_LENGTH)
-  const dopplerHz = (utcMs: UtcMs): Hz => {
-    if (!track.viewAt(utcMs, view)) throw new RangeError(`The spacecraft's state at ${utcMs} is not known: ask within the ephemeris`)
-    return carrierHz * seenOverCarrierMinusOne(track, view, direction)
-  }
+  const dopplerHz = (utcMs: UtcMs): Hz => carrierHz * seenOverCarrierMinusOne(track, viewOf(track, utcMs), direction)
   return {
     frequencyHz: utcMs => carrierHz + dopplerHz(utcMs),
     dopplerHz,

@@ -69,7 +69,7 @@ export interface CoherentCarrier { readonly carrierHz: Hz, readonly turnaround: 
 /**
  * Where a coherent downlink is received, minus its carrier, Hz: f_ground·ratio_up·(N/D)·ratio_down − f0. Where the
  * uplink is pre-compensated the spacecraft hears it unshifted, and the downlink shows the one-way shift only. The steps
- * that a stepped uplink leaves at the spacecraft come back times N/D a round trip later; they are not in this.
+ * that a stepped uplink leaves at the spacecraft come back times N/D a round trip later; `returnedStepsHz` has those.
  *
  * @card Coherent offset: what to tune beside the carrier on a two-way link.
  * @formula f_ground·ratio_up·(N/D)·ratio_down − f0; pre-compensated: f_up·(N/D)·ratio_down − f0
@@ -85,6 +85,34 @@ export function coherentOffsetHz(path: Path, { carrierHz, turnaround }: Coherent
   const { upMinusOne, downMinusOne } = twoWayOf(path, utcMs)
   return sentHz - carrierHz + sentHz * (upMinusOne + downMinusOne + upMinusOne * downMinusOne)
 }
+
+/**
+ * Whether an uplink is the one that a coherent downlink's carrier is made of.
+ *
+ * @card Uplink of a coherent downlink: whether a carrier is turned around to another.
+ * @formula |f_up·N/D − f_down| < 1 Hz
+ * @source CCSDS 401.0-B
+ * @units Hz → true or false
+ * @frame at the spacecraft
+ * @range links with a turnaround
+ * @tolerance 2106.40625 MHz and 2287.5 MHz by 240/221 (doppler/two-way.test.ts)
+ */
+export const isTurnedAroundTo = (uplinkHz: Hz, { carrierHz, turnaround }: { readonly carrierHz: Hz, readonly turnaround?: Turnaround | null }): boolean =>
+  Boolean(turnaround) && Math.abs(turnedAroundHz(uplinkHz, turnaround!) - carrierHz) < 1
+
+/**
+ * What a pre-compensated uplink's residual (needed minus set) does to the downlink that is needed a round trip later, Hz: set too high
+ * by r, the spacecraft hears and turns around r more. Both legs' own shifts of r are left out, 5e-5 of it in low orbit.
+ *
+ * @card Returned steps: what an uplink’s steps do to its coherent downlink.
+ * @formula Δf_down(t) = −r(t − round trip)·N/D, r the uplink’s needed minus set
+ * @source mechanics; CCSDS 401.0-B
+ * @units Hz → Hz
+ * @frame none
+ * @range pre-compensated uplinks
+ * @tolerance exact: 100 Hz by 240/221 come back as 108.597 Hz (doppler/two-way.test.ts)
+ */
+export const returnedStepsHz = (uplinkResidualHz: Hz, { numerator, denominator }: Pick<Turnaround, 'numerator' | 'denominator'>): Hz => -uplinkResidualHz * numerator / denominator
 
 /**
  * The link whose partial derivatives an error budget takes. A spacecraft that is not where it is thought to be, a late

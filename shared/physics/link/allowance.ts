@@ -23,6 +23,15 @@ import { positive } from './positive'
  * @tolerance 1e-6 symbol rates of tables (link/allowance.test.ts)
  */
 export function allowanceOf(link: LinkModel): Allowance {
+  let allowance = allowances.get(link)
+  if (!allowance) allowances.set(link, allowance = calculated(link))
+  return allowance
+}
+
+/** One for all tables of a link. */
+const allowances = new WeakMap<LinkModel, Allowance>()
+
+function calculated(link: LinkModel): Allowance {
   positive('symbolRateHz', link.symbolRateHz)
   if (link.rolloff !== null && !(link.rolloff >= 0 && link.rolloff <= 1)) {
     throw new RangeError(`rolloff must lie between 0 and 1, it is ${link.rolloff}`)

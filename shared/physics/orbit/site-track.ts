@@ -174,7 +174,13 @@ export function sinElevation(view: Float64Array): number {
 
 /** `share` of the step between the fifth and the sixth of the ten states that start at `at`. */
 function interpolate(states: Float64Array, at: number, share: number, to: Float64Array): void {
-  let [x, y, z, vx, vy, vz, total] = [0, 0, 0, 0, 0, 0, 0]
+  let x = 0
+  let y = 0
+  let z = 0
+  let vx = 0
+  let vy = 0
+  let vz = 0
+  let total = 0
   for (let j = 0; j < NODES; j++, at += 6) {
     const weight = WEIGHTS[j]! / (BEFORE + share - j)
     total += weight

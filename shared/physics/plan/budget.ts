@@ -36,8 +36,28 @@ export function budgetAt(at: Sensitivity, budget: BudgetModel, radio: Pick<Radio
     timingHz: (budget.clockErrorMs + radio.latencyUncertaintyMs) / 1000 * Math.abs(at.rateHzPerS),
     ut1Hz: budget.ut1BoundS * Math.abs(at.ut1HzPerS),
     orbitHz: budget.alongTrackSigmaS(at.utcMs) * Math.abs(at.alongTrackHzPerS),
-    oscillatorHz: at.carrierHz * 1e-6 * Math.hypot(budget.spacecraftPpm, budget.stationPpm) / Math.sqrt(3),
+    oscillatorHz: at.carrierHz * 1e-6 * Math.sqrt((budget.spacecraftPpm ** 2 + budget.stationPpm ** 2) / 3),
     trimHz: 0,
+  }
+}
+
+/**
+ * The sum of the budget over time, without its parts: what a planner asks at every knot. Hz; rates in Hz per second.
+ *
+ * @card Sum of the budget, at once: what the uncertain parts come to at an instant.
+ * @formula timing·|ḟ| + UT1 bound·|∂f/∂UT1| + k·√((σ_t·∂f/∂t_along)² + oscillator²)
+ * @source the cards of the budget and of its sum
+ * @units ms, s, ppm, Hz/s → Hz
+ * @frame none
+ * @range k ≥ 0, 2 unless set
+ * @tolerance 1e-9 Hz of the parts summed (plan/budget.test.ts)
+ */
+export function uncertaintyBy(carrierHz: Hz, budget: BudgetModel, radio: Pick<RadioModel, 'latencyUncertaintyMs'>): (utcMs: UtcMs, alongTrackHzPerS: number, ut1HzPerS: number) => Hz {
+  const { alongTrackSigmaS, ut1BoundS, k } = budget
+  const { timingHz: timingS, oscillatorHz } = budgetAt({ utcMs: NaN, carrierHz, rateHzPerS: 1, alongTrackHzPerS: 0, ut1HzPerS: 0 }, { ...budget, alongTrackSigmaS: () => 0 }, radio)
+  return (utcMs, alongTrackHzPerS, ut1HzPerS) => {
+    const orbitHz = alongTrackSigmaS(utcMs) * alongTrackHzPerS
+    return timingS * Math.abs(alongTrackHzPerS + ut1HzPerS) + ut1BoundS * Math.abs(ut1HzPerS) + k * Math.sqrt(orbitHz * orbitHz + oscillatorHz * oscillatorHz)
   }
 }
 
@@ -53,5 +73,5 @@ export function budgetAt(at: Sensitivity, budget: BudgetModel, radio: Pick<Radio
  * @tolerance 1e-12 Hz of a value by hand (plan/budget.test.ts)
  */
 export function uncertaintyHz(parts: UncertainParts, k: number): Hz {
-  return parts.timingHz + parts.ut1Hz + k * Math.hypot(parts.orbitHz, parts.oscillatorHz, parts.trimHz)
+  return parts.timingHz + parts.ut1Hz + k * Math.sqrt(parts.orbitHz ** 2 + parts.oscillatorHz ** 2 + parts.trimHz ** 2)
 }

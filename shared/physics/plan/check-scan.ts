@@ -1,28 +1,53 @@
 import type { UtcMs } from '../types'
 
-/** Where a function of time is asked: evenly, with its turning points between found by refinement. */
+/** Where a function of time is asked: evenly, with its turning points and peaks between found by refinement. */
 export const SCAN_STEP_MS = 1000
 
-/** Every whole second from `fromMs`, and both ends. */
-export function everySecond(fromMs: UtcMs, toMs: UtcMs): UtcMs[] {
-  const instants = [fromMs]
-  for (let at = fromMs + SCAN_STEP_MS; at < toMs; at += SCAN_STEP_MS) instants.push(at)
-  if (toMs > fromMs) instants.push(toMs)
-  return instants
-}
+/** Told of every instant of a scan, in order. */
+export type ScanVisitor = (atMs: UtcMs, value: number) => void
 
-/** The instants with, between them, those at which `rate` changes sign, to a microsecond. */
-export function withTurns(instants: readonly UtcMs[], rate: (utcMs: UtcMs) => number): UtcMs[] {
-  const all: UtcMs[] = []
+/**
+ * Asks a function at every whole second from `fromMs` and at both ends; where `rate` changes sign between two of these, there as
+ * well, to a microsecond; and beside every instant that is highest among its neighbours, at the maximum near it, to 0.1 ms. `rate` and
+ * `value` are asked at the same instant one after the other.
+ */
+export function scan(fromMs: UtcMs, toMs: UtcMs, value: (utcMs: UtcMs) => number, rate?: ((utcMs: UtcMs) => number) | null, visit?: ScanVisitor): void {
+  // The last two instants asked; of these `visit` has been told of the first.
+  let firstMs = NaN
+  let first = NaN
+  let secondMs = NaN
+  let second = NaN
+  const ask = (utcMs: UtcMs): void => {
+    const now = value(utcMs)
+    if (second >= first && second >= now) {
+      const peakMs = peakBetween(firstMs, utcMs, value)
+      const peak = value(peakMs)
+      if (visit && peakMs < secondMs) visit(peakMs, peak)
+      if (visit) visit(secondMs, second)
+      if (visit && peakMs >= secondMs) visit(peakMs, peak)
+    }
+    else if (visit && second === second) visit(secondMs, second)
+    firstMs = secondMs
+    first = second
+    secondMs = utcMs
+    second = now
+  }
+  let beforeMs = fromMs
   let rateBefore = 0
-  instants.forEach((at, i) => {
-    const rateNow = rate(at)
-    const side = rateBefore
-    if (i > 0 && side * rateNow < 0) all.push(crossingBetween(instants[i - 1]!, at, utcMs => rate(utcMs) * side > 0))
-    all.push(at)
-    rateBefore = rateNow
-  })
-  return all
+  for (let at = fromMs; ; at = Math.min(at + SCAN_STEP_MS, toMs)) {
+    if (rate) {
+      const rateNow = rate(at)
+      if (rateBefore * rateNow < 0) {
+        const isRising = rateBefore > 0
+        ask(crossingBetween(beforeMs, at, utcMs => rate(utcMs) > 0 === isRising))
+      }
+      beforeMs = at
+      rateBefore = rateNow
+    }
+    ask(at)
+    if (at >= toMs) break
+  }
+  if (visit) visit(secondMs, second)
 }
 
 /** Last instant of [fromMs, toMs] that satisfies `holds`, which the first does and the last does not; to a microsecond. */
@@ -36,30 +61,27 @@ export function crossingBetween(fromMs: UtcMs, toMs: UtcMs, holds: (utcMs: UtcMs
   return inside
 }
 
-/** The instants with, beside every one that is highest among its neighbours, the maximum near it by golden section, to 0.1 ms. */
-export function withPeaks(instants: readonly UtcMs[], value: (utcMs: UtcMs) => number): UtcMs[] {
-  const values = instants.map(value)
-  const peaks: UtcMs[] = []
-  for (let i = 1; i < instants.length - 1; i++) {
-    if (values[i]! >= values[i - 1]! && values[i]! >= values[i + 1]!) peaks.push(peakBetween(instants[i - 1]!, instants[i + 1]!, value))
-  }
-  return peaks.length === 0 ? [...instants] : [...instants, ...peaks].sort((a, b) => a - b)
-}
-
 const GOLDEN = (Math.sqrt(5) - 1) / 2
 
 function peakBetween(fromMs: UtcMs, toMs: UtcMs, value: (utcMs: UtcMs) => number): UtcMs {
-  let [a, b] = [fromMs, toMs]
-  let [left, right] = [b - GOLDEN * (b - a), a + GOLDEN * (b - a)]
-  let [atLeft, atRight] = [value(left), value(right)]
+  let a = fromMs
+  let b = toMs
+  let left = b - GOLDEN * (b - a)
+  let right = a + GOLDEN * (b - a)
+  let atLeft = value(left)
+  let atRight = value(right)
   while (b - a > 0.1) {
     if (atLeft >= atRight) {
-      [b, right, atRight] = [right, left, atLeft]
+      b = right
+      right = left
+      atRight = atLeft
       left = b - GOLDEN * (b - a)
       atLeft = value(left)
     }
     else {
-      [a, left, atLeft] = [left, right, atRight]
+      a = left
+      left = right
+      atLeft = atRight
       right = a + GOLDEN * (b - a)
       atRight = value(right)
     }

@@ -1,14 +1,18 @@
 import { allowanceOf } from '../link/allowance'
 import { lossDb } from '../link/loss'
-import { statesOf } from '../doppler/needed'
 import { receivedOverTransmitted } from '../doppler/ratio'
 import { lookAt } from '../orbit/look'
-import type { BudgetModel, BudgetParts, CheckedRetune, Hz, LinkModel, Propagator, RadioModel, RetuneRow, Site, Span, TableCheck, UtcMs, Verdict } from '../types'
+import type { BudgetModel, CheckedRetune, Hz, LinkModel, Propagator, RadioModel, RetuneRow, Site, Span, TableCheck, UplinkInUse, UtcMs, Verdict } from '../types'
 import type { CheckCurve } from './check-curve'
 import { checkCurveOf, directOffsetHz } from './check-curve'
+import type { Echo } from './check-echo'
+import { echoesOf } from './check-echo'
 import type { AppliedRow, Fault } from './check-rows'
-import { applyRows, faultsOfRows, skyAt } from './check-rows'
-import { crossingBetween, everySecond, withPeaks, withTurns } from './check-scan'
+import type { Residual, SeenExtremes } from './check-residual'
+import { residualOf } from './check-residual'
+import { applyRows, faultsOfRows } from './check-rows'
+import { crossingBetween, scan } from './check-scan'
+import { propagated } from './check-states'
 
 export interface CheckQuery {
   readonly propagator: Propagator
@@ -22,6 +26,8 @@ export interface CheckQuery {
   readonly rows: readonly RetuneRow[]
   /** No row may take effect inside. */
   readonly quiet?: readonly Span[]
+  /** Of a coherent link with a pre-compensated uplink: the uplink's own table, whose steps come back. Left out or null: none is known, and nothing is added. */
+  readonly uplink?: UplinkInUse | null
 }
 
 /** Margin of a table without any residual. */
@@ -32,7 +38,7 @@ export const MARGIN_CAP = 1e6
  * interpolates in its own way, applies the rows as the radio does (one latency after their instant, through its converter, with their
  * slopes) and asks both sides of every retune, every extreme between, and every second.
  *
- * Budgeted residual = |needed − set| + timing + UT1 + k·√(orbit² + oscillator²), as in the error budget. Margin = allowance / worst
+ * Budgeted residual = |needed − set|, an uplink's returned steps with it, + timing + UT1 + k·√(orbit² + oscillator²), as in the error budget. Margin = allowance / worst
  * budgeted residual; holds from 1.25, tight from 1, breaks below, and breaks with any fault. Before the first row the radio is
  * taken to stand on the carrier. A row that serves no workable instant has residual 0.
  *
@@ -53,47 +59,41 @@ export function checkTable(query: CheckQuery): TableCheck {
   const applied = applyRows(rows, radio)
   const faults = faultsOfRows(rows, applied, link, radio, parts, query.quiet)
   const spans = applied.map(() => ({ min: Infinity, max: -Infinity }))
-  let worst: { residualHz: Hz, atMs: UtcMs, parts: BudgetParts } | null = null
+  let worst: Residual | null = null
   let [slowest, fastest] = [Infinity, -Infinity]
   const excess: { fromMs: UtcMs, toMs: UtcMs }[] = []
 
-  for (const part of parts) {
-    const curve = checkCurveOf({ ...query, ut1MinusUtcS: budget.ut1MinusUtcS, span: part })
-    const drift = driftFault(curve, part, link, applied)
+  const curves = parts.map(part => checkCurveOf({ ...query, ut1MinusUtcS: budget.ut1MinusUtcS, span: part }))
+  for (const curve of curves) {
+    const echoes = echoesOf({ ...query, ut1MinusUtcS: budget.ut1MinusUtcS }, curve)
+    const whole = piecesOf(curve.span, applied)
+    const pieces = echoes ? whole.flatMap(piece => piecesByEcho(piece, echoes)) : whole
+    const residuals = pieces.map(piece => residualOf(curve, applied[piece.row], query, piece.returned))
+    const drift = driftFault(link, pieces, residuals)
     if (drift) faults.push(drift)
-    for (const piece of piecesOf(part, applied)) {
-      const row = applied[piece.row]
-      const setHz = (utcMs: UtcMs): Hz => row ? skyAt(row, utcMs) - link.carrierHz : 0
-      const slope = row?.skySlopeHzPerS ?? 0
-      const partsAt = (utcMs: UtcMs): BudgetParts => ({ stepsHz: curve.offsetHz(utcMs) - setHz(utcMs), ...uncertainAt(curve, utcMs, query) })
-      const budgeted = (utcMs: UtcMs) => budgetedHz(partsAt(utcMs), budget.k)
-      const instants = withPeaks(withTurns(everySecond(piece.fromMs, piece.toMs), utcMs => curve.rateHzPerS(utcMs) - slope), budgeted)
-      let before: { atMs: UtcMs, isOver: boolean } | null = null
-      for (const atMs of instants) {
-        const at = partsAt(atMs)
-        const residualHz = budgetedHz(at, budget.k)
-        if (worst === null || residualHz > worst.residualHz) worst = { residualHz, atMs, parts: at }
-        const span = spans[piece.row]
-        if (span) {
-          span.min = Math.min(span.min, at.stepsHz)
-          span.max = Math.max(span.max, at.stepsHz)
-        }
-        const ratioMinusOne = symbolClock(query, curve.offsetHz(atMs), atMs)
-        slowest = Math.min(slowest, ratioMinusOne)
-        fastest = Math.max(fastest, ratioMinusOne)
-        const isOver = residualHz > allowance.allowanceHz
-        addExcess(excess, before, { atMs, isOver }, utcMs => budgeted(utcMs) > allowance.allowanceHz)
-        before = { atMs, isOver }
+    for (const [i, piece] of pieces.entries()) {
+      const residual = residuals[i]!
+      scan(piece.fromMs, piece.toMs, residual.budgetedHz, residual.rateHzPerS)
+      const { seen } = residual
+      if (worst === null || seen.worstHz > worst.seen.worstHz) worst = residual
+      if (seen.worstHz > allowance.allowanceHz) addExcess(excess, piece, allowance.allowanceHz, residual)
+      const span = spans[piece.row]
+      if (span) {
+        span.min = Math.min(span.min, seen.leastStepsHz)
+        span.max = Math.max(span.max, seen.mostStepsHz)
       }
+      const [slow, fast] = symbolClock(curve, piece, seen, query)
+      slowest = Math.min(slowest, slow)
+      fastest = Math.max(fastest, fast)
     }
   }
 
-  const { residualHz: worstResidualHz, atMs: worstAtMs, parts: worstParts } = worst!
+  const { worstHz: worstResidualHz, worstMs: worstAtMs } = worst!.seen
   const margin = Math.min(MARGIN_CAP, worstResidualHz === 0 ? MARGIN_CAP : allowance.allowanceHz / worstResidualHz)
   faults.sort((a, b) => a.atMs - b.atMs)
   return {
-    verdict: verdictOf(margin, faults), allowance, worstResidualHz, worstAtMs, budget: worstParts, margin,
-    retunes: applied.map((row, i) => checkedRetune(row, spans[i]!, query)),
+    verdict: verdictOf(margin, faults), allowance, worstResidualHz, worstAtMs, budget: worst!.partsAt(worstAtMs), margin,
+    retunes: applied.map((row, i) => checkedRetune(row, spans[i]!, query, curves)),
     excess, faults, symbolClockPpm: [slowest * 1e6, fastest * 1e6],
   }
 }
@@ -103,84 +103,96 @@ function verdictOf(margin: number, faults: readonly Fault[]): Verdict {
   return margin >= 1.25 ? 'holds' : 'tight'
 }
 
+interface Piece extends Span { readonly row: number, readonly returned: Echo['steps'] }
+
+/** A piece cut where another row of the uplink begins to come back. */
+function piecesByEcho(piece: Piece, echoes: readonly Echo[]): Piece[] {
+  return echoes.flatMap((echo) => {
+    const fromMs = Math.max(piece.fromMs, echo.fromMs)
+    const toMs = Math.min(piece.toMs, echo.toMs)
+    return fromMs < toMs || (fromMs === toMs && piece.fromMs === piece.toMs) ? [{ row: piece.row, fromMs, toMs, returned: echo.steps }] : []
+  })
+}
+
 /** The part cut at every row's effect; row −1 before the first. Both rows are asked at a retune, so pieces share their ends. */
-function piecesOf(part: Span, applied: readonly AppliedRow[]): { row: number, fromMs: UtcMs, toMs: UtcMs }[] {
-  const pieces = []
+function piecesOf(part: Span, applied: readonly AppliedRow[]): Piece[] {
+  const pieces: Piece[] = []
   for (let row = -1; row < applied.length; row++) {
     const fromMs = Math.max(part.fromMs, row < 0 ? -Infinity : applied[row]!.effectMs)
     const toMs = Math.min(part.toMs, applied[row + 1]?.effectMs ?? Infinity)
     // A retune at the very start of a part leaves nothing of the row before it, unless it falls there exactly.
-    if (fromMs < toMs || (fromMs === toMs && row >= 0)) pieces.push({ row, fromMs, toMs })
+    if (fromMs < toMs || (fromMs === toMs && row >= 0)) pieces.push({ row, fromMs, toMs, returned: null })
   }
   return pieces
 }
 
-function uncertainAt(curve: CheckCurve, utcMs: UtcMs, { budget, radio, link }: CheckQuery): Omit<BudgetParts, 'stepsHz'> {
-  const sigmaS = budget.alongTrackSigmaS(utcMs)
-  const timingS = (budget.clockErrorMs + radio.latencyUncertaintyMs) / 1000
-  // Oscillator figures are limits; a limit L spreads as L/√3. A coherent link has the station's alone, at both ends of the trip.
-  const oscillator = link.turnaround ? 0 : Math.sqrt((budget.spacecraftPpm ** 2 + budget.stationPpm ** 2) / 3) / 1e6
-  return {
-    timingHz: timingS * Math.abs(curve.answerHzPerS(utcMs)),
-    ut1Hz: budget.ut1BoundS === 0 ? 0 : budget.ut1BoundS * Math.abs(curve.ut1HzPerS(utcMs)),
-    orbitHz: sigmaS === 0 ? 0 : sigmaS * Math.abs(curve.alongTrackHzPerS(utcMs)),
-    oscillatorHz: link.carrierHz * oscillator,
-    trimHz: 0,
-  }
-}
-
-function budgetedHz(parts: BudgetParts, k: number): Hz {
-  const spread = Math.sqrt(parts.orbitHz ** 2 + parts.oscillatorHz ** 2 + parts.trimHz ** 2)
-  return Math.abs(parts.stepsHz) + parts.timingHz + parts.ut1Hz + k * spread
-}
-
-function addExcess(excess: { fromMs: UtcMs, toMs: UtcMs }[], before: { atMs: UtcMs, isOver: boolean } | null, now: { atMs: UtcMs, isOver: boolean }, isOver: (utcMs: UtcMs) => boolean): void {
-  const add = (fromMs: UtcMs, toMs: UtcMs) => {
+/** Adds where a piece is beyond the allowance, the edges refined. */
+function addExcess(excess: { fromMs: UtcMs, toMs: UtcMs }[], { fromMs, toMs }: Span, allowanceHz: Hz, { budgetedHz, rateHzPerS }: Residual): void {
+  const add = (overMs: UtcMs, underMs: UtcMs) => {
     const last = excess[excess.length - 1]
-    if (last && last.toMs >= fromMs) last.toMs = Math.max(last.toMs, toMs)
-    else excess.push({ fromMs, toMs })
+    if (last && last.toMs >= overMs) last.toMs = Math.max(last.toMs, underMs)
+    else excess.push({ fromMs: overMs, toMs: underMs })
   }
-  if (before === null) {
-    if (now.isOver) add(now.atMs, now.atMs)
-    return
-  }
-  if (before.isOver && now.isOver) add(before.atMs, now.atMs)
-  else if (before.isOver) add(before.atMs, crossingBetween(before.atMs, now.atMs, isOver))
-  else if (now.isOver) add(crossingBetween(before.atMs, now.atMs, utcMs => !isOver(utcMs)), now.atMs)
+  let before: { readonly atMs: UtcMs, readonly isOver: boolean } | null = null
+  scan(fromMs, toMs, budgetedHz, rateHzPerS, (atMs, value) => {
+    const isOver = value > allowanceHz
+    if (before === null) {
+      if (isOver) add(atMs, atMs)
+    }
+    else if (before.isOver && isOver) add(before.atMs, atMs)
+    else if (before.isOver) add(before.atMs, crossingBetween(before.atMs, atMs, utcMs => budgetedHz(utcMs) > allowanceHz))
+    else if (isOver) add(crossingBetween(before.atMs, atMs, utcMs => budgetedHz(utcMs) <= allowanceHz), atMs)
+    before = { atMs, isOver }
+  })
 }
 
 /** Largest |ḟ − slope| over a part, both rows asked at a retune, where it is beyond what the loop follows. */
-function driftFault(curve: CheckCurve, part: Span, { driftLimitHzPerS }: LinkModel, applied: readonly AppliedRow[]): Fault | null {
+function driftFault({ driftLimitHzPerS }: LinkModel, pieces: readonly Piece[], residuals: readonly Residual[]): Fault | null {
   if (driftLimitHzPerS === null) return null
-  let [worst, atMs] = [0, part.fromMs]
-  for (const { row, fromMs, toMs } of piecesOf(part, applied)) {
-    const slope = applied[row]?.skySlopeHzPerS ?? 0
-    const drift = (utcMs: UtcMs) => Math.abs(curve.rateHzPerS(utcMs) - slope)
-    for (const at of withPeaks(everySecond(fromMs, toMs), drift)) if (drift(at) > worst) [worst, atMs] = [drift(at), at]
+  let [worst, worstMs] = [0, pieces[0]!.fromMs]
+  for (const [i, { fromMs, toMs }] of pieces.entries()) {
+    const { rateHzPerS } = residuals[i]!
+    scan(fromMs, toMs, utcMs => Math.abs(rateHzPerS(utcMs)), null, (atMs, drift) => {
+      if (drift > worst) [worst, worstMs] = [drift, atMs]
+    })
   }
   if (worst <= driftLimitHzPerS) return null
   return {
-    code: 'drift', atMs,
-    message: `What is set drifts from what is needed by ${worst.toFixed(1)} Hz/s at ${new Date(atMs).toISOString()}; the link's loop follows ${driftLimitHzPerS} Hz/s.`,
+    code: 'drift', atMs: worstMs,
+    message: `What is set drifts from what is needed by ${worst.toFixed(1)} Hz/s at ${new Date(worstMs).toISOString()}; the link's loop follows ${driftLimitHzPerS} Hz/s.`,
   }
 }
 
-/** Received over transmitted, minus one: the scale of the symbol clock at the receiving end. A coherent spacecraft still counts its symbols by its own clock. */
-function symbolClock({ link, propagator, site, budget }: CheckQuery, offsetHz: Hz, utcMs: UtcMs): number {
-  if (link.turnaround) return receivedOverTransmitted({ stateAt: statesOf(propagator), site, ut1MinusUtcS: budget.ut1MinusUtcS }, 'downlink', utcMs).ratioMinusOne
-  return link.direction === 'downlink' ? offsetHz / link.carrierHz : -offsetHz / (link.carrierHz + offsetHz)
+/**
+ * Received over transmitted, minus one, least and greatest: the scale of the symbol clock at the receiving end, which goes with the
+ * offset. A coherent spacecraft still counts its symbols by its own clock.
+ */
+function symbolClock({ stateAt }: CheckCurve, { fromMs, toMs }: Span, { leastOffsetHz, mostOffsetHz }: SeenExtremes, { link, site, budget }: CheckQuery): [slowest: number, fastest: number] {
+  const { carrierHz, direction, turnaround } = link
+  if (turnaround) {
+    const path = { stateAt, site, ut1MinusUtcS: budget.ut1MinusUtcS }
+    const ends: [slowest: number, fastest: number] = [Infinity, -Infinity]
+    scan(fromMs, toMs, utcMs => receivedOverTransmitted(path, 'downlink', utcMs).ratioMinusOne, null, (_, ratio) => {
+      ends[0] = Math.min(ends[0], ratio)
+      ends[1] = Math.max(ends[1], ratio)
+    })
+    return ends
+  }
+  return direction === 'downlink'
+    ? [leastOffsetHz / carrierHz, mostOffsetHz / carrierHz]
+    : [-mostOffsetHz / (carrierHz + mostOffsetHz), -leastOffsetHz / (carrierHz + leastOffsetHz)]
 }
 
-function checkedRetune({ row, effectMs }: AppliedRow, span: { min: Hz, max: Hz }, query: CheckQuery): CheckedRetune {
-  const { propagator, site, link, budget } = query
+/** Outside the workable parts a row's own instant is propagated directly. */
+function checkedRetune({ row, effectMs }: AppliedRow, span: { min: Hz, max: Hz }, query: CheckQuery, curves: readonly CheckCurve[]): CheckedRetune {
+  const { propagator, site, link, budget: { ut1MinusUtcS } } = query
   const [residualMinHz, residualMaxHz] = span.min <= span.max ? [span.min, span.max] : [0, 0]
-  const state = propagator.at(effectMs)
-  if (!state.ok) throw new RangeError(`The element set cannot be propagated to ${new Date(effectMs).toISOString()}: ${state.error}.`)
-  const look = lookAt(state, site, effectMs, budget.ut1MinusUtcS)
+  const curve = curves.find(({ span: { fromMs, toMs } }) => fromMs <= effectMs && effectMs <= toMs)
+  const look = lookAt(curve?.stateAt(effectMs) ?? propagated(propagator, effectMs), site, effectMs, ut1MinusUtcS)
   return {
-    ...row, residualMinHz, residualMaxHz,
+    atMs: row.atMs, frequencyHz: row.frequencyHz, slopeHzPerS: row.slopeHzPerS, residualMinHz, residualMaxHz,
     lossDb: lossDb(link, Math.max(Math.abs(residualMinHz), Math.abs(residualMaxHz))),
-    dopplerHz: directOffsetHz({ propagator, site, link, ut1MinusUtcS: budget.ut1MinusUtcS }, effectMs),
+    dopplerHz: curve ? curve.offsetHz(effectMs) : directOffsetHz({ propagator, site, link, ut1MinusUtcS }, effectMs),
     rangeRateMps: look.rangeRateMps, azimuthRad: look.azimuthRad, elevationRad: look.elevationRad,
   }
 }

@@ -23,13 +23,15 @@ export function choosePath(holds: Holds, limits: Limits, rows: number): Path | n
   /** Latest start of hold u as first of the last `left` rows. Mirrored, a start is the end of the row. */
   const latestStart = (u: number, left: number): number => {
     if (left === 1) return to[u]! >= last ? to[u]! : -Infinity
-    const mirroredEnd = back.layers[Math.min(left, back.layers.length) - 1]![u]!
+    const mirroredEnd = back.earliest(u, left)
     return mirroredEnd === Infinity ? -Infinity : Math.min(to[u]!, -mirroredEnd - limits.dwell)
   }
   const isGap = (time: number) => holds.gaps.some(([a, b]) => a <= time && time <= b)
   const mayChange = (v: number, u: number, time: number, left: number) =>
     time >= from[u]! && time <= to[v]! && time <= latestStart(u, left)
     && (Math.abs(setting[u]! - setting[v]!) <= limits.jump || isGap(time))
+  /** Of holds that may be changed from, what any other asks of them: without a jump limit the one that lasts longest will do. */
+  const leading = (some: readonly number[]) => limits.jump < Infinity || some.length === 0 ? some : [some.reduce((a, b) => to[b]! > to[a]! ? b : a)]
 
   const all = Array.from(setting.keys())
   const choices: number[][] = [all.filter(v => from[v]! <= first && to[v]! >= first)]
@@ -37,10 +39,11 @@ export function choosePath(holds: Holds, limits: Limits, rows: number): Path | n
   let leave = Math.max(limits.notBefore + limits.dwell, first + 1)
   for (let row = 2; row <= rows; row++) {
     const left = rows - row + 1
-    const candidates = all.filter(u => latestStart(u, left) >= Math.max(leave, from[u]!))
-    const start = earliestOf(holds, choices[row - 2]!, candidates, leave, u => latestStart(u, left), limits)
+    const candidates = all.filter(u => to[u]! >= leave && latestStart(u, left) >= Math.max(leave, from[u]!))
+    const before = leading(choices[row - 2]!)
+    const start = earliestOf(holds, before, candidates, leave, u => latestStart(u, left), limits)
     if (start === Infinity) return null
-    choices.push(candidates.filter(u => choices[row - 2]!.some(v => mayChange(v, u, start, left))))
+    choices.push(candidates.filter(u => before.some(v => mayChange(v, u, start, left))))
     starts.push(start)
     leave = start + limits.dwell
   }

@@ -12,16 +12,14 @@ import { furthestReach, isWorkable, settingsOver } from './reach'
 /**
  * Fewest rows through a corridor. Furthest reach is tried first: without dwell and jump limit it is optimal, so where its rows
  * happen to keep both, it is optimal with them too, and where it needs too many rows, so does every plan. Only in between are
- * the paths from hold to hold searched, which `onSearch` is told.
+ * the paths from hold to hold searched.
  */
-export function fewestRows(c: Corridor, limits: Limits, limit = Infinity, onSearch?: () => void): number | null {
+export function fewestRows(c: Corridor, limits: Limits, limit = Infinity): number | null {
   const starts = furthestReach(c, firstInstant(c), limit, limits.quiet)
   if (starts === null) return null
-  if (keepsDwell(starts, limits) && settingsFor(c, starts, limits.jump) !== null) return starts.length
-  onSearch?.()
-  const bound = boundJump(c, limits)
-  const { layers, complete } = earliestStarts(holdsFor(c, bound), bound, limit)
-  return complete ? layers.length : null
+  if (keepsDwell(starts, limits) && (limits.jump === Infinity || settingsFor(c, starts, limits.jump) !== null)) return starts.length
+  const { rows, complete } = earliestStarts(holdsFor(c, limits), limits, limit)
+  return complete ? rows : null
 }
 
 /** Of all plans with `rows` rows, where fewer do not suffice: the earliest starts, in order, then the lowest settings, in order. */
@@ -36,8 +34,7 @@ export function chooseRows(c: Corridor, limits: Limits, rows: number): Path | nu
       return { starts, settings }
     }
   }
-  const bound = boundJump(c, limits)
-  return choosePath(holdsFor(c, bound), bound, rows)
+  return choosePath(holdsFor(c, limits), limits, rows)
 }
 
 function firstInstant(c: Corridor): number {
@@ -71,35 +68,29 @@ function settingsFor(c: Corridor, starts: readonly number[], jump: number): numb
   return settings
 }
 
-/** Both settings hold at a retune, so no jump is wider than the corridor; saying so narrows the search. */
-function boundJump(c: Corridor, limits: Limits): Limits {
-  const widest = c.lowHz.reduce((most, low, j) => Math.max(most, c.highHz[j]! - low), 0)
-  return { ...limits, jump: Math.min(limits.jump, Math.ceil(widest / c.grid.stepHz)) }
-}
-
-/** Pairs of neighbouring grid points that a search may look at. */
+/** Pairs of neighbouring grid points that a search may look at, and grid points where no jump limit binds. */
 const MOST_PAIRS = 200_000
+const MOST_POINTS = 8_000
 
 /**
- * Holds of the corridor. A grid so fine that the search would look at more than `MOST_PAIRS` pairs is thinned to every n-th
+ * Holds of the corridor. A grid so fine that the search would look at too many points or pairs of them is thinned to every n-th
  * point, n a divisor of the jump limit so that the largest jump stays in reach: least rows and least ratio are then those of the
  * thinned grid, which costs at most n/2 steps of the half-width.
  */
-function holdsFor(c: Corridor, limits: Limits): Holds {
-  const least = Math.sqrt(pairsOf(c, limits) / MOST_PAIRS)
-  let stride = Math.max(1, Math.floor(least))
-  if (stride > 1) while (stride < limits.jump && limits.jump % stride !== 0) stride++
-  return holdsOf(c, stride)
-}
-
-function pairsOf(c: Corridor, { jump }: Limits): number {
-  const lowest = c.lowHz.reduce((a, b) => Math.min(a, b))
-  const highest = c.highHz.reduce((a, b) => Math.max(a, b))
+function holdsFor(c: Corridor, { jump }: Limits): Holds {
+  let lowest = Infinity
+  let highest = -Infinity
+  let widest = 0
+  for (let j = 0; j < c.lowHz.length; j++) {
+    lowest = Math.min(lowest, c.lowHz[j]!)
+    highest = Math.max(highest, c.highHz[j]!)
+    widest = Math.max(widest, c.highHz[j]! - c.lowHz[j]!)
+  }
   const points = Math.min(c.grid.most - c.grid.least, (highest - lowest) / c.grid.stepHz) + 1
-  return points * Math.min(jump, points)
-}
-
-/** True where a search through this corridor's holds takes long enough that a ratio or half-width is worth only a few digits. */
-export function isLargeSearch(c: Corridor, limits: Limits): boolean {
-  return pairsOf(c, boundJump(c, limits)) > MOST_PAIRS / 10
+  if (jump === Infinity) return holdsOf(c, Math.max(1, Math.floor(points / MOST_POINTS)))
+  // Both settings hold at a retune, so no jump is wider than the corridor.
+  const reach = Math.min(jump, Math.ceil(widest / c.grid.stepHz), points)
+  let stride = Math.max(1, Math.floor(Math.sqrt(points * reach / MOST_PAIRS)))
+  if (stride > 1) while (stride < jump && jump % stride !== 0) stride++
+  return holdsOf(c, stride)
 }

@@ -29,16 +29,21 @@ export function holdsOf(c: Corridor, stride: number): Holds {
   const most = Math.min(Math.floor(c.grid.most / stride), Math.ceil(c.highHz.reduce((a, b) => Math.max(a, b)) / q))
   const count = Math.max(0, most - least + 1)
   const open = new Array<number>(count).fill(Number.NaN)
-  const found: [setting: number, from: number, to: number][] = []
+  const found: { readonly point: number[], readonly from: number[], readonly to: number[] } = { point: [], from: [], to: [] }
   const gaps: [number, number][] = []
 
   const serves = (knot: number, n: number) => c.lowHz[knot]! - SLACK_HZ <= n * q && c.highHz[knot]! + SLACK_HZ >= n * q
   const close = (i: number, to: number) => {
-    if (to >= open[i]!) found.push([(least + i) * stride, open[i]!, to])
+    if (to >= open[i]!) {
+      found.point.push(i)
+      found.from.push(open[i]!)
+      found.to.push(to)
+    }
     open[i] = Number.NaN
   }
 
-  c.timeMs.forEach((time, knot) => {
+  for (let knot = 0; knot < c.timeMs.length; knot++) {
+    const time = c.timeMs[knot]!
     if (c.beginsPart[knot]) {
       const from = knot === 0 ? first : Math.floor(c.timeMs[knot - 1]!) + 1
       const to = Math.ceil(time) - 1
@@ -48,7 +53,7 @@ export function holdsOf(c: Corridor, stride: number): Holds {
         if (serves(knot, least + i)) open[i] = isOpen ? open[i]! : from
         else if (isOpen) close(i, to)
       }
-      return
+      continue
     }
     const before = knot - 1
     const inner = [Math.max(c.lowHz[before]!, c.lowHz[knot]!), Math.min(c.highHz[before]!, c.highHz[knot]!)] as const
@@ -65,11 +70,23 @@ export function holdsOf(c: Corridor, stride: number): Holds {
       if (stretch !== null && Number.isNaN(open[i]!)) open[i] = stretch[0]
       if (!Number.isNaN(open[i]!) && !serves(knot, n)) close(i, stretch === null ? Math.floor(c.timeMs[before]!) : stretch[1])
     }
-  })
+  }
   for (let i = 0; i < count; i++) if (!Number.isNaN(open[i]!)) close(i, last)
-  found.sort((a, b) => a[0] - b[0] || a[1] - b[1])
-  const column = (n: 0 | 1 | 2) => Float64Array.from(found, hold => hold[n])
-  return { setting: column(0), from: column(1), to: column(2), first, last, gaps }
+  // By setting; holds of one setting are found in order of time already.
+  const places = new Int32Array(count + 1)
+  for (const i of found.point) places[i + 1] = places[i + 1]! + 1
+  for (let i = 0; i < count; i++) places[i + 1] = places[i + 1]! + places[i]!
+  const total = found.point.length
+  const holds = { setting: new Float64Array(total), from: new Float64Array(total), to: new Float64Array(total), first, last, gaps }
+  for (let n = 0; n < total; n++) {
+    const i = found.point[n]!
+    const place = places[i]!
+    places[i] = place + 1
+    holds.setting[place] = (least + i) * stride
+    holds.from[place] = found.from[n]!
+    holds.to[place] = found.to[n]!
+  }
+  return holds
 }
 
 /** The same holds with time running backwards. */

@@ -58,6 +58,8 @@ export function chainOf(task: LineTask, starts: readonly number[], jumpHz: numbe
 /** Settings of one slope from which some kept setting of the next row is within the jump. */
 function leadingTo({ least, most }: LineChoice, next: readonly Kept[], moved: number, jump: number): Intervals {
   const found: [number, number][] = []
+  // A jump below half a step leads to a setting only from close beside it.
+  if (jump < 0.5 && Math.abs(moved - Math.round(moved)) > jump + 1e-9) return found
   for (const { settings } of next) {
     for (const [low, high] of settings) {
       const from = Math.max(least, Math.ceil(low - jump - moved - 1e-9))

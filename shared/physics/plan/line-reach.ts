@@ -108,6 +108,15 @@ const MOST_STARTS = 64
 /** Plans this short are searched at every whole instant. */
 const SHORT = 400
 
+/** Instants after the first at which a search lets rows begin, in order: every whole one of a short plan, else evenly spread ones and `hints`. */
+export function startChoices({ corridor: { timeMs }, first, quiet }: LineTask, hints: readonly number[]): number[] {
+  const end = timeMs[timeMs.length - 1]!
+  const stride = end - first <= SHORT ? 1 : Math.ceil((end - first) / MOST_STARTS)
+  const choices = new Set(hints.slice(1))
+  for (let time = first + 1; time < end; time += stride) choices.add(nextFree(quiet, time))
+  return [...choices].sort((a, b) => a - b)
+}
+
 /**
  * Fewest rows over a choice of starts: reachable sets, row by row. On a grid a later start is not always the worse one, and with
  * a dwell furthest reach runs into dead ends. Every whole instant is a start in a short plan; in a long one, evenly spread instants
@@ -122,11 +131,7 @@ const SHORT = 400
  * @tolerance as few as trying every plan finds (plan/ramp-path.test.ts)
  */
 export function searchedLines(task: LineTask, limit: number, hints: readonly number[]): number[] | null {
-  const end = task.corridor.timeMs[task.corridor.timeMs.length - 1]!
-  const stride = end - task.first <= SHORT ? 1 : Math.ceil((end - task.first) / MOST_STARTS)
-  const choices = new Set(hints)
-  for (let time = task.first + 1; time < end; time += stride) choices.add(time)
-  const open = [...choices].map(time => nextFree(task.quiet, time)).sort((a, b) => b - a)
+  const open = startChoices(task, hints).reverse()
   let layer: number[][] = [[task.first]]
   for (let rows = 1; rows <= limit && layer.length > 0; rows++) {
     const next: number[][] = []

@@ -43,8 +43,8 @@ export interface RetunePlan {
   readonly excessHz: Hz
 }
 
-/** Share of the allowance that may be lost to following the curve by straight pieces; an eighth of one per cent of κ's room. */
-const SAMPLING_SHARE = 2.5e-4
+/** Share of the allowance that may be lost to following the curve by straight pieces; half of one per cent of κ's room. */
+const SAMPLING_SHARE = 1e-3
 
 /**
  * Plans the retunes of a radio: the fewest rows that keep |needed − set| ≤ h over the workable parts, both settings at
@@ -59,7 +59,7 @@ const SAMPLING_SHARE = 2.5e-4
  * - Rows of a radio that ramps carry slopes, and may then be a row more than the fewest: `rampPath` says by what bound.
  * - A radio with a cadence is retuned at every tick instead: `cadencePath`.
  *
- * The curve is followed by straight pieces; their error, 0.025 % of the allowance where the curve is smooth, is taken off h.
+ * The curve is followed by straight pieces; their error, 0.1 % of the allowance where the curve is smooth, is taken off h.
  *
  * @card Tuning plan: the fewest settings of a stepped radio that stay within what the link bears.
  * @formula |f(t) − g_i| ≤ h(t) = κ·allowance − timing − UT1 − k·spread over the workable parts; least N, then least max |f − g|/h, then

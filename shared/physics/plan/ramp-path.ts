@@ -2,6 +2,7 @@ import type { Corridor, Curve, Grid } from './corridor'
 import { corridorOf } from './corridor'
 import type { LinePath } from './line-chain'
 import { chainOf } from './line-chain'
+import { searchedWithJumps } from './line-jumps'
 import type { LineTask } from './line-reach'
 import { furthestLines, gridlessRows, searchedLines } from './line-reach'
 import type { SlopeBounds, Slopes } from './lines'
@@ -34,16 +35,16 @@ const PRECISION = { furthest: 1e-3, searched: 2e-2 }
 /**
  * Rows that ramp, as few as are found: no more than lines of any setting and slope need in a half-width smaller by q/2 + σℓ/4, ℓ the
  * longest piece, and fewer where a search finds them. Then least ratio of residual to half-width, then earliest starts, then lowest
- * settings. Where a jump limit binds, rows that come closer to the curve are tried, since rows within half the limit of it jump by no
- * more than the limit. Null where nothing is found.
+ * settings. Where a jump limit J binds: no more than such lines need in min(h, J/2) less q/2 + σℓ/4, since rows within half the limit of
+ * the curve jump by no more than it; a search over starts and values finds fewer, and in short plans the fewest. Null where nothing is found.
  *
  * @card Rows that ramp: as few as are found, then closest, earliest, lowest.
  * @formula |f − g_i − s_i·(t − e_i)| ≤ h, both rows at a retune
  * @source longest lines through a corridor by its hulls
  * @units Hz, Hz/s, ms → rows
  * @frame the radio’s dial
- * @range ratio to 0.1 %; where a jump limit binds, not always the fewest
- * @tolerance between gridless lines in h and in h − q/2 − σℓ/4 (predict/ramps.test.ts)
+ * @range ratio to 0.1 %, searched ones to 2 %
+ * @tolerance between gridless lines in h and in min(h, J/2) − q/2 − σℓ/4 (predict/ramps.test.ts); the fewest in short plans (plan/ramp-path.test.ts)
  */
 export function rampPath(curve: Curve, grid: Grid, limits: RampLimits, halfWidthHz: readonly number[]): LinePath | null {
   if (halfWidthHz.some(h => h <= 0)) return null
@@ -114,7 +115,8 @@ function pathBy({ searches, narrowHz, lead }: Way, wide: Corridor, limits: RampL
     highHz: wide.highHz.map((high, j) => Math.min(high, (wide.lowHz[j]! + high) / 2 + narrowHz)),
   }, limits, lead)
   const furthest = furthestLines(task, most)
-  const starts = searches ? searchedLines(task, most, furthest ?? []) : furthest
+  if (!searches) return furthest && chainOf(task, furthest, limits.jumpHz)
+  const starts = limits.jumpHz < Infinity ? searchedWithJumps(task, most, limits.jumpHz, furthest ?? []) : searchedLines(task, most, furthest ?? [])
   return starts && chainOf(task, starts, limits.jumpHz)
 }
 

@@ -1,16 +1,16 @@
 import type { NeededFrequency } from '../doppler/needed'
 import { createNeededFrequency } from '../doppler/needed'
-import { createSeenFrequency, seenPartials } from '../doppler/seen-ratio'
-import { withOscillatorsOf } from '../doppler/two-way'
+import { createSeenFrequency, seenPartialsInto } from '../doppler/seen-ratio'
+import { returnedStepsHz, withOscillatorsOf } from '../doppler/two-way'
 import { createSiteTrack } from '../orbit/site-track'
 import type { SiteTrack } from '../orbit/site-track'
 import { workablePartsForLink } from '../orbit/passes'
 import { allowanceOf } from '../link/allowance'
-import { budgetAt, uncertaintyHz } from '../plan/budget'
+import { uncertaintyBy } from '../plan/budget'
 import { checkTable } from '../plan/check-table'
 import type { RetuneProblem } from '../plan/plan-retunes'
 import { planRetunes } from '../plan/plan-retunes'
-import type { BudgetModel, Ephemeris, Hz, LinkModel, PredictedPass, Propagator, RadioModel, RetuneRow, Site, Span, TableCheck, UtcMs } from '../types'
+import type { BudgetModel, Ephemeris, Hz, LinkModel, PredictedPass, Propagator, RadioModel, RetuneRow, Site, Span, TableCheck, UplinkInUse, UtcMs } from '../types'
 
 export interface TableQuery {
   readonly propagator: Propagator
@@ -32,6 +32,11 @@ export interface TableQuery {
   readonly firstRowLeadMs?: number
   /** No row takes effect inside. */
   readonly quiet?: readonly Span[]
+  /**
+   * Of a coherent link with a pre-compensated uplink: the uplink's own table at this station and pass. The plan leaves room for the worst
+   * that its steps come back as; the check has them as they come. Left out or null: none is known, and nothing is added.
+   */
+  readonly uplink?: UplinkInUse | null
 }
 
 export interface BuiltTable {
@@ -65,7 +70,7 @@ export function buildTable(query: TableQuery): BuiltTable | NotWorkable {
   const { quiet = [], firstRowLeadMs = 0 } = query
   const plan = planRetunes({
     ...onDial(neededOn(track, query), link, radio),
-    uncertaintyHz: uncertaintyOver(track, ephemeris, query), allowanceHz: allowanceOf(link).allowanceHz,
+    uncertaintyHz: uncertaintyOf(track, query), allowanceHz: allowanceOf(link).allowanceHz,
     parts, radio, jumpLimitHz: link.jumpLimitHz, driftLimitHzPerS: link.driftLimitHzPerS, quiet, firstRowLeadMs,
     ...(query.notBeforeMs === undefined ? {} : { notBeforeMs: query.notBeforeMs }),
   })
@@ -73,7 +78,7 @@ export function buildTable(query: TableQuery): BuiltTable | NotWorkable {
     // Exact: planned rows take effect one latency after a whole millisecond.
     atMs: Math.round(effectMs - radio.latencyMs), frequencyHz, slopeHzPerS,
   }))
-  return { kind: 'table', rows, check: checkTable({ propagator, site, link, radio, budget, parts, rows, quiet }), parts, kappa: plan.kappa }
+  return { kind: 'table', rows, check: checkTable({ propagator, site, link, radio, budget, parts, rows, quiet, uplink: query.uplink ?? null }), parts, kappa: plan.kappa }
 }
 
 /** What a table is planned along. Two legs, or a carrier that is not what the uplink makes, are asked of the ephemeris itself. */
@@ -127,35 +132,44 @@ export function residualOfRows(query: ResidualQuery): TableCheck | NotWorkable {
  * @units UTC ms → Hz
  * @frame the site’s own axes
  * @range within the ephemeris
- * @tolerance within 1 % of the checker’s: plans hold (predict/build-table.test.ts)
+ * @tolerance within 0.3 % of the checker’s: plans hold (predict/build-table.test.ts)
  */
 export function exactUncertainty(track: SiteTrack, link: Pick<LinkModel, 'direction' | 'carrierHz' | 'turnaround'>, budget: BudgetModel, radio: RadioModel): (utcMs: UtcMs) => Hz {
   const { direction, carrierHz } = link
   const counted = withOscillatorsOf(budget, link)
   // Both legs of a coherent link answer alike, whether or not its uplink is pre-compensated.
   const legs = link.turnaround ? 2 : 1
-  return utcMs => uncertaintyHz(budgetAt({ utcMs, carrierHz, ...seenPartials(track, direction, legs * carrierHz, utcMs) }, counted, radio), budget.k)
+  const summed = uncertaintyBy(carrierHz, counted, radio)
+  const partials = new Float64Array(2)
+  return (utcMs) => {
+    seenPartialsInto(track, direction, legs * carrierHz, utcMs, partials)
+    return summed(utcMs, partials[0]!, partials[1]!)
+  }
 }
 
-/** Spacing of the nodes between which the uncertainty is interpolated, and what is added for it. */
-const NODE_MS = 4000
-const NODE_ROOM = 1.01
+/** What is added to the uncertainty, since its partials leave out oblateness and light time. */
+const UNCERTAINTY_ROOM = 1.003
+
+/** Uncertainty to plan with: no less than the checker will find. */
+function uncertaintyOf(track: SiteTrack, { link, budget, radio, uplink }: TableQuery): (utcMs: UtcMs) => Hz {
+  const exact = exactUncertainty(track, link, budget, radio)
+  const returnedHz = worstReturnedHz(link, uplink)
+  return utcMs => UNCERTAINTY_ROOM * exact(utcMs) + returnedHz
+}
 
 /**
- * Uncertainty over time. The partials cost several ratios an instant and change slowly, so they are asked every 4 s and
- * interpolated in straight pieces; one per cent is added, which no low orbit uses up.
+ * The most that an uplink's steps may come back as, either way, Hz; 0 where nothing of them is known or nothing comes back.
+ *
+ * @card Largest returned steps: what a plan leaves room for on a coherent downlink.
+ * @formula N/D·max |r_up| over the uplink’s rows
+ * @source mechanics; CCSDS 401.0-B
+ * @units Hz → Hz
+ * @frame none
+ * @range pre-compensated uplinks whose table is known
+ * @tolerance never less than what the checker finds (predict/returned-steps.test.ts)
  */
-function uncertaintyOver(track: SiteTrack, ephemeris: Ephemeris, { link, budget, radio }: TableQuery): (utcMs: UtcMs) => Hz {
-  const exact = exactUncertainty(track, link, budget, radio)
-  const nodes = new Map<number, Hz>()
-  const node = (n: number): Hz => {
-    let value = nodes.get(n)
-    if (value === undefined) nodes.set(n, value = exact(Math.min(Math.max(n * NODE_MS, ephemeris.fromMs), ephemeris.toMs)))
-    return value
-  }
-  return (utcMs) => {
-    const n = Math.floor(utcMs / NODE_MS)
-    const share = utcMs / NODE_MS - n
-    return NODE_ROOM * (node(n) * (1 - share) + node(n + 1) * share)
-  }
+export function worstReturnedHz({ turnaround }: Pick<LinkModel, 'turnaround'>, uplink: UplinkInUse | null | undefined): Hz {
+  if (!uplink || !turnaround?.uplinkPrecompensated) return 0
+  return uplink.retunes.reduce((worst, { residualMinHz, residualMaxHz }) =>
+    Math.max(worst, Math.abs(returnedStepsHz(residualMinHz, turnaround)), Math.abs(returnedStepsHz(residualMaxHz, turnaround))), 0)
 }

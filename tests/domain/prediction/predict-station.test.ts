@@ -134,6 +134,31 @@ describe('prediction of one spacecraft at one station', () => {
     expect(ofGone.map(({ revision }) => [revision.number, revision.state])).toEqual(gone.flatMap(() => [[1, 'lapsed'], [2, 'approved']]))
   })
 
+  it('counts what a coherent downlink\'s uplink table leaves, and makes the downlink\'s table anew when the uplink changes', async () => {
+    // 437.5 MHz is three times 145.833 MHz: what the uplink's steps leave comes back threefold (arithmetic).
+    await database.db.update(links).set({ carrierHz: 437.5e6 / 3, bandLowHz: 145.7e6, bandHighHz: 146e6 }).where(eq(links.id, fleet.uplinkId))
+    await database.db.update(links).set({ turnaroundNumerator: 3, turnaroundDenominator: 1, uplinkPrecompensated: true }).where(eq(links.id, fleet.downlinkId))
+    const figures = async (linkId: string) => (await revisionRows()).filter(row => row.linkId === linkId && row.revision.state !== 'lapsed').map(({ revision }) => revision.check.worstResidualHz)
+    await predict()
+    const [coarse, uplink] = [await figures(fleet.downlinkId), await figures(fleet.uplinkId)]
+    expect(coarse.length).toBeGreaterThan(0)
+
+    // Held to a hundred hertz, with more rows, the uplink leaves less.
+    await database.db.update(links).set({ captureRangeHz: 100 }).where(eq(links.id, fleet.uplinkId))
+    await predict('A stricter uplink.')
+    const [fine, closer] = [await figures(fleet.downlinkId), await figures(fleet.uplinkId)]
+    coarse.forEach((hz, i) => {
+      expect(closer[i]!).toBeLessThan(uplink[i]!)
+      expect(fine[i]!).toBeLessThan(hz)
+    })
+
+    await database.db.update(links).set({ retiredAt: now }).where(eq(links.id, fleet.uplinkId))
+    await predict('No uplink is known.')
+    const alone = (await revisionRows()).filter(row => row.linkId === fleet.downlinkId)
+    expect(alone.every(({ revision }) => revision.verdict === 'holds')).toBe(true)
+    expect(Math.max(...coarse)).toBeGreaterThan(Math.max(...alone.map(({ revision }) => revision.check.worstResidualHz)) + 500)
+  })
+
   it('leaves a pass that has begun as it is, and finds the ones after it', async () => {
     await predict()
     const [first, ...rest] = await passRows()

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest'
 import { createNeededFrequency } from '../../../shared/physics/doppler/needed'
-import { answeringLink, turnedAroundHz, twoWayOf } from '../../../shared/physics/doppler/two-way'
+import { answeringLink, isTurnedAroundTo, returnedStepsHz, turnedAroundHz, twoWayOf } from '../../../shared/physics/doppler/two-way'
 import { partialAlongTrackHzPerS, partialUt1HzPerS } from '../../../shared/physics/orbit/along-track'
 import { createEphemeris } from '../../../shared/physics/orbit/ephemeris'
 import { gmstRad, siteStateTeme } from '../../../shared/physics/orbit/frames'
@@ -27,6 +27,20 @@ describe('a coherent transponder', () => {
   it('makes 2287.5 MHz of 2106.40625 MHz by 240/221', () => {
     // Source: CCSDS 401.0-B, frequencies of S-band transponders.
     expect(turnedAroundHz(2106.40625e6, sBand)).toBeCloseTo(2287.5e6, 6)
+  })
+
+  it('returns what its uplink is set off by, times 240/221', () => {
+    // By hand: an uplink needed 100 Hz higher than it is set is heard 100 Hz low; 100 · 240/221 = 108.597.
+    expect(returnedStepsHz(100, sBand)).toBeCloseTo(-108.597_285, 5)
+    expect(returnedStepsHz(-221, sBand)).toBeCloseTo(240, 9)
+  })
+
+  it('has the one uplink that makes its carrier', () => {
+    // Source: CCSDS 401.0-B, as above.
+    const link = { carrierHz: 2287.5e6, turnaround: sBand }
+    expect(isTurnedAroundTo(2106.40625e6, link)).toBe(true)
+    expect(isTurnedAroundTo(2106.40625e6 + 10, link)).toBe(false)
+    expect(isTurnedAroundTo(2106.40625e6, { carrierHz: 2287.5e6, turnaround: null })).toBe(false)
   })
 
   it.each([[-7000, 106_826], [7000, -106_821]])('at %d m/s shifts 2287.5 MHz by %d Hz two ways', (speedMps, expected) => {

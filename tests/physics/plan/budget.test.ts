@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { budgetAt, uncertaintyHz } from '../../../shared/physics/plan/budget'
+import { budgetAt, uncertaintyBy, uncertaintyHz } from '../../../shared/physics/plan/budget'
 import type { BudgetModel } from '../../../shared/physics/types'
 
 const budget: BudgetModel = {
@@ -23,8 +23,15 @@ describe('the error budget at one instant', () => {
     expect(uncertaintyHz({ timingHz: 1, ut1Hz: 2, orbitHz: 2, oscillatorHz: 3, trimHz: 6 }, 3)).toBeCloseTo(24, 12)
   })
 
+  it('comes to the same at once', () => {
+    // By hand, rate −150 as the sum of −160 and 10: 3.75 + 9 + 2·√(16² + (2000/√3)²).
+    expect(uncertaintyBy(400e6, budget, { latencyUncertaintyMs: 5 })(0, -160, 10)).toBeCloseTo(12.75 + 2 * Math.sqrt(256 + 4e6 / 3), 9)
+  })
+
   it('asks the spread of the orbit at its instant', () => {
     const aging = { ...budget, alongTrackSigmaS: (utcMs: number) => utcMs / 1e6 }
     expect(budgetAt({ ...at, utcMs: 2e6 }, aging, { latencyUncertaintyMs: 0 }).orbitHz).toBeCloseTo(320, 9)
+    const sure = { ...aging, clockErrorMs: 0, ut1BoundS: 0, spacecraftPpm: 0, stationPpm: 0 }
+    expect(uncertaintyBy(400e6, sure, { latencyUncertaintyMs: 0 })(2e6, -160, 10)).toBeCloseTo(640, 9)
   })
 })

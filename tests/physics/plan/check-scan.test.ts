@@ -1,26 +1,53 @@
 import { describe, expect, it } from 'vitest'
-import { crossingBetween, everySecond, withPeaks, withTurns } from '../../../shared/physics/plan/check-scan'
+import { crossingBetween, scan } from '../../../shared/physics/plan/check-scan'
+
+/** Everything that a scan visits. */
+function scanOf(fromMs: number, toMs: number, value: (utcMs: number) => number, rate?: (utcMs: number) => number) {
+  const visited = { atMs: [] as number[], value: [] as number[] }
+  scan(fromMs, toMs, value, rate, (atMs, v) => {
+    visited.atMs.push(atMs)
+    visited.value.push(v)
+  })
+  return visited
+}
 
 describe('where the checker looks', () => {
+  const rising = (utcMs: number) => utcMs
+
   it('is every second from the start, and the end', () => {
-    expect(everySecond(250, 3100)).toEqual([250, 1250, 2250, 3100])
-    expect(everySecond(250, 250)).toEqual([250])
+    expect(scanOf(250, 3100, rising).atMs).toEqual([250, 1250, 2250, 3100])
+    expect(scanOf(250, 3250, rising).atMs).toEqual([250, 1250, 2250, 3250])
+    expect(scanOf(250, 250, rising).atMs).toEqual([250])
   })
 
-  it('adds the instant between two seconds at which a rate changes sign', () => {
-    const turns = withTurns([0, 1000, 2000], utcMs => 1337 - utcMs)
-    expect(turns).toHaveLength(4)
-    expect(turns[2]).toBeCloseTo(1337, 2)
+  it('adds the instant between two seconds at which a rate changes sign, either way', () => {
+    for (const sign of [1, -1]) {
+      const { atMs, value } = scanOf(0, 2000, rising, utcMs => sign * (1337 - utcMs))
+      expect(atMs).toHaveLength(4)
+      expect(atMs[2]).toBeCloseTo(1337, 2)
+      expect(value).toEqual(atMs)
+    }
   })
 
-  it('adds the peak that hides between two seconds', () => {
-    // A parabola, known at its vertex, and the same upside down, which has no peak.
-    const parabola = (utcMs: number) => -((utcMs - 2345.6) ** 2)
-    const instants = withPeaks([0, 1000, 2000, 3000, 4000], parabola)
-    expect(instants).toHaveLength(6)
-    expect(Math.min(...instants.map(at => Math.abs(at - 2345.6)))).toBeLessThan(0.1)
-    expect(instants).toEqual([...instants].sort((a, b) => a - b))
-    expect(withPeaks([0, 1000, 2000, 3000, 4000], utcMs => -parabola(utcMs))).toHaveLength(5)
+  it('adds the peak that hides between two seconds, in its place', () => {
+    // Parabolas, known at their vertices, on either side of the highest second, and the same upside down, which has no peak.
+    for (const vertex of [2345.6, 1654.4]) {
+      const parabola = (utcMs: number) => -((utcMs - vertex) ** 2)
+      const { atMs, value } = scanOf(0, 4000, parabola)
+      expect(atMs).toHaveLength(6)
+      expect(Math.min(...atMs.map(at => Math.abs(at - vertex)))).toBeLessThan(0.1)
+      expect(atMs).toEqual([...atMs].sort((a, b) => a - b))
+      expect(value).toEqual(atMs.map(parabola))
+      expect(scanOf(0, 4000, utcMs => -parabola(utcMs)).atMs).toHaveLength(5)
+    }
+  })
+
+  it('finds every peak of several', () => {
+    // Peaks of a sine of 3.1 s: at a quarter of a period and each period after it.
+    const { atMs } = scanOf(0, 30_000, utcMs => Math.sin(2 * Math.PI * utcMs / 3100))
+    for (let peak = 775; peak < 30_000; peak += 3100) expect(Math.min(...atMs.map(at => Math.abs(at - peak)))).toBeLessThan(0.1)
+    expect(atMs).toEqual([...atMs].sort((a, b) => a - b))
+    expect(atMs).toHaveLength(31 + 10)
   })
 
   it('finds the last instant at which something holds', () => {

@@ -13,11 +13,16 @@ export interface SmallProblem {
   /** Closed stretches in which no row begins. */
   readonly quiet: readonly (readonly [number, number])[]
 }
+/** Ratios count in steps of this, rounded up: nobody hears less than 0.012 % of a half-width. */
+export const RATIO_STEPS = 8192
+/** Hertz by which a setting may stand beyond the half-width, as rounding. */
+const SLACK_HZ = 1e-6
+
 export interface SmallPlan { readonly starts: number[], readonly settings: number[], readonly ratio: number }
 
 /**
- * Tries every plan of up to `mostRows` rows and returns the best by the published order: fewest rows, least worst ratio,
- * earliest starts, lowest settings; null where none of that many rows serves. A straight piece is worst at a knot or at a retune.
+ * Tries every plan of up to `mostRows` rows and returns the best by the published order: fewest rows, least worst ratio in
+ * steps of 1/8192, earliest starts, lowest settings; null where none of that many rows serves. A straight piece is worst at a knot or at a retune.
  */
 export function bestByTryingAll(problem: SmallProblem, mostRows: number): SmallPlan | null {
   for (let rows = 1; rows <= mostRows; rows++) {
@@ -58,7 +63,7 @@ export function bestByTryingAll(problem: SmallProblem, mostRows: number): SmallP
 export function worstRatio(p: SmallProblem, from: number, to: number, setting: number): number {
   let worst = 0
   const include = (needed: number, half: number) => {
-    worst = Math.max(worst, Math.abs(needed - setting * p.stepHz) / half)
+    worst = Math.max(worst, (Math.abs(needed - setting * p.stepHz) - SLACK_HZ) / half)
   }
   const knots = p.timeMs.filter(time => time >= from && time <= to)
   for (const time of [from, to, ...knots]) {
@@ -85,9 +90,11 @@ function valueAt(p: SmallProblem, time: number): [number, number] | null {
 }
 
 function isBetter(a: SmallPlan, b: SmallPlan): boolean {
-  // The planner finds the ratio to a part in 10⁹; below a part in 10⁷ ratios count as equal on both sides.
-  if (Math.abs(a.ratio - b.ratio) > 1e-7) return a.ratio < b.ratio
+  const [stepsOfA, stepsOfB] = [ratioSteps(a.ratio), ratioSteps(b.ratio)]
+  if (stepsOfA !== stepsOfB) return stepsOfA < stepsOfB
   for (let i = 0; i < a.starts.length; i++) if (a.starts[i] !== b.starts[i]) return a.starts[i]! < b.starts[i]!
   for (let i = 0; i < a.settings.length; i++) if (a.settings[i] !== b.settings[i]) return a.settings[i]! < b.settings[i]!
   return false
 }
+
+export const ratioSteps = (ratio: number): number => Math.ceil(ratio * RATIO_STEPS)

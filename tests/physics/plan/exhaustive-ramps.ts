@@ -32,6 +32,36 @@ export function fewestByTryingAll(p: SmallRamps, mostRows: number): number | nul
   return null
 }
 
+/** The same with jumps: a row begins within `jumpHz` of where one before it has come to, while something listens. */
+export function fewestWithJumps(p: SmallRamps, mostRows: number): number | null {
+  const last = Math.ceil(p.timeMs[p.timeMs.length - 1]!)
+  const ends = [...Array.from({ length: last }, (_, i) => i + 1).filter(time => time < last && !isQuiet(p, time)), Infinity]
+  const middle = Math.round(p.offsetHz[0]! / p.stepHz)
+  /** By start: where rows before have come to. */
+  let reached = new Map<number, Set<number>>([[0, new Set()]])
+  for (let rows = 1; rows <= mostRows; rows++) {
+    const next = new Map<number, Set<number>>()
+    for (const [start, values] of reached) {
+      const isFree = rows === 1 || neededAt(p, start) === null
+      for (let slope = -p.mostSlope; slope <= p.mostSlope; slope++) {
+        for (let setting = middle - 60; setting <= middle + 60; setting++) {
+          if (!isFree && ![...values].some(value => Math.abs(setting * p.stepHz - value) <= p.jumpHz + 1e-6)) continue
+          for (const end of ends) {
+            if (end <= start) continue
+            if (!serves(p, start, end, setting, slope)) break
+            if (end === Infinity) return rows
+            if (end < start + p.dwell) continue
+            if (!next.has(end)) next.set(end, new Set())
+            next.get(end)!.add(setAt(p, start, setting, slope, end))
+          }
+        }
+      }
+    }
+    reached = next
+  }
+  return null
+}
+
 function someLineServes(p: SmallRamps, start: number, end: number): boolean {
   const middle = Math.round(p.offsetHz[0]! / p.stepHz)
   for (let slope = -p.mostSlope; slope <= p.mostSlope; slope++) {

@@ -3,7 +3,7 @@ import { describe, expect, it } from 'vitest'
 import type { RampLimits } from '../../../shared/physics/plan/ramp-path'
 import { rampPath } from '../../../shared/physics/plan/ramp-path'
 import type { SmallRamps } from './exhaustive-ramps'
-import { fewestByTryingAll, rampFits } from './exhaustive-ramps'
+import { fewestByTryingAll, fewestWithJumps, rampFits } from './exhaustive-ramps'
 
 const MOST_ROWS = 3
 const unbound = { bounds: null, jumpHz: Infinity, quiet: [], lead: 0, band: [-Infinity, Infinity] } as const
@@ -70,6 +70,24 @@ describe('rows that ramp', () => {
     }), { numRuns: 1500, seed: 20261201 })
     expect(retuned).toBeGreaterThan(300)
     expect(without).toBeGreaterThan(100)
+  })
+
+  it('are as few as trying every plan finds where a jump limit binds, too', () => {
+    let [bound, without] = [0, 0]
+    fc.assert(fc.property(problems, fc.constantFrom(3, 6, 10), (p, jumpHz) => {
+      const small = { ...p, jumpHz }
+      const fewest = fewestWithJumps(small, MOST_ROWS)
+      const path = planned(small)
+      if (fewest !== fewestByTryingAll(p, MOST_ROWS)) bound++
+      if (fewest === null) {
+        without++
+        expect(path === null || path.starts.length > MOST_ROWS).toBe(true)
+        return
+      }
+      expect(path?.starts.length).toBe(fewest)
+    }), { numRuns: 1500, seed: 11 })
+    expect(bound).toBeGreaterThan(100)
+    expect(without).toBeGreaterThan(300)
   })
 
   it('never jump by more than the limit at a workable instant', () => {

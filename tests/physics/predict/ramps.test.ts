@@ -74,6 +74,22 @@ describe('the table of a radio that ramps', () => {
     expect(codes(table.rows, { link: { ...uhfLink, jumpLimitHz: 5 } })).toEqual(['jump'])
   })
 
+  it.each([[3000, 1], [600, 1], [300, 1], [120, 1], [600, 10]])('with jumps of %d Hz at most on a grid of %d Hz needs no fewer rows than lines in h, no more than in half a jump less what the grids take', (jumpLimitHz, stepHz) => {
+    const link = { ...uhfLink, jumpLimitHz }
+    const radio: RadioModel = { ...ramping, stepHz, ramp: { slopeStepHzPerS: 0.1, maxSlopeHzPerS: 1000 } }
+    for (const one of [pass, ...day.passes.slice(0, 2)]) {
+      const built = tableOf(query({ link, radio, pass: one, budget: certain }))
+      expect(built).toMatchObject({ kappa: 0.8, check: { verdict: 'holds', faults: [] } })
+      const needed = createNeededFrequency({ stateAt: day.ephemeris.stateAt, site: day.site, ut1MinusUtcS: 0, direction: 'downlink', carrierHz: link.carrierHz })
+      const h = 0.8 * allowanceOf(link).allowanceHz
+      const part = built.parts[0]!
+      const longestS = Math.max(...built.rows.map((row, i) => (built.rows[i + 1]?.atMs ?? part.toMs) - row.atMs)) / 1000
+      expect(built.rows.length).toBeGreaterThanOrEqual(leastLines(needed.dopplerHz, part, h))
+      // Rows within half a jump of the curve are a jump apart at most (mechanics).
+      expect(built.rows.length).toBeLessThanOrEqual(leastLines(needed.dopplerHz, part, Math.min(h, jumpLimitHz / 2) - stepHz / 2 - 0.1 * longestS / 4))
+    }
+  })
+
   it('stands on the line from the first row on, however early that takes effect', () => {
     const early = tableOf(query({ firstRowLeadMs: 30_000 }))
     expect(early.check).toMatchObject({ verdict: 'holds', faults: [] })
