@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest'
 import { freezeDatabase, stopDatabaseHard } from '../support/database-outage'
 
-describe('while the database is away', () => {
+describe('while the database is away', { timeout: 180_000 }, () => {
   it('stopped hard twice under load, what was acknowledged is kept, only 503 is answered, and the server is ready within 10 s', async () => {
     const figures = await stopDatabaseHard(2)
     console.info(figures)

@@ -24,7 +24,7 @@ afterAll(async () => {
   await made?.drop()
 })
 
-it('workers beside no server compute what waits, leave mail alone, say that they live, and end when asked', async () => {
+it('workers beside no server compute what waits, leave mail alone, say that they live, and end when asked', { timeout: 180_000 }, async () => {
   const { db } = database
   const now = await databaseNow(db)
   await addStation(db)

@@ -8,13 +8,16 @@ import { hashPassword } from '../../server/domain/auth/passwords'
 import { password, signIn } from '../api/actors'
 import { createTestDatabase } from './database'
 import { addPerson, addSpacecraft, addStation } from './fixtures'
+import { referencePasses } from './reference-data'
 import { startServer } from './server'
 
 export interface StopFigures { exitCode: number | null, secondsToEnd: number, answered: number, writesKept: number, refused: number }
 
-const longBench = {
-  elements: { text: '1 90001U 26001A   26334.50000000  .00000000  00000+0  10000-3 0  9996\n2 90001  97.4000  10.0000 0010000  20.0000  30.0000 15.20000000    14' },
-  station: { latitudeDeg: 60, longitudeDeg: 10, heightM: 50 }, from: '2026-12-01T00:00:00.000Z', to: '2026-12-11T00:00:00.000Z', sampleIntervalS: 60,
+/** Ten days of one of the reference's orbits, near the most that is answered at once. */
+function longBench() {
+  const { line1, line2, windowStart } = referencePasses().satellites.find(({ id }) => id === 'SSO500')!
+  const from = Date.parse(windowStart)
+  return { elements: { text: `${line1}\n${line2}` }, station: { latitudeDeg: 60, longitudeDeg: 10, heightM: 50 }, from: new Date(from).toISOString(), to: new Date(from + 10 * 86_400_000).toISOString(), sampleIntervalS: 10 }
 }
 
 /**
@@ -33,6 +36,8 @@ export async function stopUnderLoad(): Promise<StopFigures> {
     const session = await signIn(server.url, email)
     const agent = new Agent({ keepAlive: true })
     let isStopping = false
+    let benched = 0
+    const bench = longBench()
     const seen = { answered: 0, refused: 0, statuses: new Map<number, number>() }
     const acknowledged: string[] = []
 
@@ -64,12 +69,18 @@ export async function stopUnderLoad(): Promise<StopFigures> {
       if (status === 201) acknowledged.push(given)
       return status
     })
-    const load = [...['A', 'B', 'C'].map(writer), keepCalling(() => call('/api/passes')), keepCalling(() => call('/')), keepCalling(() => call('/api/bench/predict', longBench))]
+    const load = [...['A', 'B', 'C'].map(writer), keepCalling(() => call('/api/passes')), keepCalling(() => call('/')), ...[1, 2, 3].map(() => keepCalling(async () => {
+      const status = await call('/api/bench/predict', bench)
+      if (status === 200) benched++
+      return status
+    }))]
     await requestRefresh({ db }, { reason: 'Load.' })
     const underWay = async () => (await db.execute(sql`SELECT 1 FROM pgboss.job WHERE state = 'active'`)).rows.length
     await expect.poll(() => seen.answered, { timeout: 20_000 }).toBeGreaterThan(20)
     await expect.poll(underWay, { timeout: 20_000, interval: 20, message: 'no job was under way: the test would try nothing' }).toBeGreaterThan(0)
 
+    // What-ifs last long: one is under way at any moment.
+    await expect.poll(() => benched, { timeout: 30_000 }).toBeGreaterThan(0)
     const asked = performance.now()
     isStopping = true
     process.kill(server.pid, 'SIGTERM')

@@ -128,3 +128,15 @@ export function readingAt(data: StripData, utcMs: number): Reading {
     elevationDeg: linearAt(data.needed.atMs, data.elevationDeg, utcMs),
   }
 }
+
+/** Spans as far as they reach into a view, in order, those that meet joined. */
+export function spansWithin(spans: readonly SpanMs[], view: SpanMs): SpanMs[] {
+  const inside = spans.map(span => ({ fromMs: Math.max(span.fromMs, view.fromMs), toMs: Math.min(span.toMs, view.toMs) })).filter(span => span.toMs > span.fromMs).sort((a, b) => a.fromMs - b.fromMs)
+  const joined: { fromMs: number, toMs: number }[] = []
+  for (const span of inside) {
+    const last = joined.at(-1)
+    if (last && span.fromMs <= last.toMs) last.toMs = Math.max(last.toMs, span.toMs)
+    else joined.push({ ...span })
+  }
+  return joined
+}

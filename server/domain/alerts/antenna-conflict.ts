@@ -20,7 +20,7 @@ export async function findAntennaConflicts({ db, now }: Pick<Deps, 'db' | 'now'>
       cause: `antenna-conflict:${first.antennaId}:${[first.passId, second.passId].sort().join(':')}`,
       severity: 'notice',
       title: `${first.stationName}: ${first.spacecraftName} and ${second.spacecraftName} both want ${first.antennaName}`,
-      detail: `${first.spacecraftName} from ${formatUtc(first.busyFromMs, 'second')}, ${second.spacecraftName} from ${formatUtc(second.busyFromMs, 'second')}, set-up of ${first.setupS} s included. Unless somebody decides, ${has.spacecraftName} has it (priority ${has.priority} over ${other.priority}) and ${other.spacecraftName} stands down.`,
+      detail: `${first.spacecraftName} from ${formatUtc(first.busyFromMs, 'second')}, ${second.spacecraftName} from ${formatUtc(second.busyFromMs, 'second')}, set-up of ${first.setupS} s included. Unless somebody decides, ${has.spacecraftName} has it (${has.priority === other.priority ? 'of equal priority, by its earlier AOS' : `priority ${has.priority} over ${other.priority}`}) and ${other.spacecraftName} stands down.`,
       action: 'Give the antenna to one of them on the page of the night.',
       stationId: first.stationId,
       tableId: first.tables[0]!.id,

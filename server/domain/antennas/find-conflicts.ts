@@ -16,7 +16,7 @@ const longestPassMs = 24 * 3600_000
 /** Pairs of passes that want one antenna at one time and end in the window, by the earlier busy time. With slack: also those that nearly do. */
 export async function findConflicts(deps: Pick<Deps, 'db'>, query: WantsQuery, slackMs = 0): Promise<Conflict[]> {
   const wants = await loadWants(deps, { ...query, from: new Date(query.from.getTime() - longestPassMs) })
-  const pairs = pairsOf(wants, slackMs).filter(pair => pair.every(want => want.losMs >= query.from.getTime()))
+  const pairs = pairsOf(wants, slackMs).filter(pair => pair.every(want => want.losMs >= query.from.getTime())).sort(([one], [other]) => one.busyFromMs - other.busyFromMs)
   const decisions = await decisionsOf(deps, pairs.flat().map(({ passId }) => passId))
   return pairs.map(pair => ({ pair, overlapMs: overlapMs(...pair), decision: decisions.find(decision => isOf(decision, pair)) ?? null }))
 }

@@ -2,7 +2,7 @@ import { eq } from 'drizzle-orm'
 import { beforeEach, describe, expect, it } from 'vitest'
 import type { Database } from '../../../server/database/client'
 import { openDatabase } from '../../../server/database/client'
-import { alerts, mails, tableRevisions } from '../../../server/database/schema'
+import { alerts, antennas, mails, tableRevisions } from '../../../server/database/schema'
 import { acknowledgeAlert } from '../../../server/domain/alerts/acknowledge-alert'
 import { afterPrediction } from '../../../server/domain/alerts/after-prediction'
 import { closeAlert } from '../../../server/domain/alerts/close-alert'
@@ -164,9 +164,12 @@ describe('a decision that is due', () => {
 
 describe('other causes', () => {
   it('raise one alert for a station that fetches nothing, from ten minutes before AOS until it does', async () => {
-    const table = await tableAt(minutes(11), { state: 'published' })
-    await tableAt(minutes(10) + 30_000, { state: 'published' })
-    await tableAt(minutes(9), { state: 'collected' })
+    // Short ones, that the antenna can follow one after the other.
+    await database.db.update(antennas).set({ setupS: 0 })
+    const short = (ms: number) => ({ check: { ...checkOf(5, after(ms)), workable: [{ from: after(ms).toISOString(), to: after(ms + 20_000).toISOString() }] } })
+    const table = await tableAt(minutes(11), { state: 'published', ...short(minutes(11)) })
+    await tableAt(minutes(10) + 30_000, { state: 'published', ...short(minutes(10) + 30_000) })
+    await tableAt(minutes(9), { state: 'collected', ...short(minutes(9)) })
     await reconcile()
     expect(await standing()).toEqual([])
     now = after(minutes(1))

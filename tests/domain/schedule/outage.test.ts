@@ -61,7 +61,7 @@ describe('down for six hours, then started', () => {
 
   it('is told once by two servers that come back at once', async () => {
     await addPerson(database.db, ['operator'])
-    for (let i = 0; i < 6; i++) await tableAt(`01T23:${30 + i}:00`)
+    for (const aos of ['01T23:30:00', '01T23:50:00', '02T00:10:00', '02T00:30:00', '02T00:50:00', '02T01:10:00']) await tableAt(aos)
     await wakeAt(database.db, down)
     const other = openDatabase(url)
     for (let seconds = 0; seconds <= 30; seconds += 5) await Promise.all([wakeAt(database.db, after(seconds)), wakeAt(other.db, after(seconds + 0.5))])

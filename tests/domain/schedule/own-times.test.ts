@@ -35,7 +35,7 @@ const states = (...tables: { id: string }[]) => Promise.all(tables.map(table => 
 describe('a link with a time of day of its own', () => {
   it('is published at its time, and the station’s others at theirs', async () => {
     await give({ publishAt: '20:30' })
-    const [others, itsOwn] = [await tableAt(craft, '2026-12-01T23:00:00Z'), await tableAt(own, '2026-12-01T23:10:00Z')]
+    const [others, itsOwn] = [await tableAt(craft, '2026-12-01T23:00:00Z'), await tableAt(own, '2026-12-01T23:30:00Z')]
     await wake('2026-12-01T18:00:00Z')
     expect(await states(others, itsOwn)).toEqual(['published', 'approved'])
     await wake('2026-12-01T20:29:59Z')
@@ -56,20 +56,20 @@ describe('a link with a time of day of its own', () => {
   })
 
   it('says when it goes out, as the schedule then does it', async () => {
-    const table = await tableAt(own, '2026-12-01T23:10:00Z')
+    const table = await tableAt(own, '2026-12-01T23:30:00Z')
     const goesOut = async () => (await getBrief({ db: database.db, now: start }, table.id)).publishesAt
     expect(await goesOut()).toBe('2026-12-01T18:00:00.000Z')
     await give({ publishAt: '20:30' })
     expect(await goesOut()).toBe('2026-12-01T20:30:00.000Z')
     await give({ publishAt: '11:00', leadMinutes: 25 })
-    expect(await goesOut()).toBe('2026-12-01T22:45:00.000Z')
+    expect(await goesOut()).toBe('2026-12-01T23:05:00.000Z')
   })
 
   it('follows the station again when its rule is taken away', async () => {
     const { id } = await give({ publishAt: '20:30' })
     await removePublicationRule(deps(), id)
     expect((await listPublicationRules({ db: database.db }, { stationId: station.id })).items).toEqual([])
-    const table = await tableAt(own, '2026-12-01T23:10:00Z')
+    const table = await tableAt(own, '2026-12-01T23:30:00Z')
     await wake('2026-12-01T18:00:00Z')
     expect(await states(table)).toEqual(['published'])
   })
@@ -110,10 +110,10 @@ describe('a link with a time of day of its own', () => {
 describe('a link with a lead of its own', () => {
   it('goes out that long before AOS, and is called for a decision by it', async () => {
     await give({ leadMinutes: 30 })
-    const [others, itsOwn] = [await tableAt(craft, '2026-12-01T15:00:00Z'), await tableAt(own, '2026-12-01T15:00:00Z')]
-    await wake('2026-12-01T14:00:00Z')
+    const [others, itsOwn] = [await tableAt(craft, '2026-12-01T15:00:00Z'), await tableAt(own, '2026-12-01T15:20:00Z')]
+    await wake('2026-12-01T14:20:00Z')
     expect(await states(others, itsOwn)).toEqual(['published', 'approved'])
-    await wake('2026-12-01T14:30:00Z')
+    await wake('2026-12-01T14:50:00Z')
     expect(await states(itsOwn)).toEqual(['published'])
   })
 
@@ -129,7 +129,7 @@ describe('the preview of the coming slots', () => {
     const link = await addLink(database.db, craft.id)
     await tableAt(craft, '2026-12-01T23:00:00Z')
     const drafted = await addTable(database.db, craft, station, await addPass(database.db, craft, station, new Date('2026-12-02T02:00:00Z')), { state: 'drafted', linkId: link.id })
-    await tableAt(own, '2026-12-01T23:10:00Z')
+    await tableAt(own, '2026-12-01T23:30:00Z')
     await tableAt(craft, '2026-12-02T01:00:00Z', { margin: 0.5, approvedBy: 'Ada' })
     await tableAt(craft, '2026-12-02T03:00:00Z', { state: 'held' })
     const preview = await previewSlots({ db: database.db, now: start }, { stationId: station.id, publishAt: '19:15', zone: 'Europe/Oslo' })
@@ -138,7 +138,7 @@ describe('the preview of the coming slots', () => {
     expect(preview.evenings.slice(1).every(({ approved, undecided }) => approved === 0 && undecided === 0)).toBe(true)
     const ofLink = await previewSlots({ db: database.db, now: start }, { stationId: station.id, linkId: own.link.id, publishAt: '21:00', leadMinutes: 45 })
     expect(ofLink.evenings[0]).toMatchObject({ at: '2026-12-01T21:00:00.000Z', approved: 1, undecided: 0 })
-    expect(ofLink).toMatchObject({ leads: [{ at: '2026-12-01T22:25:00.000Z', approved: 0, undecided: 0 }], leadCount: 1 })
+    expect(ofLink).toMatchObject({ leads: [{ at: '2026-12-01T22:45:00.000Z', approved: 0, undecided: 0 }], leadCount: 1 })
     // The same as it stands, in the list of slots, an hour before AOS for what waits.
     const { coming } = await listSlots({ db: database.db, now: start })
     expect(coming.find(({ entity }) => entity === `${station.id}:${own.link.id}`)).toMatchObject({ at: '2026-12-01T20:30:00.000Z', name: `${own.name}, ${own.link.name} at ${station.name}`, approved: 1, undecided: 0 })

@@ -137,7 +137,7 @@ describe('fetching a table', () => {
   it('goes on serving the published revision while a newer one is drafted, and after its pass', async () => {
     await addRevision(db(), craft, station, { tableId: table.id, aos: now, number: 2 })
     expect(await (await get(`/tables/${table.id}`)).json()).toMatchObject({ revision: 1 })
-    const past = await publish({}, new Date(now.getTime() + 11 * 60_000))
+    const past = await publish({}, new Date(now.getTime() + 40 * 3600_000))
     await db().execute(`UPDATE passes SET aos = now() - interval '3 days', culmination = now() - interval '3 days', los = now() - interval '3 days' WHERE id = '${past.passId}'`)
     expect((await get(`/tables/${past.id}`)).status).toBe(200)
     const { items } = await (await get('/tables')).json() as { items: { id: string }[] }

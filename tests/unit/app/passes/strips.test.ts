@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest'
 import { valueAt } from '~/utils/passes/curve'
-import { pastEdge, readingAt, residualLines, setLine, stripData } from '~/utils/passes/strips'
+import { pastEdge, readingAt, residualLines, setLine, spansWithin, stripData } from '~/utils/passes/strips'
 
 // A straight needed curve, worked by hand: +100 Hz at 0 s, −100 Hz at 20 s, −10 Hz/s; carrier 1 MHz.
 const base = Date.parse('2026-12-01T03:00:00.000Z')
@@ -98,5 +98,12 @@ describe('a curve between its samples', () => {
     const curve = { atMs: [0, 1000], value: [1, 2], ratePerS: [1, 1] }
     expect(valueAt(curve, -500)).toBe(1)
     expect(valueAt(curve, 5000)).toBe(2)
+  })
+})
+
+describe('spans in a view', () => {
+  it('are cut to it, in order, those that meet joined', () => {
+    const spans = [{ fromMs: 50, toMs: 70 }, { fromMs: -20, toMs: 10 }, { fromMs: 10, toMs: 20 }, { fromMs: 60, toMs: 65 }, { fromMs: 90, toMs: 400 }, { fromMs: 200, toMs: 300 }]
+    expect(spansWithin(spans, { fromMs: 0, toMs: 100 })).toEqual([{ fromMs: 0, toMs: 20 }, { fromMs: 50, toMs: 70 }, { fromMs: 90, toMs: 100 }])
   })
 })
