@@ -108,7 +108,8 @@ describe.each(Object.entries(addresses).filter(([, address]) => address !== null
     const broken: string[] = []
     for (const theme of ['day', 'night', 'low-light']) {
       await page.evaluate((name) => { document.documentElement.dataset.theme = name }, theme)
-      const axe = new AxeBuilder({ page }).withTags(['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa', 'best-practice'])
+      // Its ordinary mode opens a page of its own each time, and only frames of other origins need that.
+      const axe = new AxeBuilder({ page }).setLegacyMode(true).options({ resultTypes: ['violations'] }).withTags(['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa', 'best-practice'])
       // Only colours differ from theme to theme.
       if (theme !== 'day') axe.withRules('color-contrast')
       const { violations } = await axe.analyze()
