@@ -28,16 +28,33 @@ export async function killUploads(kills: number, random: () => number): Promise<
   const key = await addKey(database.db, 'elements:write')
   const outcomes: KilledUpload[] = []
   try {
+    const msPerSet = await paceOf(made.url, key)
     for (let kill = 0; kill < kills; kill++) {
       // By turns one that is answered when it is stored, and one that is answered when it is received.
       const count = kill % 2 === 0 ? 6000 : 12_000
-      outcomes.push(await killOne(made.url, database, key, { count, from: kill * 20_000 }, random() * (count / 4)))
+      // Moments spread over the whole of it and a little beyond.
+      const share = 1.1 * (kill + random()) / kills
+      outcomes.push(await killOne(made.url, database, key, { count, from: (kill + 1) * 20_000 }, share * count * msPerSet))
     }
     return outcomes
   }
   finally {
     await database.close()
     await made.drop()
+  }
+}
+
+/** How long a set takes here and now. */
+async function paceOf(databaseUrl: string, key: Record<string, string>): Promise<number> {
+  const count = 6000
+  const server = await startServer({ databaseUrl })
+  try {
+    const begun = performance.now()
+    await (await fetch(`${server.url}/api/element-sets/uploads`, { method: 'POST', headers: { ...key, 'content-type': 'text/plain' }, body: new Uint8Array(manySets({ count })) })).arrayBuffer()
+    return (performance.now() - begun) / count
+  }
+  finally {
+    await server.stop()
   }
 }
 
