@@ -16,7 +16,7 @@ export interface ReadUploadInput extends BatchOptions {
 export type FromReading = { readonly kind: 'batch', readonly batch: Batch } | { readonly kind: 'end', readonly end: ReadingEnd }
 
 /** So many batches may wait to be stored. */
-const aheadAtMost = 4
+const aheadAtMost = 2
 
 /** Reads a large upload in a worker thread, never more than a few batches ahead of the one that stores them. */
 export async function readUpload({ port, ahead, totalBytes, ...options }: ReadUploadInput): Promise<void> {
@@ -36,15 +36,22 @@ export async function readUpload({ port, ahead, totalBytes, ...options }: ReadUp
 }
 
 /** The parts as one; a port that closes before the last of them ends the reading. */
-function collect(port: MessagePort, totalBytes: number): Promise<Uint8Array> {
-  return new Promise((resolve, reject) => {
-    const bytes = new Uint8Array(totalBytes)
-    let at = 0
-    port.on('message', (part: Uint8Array | null) => {
-      if (part === null) return resolve(bytes)
-      bytes.set(part, at)
-      at += part.length
+async function collect(port: MessagePort, totalBytes: number): Promise<Uint8Array> {
+  const bytes = new Uint8Array(totalBytes)
+  let at = 0
+  try {
+    await new Promise<void>((resolve, reject) => {
+      port.on('message', (part: Uint8Array | null) => {
+        if (part === null) return resolve()
+        bytes.set(part, at)
+        at += part.length
+      })
+      port.once('close', () => reject(new Error('The upload was not handed over whole.')))
     })
-    port.once('close', () => reject(new Error('The upload was not handed over whole.')))
-  })
+    return bytes
+  }
+  finally {
+    // Listeners would keep the bytes as long as the port.
+    port.removeAllListeners()
+  }
 }
