@@ -42,7 +42,7 @@ export async function runTask<N extends TaskName>(name: N, input: TaskInput<N>, 
 }
 
 /** A thread that reads an upload is not to hold garbage while there is room for it: the whole server stays within its figure. */
-const memoryOf = (lane: string) => lane === 'uploads' ? { maxOldGenerationSizeMb: 384, maxYoungGenerationSizeMb: 16 } : { maxOldGenerationSizeMb: 512 }
+const memoryOf = (lane: string) => lane === 'uploads' ? { maxOldGenerationSizeMb: 288, maxYoungGenerationSizeMb: 8 } : { maxOldGenerationSizeMb: 512 }
 
 function poolOf(lane: string): Piscina | null {
   const known = pools.get(lane)

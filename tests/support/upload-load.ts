@@ -21,7 +21,7 @@ export interface UploadRun {
 }
 
 const residentMb = (pid: number) => Number(/VmRSS:\s+(\d+) kB/.exec(readFileSync(`/proc/${pid}/status`, 'utf8'))![1]) / 1024
-const otherEveryMs = 40
+const otherEveryMs = 20
 
 /** Uploads a large file to a built server and tells what it cost, and whom it kept waiting. */
 export async function runUpload(sets: ManySets): Promise<UploadRun> {

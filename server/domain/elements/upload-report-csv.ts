@@ -47,11 +47,11 @@ function pageAfter(uploadId: string, after: Place | null): SQL {
        FROM element_upload_held AS again JOIN element_sets AS held ON held.id = again.element_set_id LEFT JOIN spacecraft AS craft ON craft.id = held.spacecraft_id
        WHERE again.upload_id = ${uploadId}::uuid AND ${beyond(1, sql`again.line`, sql`again.element_set_id`, uuid)} ORDER BY again.line, again.element_set_id LIMIT ${rowsAtOnce})
       UNION ALL
-      (SELECT line, 2, id::text, 'refused', name, NULL, NULL, NULL, code, message
-       FROM element_upload_notes WHERE upload_id = ${uploadId}::uuid AND kind = 'refusal' AND ${beyond(2, sql`line`, sql`id`, bigint)} ORDER BY line, id LIMIT ${rowsAtOnce})
+      (SELECT note.line, 2, note.id::text, 'refused', note.name, NULL, NULL, NULL, note.code, note.message
+       FROM element_upload_notes AS note WHERE note.upload_id = ${uploadId}::uuid AND note.kind = 'refusal' AND ${beyond(2, sql`note.line`, sql`note.id`, bigint)} ORDER BY note.line, note.id LIMIT ${rowsAtOnce})
       UNION ALL
-      (SELECT line, 3, id::text, 'warning', name, NULL, NULL, NULL, code, message
-       FROM element_upload_notes WHERE upload_id = ${uploadId}::uuid AND kind = 'warning' AND ${beyond(3, sql`line`, sql`id`, bigint)} ORDER BY line, id LIMIT ${rowsAtOnce})
+      (SELECT note.line, 3, note.id::text, 'warning', note.name, NULL, NULL, NULL, note.code, note.message
+       FROM element_upload_notes AS note WHERE note.upload_id = ${uploadId}::uuid AND note.kind = 'warning' AND ${beyond(3, sql`note.line`, sql`note.id`, bigint)} ORDER BY note.line, note.id LIMIT ${rowsAtOnce})
     ) AS report
     ORDER BY line, source, CASE WHEN source > 1 THEN id::bigint END, CASE WHEN source < 2 THEN id::uuid END LIMIT ${rowsAtOnce}`
 }

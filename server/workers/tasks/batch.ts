@@ -85,7 +85,7 @@ function rowOf({ line, elements, text, contentKey, warnings }: ReadSet, spacecra
     designator: elements.designator,
     epoch: new Date(Math.floor(elements.epochUtcUs / 1000)).toISOString(),
     epochUtcUs: elements.epochUtcUs,
-    elements: { ...elements, name },
+    elements: { ...elements, name, classification: storableText(elements.classification) },
     originalText: storableText(text),
     sha256: sha256(text),
     contentSha256: contentSha256({ contentKey }),

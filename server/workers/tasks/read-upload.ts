@@ -1,4 +1,5 @@
 import type { MessagePort } from 'node:worker_threads'
+import type { DecodedText } from '#shared/formats/elements/decode-text'
 import { decodeText } from '#shared/formats/elements/decode-text'
 import type { ReadingEnd } from '#shared/formats/elements/read-elements'
 import type { Batch, BatchOptions } from './batch'
@@ -16,13 +17,12 @@ export interface ReadUploadInput extends BatchOptions {
 export type FromReading = { readonly kind: 'batch', readonly batch: Batch } | { readonly kind: 'end', readonly end: ReadingEnd }
 
 /** So many batches may wait to be stored. */
-const aheadAtMost = 4
+const aheadAtMost = 2
 
 /** Reads a large upload in a worker thread, never more than a few batches ahead of the one that stores them. */
 export async function readUpload({ port, ahead, totalBytes, ...options }: ReadUploadInput): Promise<void> {
   try {
-    // The bytes are not kept beside the text.
-    const end = makeBatches(decodeText(await collect(port, totalBytes)), options, (batch) => {
+    const end = makeBatches(await collectText(port, totalBytes), options, (batch) => {
       for (let count = Atomics.load(ahead, 0); count >= aheadAtMost; count = Atomics.load(ahead, 0)) Atomics.wait(ahead, 0, count)
       if (Atomics.load(ahead, 1) === 1) throw new Error('The reading was stopped.')
       Atomics.add(ahead, 0, 1)
@@ -35,13 +35,20 @@ export async function readUpload({ port, ahead, totalBytes, ...options }: ReadUp
   }
 }
 
-/** The parts as one; a port that closes before the last of them ends the reading. */
-function collect(port: MessagePort, totalBytes: number): Promise<Uint8Array> {
+/**
+ * The parts as one text; a port that closes before the last of them ends the reading. The bytes are let go of here: a
+ * caller's frame would hold them as long as it reads.
+ */
+function collectText(port: MessagePort, totalBytes: number): Promise<DecodedText> {
   return new Promise((resolve, reject) => {
-    const bytes = new Uint8Array(totalBytes)
+    let bytes = new Uint8Array(totalBytes)
     let at = 0
     port.on('message', (part: Uint8Array | null) => {
-      if (part === null) return resolve(bytes)
+      if (part === null) {
+        resolve(decodeText(bytes))
+        bytes = new Uint8Array(0)
+        return
+      }
       bytes.set(part, at)
       at += part.length
     })
