@@ -20,6 +20,7 @@ import { limitFor, needsAhead } from './limits-for-demo'
 
 /** Elements in use that are older than this are brought up to date, as a nightly upload would. */
 const staleMs = 20 * 3_600_000
+const cameAfterMs = 25 * 60_000
 
 /** Loads the invented operator once; each later start brings its people's password and its element sets up to date. */
 export async function loadDemo(deps: Deps, password: string): Promise<void> {
@@ -64,13 +65,15 @@ async function bringElementsUpToDate(deps: Deps): Promise<void> {
   const referenceMs = Date.parse(scenario.referenceEpoch)
   const epochs = demoEpochs(now.getTime(), scenario.historyDays).filter(epochMs => !newest || epochMs > newest.epoch.getTime())
   for (const epochMs of epochs) {
-    const bytes = Buffer.from(demoNightFile(scenario.spacecraft, referenceMs, epochMs))
-    const { sets } = await uploadElements(deps, { bytes, source: 'demo', fileName: `night-${new Date(epochMs).toISOString().slice(0, 13)}h.json` })
     const isLast = epochMs === epochs.at(-1)
+    // Each night's file as it would have come, soon after its epoch, so that histories read as an operator's do.
+    const thatNight = { ...deps, now: isLast ? now : new Date(epochMs + cameAfterMs) }
+    const bytes = Buffer.from(demoNightFile(scenario.spacecraft, referenceMs, epochMs))
+    const { sets } = await uploadElements(thatNight, { bytes, source: 'demo', fileName: `night-${new Date(epochMs).toISOString().slice(0, 13)}h.json` })
     for (const set of sets) {
       if (set.state !== 'waiting' || set.spacecraftId === null || (isLast && scenario.leftWaiting.includes(set.spacecraftName ?? ''))) continue
       if (isLast && !newest) await chooseLimits(deps, set.spacecraftId, set.spacecraftName ?? '', set.id)
-      await useElementSet(deps, { id: set.id })
+      await useElementSet(thatNight, { id: set.id })
     }
   }
 }
