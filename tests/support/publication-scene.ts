@@ -1,12 +1,13 @@
 import { createHash, createPublicKey, randomUUID, verify } from 'node:crypto'
-import { sql } from 'drizzle-orm'
+import { eq, sql } from 'drizzle-orm'
 import { expect } from 'vitest'
 import type { Db } from '../../server/database/client'
-import { audit, passes, signingKeys, slots, tableRevisions, tables } from '../../server/database/schema'
+import { antennas, audit, passes, signingKeys, slots, tableRevisions, tables } from '../../server/database/schema'
 import { addSpacecraft, addStation, checkOf, presentDigest } from './fixtures'
 
 const minute = 60_000
 const hour = 60 * minute
+const passMs = 10
 export const leadMinutes = 60
 
 /** A station and a spacecraft whose approved tables come due when a test adds them; nothing is predicted beside. */
@@ -14,21 +15,27 @@ export async function layOutScene(db: Db, now: Date) {
   // Twelve hours from any evening, so that each table goes out in its own slot.
   const noon = new Date(now.getTime() + 12 * hour).toISOString().slice(11, 16)
   const station = await addStation(db, { zone: 'UTC', publishAt: noon, publishLeadMinutes: leadMinutes, freezeMinutes: 5 })
+  // Passes follow each other closely and none wants the antenna of another.
+  await db.update(antennas).set({ setupS: 0 }).where(eq(antennas.id, station.antenna.id))
   const craft = await addSpacecraft(db, new Date(now.getTime() - hour))
   const hours = Array.from({ length: 60 }, (_, index) => new Date((Math.floor(now.getTime() / hour) - 2 + index) * hour))
   await db.insert(slots).values(hours.map(instant => ({ kind: 'roll-forward' as const, entity: 'all', instant, doneAt: now, outcome: 'Left out here.' }))).onConflictDoNothing()
   const inputsDigest = await presentDigest(db, now, craft, station)
   let added = 0
+  let free = 0
 
-  /** Approved tables of passes so short that none is in another's way, with AOS from `aheadMs` on, one each `everyMs`. */
+  /** Approved tables of passes so short that none is in another's way, with AOS from `from` on or where there is room, one each `everyMs`. */
   async function addApproved(count: number, from: Date, everyMs = 50): Promise<void> {
-    const rows = Array.from({ length: count }, (_, index) => ({ passId: randomUUID(), tableId: randomUUID(), aos: new Date(from.getTime() + index * everyMs) }))
+    const first = Math.max(from.getTime(), free)
+    free = first + count * everyMs
+    const rows = Array.from({ length: count }, (_, index) => ({ passId: randomUUID(), tableId: randomUUID(), aos: new Date(first + index * everyMs) }))
     added += count
     await db.transaction(async (tx) => {
-      await tx.insert(passes).values(rows.map(({ passId, aos }) => ({ id: passId, spacecraftId: craft.id, stationId: station.id, elementSetId: craft.set.id, aos, culmination: aos, los: new Date(aos.getTime() + 10), maxElevationDeg: 40 })))
+      await tx.insert(passes).values(rows.map(({ passId, aos }) => ({ id: passId, spacecraftId: craft.id, stationId: station.id, elementSetId: craft.set.id, aos, culmination: aos, los: new Date(aos.getTime() + passMs), maxElevationDeg: 40 })))
       await tx.insert(tables).values(rows.map(({ passId, tableId }) => ({ id: tableId, passId, linkId: craft.link.id })))
       await tx.insert(tableRevisions).values(rows.map(({ tableId, aos }) => ({
-        tableId, number: 1, state: 'approved' as const, verdict: 'holds' as const, radioId: station.radio.id, elementSetId: craft.set.id, approvedBy: 'Test', approvedAt: now, inputsDigest, check: checkOf(5, aos),
+        tableId, number: 1, state: 'approved' as const, verdict: 'holds' as const, radioId: station.radio.id, elementSetId: craft.set.id, approvedBy: 'Test', approvedAt: now, inputsDigest,
+        check: { ...checkOf(5, aos), workable: [{ from: aos.toISOString(), to: new Date(aos.getTime() + passMs).toISOString() }] },
         retunes: [{ at: aos.toISOString(), frequencyHz: 437_510_000, slopeHzPerS: 0, dopplerHz: 10_000, rangeRateMps: -6850, azimuthDeg: 200, elevationDeg: 5, residualMinHz: -50, residualMaxHz: 50, lossDb: 0.1 }],
       })))
     })
