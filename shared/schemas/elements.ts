@@ -119,7 +119,7 @@ export const previewOut = z.object({
   asOf: z.enum(['before', 'after']),
   /** With the stations now. A revision is superseded where its rows' residual moves by more than `limitHz`, a fifth of the allowance, or its verdict changes. */
   published: z.array(tableChange.extend({ supersedes: z.boolean(), movesByHz: z.number().nullable(), limitHz: z.number().nullable(), reason: z.string().nullable() })),
-  /** Not out yet, and with another verdict; computed anew in place. */
+  /** Of the next 48 h, not out yet, and with another verdict; computed anew in place. */
   drafts: z.array(tableChange.extend({ state: z.string(), returnsToDraft: z.boolean() })),
   /** How many tables were looked at, and passes that come or go. */
   looked: z.object({ published: z.number().int(), drafts: z.number().int(), passesGone: z.number().int(), passesNew: z.number().int() }),

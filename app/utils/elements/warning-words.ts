@@ -29,7 +29,7 @@ export function previewSentence({ asOf, published, drafts, looked }: PreviewOut)
   const gone = published.filter(table => table.gone !== null).length
   const parts = [
     looked.published === 0 ? 'No table of this spacecraft is published' : `Of ${some(looked.published, 'published table')} ${superseded} would be drafted anew${gone > 0 ? ` and ${gone} would have no pass` : ''}`,
-    looked.drafts === 0 ? 'none is in draft' : `of ${some(looked.drafts, 'draft')} ${drafts.length === 0 ? 'none changes its verdict' : drafts.length === 1 ? '1 changes its verdict' : `${drafts.length} change their verdict`}`,
+    looked.drafts === 0 ? 'none is in draft within 48 hours' : `of ${some(looked.drafts, 'draft')} within 48 hours ${drafts.length === 0 ? 'none changes its verdict' : drafts.length === 1 ? '1 changes its verdict' : `${drafts.length} change their verdict`}`,
   ]
   const passes = looked.passesGone + looked.passesNew > 0 ? ` ${some(looked.passesGone, 'pass', 'passes')} would go and ${looked.passesNew} come.` : ''
   return `${parts.join('; ')}.${passes}`

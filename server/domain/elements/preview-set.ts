@@ -13,12 +13,15 @@ import { windowStart, workerInputOf } from '../prediction/worker-input'
 import { effectsOfSet } from './effects-of-set'
 import { findSet, requireSpacecraft } from './use-element-set'
 
+/** Drafts further ahead are computed anew long before anybody decides on them. */
+const DRAFTS_AHEAD_MS = 48 * 3_600_000
+
 /** What one station contributes. */
 type Part = Pick<PreviewOut, 'published' | 'drafts' | 'looked'>
 
 /**
  * What would become of tables if this set were put into use now: predicted as it would be, station by station, and held
- * against what is known, with nothing written. For a set that is or was in use: what it did.
+ * against what is known, with nothing written: all that is published, and drafts of the next 48 h. For a set that is or was in use: what it did.
  */
 export async function previewSet({ db, now }: Pick<Deps, 'db' | 'now'>, { id, asOf }: { id: string, asOf?: PreviewOut['asOf'] }): Promise<PreviewOut> {
   const set = await findSet(db, id)
@@ -33,9 +36,10 @@ export async function previewSet({ db, now }: Pick<Deps, 'db' | 'now'>, { id, as
     const inputs = await loadInputs({ db, now }, pair, id)
     const known = await loadKnown({ db }, pair, windowStart(now))
     const ahead = known.filter(pass => pass.aos > now)
-    const given = { inputs, linkNames, known: ahead }
+    const draftsUntil = new Date(now.getTime() + DRAFTS_AHEAD_MS)
+    const given = { inputs, linkNames, known: ahead, draftsUntil }
     if (!inputs.set || inputs.stopped) return partOf(given, [])
-    return partOf(given, await runTask('preview-station', workerInputOf({ ...inputs, set: inputs.set }, known, now)))
+    return partOf(given, await runTask('preview-station', { ...workerInputOf({ ...inputs, set: inputs.set }, known, now), draftsUntilMs: draftsUntil.getTime() }))
   }))
   const byAos = (a: { aos: string }, b: { aos: string }) => a.aos < b.aos ? -1 : 1
   const sum = (of: (part: Part) => number) => parts.reduce((total, part) => total + of(part), 0)
@@ -48,7 +52,7 @@ export async function previewSet({ db, now }: Pick<Deps, 'db' | 'now'>, { id, as
   }
 }
 
-interface Given { readonly inputs: PairInputs, readonly linkNames: ReadonlyMap<string, string>, readonly known: readonly KnownPass[] }
+interface Given { readonly inputs: PairInputs, readonly linkNames: ReadonlyMap<string, string>, readonly known: readonly KnownPass[], readonly draftsUntil: Date }
 
 function partOf(given: Given, predicted: readonly PreviewedPass[]): Part {
   const part: Part = { published: [], drafts: [], looked: { published: 0, drafts: 0, passesGone: 0, passesNew: predicted.filter(pass => !pass.knownId && !pass.untouched).length } }
@@ -61,7 +65,7 @@ function partOf(given: Given, predicted: readonly PreviewedPass[]): Part {
   return part
 }
 
-function lookAt(part: Part, { inputs, linkNames }: Given, pass: KnownPass, table: KnownTable, predicted: PreviewedTable | null, isPredicted: boolean): void {
+function lookAt(part: Part, { inputs, linkNames, draftsUntil }: Given, pass: KnownPass, table: KnownTable, predicted: PreviewedTable | null, isPredicted: boolean): void {
   const linkName = linkNames.get(table.linkId)
   if (linkName === undefined) return
   const named = { tableId: table.id, passId: pass.id, stationName: inputs.station.name, linkName, aos: pass.aos.toISOString() }
@@ -78,7 +82,7 @@ function lookAt(part: Part, { inputs, linkNames }: Given, pass: KnownPass, table
       })
     }
   }
-  if (open) {
+  if (open && pass.aos <= draftsUntil) {
     part.looked.drafts++
     const after = predicted?.planned?.verdict ?? null
     if (gone || (after && after !== open.verdict)) {

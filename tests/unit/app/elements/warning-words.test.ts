@@ -10,14 +10,14 @@ const preview = (change: Partial<PreviewOut>): PreviewOut => ({ setId: 's', asOf
 // Words only; what they say is by the life of a table.
 describe('what a preview comes to', () => {
   it('is said where nothing is published or in draft', () => {
-    expect(previewSentence(preview({}))).toBe('No table of this spacecraft is published; none is in draft.')
+    expect(previewSentence(preview({}))).toBe('No table of this spacecraft is published; none is in draft within 48 hours.')
   })
 
   it('counts what would be drafted anew, what would have no pass, and verdicts that change', () => {
     expect(previewSentence(preview({ published: [published, { ...published, supersedes: false }, { ...published, supersedes: false, gone: 'Gone.' }], drafts: [draft], looked: { published: 3, drafts: 8, passesGone: 1, passesNew: 2 } })))
-      .toBe('Of 3 published tables 1 would be drafted anew and 1 would have no pass; of 8 drafts 1 changes its verdict. 1 pass would go and 2 come.')
+      .toBe('Of 3 published tables 1 would be drafted anew and 1 would have no pass; of 8 drafts within 48 hours 1 changes its verdict. 1 pass would go and 2 come.')
     expect(previewSentence(preview({ drafts: [draft, draft], looked: { published: 1, drafts: 2, passesGone: 0, passesNew: 0 } })))
-      .toBe('Of 1 published table 0 would be drafted anew; of 2 drafts 2 change their verdict.')
+      .toBe('Of 1 published table 0 would be drafted anew; of 2 drafts within 48 hours 2 change their verdict.')
   })
 
   it('says afterwards what was drafted anew', () => {
