@@ -1,6 +1,7 @@
 import { createHash } from 'node:crypto'
 import { createServer } from 'node:http'
 import type { AddressInfo } from 'node:net'
+import { eq } from 'drizzle-orm'
 import { createApp, createRouter, toNodeListener } from 'h3'
 import { expect } from 'vitest'
 import calendarHandler from '../../server/api/calendars/[token].get'
@@ -11,7 +12,7 @@ import reportHandler from '../../server/api/station/v1/tables/[id]/report.post'
 import listHandler from '../../server/api/station/v1/tables/index.get'
 import type { Db } from '../../server/database/client'
 import { databaseNow, useDatabase } from '../../server/database/client'
-import { apiKeys } from '../../server/database/schema'
+import { apiKeys, passes, tables } from '../../server/database/schema'
 import { scheduleActor } from '../../server/domain/context'
 import { publishRevision } from '../../server/domain/tables/publish-revision'
 import { createTestDatabase } from './database'
@@ -60,7 +61,8 @@ export async function startFeed(stationGiven: Parameters<typeof addStation>[1] =
       return table
     },
     republish: async (table, number, given = {}) => {
-      await addRevision(db, craft, station, { tableId: table.id, aos: now, number, state: 'approved', inputsDigest: await presentDigest(db, now, craft, station), ...given })
+      const [pass] = await db.select({ aos: passes.aos }).from(passes).innerJoin(tables, eq(tables.passId, passes.id)).where(eq(tables.id, table.id))
+      await addRevision(db, craft, station, { tableId: table.id, aos: pass!.aos, number, state: 'approved', inputsDigest: await presentDigest(db, now, craft, station), ...given })
       await goOut(table.id)
     },
     addKey: (stationId, key) => db.insert(apiKeys).values({ name: 'Controller', prefix: key.slice(0, 11), keyHash: createHash('sha256').update(key).digest('hex'), scope: 'station', stationId }),
