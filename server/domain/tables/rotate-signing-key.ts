@@ -1,4 +1,4 @@
-import { eq } from 'drizzle-orm'
+import { eq, sql } from 'drizzle-orm'
 import { signingKeys } from '~~/server/database/schema'
 import { recordAudit } from '../audit'
 import type { Deps } from '../context'
@@ -12,6 +12,8 @@ import { makeSigningKey } from './signing-key'
 export async function rotateSigningKey(deps: Deps): Promise<SigningKeyOut> {
   const made = await makeSigningKey()
   await deps.db.transaction(async (tx) => {
+    // Two who make one at once take turns; the later one's signs.
+    await tx.execute(sql`SELECT pg_advisory_xact_lock(hashtext('signing-key'))`)
     const retired = await tx.update(signingKeys).set({ active: false, retiredAt: deps.now }).where(eq(signingKeys.active, true)).returning({ kid: signingKeys.kid })
     await tx.insert(signingKeys).values({ ...made, createdAt: deps.now })
     await recordAudit({ ...deps, db: tx }, { action: 'signing-key.make', entityKind: 'signing-key', entityId: made.kid, before: { kid: retired[0]?.kid ?? null }, after: { kid: made.kid } })
