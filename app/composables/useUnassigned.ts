@@ -15,19 +15,21 @@ export function useUnassigned(told: (words: string) => unknown) {
   const list = useApi('GET /api/element-sets', query)
   const counts = useApi('GET /api/element-sets/counts', {}, { pollS: 30 })
   const further = shallowRef<ElementSetOut[]>([])
-  const cursor = ref<string | null>(null)
+  // Where the pages fetched further have come to; until there are any, where the first one ends.
+  const furtherCursor = ref<string | null>()
+  const cursor = computed(() => furtherCursor.value === undefined ? list.data.value?.nextCursor ?? null : furtherCursor.value)
   const chosen = ref<string[]>([])
-  watch(list.data, (page) => {
+  watch(list.data, () => {
     further.value = []
-    cursor.value = page?.nextCursor ?? null
+    furtherCursor.value = undefined
     chosen.value = []
-  }, { immediate: true })
+  })
   const sets = computed(() => [...list.data.value?.items ?? [], ...further.value])
   const more = useAction(async () => {
     if (!cursor.value) return
     const page = await callApi('GET /api/element-sets', { query: { ...query.value.query, cursor: cursor.value } })
     further.value = [...further.value, ...page.items]
-    cursor.value = page.nextCursor
+    furtherCursor.value = page.nextCursor
   })
 
   const refresh = () => Promise.all([list.refresh(), counts.refresh()])
@@ -48,3 +50,4 @@ export function useUnassigned(told: (words: string) => unknown) {
   })
   return { pile, find, setQuery, list, counts, sets, cursor, chosen, more, move, assign, refresh }
 }
+export type Unassigned = ReturnType<typeof useUnassigned>
