@@ -15,7 +15,7 @@ export default defineConfig({
       { resolve: { alias }, test: { name: 'unit', include: ['tests/unit/**/*.test.ts', 'tests/architecture/**/*.test.ts'], env, testTimeout: 20_000 } },
       { resolve: { alias }, test: { name: 'domain', sequence: { groupOrder: 1 }, include: ['tests/domain/**/*.test.ts'], env, testTimeout: 60_000, hookTimeout: 60_000, globalSetup: ['tests/support/database-setup.ts'] } },
       { resolve: { alias }, test: { name: 'api', sequence: { groupOrder: 2 }, include: ['tests/api/**/*.test.ts'], env, testTimeout: 60_000, hookTimeout: 120_000, globalSetup: ['tests/support/database-setup.ts'], fileParallelism: false } },
-      { resolve: { alias }, test: { name: 'e2e', sequence: { groupOrder: 3 }, include: ['tests/e2e/**/*.test.ts'], env, testTimeout: 240_000, hookTimeout: 240_000, globalSetup: ['tests/support/database-setup.ts'], fileParallelism: false } },
+      { resolve: { alias }, test: { name: 'e2e', sequence: { groupOrder: 3 }, include: ['tests/e2e/**/*.test.ts'], env, testTimeout: 240_000, hookTimeout: 240_000, globalSetup: ['tests/support/database-setup.ts'], maxWorkers: 2 } },
       ...(process.env.NULLBEAT_ENDURANCE === '1' ? [endurance] : []),
     ],
   },

@@ -37,12 +37,12 @@ export async function autoUse({ db, now }: Pick<Deps, 'db' | 'now'>, { spacecraf
   const [craft] = await db.select().from(spacecraft).where(and(eq(spacecraft.id, spacecraftId), isNull(spacecraft.retiredAt)))
   const rule = craft?.autoUse
   if (!craft || !rule) return null
-  const waiting = await db.select({ id: elementSets.id }).from(elementSets).innerJoin(spacecraft, eq(spacecraft.id, elementSets.spacecraftId))
+  const waiting = await db.select({ id: elementSets.id, warnings: elementSets.warnings }).from(elementSets).innerJoin(spacecraft, eq(spacecraft.id, elementSets.spacecraftId))
     .where(and(eq(elementSets.spacecraftId, spacecraftId), isUnjudged)).orderBy(desc(elementSets.epochUtcUs), desc(elementSets.id)).limit(MOST_JUDGED)
   const [scheduled] = await db.select({ by: elementSets.useScheduledBy }).from(elementSets).where(and(eq(elementSets.spacecraftId, spacecraftId), gt(elementSets.useAt, now))).limit(1)
-  for (const { id } of waiting) {
+  for (const { id, warnings } of waiting) {
     const comparison = await compareElementSet(deps, { id })
-    const why = scheduled ? [`${scheduled.by} has scheduled another set of ${craft.name}; a person's decision goes first.`] : whyNotPlausible(rule, comparison)
+    const why = scheduled ? [`${scheduled.by} has scheduled another set of ${craft.name}; a person's decision goes first.`] : [...warnings.filter(({ code }) => code === 'fits-another').map(({ message }) => message), ...whyNotPlausible(rule, comparison)]
     if (why.length === 0 && await take(deps, id, comparison)) return id
     if (why.length > 0) await decline(deps, id, { rule, why, comparison })
   }

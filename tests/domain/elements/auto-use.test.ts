@@ -1,6 +1,6 @@
 import { eq } from 'drizzle-orm'
 import { afterEach, beforeEach, describe, expect, it } from 'vitest'
-import { alerts, spacecraft } from '~~/server/database/schema'
+import { alerts, elementSets, spacecraft } from '~~/server/database/schema'
 import type { Deps } from '~~/server/domain/context'
 import { reconcileAlerts } from '~~/server/domain/alerts/reconcile-alerts'
 import { changeSpacecraft } from '~~/server/domain/catalogue/change-spacecraft'
@@ -45,6 +45,14 @@ describe('the rule for plausible sets', () => {
     expect(await requestAutoUse(deps)).toBe(0)
     expect(await judge()).toBeNull()
     expect(await stateOf(deps, id)).toBe('waiting')
+  })
+
+  it('leaves to people what was found to fit another spacecraft better', async () => {
+    await setRule(rule)
+    const id = await addSet(near)
+    await deps.db.update(elementSets).set({ warnings: [{ line: 1, code: 'fits-another', message: 'It lies closer to another.' }] }).where(eq(elementSets.id, id))
+    expect(await judge()).toBeNull()
+    expect(await why(id)).toBe('It lies closer to another.')
   })
 
   it('takes a newer set within its limits into use, in its own name and with its figures', async () => {
